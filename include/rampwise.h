@@ -1,0 +1,30 @@
+/* rampwise: exact response of spring-mass-damper systems to sampled loads.
+
+   The headers are the reference manual, in the order in which data goes through them:
+
+       system -> coefficients -> step -> record
+
+   A record in a few lines:
+
+       rampwise_system sys;
+       rampwise_coeffs c;
+       rampwise_system_hertz(&sys, 2.5, 0.05);
+       rampwise_coeffs_make(&c, &sys, 0.005, RAMPWISE_BASE_ACCELERATION, RAMPWISE_RAMP);
+       rampwise_solve(&c, 0, 0, n, ground_acceleration, &(rampwise_history){.u = u, .total = a},
+   NULL);
+
+   Results support, and never replace, the governing code and a licensed engineer's judgement. */
+#ifndef RAMPWISE_H
+#define RAMPWISE_H
+
+#include "rampwise/version.h"
+#include "rampwise/status.h"
+#include "rampwise/system.h"
+#include "rampwise/coefficients.h"
+#include "rampwise/fused.h"
+#include "rampwise/step.h"
+#include "rampwise/motion.h"
+#include "rampwise/record.h"
+#include "rampwise/foreign.h"
+
+#endif

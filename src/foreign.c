@@ -1,0 +1,77 @@
+#include "rampwise/foreign.h"
+
+#include <string.h>
+#include "rampwise.h"
+
+/* clang-format off */
+#define CONSTANT(name) {#name, name}
+/* clang-format on */
+
+static const struct {
+    const char *name;
+    int value;
+} constants[] = {
+    CONSTANT(RAMPWISE_VERSION_MAJOR),
+    CONSTANT(RAMPWISE_VERSION_MINOR),
+    CONSTANT(RAMPWISE_VERSION_PATCH),
+    CONSTANT(RAMPWISE_ARITHMETIC_EDITION),
+    CONSTANT(RAMPWISE_OK),
+    CONSTANT(RAMPWISE_ERROR_MISSING),
+    CONSTANT(RAMPWISE_ERROR_INPUT),
+    CONSTANT(RAMPWISE_ERROR_BETWEEN),
+    CONSTANT(RAMPWISE_ERROR_IMPULSES),
+    CONSTANT(RAMPWISE_ERROR_NOT_MADE),
+    CONSTANT(RAMPWISE_ERROR_DIFFERENT),
+    CONSTANT(RAMPWISE_ERROR_NAME),
+    CONSTANT(RAMPWISE_ERROR_MASS),
+    CONSTANT(RAMPWISE_ERROR_DAMPER),
+    CONSTANT(RAMPWISE_ERROR_STIFFNESS),
+    CONSTANT(RAMPWISE_ERROR_FREQUENCY),
+    CONSTANT(RAMPWISE_ERROR_INTERVAL),
+    CONSTANT(RAMPWISE_ERROR_STEP_LENGTH),
+    CONSTANT(RAMPWISE_ERROR_COEFFICIENT),
+    CONSTANT(RAMPWISE_ERROR_FRACTION),
+    CONSTANT(RAMPWISE_ERROR_NO_REST),
+    CONSTANT(RAMPWISE_ERROR_SAMPLE),
+    CONSTANT(RAMPWISE_ERROR_STATE),
+    CONSTANT(RAMPWISE_ERROR_TIME),
+    CONSTANT(RAMPWISE_ERROR_OVERFLOW),
+    CONSTANT(RAMPWISE_ERROR_FUSED),
+    CONSTANT(RAMPWISE_ERROR_ARITHMETIC),
+    CONSTANT(RAMPWISE_FORCE),
+    CONSTANT(RAMPWISE_BASE_ACCELERATION),
+    CONSTANT(RAMPWISE_BASE_VELOCITY),
+    CONSTANT(RAMPWISE_BASE_DISPLACEMENT),
+    CONSTANT(RAMPWISE_RAMP),
+    CONSTANT(RAMPWISE_HOLD),
+};
+
+static const struct {
+    const char *name;
+    size_t size;
+} structs[] = {
+    {"rampwise_system", sizeof(rampwise_system)},
+    {"rampwise_coeffs", sizeof(rampwise_coeffs)},
+    {"rampwise_state", sizeof(rampwise_state)},
+    {"rampwise_history", sizeof(rampwise_history)},
+};
+
+int rampwise_constant(const char *name, int *value)
+{
+    if (name == NULL || value == NULL)
+        return RAMPWISE_ERROR_MISSING;
+    for (size_t i = 0; i < sizeof constants / sizeof *constants; ++i)
+        if (strcmp(name, constants[i].name) == 0) {
+            *value = constants[i].value;
+            return RAMPWISE_OK;
+        }
+    return RAMPWISE_ERROR_NAME;
+}
+
+size_t rampwise_struct_size(const char *name)
+{
+    for (size_t i = 0; name != NULL && i < sizeof structs / sizeof *structs; ++i)
+        if (strcmp(name, structs[i].name) == 0)
+            return structs[i].size;
+    return 0;
+}

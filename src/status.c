@@ -1,0 +1,58 @@
+#include "rampwise/status.h"
+
+const char *rampwise_status_text(int status)
+{
+    switch (status) {
+    case RAMPWISE_OK:
+        return "No error";
+    case RAMPWISE_ERROR_MISSING:
+        return "A pointer that is needed is NULL";
+    case RAMPWISE_ERROR_INPUT:
+        return "The kind of input is not force, base acceleration, base velocity or base "
+               "displacement";
+    case RAMPWISE_ERROR_BETWEEN:
+        return "The input between samples is neither ramp nor hold";
+    case RAMPWISE_ERROR_IMPULSES:
+        return "Held base velocity, and held base displacement with a damper, are trains of "
+               "impulses";
+    case RAMPWISE_ERROR_NOT_MADE:
+        return "The coefficients have not been made";
+    case RAMPWISE_ERROR_DIFFERENT:
+        return "Oscillators that must share one sample interval do not";
+    case RAMPWISE_ERROR_NAME:
+        return "There is no constant of that name";
+    case RAMPWISE_ERROR_MASS:
+        return "The mass is not a finite number above zero";
+    case RAMPWISE_ERROR_DAMPER:
+        return "The damper or damping ratio is not a finite number, or too large";
+    case RAMPWISE_ERROR_STIFFNESS:
+        return "The stiffness is not a finite number";
+    case RAMPWISE_ERROR_FREQUENCY:
+        return "The frequency is negative, the period is not above zero, or either is beyond range";
+    case RAMPWISE_ERROR_INTERVAL:
+        return "The sample interval is not a finite number above zero";
+    case RAMPWISE_ERROR_STEP_LENGTH:
+        return "The step is too long for this oscillator: no digits would be left";
+    case RAMPWISE_ERROR_COEFFICIENT:
+        return "A coefficient of the step overflows";
+    case RAMPWISE_ERROR_FRACTION:
+        return "The fraction of a step is not from zero to one";
+    case RAMPWISE_ERROR_NO_REST:
+        return "A load on a mass without a spring has no position of rest";
+    case RAMPWISE_ERROR_SAMPLE:
+        return "A sample is not a finite number";
+    case RAMPWISE_ERROR_STATE:
+        return "A state is not finite";
+    case RAMPWISE_ERROR_TIME:
+        return "A time is not finite, or not later than the one before";
+    case RAMPWISE_ERROR_OVERFLOW:
+        return "The response is too large for a double";
+    case RAMPWISE_ERROR_FUSED:
+        return "The fused multiply-add of this platform is not correctly rounded";
+    case RAMPWISE_ERROR_ARITHMETIC:
+        return "Known answers do not come out: a compiler option or rounding mode changes "
+               "arithmetic";
+    default:
+        return "No status of this library";
+    }
+}
