@@ -2,7 +2,7 @@
 
    The headers are the reference manual, in the order in which data goes through them:
 
-       system -> coefficients -> step -> record
+       system -> coefficients -> step -> record, channels, bank
 
    A record in a few lines:
 
@@ -10,8 +10,7 @@
        rampwise_coeffs c;
        rampwise_system_hertz(&sys, 2.5, 0.05);
        rampwise_coeffs_make(&c, &sys, 0.005, RAMPWISE_BASE_ACCELERATION, RAMPWISE_RAMP);
-       rampwise_solve(&c, 0, 0, n, ground_acceleration, &(rampwise_history){.u = u, .total = a},
-   NULL);
+       rampwise_solve(&c, 0, 0, n, ground, &(rampwise_history){.u = u, .total = a}, NULL);
 
    Results support, and never replace, the governing code and a licensed engineer's judgement. */
 #ifndef RAMPWISE_H
@@ -25,6 +24,9 @@
 #include "rampwise/step.h"
 #include "rampwise/motion.h"
 #include "rampwise/record.h"
+#include "rampwise/channels.h"
+#include "rampwise/instructions.h"
+#include "rampwise/bank.h"
 #include "rampwise/foreign.h"
 
 #endif

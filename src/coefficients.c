@@ -60,9 +60,10 @@ typedef struct response {
     twofold g, G1, G2;
 } response;
 
-#define TERMS 17           /* powers 3 to 19 of the step */
-#define TERMS_IN_TWOFOLD 9 /* powers 3 to 11; a double holds the rest, 2^-53 of the sum and less   \
-                            */
+#define TERMS 17 /* powers 3 to 19 of the step */
+#define TERMS_IN_TWOFOLD                                                                                     \
+    9 /* powers 3 to 11; a double holds the rest, 2^-53 of the sum and less                        \
+       */
 
 /* 1/n!, n = 2 to 19 */
 static const twofold inverse_factorial[18] = {
@@ -130,8 +131,7 @@ static response doubled(response r, twofold K, twofold S)
     const twofold trace = twofold_subtract(twofold_subtract(A_plus_1, KG1), Sg);
     const twofold g_plus_1 = twofold_add(r.g, (twofold){1, 0});
     const twofold G1 = twofold_add(twofold_multiply(A_plus_1, r.G1), twofold_multiply(r.g, r.g));
-    const twofold G2 =
-        twofold_add(twofold_multiply(A_plus_1, r.G2), twofold_multiply(g_plus_1, r.G1));
+    const twofold G2 = twofold_add(twofold_multiply(A_plus_1, r.G2), twofold_multiply(g_plus_1, r.G1));
     return (response){unless_spent(twofold_times_power(twofold_multiply(r.g, trace), -1)),
                       twofold_times_power(G1, -2), twofold_times_power(G2, -3)};
 }
@@ -140,8 +140,7 @@ static response doubled(response r, twofold K, twofold S)
 static int grown_beyond(const response *r, twofold K, twofold S, double limit)
 {
     const double size = fmax(1.0, fmax(fabs(K.hi), fabs(S.hi)));
-    return !(fabs(r->g.hi) * size < limit && fabs(r->G1.hi) * size < limit &&
-             fabs(r->G2.hi) * size < limit);
+    return !(fabs(r->g.hi) * size < limit && fabs(r->G1.hi) * size < limit && fabs(r->G2.hi) * size < limit);
 }
 
 /* Numbers are limited to 2^450 where they are multiplied, and to 2^900 in the result, whatever the
@@ -164,8 +163,7 @@ static int step_response(response *r, const step *s)
         K.exponent += 2;
         S.exponent += 1;
     }
-    return grown_beyond(r, beside_one(K), beside_one(S), 0x1p900) ? RAMPWISE_ERROR_COEFFICIENT
-                                                                  : RAMPWISE_OK;
+    return grown_beyond(r, beside_one(K), beside_one(S), 0x1p900) ? RAMPWISE_ERROR_COEFFICIENT : RAMPWISE_OK;
 }
 
 /* factor x, rounded once; + 0.0 makes -0 plain. */
@@ -180,8 +178,7 @@ static double rounded_pair(const step *s, twofold x, twofold y, scaled unit)
     const int exponent = s->K.exponent > s->S.exponent ? s->K.exponent : s->S.exponent;
     const scaled K = {s->K.value, s->K.exponent - exponent};
     const scaled S = {s->S.value, s->S.exponent - exponent};
-    const twofold sum =
-        twofold_add(twofold_multiply(beside_one(K), x), twofold_multiply(beside_one(S), y));
+    const twofold sum = twofold_add(twofold_multiply(beside_one(K), x), twofold_multiply(beside_one(S), y));
     return rounded((scaled){unit.value, unit.exponent + exponent}, sum);
 }
 
@@ -201,8 +198,7 @@ static void free_motion(rampwise_coeffs *c, const step *s, const response *r)
     c->Bp_minus_1 = -rounded_pair(s, r->G1, r->g, unity) + 0.0;
 }
 
-/* C, D, C', D' where the input acts as a force, unit times the one of the oscillator without units.
- */
+/* C, D, C', D' where the input acts as a force, unit times the one of the oscillator without units. */
 static void load_on_mass(rampwise_coeffs *c, const response *r, scaled for_u, scaled for_v)
 {
     if (c->between == RAMPWISE_HOLD) {
@@ -278,8 +274,7 @@ static void acceleration_rows(rampwise_coeffs *c, const step *s)
         break;
     default:
         c->acceleration[2] = c->total[2] = stiffness;
-        c->acceleration[3] = c->total[3] =
-            rounded(scaled_divide(s->S, scaled_multiply(s->h, s->h)), one);
+        c->acceleration[3] = c->total[3] = rounded(scaled_divide(s->S, scaled_multiply(s->h, s->h)), one);
     }
 }
 
@@ -307,14 +302,13 @@ static int refused(const rampwise_system *sys, double dt, int input, int between
         return RAMPWISE_ERROR_INPUT;
     if (between != RAMPWISE_RAMP && between != RAMPWISE_HOLD)
         return RAMPWISE_ERROR_BETWEEN;
-    if (between == RAMPWISE_HOLD && (input == RAMPWISE_BASE_VELOCITY ||
-                                     (input == RAMPWISE_BASE_DISPLACEMENT && sys->damper != 0)))
+    if (between == RAMPWISE_HOLD &&
+        (input == RAMPWISE_BASE_VELOCITY || (input == RAMPWISE_BASE_DISPLACEMENT && sys->damper != 0)))
         return RAMPWISE_ERROR_IMPULSES;
     return RAMPWISE_OK;
 }
 
-int rampwise_coeffs_make(rampwise_coeffs *c, const rampwise_system *sys, double dt, int input,
-                         int between)
+int rampwise_coeffs_make(rampwise_coeffs *c, const rampwise_system *sys, double dt, int input, int between)
 {
     if (c == NULL || sys == NULL)
         return RAMPWISE_ERROR_MISSING;

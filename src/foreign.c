@@ -7,8 +7,9 @@
 #define CONSTANT(name) {#name, name}
 /* clang-format on */
 
+/* Names are arrays: no pointers that the loader would have to write. */
 static const struct {
-    const char *name;
+    char name[28];
     int value;
 } constants[] = {
     CONSTANT(RAMPWISE_VERSION_MAJOR),
@@ -23,6 +24,9 @@ static const struct {
     CONSTANT(RAMPWISE_ERROR_NOT_MADE),
     CONSTANT(RAMPWISE_ERROR_DIFFERENT),
     CONSTANT(RAMPWISE_ERROR_NAME),
+    CONSTANT(RAMPWISE_ERROR_MEMORY),
+    CONSTANT(RAMPWISE_ERROR_COUNT),
+    CONSTANT(RAMPWISE_ERROR_INSTRUCTIONS),
     CONSTANT(RAMPWISE_ERROR_MASS),
     CONSTANT(RAMPWISE_ERROR_DAMPER),
     CONSTANT(RAMPWISE_ERROR_STIFFNESS),
@@ -44,16 +48,22 @@ static const struct {
     CONSTANT(RAMPWISE_BASE_DISPLACEMENT),
     CONSTANT(RAMPWISE_RAMP),
     CONSTANT(RAMPWISE_HOLD),
+    CONSTANT(RAMPWISE_FASTEST),
+    CONSTANT(RAMPWISE_BASELINE),
+    CONSTANT(RAMPWISE_AVX2),
+    CONSTANT(RAMPWISE_AVX512),
+    CONSTANT(RAMPWISE_NEON),
 };
 
 static const struct {
-    const char *name;
+    char name[28];
     size_t size;
 } structs[] = {
     {"rampwise_system", sizeof(rampwise_system)},
     {"rampwise_coeffs", sizeof(rampwise_coeffs)},
     {"rampwise_state", sizeof(rampwise_state)},
     {"rampwise_history", sizeof(rampwise_history)},
+    {"rampwise_bank_wanted", sizeof(rampwise_bank_wanted)},
 };
 
 int rampwise_constant(const char *name, int *value)

@@ -30,8 +30,7 @@ static wide wide_product(uint64_t a, uint64_t b)
     const uint64_t low = (a & half) * (b & half);
     const uint64_t cross = (a >> 32) * (b & half) + (low >> 32);
     const uint64_t other = (a & half) * (b >> 32) + (cross & half);
-    return (wide){(a >> 32) * (b >> 32) + (cross >> 32) + (other >> 32),
-                  other << 32 | (low & half)};
+    return (wide){(a >> 32) * (b >> 32) + (cross >> 32) + (other >> 32), other << 32 | (low & half)};
 }
 
 static wide wide_left(wide a, int by)
@@ -128,8 +127,7 @@ static uint64_t fused(number x, number y, number z, const format *f, int *negati
     *negative = x.negative ^ y.negative;
     if (*negative == z.negative) {
         sum = wide_sum(product, addend);
-    } else if (product.high > addend.high ||
-               (product.high == addend.high && product.low >= addend.low)) {
+    } else if (product.high > addend.high || (product.high == addend.high && product.low >= addend.low)) {
         sum = wide_difference(product, addend);
     } else {
         sum = wide_difference(addend, product);
@@ -156,9 +154,9 @@ double rampwise_fma(double x, double y, double z)
     if ((c & ~sign) - 1 >= infinite - 1)
         return (c & ~sign) == 0 ? x * y : z + z;
     int negative;
-    uint64_t bits = fused(unpack(a & ~sign, a >> 63 != 0, &binary64),
-                          unpack(b & ~sign, b >> 63 != 0, &binary64),
-                          unpack(c & ~sign, c >> 63 != 0, &binary64), &binary64, &negative);
+    uint64_t bits =
+        fused(unpack(a & ~sign, a >> 63 != 0, &binary64), unpack(b & ~sign, b >> 63 != 0, &binary64),
+              unpack(c & ~sign, c >> 63 != 0, &binary64), &binary64, &negative);
     bits |= negative ? sign : 0;
     double result;
     memcpy(&result, &bits, sizeof result);
@@ -177,9 +175,9 @@ float rampwise_fmaf(float x, float y, float z)
     if ((c & ~sign) - 1 >= infinite - 1)
         return (c & ~sign) == 0 ? x * y : z + z;
     int negative;
-    uint32_t bits = (uint32_t)fused(
-        unpack(a & ~sign, a >> 31 != 0, &binary32), unpack(b & ~sign, b >> 31 != 0, &binary32),
-        unpack(c & ~sign, c >> 31 != 0, &binary32), &binary32, &negative);
+    uint32_t bits = (uint32_t)fused(unpack(a & ~sign, a >> 31 != 0, &binary32),
+                                    unpack(b & ~sign, b >> 31 != 0, &binary32),
+                                    unpack(c & ~sign, c >> 31 != 0, &binary32), &binary32, &negative);
     bits |= negative ? sign : 0;
     float result;
     memcpy(&result, &bits, sizeof result);

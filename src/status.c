@@ -18,9 +18,16 @@ const char *rampwise_status_text(int status)
     case RAMPWISE_ERROR_NOT_MADE:
         return "The coefficients have not been made";
     case RAMPWISE_ERROR_DIFFERENT:
-        return "Oscillators that must share one sample interval do not";
+        return "Oscillators that must share a sample interval, a kind or an input do not";
     case RAMPWISE_ERROR_NAME:
         return "There is no constant of that name";
+    case RAMPWISE_ERROR_MEMORY:
+        return "The memory is too small, not aligned, or not to be had";
+    case RAMPWISE_ERROR_COUNT:
+        return "A number of things, or the number of one of them, is out of range";
+    case RAMPWISE_ERROR_INSTRUCTIONS:
+        return "The set of instructions is unknown, was not built, or does not run on this "
+               "processor";
     case RAMPWISE_ERROR_MASS:
         return "The mass is not a finite number above zero";
     case RAMPWISE_ERROR_DAMPER:

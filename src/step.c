@@ -27,8 +27,7 @@ int rampwise_start_settled(const rampwise_coeffs *c, rampwise_state *s, double p
         return RAMPWISE_ERROR_NOT_MADE;
     if (!isfinite(p0))
         return RAMPWISE_ERROR_SAMPLE;
-    const int loaded =
-        p0 != 0 && (c->input == RAMPWISE_FORCE || c->input == RAMPWISE_BASE_ACCELERATION);
+    const int loaded = p0 != 0 && (c->input == RAMPWISE_FORCE || c->input == RAMPWISE_BASE_ACCELERATION);
     if (loaded && c->system.stiffness == 0)
         return RAMPWISE_ERROR_NO_REST;
     const double u = p0 != 0 ? rest_position(c, p0) : 0;
@@ -42,19 +41,19 @@ int rampwise_start_settled(const rampwise_coeffs *c, rampwise_state *s, double p
 static int part_of_step(const rampwise_coeffs *c, rampwise_state *s, double p_next, double fraction)
 {
     rampwise_coeffs part;
-    const int status =
-        rampwise_coeffs_make(&part, &c->system, fraction * c->dt, c->input, c->between);
-    const double change = c->between == RAMPWISE_RAMP ? p_next - s->p : 0;
-    const double p_before = c->between == RAMPWISE_RAMP ? 0 : s->p_before;
+    const int ramp = c->between == RAMPWISE_RAMP;
+    const double change = ramp ? p_next - s->p : 0;
+    const double p_before = s->p_before;
+    const int status = rampwise_coeffs_make(&part, &c->system, fraction * c->dt, c->input, c->between);
     if (status != RAMPWISE_OK)
         return status;
     rampwise_step(&part, s, RAMPWISE_FMA(fraction, change, s->p));
-    s->p_before = c->between == RAMPWISE_RAMP ? s->p - change : p_before;
+    s->p_before = ramp ? s->p - change : p_before;
     return RAMPWISE_OK;
 }
 
-int rampwise_inside(const rampwise_coeffs *c, const rampwise_state *s, double p_next,
-                    double fraction, rampwise_state *at)
+int rampwise_inside(const rampwise_coeffs *c, const rampwise_state *s, double p_next, double fraction,
+                    rampwise_state *at)
 {
     if (c == NULL || s == NULL || at == NULL)
         return RAMPWISE_ERROR_MISSING;

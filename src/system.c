@@ -17,8 +17,7 @@ static int natural(rampwise_system *sys, twofold omega, int exponent, double zet
     const double stiffness = ldexp(square.hi, 2 * exponent);
     int zeta_exponent;
     const double zeta_mantissa = frexp(zeta, &zeta_exponent);
-    const double damper =
-        ldexp(twofold_multiply_by(omega, zeta_mantissa).hi, exponent + zeta_exponent + 1);
+    const double damper = ldexp(twofold_multiply_by(omega, zeta_mantissa).hi, exponent + zeta_exponent + 1);
     if (stiffness > DBL_MAX || (omega.hi > 0 && stiffness < DBL_MIN))
         return RAMPWISE_ERROR_FREQUENCY;
     if (!isfinite(damper))

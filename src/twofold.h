@@ -50,8 +50,7 @@ static inline twofold twofold_negative(twofold a)
     return (twofold){-a.hi, -a.lo};
 }
 
-/* Good to 2^-104 of the larger operand: what cancels is not won back, since operands are not exact.
- */
+/* Good to 2^-104 of the larger operand: what cancels is not won back, since operands are not exact. */
 static inline twofold twofold_add(twofold a, twofold b)
 {
     const twofold sum = twofold_sum(a.hi, b.hi);

@@ -3,6 +3,8 @@
 #define RAMPWISE_VALID_H
 
 #include <math.h>
+#include "kernels/kernels.h"
+#include "rampwise/status.h"
 #include "rampwise/step.h"
 
 static inline int coeffs_are_made(const rampwise_coeffs *c)
@@ -14,6 +16,27 @@ static inline int coeffs_are_made(const rampwise_coeffs *c)
 static inline int state_is_finite(const rampwise_state *s)
 {
     return isfinite(s->u) && isfinite(s->v) && isfinite(s->p) && isfinite(s->p_before);
+}
+
+static inline int check_pair(const rampwise_coeffs *c, const rampwise_state *s)
+{
+    if (!coeffs_are_made(c))
+        return RAMPWISE_ERROR_NOT_MADE;
+    return state_is_finite(s) ? RAMPWISE_OK : RAMPWISE_ERROR_STATE;
+}
+
+/* A status with the index of the sample at fault. */
+static inline int blame(int status, size_t index, size_t *bad)
+{
+    if (bad != NULL)
+        *bad = index;
+    return status;
+}
+
+static inline int check_samples(size_t n, const double *p, size_t *bad)
+{
+    const size_t wrong = rampwise_kernels_(RAMPWISE_FASTEST)->first_not_finite(n, p);
+    return wrong < n ? blame(RAMPWISE_ERROR_SAMPLE, wrong, bad) : RAMPWISE_OK;
 }
 
 #endif

@@ -5,8 +5,7 @@
 
 const char *rampwise_version(void)
 {
-    return TEXT(RAMPWISE_VERSION_MAJOR) "." TEXT(RAMPWISE_VERSION_MINOR) "." TEXT(
-        RAMPWISE_VERSION_PATCH);
+    return TEXT(RAMPWISE_VERSION_MAJOR) "." TEXT(RAMPWISE_VERSION_MINOR) "." TEXT(RAMPWISE_VERSION_PATCH);
 }
 
 int rampwise_arithmetic_edition(void)

@@ -34,11 +34,10 @@
 
 /* What the samples are. */
 enum {
-    RAMPWISE_FORCE = 11, /* p: force on the mass; u against a fixed frame */
-    RAMPWISE_BASE_ACCELERATION =
-        12,                         /* a_g; u relative to the base; p is a_g itself, never -m a_g */
-    RAMPWISE_BASE_VELOCITY = 13,    /* v_g; u relative to the base */
-    RAMPWISE_BASE_DISPLACEMENT = 14 /* x_g; u absolute, against a fixed frame */
+    RAMPWISE_FORCE = 11,             /* p: force on the mass; u against a fixed frame */
+    RAMPWISE_BASE_ACCELERATION = 12, /* a_g; u relative to the base; p is a_g itself, never -m a_g */
+    RAMPWISE_BASE_VELOCITY = 13,     /* v_g; u relative to the base */
+    RAMPWISE_BASE_DISPLACEMENT = 14  /* x_g; u absolute, against a fixed frame */
 };
 
 /* What the input does between two samples. Values of different kinds never coincide, so swapped
@@ -85,8 +84,8 @@ RAMPWISE_BEGIN
    coefficient below the smallest normal double comes out subnormal or zero.
 
    About 0.3 to 1 microsecond, growing with log2(w dt); no allocation. Since 0.1. */
-RAMPWISE_API int rampwise_coeffs_make(rampwise_coeffs *c, const rampwise_system *sys, double dt,
-                                      int input, int between);
+RAMPWISE_API int rampwise_coeffs_make(rampwise_coeffs *c, const rampwise_system *sys, double dt, int input,
+                                      int between);
 
 RAMPWISE_END
 

@@ -29,7 +29,7 @@ RAMPWISE_END
 /* The fastest correct one here. */
 #if defined(RAMPWISE_OWN_FMA) || !defined(__GNUC__)
 #define RAMPWISE_FMA(x, y, z) rampwise_fma((x), (y), (z))
-#elif defined(__FP_FAST_FMA) || (defined(__FMA__) && defined(__SSE2__)) ||                         \
+#elif defined(__FP_FAST_FMA) || (defined(__FMA__) && defined(__SSE2__)) ||                                   \
     (defined(__ARM_FEATURE_FMA) && defined(__aarch64__))
 #define RAMPWISE_FMA_IN_HARDWARE 1
 #define RAMPWISE_FMA(x, y, z) __builtin_fma((x), (y), (z))

@@ -1,8 +1,10 @@
 /* rampwise/motion.h: what follows from a state at a sample: accelerations, relative motion, forces.
 
-   c must be the coefficients that the state has been stepped with; nothing is checked. Where the
-   input or its slope jumps at a sample, RAMPWISE_RAMP gives the value just before the sample,
-   RAMPWISE_HOLD the one just after; at the start, a line of slope zero is taken to end there.
+   c must be the coefficients that the state has been stepped with; nothing is checked. Where the input or
+   its slope jumps at a sample, RAMPWISE_RAMP gives the value just before the sample, RAMPWISE_HOLD the one
+   just after; at the start, a line of slope zero is taken to end there. p and p_before are read only where
+   the input enters: forces and relative motion under a force, base acceleration or base velocity need u and
+   v alone. For a moving base, spring force + damper force = -mass * total acceleration.
 
    Each is a handful of operations, never fails, and answers NaN or infinity where its arguments do.
    Any thread. All since 0.1. */
@@ -21,8 +23,7 @@ RAMPWISE_API double rampwise_acceleration(const rampwise_coeffs *c, const rampwi
 RAMPWISE_API double rampwise_total_acceleration(const rampwise_coeffs *c, const rampwise_state *s);
 
 /* Displacement of the mass against the base: u, or u - x_g for a base displacement. */
-RAMPWISE_API double rampwise_relative_displacement(const rampwise_coeffs *c,
-                                                   const rampwise_state *s);
+RAMPWISE_API double rampwise_relative_displacement(const rampwise_coeffs *c, const rampwise_state *s);
 
 /* Velocity of the mass against the base: v, or v - x_g' for a base displacement. */
 RAMPWISE_API double rampwise_relative_velocity(const rampwise_coeffs *c, const rampwise_state *s);
@@ -30,8 +31,7 @@ RAMPWISE_API double rampwise_relative_velocity(const rampwise_coeffs *c, const r
 /* Force in the spring, stiffness times relative displacement; positive when stretched along +u. */
 RAMPWISE_API double rampwise_spring_force(const rampwise_coeffs *c, const rampwise_state *s);
 
-/* Force in the damper, damper times relative velocity; positive when it is pulled apart along +u.
- */
+/* Force in the damper, damper times relative velocity; positive when it is pulled apart along +u. */
 RAMPWISE_API double rampwise_damper_force(const rampwise_coeffs *c, const rampwise_state *s);
 
 RAMPWISE_END

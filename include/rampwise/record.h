@@ -29,33 +29,25 @@ RAMPWISE_BEGIN
 
 /* The next n samples, p[0] to p[n-1], each dt after the one before: one step each. out may be NULL.
    The bits do not depend on how a record is cut into calls. Since 0.1. */
-RAMPWISE_API int rampwise_run(const rampwise_coeffs *c, rampwise_state *s, size_t n,
-                              const double *p, const rampwise_history *out, size_t *bad);
+RAMPWISE_API int rampwise_run(const rampwise_coeffs *c, rampwise_state *s, size_t n, const double *p,
+                              const rampwise_history *out, size_t *bad);
 
 /* A whole record of n samples, n - 1 steps, from displacement u0 and velocity v0: entry 0 of each
    output is the initial state under p[0] (the start "at once" of step.h). The same bits as
    rampwise_start with p[0] and rampwise_run over the others. Since 0.1. */
-RAMPWISE_API int rampwise_solve(const rampwise_coeffs *c, double u0, double v0, size_t n,
-                                const double *p, const rampwise_history *out, size_t *bad);
+RAMPWISE_API int rampwise_solve(const rampwise_coeffs *c, double u0, double v0, size_t n, const double *p,
+                                const rampwise_history *out, size_t *bad);
 
-/* The next n samples at the times t[0] < t[1] < ..., the state being at *t_last < t[0]; exact for
-   any gaps. c tells system, input and between; its dt is used where an interval equals it. *t_last
-   becomes the time of the state. Eight lengths of interval are remembered (by their bits, on the
-   stack, 2 KiB): while the intervals are among them, the work is that of rampwise_run, else one
-   making of coefficients more. With intervals of exactly c->dt, the bits are those of rampwise_run.
-   An interval that rampwise_coeffs_make refuses is its error, and bad tells the sample. Since 0.1.
- */
-RAMPWISE_API int rampwise_run_at(const rampwise_coeffs *c, rampwise_state *s, double *t_last,
-                                 size_t n, const double *t, const double *p,
-                                 const rampwise_history *out, size_t *bad);
-
-/* n frames of samples, p[n][channels], channel j under oscillator c[j] with state s[j]: outputs are
-   frames too. All c share one dt (RAMPWISE_ERROR_DIFFERENT). Each channel has the bits of
-   rampwise_run on it alone; one that overflows stops there and the others go on. bad is an index
-   into p, the earliest at fault. Since 0.1. */
-RAMPWISE_API int rampwise_run_frames(size_t channels, const rampwise_coeffs *c, rampwise_state *s,
-                                     size_t n, const double *p, const rampwise_history *out,
-                                     size_t *bad);
+/* The next n samples at the times t[0] < t[1] < ..., the state being at *t_last < t[0]; exact for any gaps.
+   *t_last becomes the time of the state. c tells system, input and between; its own dt may be any, such as
+   the usual interval, and belongs to p_before of the state.
+   Eight lengths of interval are remembered (by their bits, on the stack, 2 KiB), c->dt first: while the
+   intervals are among them the work is a little more than that of rampwise_run, else one making of
+   coefficients more. With intervals of exactly c->dt, the bits are those of rampwise_run.
+   RAMPWISE_ERROR_TIME, with the index in bad, where a time is not finite or not later than the one before;
+   an interval that rampwise_coeffs_make refuses gives that error, and bad its sample. Since 0.1. */
+RAMPWISE_API int rampwise_run_at(const rampwise_coeffs *c, rampwise_state *s, double *t_last, size_t n,
+                                 const double *t, const double *p, const rampwise_history *out, size_t *bad);
 
 RAMPWISE_END
 

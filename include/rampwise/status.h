@@ -15,20 +15,23 @@ enum {
     RAMPWISE_OK = 0,
 
     /* The call itself is wrong. */
-    RAMPWISE_ERROR_MISSING = -10,  /* a pointer that is needed is NULL */
-    RAMPWISE_ERROR_INPUT = -12,    /* not a kind of input, or two arguments were swapped */
-    RAMPWISE_ERROR_BETWEEN = -14,  /* not RAMPWISE_RAMP or RAMPWISE_HOLD, or two were swapped */
-    RAMPWISE_ERROR_IMPULSES = -16, /* held base velocity, or held base displacement with a damper */
-    RAMPWISE_ERROR_NOT_MADE = -18, /* coefficients that rampwise_coeffs_make has not filled */
-    RAMPWISE_ERROR_DIFFERENT = -20, /* oscillators that must share one dt do not */
-    RAMPWISE_ERROR_NAME = -22,      /* no constant or struct of that name */
+    RAMPWISE_ERROR_MISSING = -10,      /* a pointer that is needed is NULL */
+    RAMPWISE_ERROR_INPUT = -12,        /* not a kind of input, or two arguments were swapped */
+    RAMPWISE_ERROR_BETWEEN = -14,      /* not RAMPWISE_RAMP or RAMPWISE_HOLD, or two were swapped */
+    RAMPWISE_ERROR_IMPULSES = -16,     /* held base velocity, or held base displacement with a damper */
+    RAMPWISE_ERROR_NOT_MADE = -18,     /* coefficients that rampwise_coeffs_make has not filled */
+    RAMPWISE_ERROR_DIFFERENT = -20,    /* what oscillators must share differs */
+    RAMPWISE_ERROR_NAME = -22,         /* no constant or struct of that name */
+    RAMPWISE_ERROR_MEMORY = -24,       /* memory is short, not aligned, or not to be had */
+    RAMPWISE_ERROR_COUNT = -26,        /* a number of things, or the number of one, is out of range */
+    RAMPWISE_ERROR_INSTRUCTIONS = -28, /* no set of instructions, or not one that runs here */
 
     /* A number that describes the oscillator or the step is out of range. */
-    RAMPWISE_ERROR_MASS = -30,      /* mass is not a finite number above 0 */
-    RAMPWISE_ERROR_DAMPER = -32,    /* damper, or damping ratio, is not finite */
-    RAMPWISE_ERROR_STIFFNESS = -34, /* stiffness is not finite */
-    RAMPWISE_ERROR_FREQUENCY = -36, /* frequency negative, period not above 0, or either extreme */
-    RAMPWISE_ERROR_INTERVAL = -38,  /* dt is not a finite number above 0 */
+    RAMPWISE_ERROR_MASS = -30,        /* mass is not a finite number above 0 */
+    RAMPWISE_ERROR_DAMPER = -32,      /* damper, or damping ratio, is not finite */
+    RAMPWISE_ERROR_STIFFNESS = -34,   /* stiffness is not finite */
+    RAMPWISE_ERROR_FREQUENCY = -36,   /* frequency negative, period not above 0, or either extreme */
+    RAMPWISE_ERROR_INTERVAL = -38,    /* dt is not a finite number above 0 */
     RAMPWISE_ERROR_STEP_LENGTH = -40, /* the step is too long for the oscillator to keep digits */
     RAMPWISE_ERROR_COEFFICIENT = -42, /* a coefficient overflows */
     RAMPWISE_ERROR_FRACTION = -44,    /* a fraction of a step that is not from 0 to 1 */

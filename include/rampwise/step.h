@@ -40,12 +40,12 @@ RAMPWISE_API int rampwise_start_settled(const rampwise_coeffs *c, rampwise_state
 RAMPWISE_API int rampwise_inside(const rampwise_coeffs *c, const rampwise_state *s, double p_next,
                                  double fraction, rampwise_state *at);
 
-#if defined(__FAST_MATH__) || defined(_M_FP_FAST) ||                                               \
+#if defined(__FAST_MATH__) || defined(_M_FP_FAST) ||                                                         \
     (defined(__FLT_EVAL_METHOD__) && __FLT_EVAL_METHOD__ != 0 && __FLT_EVAL_METHOD__ != 16)
 #define RAMPWISE_STEP_BY_CALL 1
 struct rampwise_history;
-RAMPWISE_API int rampwise_run(const rampwise_coeffs *c, rampwise_state *s, size_t n,
-                              const double *p, const struct rampwise_history *out, size_t *bad);
+RAMPWISE_API int rampwise_run(const rampwise_coeffs *c, rampwise_state *s, size_t n, const double *p,
+                              const struct rampwise_history *out, size_t *bad);
 #endif
 
 RAMPWISE_END
@@ -59,21 +59,29 @@ static inline void rampwise_start(rampwise_state *s, double u0, double v0, doubl
     s->p_before = p0;
 }
 
+/* Keeps a value in a register of its own: compilers like to pack u and v into one vector, and would
+   unpack it again in every step. Computes nothing. */
+#if defined(__GNUC__) && defined(__SSE2__)
+#define RAMPWISE_APART_(x) __asm__("" : "+x"(x))
+#elif defined(__GNUC__) && defined(__aarch64__)
+#define RAMPWISE_APART_(x) __asm__("" : "+w"(x))
+#else
+#define RAMPWISE_APART_(x) ((void)0)
+#endif
+
 /* The bare recurrence of coefficients.h, in the order that is part of the contract:
 
        u1 = u0 + fma(A - 1, u0, fma(B,      v0, fma(C,  p0, D  p1)))
        v1 = v0 + fma(A',    u0, fma(B' - 1, v0, fma(C', p0, D' p1)))
 
    For rampwise_step and the library. */
-static inline double rampwise_next_u_(const rampwise_coeffs *c, double u, double v, double p,
-                                      double p_next)
+static inline double rampwise_next_u_(const rampwise_coeffs *c, double u, double v, double p, double p_next)
 {
     const double loaded = RAMPWISE_FMA(c->C, p, c->D * p_next);
     return u + RAMPWISE_FMA(c->A_minus_1, u, RAMPWISE_FMA(c->B, v, loaded));
 }
 
-static inline double rampwise_next_v_(const rampwise_coeffs *c, double u, double v, double p,
-                                      double p_next)
+static inline double rampwise_next_v_(const rampwise_coeffs *c, double u, double v, double p, double p_next)
 {
     const double loaded = RAMPWISE_FMA(c->Cp, p, c->Dp * p_next);
     return v + RAMPWISE_FMA(c->Ap, u, RAMPWISE_FMA(c->Bp_minus_1, v, loaded));
@@ -106,11 +114,14 @@ static inline void rampwise_step(const rampwise_coeffs *c, rampwise_state *s, do
     (void)rampwise_run(c, s, 1, &p_next, NULL, NULL);
 #else
     const int silent = rampwise_silent_(s->p, p_next);
-    const double u = rampwise_next_u_(c, s->u, s->v, s->p, p_next);
-    const double v = rampwise_next_v_(c, s->u, s->v, s->p, p_next);
-    const double u_still = rampwise_unless_spent_(u), v_still = rampwise_unless_spent_(v);
-    s->u = silent ? u_still : u;
-    s->v = silent ? v_still : v;
+    double u = rampwise_next_u_(c, s->u, s->v, s->p, p_next);
+    double v = rampwise_next_v_(c, s->u, s->v, s->p, p_next);
+    u = silent ? rampwise_unless_spent_(u) : u;
+    v = silent ? rampwise_unless_spent_(v) : v;
+    RAMPWISE_APART_(u);
+    RAMPWISE_APART_(v);
+    s->u = u;
+    s->v = v;
     s->p_before = s->p;
     s->p = p_next;
 #endif

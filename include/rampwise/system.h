@@ -23,7 +23,8 @@ RAMPWISE_BEGIN
 
 /* The system of unit mass with natural circular frequency omega (rad per unit of time, 0 or more)
    and damping ratio zeta (1 is critical; any finite number): mass = 1, damper = 2 zeta omega,
-   stiffness = omega^2, each correctly rounded. omega = 0 is a free mass.
+   stiffness = omega^2, each correctly rounded. omega = 0 is a free mass. For another mass, multiply all
+   three by it.
    RAMPWISE_ERROR_MISSING, _FREQUENCY (negative, not finite, or so extreme that omega^2 is beyond
    the normal range of a double), _DAMPER. Since 0.1. */
 RAMPWISE_API int rampwise_system_natural(rampwise_system *sys, double omega, double zeta);

@@ -26,10 +26,10 @@ RAMPWISE_API const char *rampwise_version(void);
 RAMPWISE_API int rampwise_arithmetic_edition(void);
 
 /* Known answers, bit for bit: the fused multiply-add that this build uses, coefficients, and steps.
-   Returns RAMPWISE_OK, RAMPWISE_ERROR_FUSED (the platform's fma rounds twice, or flushes
-   subnormal numbers) or RAMPWISE_ERROR_ARITHMETIC (any other wrong bit: a compiler option such as
-   -ffast-math, extended precision, or a changed rounding mode of the calling thread).
-   A few microseconds; allocates nothing and changes nothing. Since 0.1. */
+   Returns RAMPWISE_OK, RAMPWISE_ERROR_FUSED (the platform's fma is not correctly rounded) or
+   RAMPWISE_ERROR_ARITHMETIC (any other wrong bit: a compiler option such as -ffast-math at the link,
+   extended precision, or a rounding mode or flushing of subnormal numbers set in the calling thread).
+   Some tens of microseconds; allocates nothing and changes nothing. Since 0.1. */
 RAMPWISE_API int rampwise_self_test(void);
 
 RAMPWISE_END

@@ -74,8 +74,7 @@ static void check_value(const rampwise_coeffs *c, const exact_step *e, int i, ta
     const int kinds[2] = {c->input, c->between};
     const double computed = (&c->A)[i];
     const double theta = sqrt(fabs(c->system.stiffness) / c->system.mass) * c->dt;
-    const int itself =
-        theta < 1 && (c->input == RAMPWISE_FORCE || c->input == RAMPWISE_BASE_ACCELERATION);
+    const int itself = theta < 1 && (c->input == RAMPWISE_FORCE || c->input == RAMPWISE_BASE_ACCELERATION);
     double error = error_in_ulp(computed, e->value[i], e->value[i]);
     if (error > 0.6 && !itself)
         error = error_in_largest(&c->system, c->dt, kinds, i, computed, e->value[i]);
@@ -83,9 +82,9 @@ static void check_value(const rampwise_coeffs *c, const exact_step *e, int i, ta
     t->not_nearest += computed != mpfr_get_d(e->value[i], MPFR_RNDN);
     t->worst = fmax(t->worst, error);
     if (!(error <= 0.6))
-        ck_abort_msg("%s, input %d, between %d, m %a c %a k %a dt %a (theta %g): %a, %g ulp",
-                     exact_names[i], c->input, c->between, c->system.mass, c->system.damper,
-                     c->system.stiffness, c->dt, theta, computed, error);
+        ck_abort_msg("%s, input %d, between %d, m %a c %a k %a dt %a (theta %g): %a, %g ulp", exact_names[i],
+                     c->input, c->between, c->system.mass, c->system.damper, c->system.stiffness, c->dt,
+                     theta, computed, error);
 }
 
 /* The six that describe free motion with the first combination, and the same bits in all others. */
@@ -116,8 +115,8 @@ static void check_point(const rampwise_system *sys, double dt, tally *t)
 
 static void report(const char *test, const tally *t)
 {
-    printf("%s: %lu values, %lu not the nearest double, worst error %.6f ulp of its scale\n", test,
-           t->values, t->not_nearest, t->worst);
+    printf("%s: %lu values, %lu not the nearest double, worst error %.6f ulp of its scale\n", test, t->values,
+           t->not_nearest, t->worst);
 }
 
 /* The system of one theta and zeta at an arbitrary mass and unit of time. */
@@ -136,9 +135,9 @@ static long points(int share)
 
 START_TEST(grid)
 {
-    static const double zetas[] = {
-        0,         1e-15, 1e-6,      0.005,     0.05,  0.3, 0.7, 0.95, 1 - 1e-3, 1 - 1e-12,
-        1 - 1e-15, 1,     1 + 1e-15, 1 + 1e-12, 1.001, 1.2, 3,   20,   100};
+    static const double zetas[] = {0,     1e-15,    1e-6,      0.005,     0.05, 0.3,       0.7,
+                                   0.95,  1 - 1e-3, 1 - 1e-12, 1 - 1e-15, 1,    1 + 1e-15, 1 + 1e-12,
+                                   1.001, 1.2,      3,         20,        100};
     tally t = {0};
     for (int i = -36; i <= 24; ++i)
         for (size_t j = 0; j < sizeof zetas / sizeof *zetas; ++j) {
@@ -160,8 +159,8 @@ START_TEST(random_stable)
             zeta = 1 + random_sign(r) * random_log(r, 1e-16, 1e-2);
         if (i % 50 == 0)
             zeta = 0;
-        const double dt = scaled_system(&sys, random_log(r, 1e-9, 1e6), zeta,
-                                        random_log(r, 1e-12, 1e12), random_log(r, 1e-6, 1e6));
+        const double dt = scaled_system(&sys, random_log(r, 1e-9, 1e6), zeta, random_log(r, 1e-12, 1e12),
+                                        random_log(r, 1e-6, 1e6));
         check_point(&sys, dt, &t);
     }
     report("random_stable", &t);

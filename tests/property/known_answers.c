@@ -51,11 +51,9 @@ static known_response expected_response(known_response k)
         from_p = nearest_quotient(1, sys->mass);
     if (k.input == RAMPWISE_BASE_DISPLACEMENT) {
         from_p = stiffness;
-        from_change =
-            product(nearest_rate(sys->damper, sys->mass, k.dt), nearest_sum(p, -p_before));
+        from_change = product(nearest_rate(sys->damper, sys->mass, k.dt), nearest_sum(p, -p_before));
     }
-    k.total = nearest_fma(-stiffness, k.u,
-                          nearest_fma(-damper, k.v, nearest_fma(from_p, p, from_change)));
+    k.total = nearest_fma(-stiffness, k.u, nearest_fma(-damper, k.v, nearest_fma(from_p, p, from_change)));
     return k;
 }
 
@@ -111,8 +109,8 @@ static void print_tables(void)
     printf("};\n\nstatic const known_response known_responses[] = {\n");
     for (size_t i = 0; i < COUNT(known_responses); ++i) {
         const known_response k = expected_response(known_responses[i]);
-        printf("    {{%a, %a, %a},\n     %a,\n     %s,\n     %s,\n     {", k.system.mass,
-               k.system.damper, k.system.stiffness, k.dt, inputs[k.input - RAMPWISE_FORCE],
+        printf("    {{%a, %a, %a},\n     %a,\n     %s,\n     %s,\n     {", k.system.mass, k.system.damper,
+               k.system.stiffness, k.dt, inputs[k.input - RAMPWISE_FORCE],
                k.between == RAMPWISE_RAMP ? "RAMPWISE_RAMP" : "RAMPWISE_HOLD");
         for (int j = 0; j < EXACT_COUNT; ++j)
             printf("%s%a", j == 0 ? "" : j % 3 == 0 ? ",\n      " : ", ", k.coefficients[j]);

@@ -2,8 +2,7 @@
 
 #include <math.h>
 
-const char *const exact_names[EXACT_COUNT] = {"A",  "B",  "C",  "D",     "A'",
-                                              "B'", "C'", "D'", "A - 1", "B' - 1"};
+const char *const exact_names[EXACT_COUNT] = {"A", "B", "C", "D", "A'", "B'", "C'", "D'", "A - 1", "B' - 1"};
 
 static mpfr_prec_t precision_for(const rampwise_system *sys, double dt)
 {
@@ -101,8 +100,7 @@ static void force_terms(exact_step *e, int between)
 
 /* For the base's motion, from those of the force: the effective force of a ramp of base velocity is
    -m (v1 - v0)/h, that of base displacement k x + c (x1 - x0)/h. */
-static void base_terms(mpfr_t first, mpfr_t second, mpfr_t *x, const rampwise_system *sys,
-                       int input)
+static void base_terms(mpfr_t first, mpfr_t second, mpfr_t *x, const rampwise_system *sys, int input)
 {
     if (input == RAMPWISE_BASE_ACCELERATION) {
         mpfr_mul_d(first, first, -sys->mass, MPFR_RNDN);

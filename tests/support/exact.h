@@ -1,5 +1,4 @@
-/* The coefficients of a step from the closed forms, in MPFR, with enough bits for what they lose.
- */
+/* The coefficients of a step from the closed forms, in MPFR, with enough bits for what they lose. */
 #ifndef EXACT_H
 #define EXACT_H
 

@@ -1,5 +1,4 @@
-/* Operations on doubles by MPFR, each rounded once to the nearest double, subnormal ones included.
- */
+/* Operations on doubles by MPFR, each rounded once to the nearest double, subnormal ones included. */
 #ifndef NEAREST_H
 #define NEAREST_H
 

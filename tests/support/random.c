@@ -34,3 +34,11 @@ void random_fill(gsl_rng *r, double *x, size_t n)
     for (size_t i = 0; i < n; ++i)
         x[i] = random_between(r, -1, 1);
 }
+
+void random_whisper(gsl_rng *r, double *x, size_t n)
+{
+    for (size_t i = 0; i < n; ++i)
+        x[i] = gsl_rng_uniform_int(r, 3) == 0
+                   ? 0
+                   : ldexp(random_between(r, -1, 1), -908 + (int)gsl_rng_uniform_int(r, 16));
+}

@@ -11,4 +11,7 @@ double random_log(gsl_rng *r, double low, double high); /* evenly spread logarit
 double random_sign(gsl_rng *r);
 void random_fill(gsl_rng *r, double *x, size_t n); /* in [-1, 1) */
 
+/* Samples around the limit of silence, 2^-900, zeros among them. */
+void random_whisper(gsl_rng *r, double *x, size_t n);
+
 #endif

@@ -1,0 +1,369 @@
+#include "rampwise/bank.h"
+
+#include <math.h>
+#include <stdint.h>
+#include <stdlib.h>
+#include <string.h>
+#include "entry.h"
+#include "lanes.h"
+#include "rampwise/motion.h"
+#include "rampwise/status.h"
+#include "valid.h"
+
+/* Followed in its memory by the blocks, each with its coefficients and marks. */
+struct rampwise_bank {
+    const kernels *k;
+    size_t n, stopped;
+    double p, p_before;
+    struct block *blocks;
+};
+
+typedef struct block {
+    lane_block lanes;
+    rampwise_coeffs c[LANES];
+    unsigned char stopped[LANES];
+} block;
+
+_Static_assert(sizeof(block) % LANE_ALIGNMENT == 0, "blocks follow each other aligned");
+
+/* Samples a block takes at a time: few enough to stay near the processor while all blocks pass. */
+enum { SEGMENT = 2048 };
+
+static const size_t header_size =
+    (sizeof(struct rampwise_bank) + LANE_ALIGNMENT - 1) / LANE_ALIGNMENT * LANE_ALIGNMENT;
+
+static size_t blocks_of(size_t n)
+{
+    return n / LANES + (n % LANES != 0);
+}
+
+static size_t lanes_in(const rampwise_bank *bank, size_t b)
+{
+    return bank->n - b * LANES < LANES ? bank->n - b * LANES : LANES;
+}
+
+static const rampwise_coeffs *coeffs_of(const rampwise_bank *bank, size_t i)
+{
+    return &bank->blocks[i / LANES].c[i % LANES];
+}
+
+static rampwise_state state_of(const rampwise_bank *bank, size_t i)
+{
+    const lane_block *const lanes = &bank->blocks[i / LANES].lanes;
+    return (rampwise_state){lanes->u[i % LANES], lanes->v[i % LANES], bank->p, bank->p_before};
+}
+
+static int is_stopped(const rampwise_bank *bank, size_t i)
+{
+    return bank->blocks[i / LANES].stopped[i % LANES];
+}
+
+/* Puts oscillator i into its lane and lets it go. */
+static void release(rampwise_bank *bank, size_t i)
+{
+    block *const b = &bank->blocks[i / LANES];
+    rampwise_lane_set_(&b->lanes, i % LANES, &b->c[i % LANES]);
+    bank->stopped -= b->stopped[i % LANES];
+    b->stopped[i % LANES] = 0;
+}
+
+static int alike(const rampwise_coeffs *a, const rampwise_coeffs *b)
+{
+    return a->dt == b->dt && a->input == b->input && a->between == b->between;
+}
+
+size_t rampwise_bank_size(size_t n)
+{
+    const size_t blocks = blocks_of(n);
+    if (n == 0 || blocks > (SIZE_MAX - header_size) / sizeof(block))
+        return 0;
+    return header_size + blocks * sizeof(block);
+}
+
+size_t rampwise_bank_alignment(void)
+{
+    return LANE_ALIGNMENT;
+}
+
+static int check_bank(size_t n, const rampwise_coeffs *c, int instructions)
+{
+    if (rampwise_bank_size(n) == 0)
+        return RAMPWISE_ERROR_COUNT;
+    for (size_t i = 0; i < n; ++i) {
+        if (!coeffs_are_made(&c[i]))
+            return RAMPWISE_ERROR_NOT_MADE;
+        if (!alike(&c[i], &c[0]))
+            return RAMPWISE_ERROR_DIFFERENT;
+    }
+    return rampwise_kernels_(instructions) != NULL ? RAMPWISE_OK : RAMPWISE_ERROR_INSTRUCTIONS;
+}
+
+int rampwise_bank_init(void *memory, size_t bytes, size_t n, const rampwise_coeffs *c, int instructions,
+                       rampwise_bank **bank)
+{
+    if (memory == NULL || c == NULL || bank == NULL)
+        return RAMPWISE_ERROR_MISSING;
+    const int status = check_bank(n, c, instructions);
+    if (status != RAMPWISE_OK)
+        return status;
+    if (bytes < rampwise_bank_size(n) || (uintptr_t)memory % LANE_ALIGNMENT != 0)
+        return RAMPWISE_ERROR_MEMORY;
+    rampwise_bank *const made = memory;
+    memset(memory, 0, rampwise_bank_size(n));
+    made->k = rampwise_kernels_(instructions);
+    made->n = n;
+    made->blocks = (block *)((char *)memory + header_size);
+    for (size_t i = 0; i < n; ++i) {
+        made->blocks[i / LANES].c[i % LANES] = c[i];
+        release(made, i);
+    }
+    *bank = made;
+    return RAMPWISE_OK;
+}
+
+int rampwise_bank_create(size_t n, const rampwise_coeffs *c, int instructions, rampwise_bank **bank)
+{
+    if (c == NULL || bank == NULL)
+        return RAMPWISE_ERROR_MISSING;
+    int status = check_bank(n, c, instructions);
+    if (status != RAMPWISE_OK)
+        return status;
+    void *const memory = aligned_alloc(LANE_ALIGNMENT, rampwise_bank_size(n));
+    if (memory == NULL)
+        return RAMPWISE_ERROR_MEMORY;
+    return rampwise_bank_init(memory, rampwise_bank_size(n), n, c, instructions, bank);
+}
+
+void rampwise_bank_free(rampwise_bank *bank)
+{
+    free(bank);
+}
+
+size_t rampwise_bank_count(const rampwise_bank *bank)
+{
+    return bank != NULL ? bank->n : 0;
+}
+
+int rampwise_bank_instructions(const rampwise_bank *bank)
+{
+    return bank != NULL ? bank->k->name : RAMPWISE_ERROR_MISSING;
+}
+
+int rampwise_bank_start(rampwise_bank *bank, double p0)
+{
+    if (bank == NULL)
+        return RAMPWISE_ERROR_MISSING;
+    if (!isfinite(p0))
+        return RAMPWISE_ERROR_SAMPLE;
+    bank->p = bank->p_before = p0;
+    for (size_t i = 0; i < bank->n; ++i) {
+        bank->blocks[i / LANES].lanes.u[i % LANES] = 0;
+        bank->blocks[i / LANES].lanes.v[i % LANES] = 0;
+        release(bank, i);
+    }
+    return RAMPWISE_OK;
+}
+
+int rampwise_bank_set(rampwise_bank *bank, const rampwise_state *s)
+{
+    if (bank == NULL || s == NULL)
+        return RAMPWISE_ERROR_MISSING;
+    for (size_t i = 0; i < bank->n; ++i) {
+        if (!state_is_finite(&s[i]))
+            return RAMPWISE_ERROR_STATE;
+        if (s[i].p != s[0].p || s[i].p_before != s[0].p_before)
+            return RAMPWISE_ERROR_DIFFERENT;
+    }
+    bank->p = s[0].p;
+    bank->p_before = s[0].p_before;
+    for (size_t i = 0; i < bank->n; ++i) {
+        bank->blocks[i / LANES].lanes.u[i % LANES] = s[i].u;
+        bank->blocks[i / LANES].lanes.v[i % LANES] = s[i].v;
+        release(bank, i);
+    }
+    return RAMPWISE_OK;
+}
+
+int rampwise_bank_get(const rampwise_bank *bank, rampwise_state *s)
+{
+    if (bank == NULL || s == NULL)
+        return RAMPWISE_ERROR_MISSING;
+    for (size_t i = 0; i < bank->n; ++i)
+        s[i] = state_of(bank, i);
+    return RAMPWISE_OK;
+}
+
+int rampwise_bank_retune(rampwise_bank *bank, size_t i, const rampwise_coeffs *c)
+{
+    if (bank == NULL || c == NULL)
+        return RAMPWISE_ERROR_MISSING;
+    if (i >= bank->n)
+        return RAMPWISE_ERROR_COUNT;
+    if (!coeffs_are_made(c))
+        return RAMPWISE_ERROR_NOT_MADE;
+    if (!alike(c, coeffs_of(bank, 0)))
+        return RAMPWISE_ERROR_DIFFERENT;
+    bank->blocks[i / LANES].c[i % LANES] = *c;
+    release(bank, i);
+    return RAMPWISE_OK;
+}
+
+void rampwise_bank_wanted_init(rampwise_bank_wanted *wanted)
+{
+    memset(wanted, 0, sizeof *wanted);
+    wanted->size = sizeof *wanted;
+}
+
+static int check_wanted(const rampwise_bank *bank, const rampwise_bank_wanted *wanted)
+{
+    if (wanted->size != sizeof *wanted)
+        return RAMPWISE_ERROR_COUNT;
+    if (wanted->chosen_count > 0 && wanted->chosen == NULL)
+        return RAMPWISE_ERROR_MISSING;
+    for (size_t i = 0; i < wanted->chosen_count; ++i)
+        if (wanted->chosen[i] >= bank->n)
+            return RAMPWISE_ERROR_COUNT;
+    return RAMPWISE_OK;
+}
+
+/* Histories of up to LANES chosen ones, from copies of their states; returns how many, and lowers
+   the earliest sample that overflows in one. The first that is stopped ends the group, and is
+   passed over where it is alone. */
+static size_t histories_of_group(const rampwise_bank *bank, size_t n, const double *p, const size_t *chosen,
+                                 size_t left, const rampwise_history *out, size_t *earliest)
+{
+    const rampwise_coeffs *c[LANES];
+    rampwise_state s[LANES];
+    size_t count = 0, reached[LANES];
+    for (; count < left && count < LANES && !is_stopped(bank, chosen[count]); ++count) {
+        c[count] = coeffs_of(bank, chosen[count]);
+        s[count] = state_of(bank, chosen[count]);
+    }
+    if (count == 0)
+        return 1;
+    rampwise_lanes_run_(bank->k, count, c, s, n, p, (layout){0, 1}, out, (layout){n, 1}, reached);
+    for (size_t j = 0; j < count; ++j)
+        *earliest = reached[j] < *earliest ? reached[j] : *earliest;
+    return count;
+}
+
+/* Returns the earliest sample that overflows in a history, or n. */
+static size_t histories(const rampwise_bank *bank, size_t n, const double *p,
+                        const rampwise_bank_wanted *wanted)
+{
+    size_t earliest = n;
+    for (size_t first = 0; first < wanted->chosen_count;) {
+        const rampwise_history there = wanted_from(&wanted->history, first * n);
+        first += histories_of_group(bank, n, p, wanted->chosen + first, wanted->chosen_count - first, &there,
+                                    &earliest);
+    }
+    return earliest;
+}
+
+/* Lane j met an overflow in this segment: taken again by itself, from where the segment began, to
+   its last finite state; returns the sample at fault. */
+static size_t stop_lane(rampwise_bank *bank, block *b, size_t j, rampwise_state s, size_t n, const double *p,
+                        double *largest)
+{
+    size_t i = 0;
+    const rampwise_history one = {NULL, NULL, NULL, NULL};
+    while (i < n && bank->k->advance(&b->c[j], &s, i, i + 1, 1, p, &one) > i) {
+        if (largest != NULL)
+            *largest = fmax(*largest, fabs(s.u));
+        ++i;
+    }
+    rampwise_lane_still_(&b->lanes, j);
+    b->lanes.u[j] = s.u;
+    b->lanes.v[j] = s.v;
+    b->stopped[j] = 1;
+    ++bank->stopped;
+    return i;
+}
+
+/* One block over one segment; returns the earliest sample at which a lane stops, or n. */
+static size_t step_block(rampwise_bank *bank, block *b, size_t lanes, size_t n, const double *p,
+                         double *largest)
+{
+    double u[LANES], v[LANES], top[LANES] = {0}, *const gathered = largest != NULL ? top : NULL;
+    memcpy(u, b->lanes.u, sizeof u);
+    memcpy(v, b->lanes.v, sizeof v);
+    if (largest != NULL)
+        memcpy(top, largest, lanes * sizeof *top);
+    const int lost = bank->k->under_one_input(&b->lanes, lanes, bank->p, n, p, gathered);
+    size_t earliest = n;
+    for (size_t j = 0; lost && j < lanes; ++j) {
+        if (isfinite(b->lanes.u[j]) && isfinite(b->lanes.v[j]))
+            continue;
+        if (largest != NULL)
+            top[j] = largest[j];
+        const rampwise_state s = {u[j], v[j], bank->p, bank->p_before};
+        const size_t i = stop_lane(bank, b, j, s, n, p, largest != NULL ? &top[j] : NULL);
+        earliest = i < earliest ? i : earliest;
+    }
+    if (largest != NULL)
+        memcpy(largest, top, lanes * sizeof *top);
+    return earliest;
+}
+
+static size_t step_blocks(rampwise_bank *bank, size_t n, const double *p, double *largest)
+{
+    size_t earliest = n;
+    for (size_t done = 0, part = 0; done < n; done += part) {
+        part = n - done < SEGMENT ? n - done : SEGMENT;
+        for (size_t b = 0; b < blocks_of(bank->n); ++b) {
+            const size_t stop = step_block(bank, &bank->blocks[b], lanes_in(bank, b), part, p + done,
+                                           largest != NULL ? largest + b * LANES : NULL);
+            if (stop < part && done + stop < earliest)
+                earliest = done + stop;
+        }
+        bank->p_before = part > 1 ? p[done + part - 2] : bank->p;
+        bank->p = p[done + part - 1];
+    }
+    return earliest;
+}
+
+int rampwise_bank_run(rampwise_bank *bank, size_t n, const double *p, const rampwise_bank_wanted *wanted,
+                      size_t *bad)
+{
+    if (bank == NULL || (p == NULL && n > 0))
+        return RAMPWISE_ERROR_MISSING;
+    int status = wanted != NULL ? check_wanted(bank, wanted) : RAMPWISE_OK;
+    if (status == RAMPWISE_OK)
+        status = check_samples(n, p, bad);
+    if (status != RAMPWISE_OK)
+        return status;
+    const size_t in_histories = wanted != NULL ? histories(bank, n, p, wanted) : n;
+    const size_t in_lanes = step_blocks(bank, n, p, wanted != NULL ? wanted->largest : NULL);
+    const size_t earliest = in_lanes < in_histories ? in_lanes : in_histories;
+    return earliest < n ? blame(RAMPWISE_ERROR_OVERFLOW, earliest, bad) : RAMPWISE_OK;
+}
+
+size_t rampwise_bank_stopped(const rampwise_bank *bank, size_t *first)
+{
+    size_t i = 0;
+    if (bank == NULL || bank->stopped == 0)
+        return 0;
+    while (!is_stopped(bank, i))
+        ++i;
+    if (first != NULL)
+        *first = i;
+    return bank->stopped;
+}
+
+int rampwise_bank_read(const rampwise_bank *bank, const rampwise_history *now)
+{
+    if (bank == NULL || now == NULL)
+        return RAMPWISE_ERROR_MISSING;
+    for (size_t i = 0; i < bank->n; ++i) {
+        const rampwise_state s = state_of(bank, i);
+        if (now->u != NULL)
+            now->u[i] = s.u;
+        if (now->v != NULL)
+            now->v[i] = s.v;
+        if (now->a != NULL)
+            now->a[i] = is_stopped(bank, i) ? NAN : rampwise_acceleration(coeffs_of(bank, i), &s);
+        if (now->total != NULL)
+            now->total[i] = is_stopped(bank, i) ? NAN : rampwise_total_acceleration(coeffs_of(bank, i), &s);
+    }
+    return RAMPWISE_OK;
+}

@@ -1,0 +1,55 @@
+/* The layout of every public struct, pinned: callers in other languages and older builds rely on
+ * it. */
+#include <stddef.h>
+#include "rampwise.h"
+
+#define AT(type, member, place)                                                                              \
+    _Static_assert(offsetof(type, member) == (place), #type "." #member " has moved")
+#define SIZE(type, size) _Static_assert(sizeof(type) == (size), #type " has changed its size")
+
+SIZE(double, 8);
+SIZE(int, 4);
+
+AT(rampwise_system, mass, 0);
+AT(rampwise_system, damper, 8);
+AT(rampwise_system, stiffness, 16);
+SIZE(rampwise_system, 24);
+
+AT(rampwise_coeffs, A, 0);
+AT(rampwise_coeffs, B, 8);
+AT(rampwise_coeffs, C, 16);
+AT(rampwise_coeffs, D, 24);
+AT(rampwise_coeffs, Ap, 32);
+AT(rampwise_coeffs, Bp, 40);
+AT(rampwise_coeffs, Cp, 48);
+AT(rampwise_coeffs, Dp, 56);
+AT(rampwise_coeffs, A_minus_1, 64);
+AT(rampwise_coeffs, Bp_minus_1, 72);
+AT(rampwise_coeffs, acceleration, 80);
+AT(rampwise_coeffs, total, 112);
+AT(rampwise_coeffs, system, 144);
+AT(rampwise_coeffs, dt, 168);
+AT(rampwise_coeffs, input, 176);
+AT(rampwise_coeffs, between, 180);
+AT(rampwise_coeffs, reserve, 184);
+SIZE(rampwise_coeffs, 256);
+
+AT(rampwise_state, u, 0);
+AT(rampwise_state, v, 8);
+AT(rampwise_state, p, 16);
+AT(rampwise_state, p_before, 24);
+SIZE(rampwise_state, 32);
+
+AT(rampwise_history, u, 0);
+AT(rampwise_history, v, sizeof(double *));
+AT(rampwise_history, a, 2 * sizeof(double *));
+AT(rampwise_history, total, 3 * sizeof(double *));
+SIZE(rampwise_history, 4 * sizeof(double *));
+
+AT(rampwise_bank_wanted, size, 0);
+AT(rampwise_bank_wanted, largest, sizeof(size_t));
+AT(rampwise_bank_wanted, chosen_count, 2 * sizeof(size_t));
+AT(rampwise_bank_wanted, chosen, 3 * sizeof(size_t));
+AT(rampwise_bank_wanted, history, 4 * sizeof(size_t));
+AT(rampwise_bank_wanted, reserve, 8 * sizeof(size_t));
+SIZE(rampwise_bank_wanted, 12 * sizeof(size_t));
