@@ -13,15 +13,15 @@ void site_note(site_extreme *furthest, double value, size_t sample)
 }
 
 /* Four digits, with as many decimals as they take; exponents only where nothing else fits. */
-static void print_value(int width, double value)
+void site_report_value(int width, double value, int with_sign)
 {
     const double size = fabs(value);
     if (size != 0 && (size < 1e-5 || size >= 1e9)) {
-        printf(" %+*.3e", width, value);
+        printf(with_sign ? " %+*.3e" : " %*.3e", width, value);
         return;
     }
     const int above_point = size == 0 ? 0 : (int)floor(log10(size));
-    printf(" %+*.*f", width, above_point > 2 ? 0 : 3 - above_point, value);
+    printf(with_sign ? " %+*.*f" : " %*.*f", width, above_point > 2 ? 0 : 3 - above_point, value);
 }
 
 /* In letters, not bytes, so that columns stand straight under any UTF-8 name. */
@@ -40,7 +40,7 @@ static int time_decimals(const site_record *record)
     return needed < 0 ? 0 : needed > 12 ? 12 : (int)needed;
 }
 
-static void print_record(const site_record *record, const site_gear *gear)
+void site_report_record(const site_record *record)
 {
     const int decimals = time_decimals(record);
     const double start = record->acceleration[0];
@@ -59,7 +59,6 @@ static void print_record(const site_record *record, const site_gear *gear)
     else
         printf("         irregular: solved at its own times, intervals of %.4g s to %.4g s\n",
                record->shortest, record->interval);
-    printf("Gear     %s; each piece from rest, base acceleration straight between samples\n\n", gear->path);
 }
 
 static int widest_name(const site_gear *gear)
@@ -76,11 +75,11 @@ static void print_piece(const gear_piece *piece, const site_largest *r, const si
     const int decimals = time_decimals(record);
     printf("%s%*s %8.4g %8.4g", piece->name, name_width - letters(piece->name), "", 1 / piece->frequency,
            100 * piece->damping_ratio);
-    print_value(10, 1000 * r->displacement.value);
+    site_report_value(10, 1000 * r->displacement.value, 1);
     printf(" %*.*f", time_width, decimals, record->time[r->displacement.sample]);
-    print_value(10, r->acceleration.value);
+    site_report_value(10, r->acceleration.value, 1);
     printf(" %*.*f", time_width, decimals, record->time[r->acceleration.sample]);
-    print_value(20, r->force.value);
+    site_report_value(20, r->force.value, 1);
     putchar('\n');
 }
 
@@ -135,12 +134,18 @@ static void print_after_end(const site_gear *gear, const site_largest *largest)
                    gear->piece[j].name);
 }
 
+void site_report_caution(void)
+{
+    printf("Results support, and never replace, the governing code and a licensed engineer's "
+           "judgement.\n");
+}
+
 void site_report_print(const site_record *record, const site_gear *gear, const site_largest *largest)
 {
-    print_record(record, gear);
+    site_report_record(record);
+    printf("Gear     %s; each piece from rest, base acceleration straight between samples\n\n", gear->path);
     print_table(record, gear, largest);
     print_sampling(record, gear);
     print_after_end(gear, largest);
-    printf("Results support, and never replace, the governing code and a licensed engineer's "
-           "judgement.\n");
+    site_report_caution();
 }

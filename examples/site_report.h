@@ -19,7 +19,13 @@ typedef struct site_largest {
     double may_reach;          /* m: bound on the displacement after the record, if the base then stays */
 } site_largest;
 
-/* On standard output, whose errors are the caller's to check. largest has one entry a piece. */
+/* All on standard output, whose errors are the caller's to check. largest has one entry a piece. */
 void site_report_print(const site_record *record, const site_gear *gear, const site_largest *largest);
+
+/* Parts of it that other reports share: the record, a blank and a value of four digits, and the
+   caution at the end. */
+void site_report_record(const site_record *record);
+void site_report_value(int width, double value, int with_sign);
+void site_report_caution(void);
 
 #endif

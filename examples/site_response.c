@@ -3,24 +3,19 @@
    Reads a record of base acceleration and a list of gear, solves each piece from rest, prints the
    largest motions and forces with their times, and can write all histories as CSV. Run it with
    --help; examples/first_run runs it twice. The work is in solve() below. */
-#include <errno.h>
 #include <getopt.h>
 #include <math.h>
 #include <stdio.h>
 #include <stdlib.h>
-#include <string.h>
 #include <rampwise.h>
 #include "site_data.h"
 #include "site_histories.h"
+#include "site_options.h"
 #include "site_report.h"
 #include "text_table.h"
 
-enum { STATUS_REFUSED = 2 };
+const char *const program_name = "site_response";
 static const double pi = 3.14159265358979323846;
-
-static const site_unit time_units[] = {{"s", 1, 1}, {"ms", 1, 1000}, {NULL, 0, 0}};
-static const site_unit acceleration_units[] = {
-    {"m/s2", 1, 1}, {"cm/s2", 1, 100}, {"g", 9.80665, 1}, {NULL, 0, 0}};
 
 typedef struct job {
     const char *gear_path, *record_path, *histories_path;
@@ -174,16 +169,6 @@ static void print_help(void)
          "Exit status: 0, or 2 with one message where something is wrong and nothing is written.");
 }
 
-static int choose_unit(site_unit *unit, const site_unit *known, const char *option)
-{
-    for (; known->name != NULL; ++known)
-        if (strcmp(known->name, optarg) == 0) {
-            *unit = *known;
-            return 0;
-        }
-    return complain("--%s: there is no unit '%s'; see --help", option, optarg);
-}
-
 static int take_paths(job *work, int n, char **path)
 {
     if (work->gear_path == NULL)
@@ -195,15 +180,6 @@ static int take_paths(job *work, int n, char **path)
     return 0;
 }
 
-static int refuse_option(int option, char **argv)
-{
-    if (option == ':')
-        return complain("%s: a value is missing; see --help", argv[optind - 1]);
-    if (optopt != 0)
-        return complain("-%c: no such option, or a value that it does not take; see --help", optopt);
-    return complain("%s: no such option; see --help", argv[optind - 1]);
-}
-
 /* 0: go on; 1: nothing is left to do; -1 after a message. */
 static int take_option(job *work, int option, char **argv)
 {
@@ -212,9 +188,9 @@ static int take_option(job *work, int option, char **argv)
         work->gear_path = optarg;
         return 0;
     case 't':
-        return choose_unit(&work->time_unit, time_units, "time-unit");
+        return site_choose_unit(&work->time_unit, site_time_units, "time-unit");
     case 'a':
-        return choose_unit(&work->acceleration_unit, acceleration_units, "acceleration-unit");
+        return site_choose_unit(&work->acceleration_unit, site_acceleration_units, "acceleration-unit");
     case 'h':
         print_help();
         return 1;
@@ -222,7 +198,7 @@ static int take_option(job *work, int option, char **argv)
         printf("site_response (rampwise %s)\n", rampwise_version());
         return 1;
     default:
-        return refuse_option(option, argv);
+        return site_refuse_option(option, argv);
     }
 }
 
@@ -243,7 +219,7 @@ static int read_arguments(job *work, int argc, char **argv)
 
 int main(int argc, char **argv)
 {
-    job work = {.time_unit = time_units[0], .acceleration_unit = acceleration_units[0]};
+    job work = {.time_unit = site_time_units[0], .acceleration_unit = site_acceleration_units[0]};
     int status = rampwise_self_test();
     if (status != RAMPWISE_OK)
         status = complain("this build of rampwise: %s", rampwise_status_text(status));
@@ -251,8 +227,6 @@ int main(int argc, char **argv)
         status = read_arguments(&work, argc, argv);
     if (status == 0)
         status = do_job(&work);
-    if (status >= 0 && (fflush(stdout) != 0 || ferror(stdout)))
-        status = complain("standard output: cannot be written: %s", strerror(errno));
     free_job(&work);
-    return status < 0 ? STATUS_REFUSED : EXIT_SUCCESS;
+    return site_end(status);
 }

@@ -10,7 +10,7 @@ int complain(const char *format, ...)
 {
     va_list values;
     va_start(values, format);
-    fputs("site_response: ", stderr);
+    fprintf(stderr, "%s: ", program_name);
     vfprintf(stderr, format, values);
     fputc('\n', stderr);
     va_end(values);
@@ -50,7 +50,7 @@ static int next_line(text_table *table)
 }
 
 /* strtod also reads hexadecimal, which no table here means. */
-static int is_number(const char *text, double *value)
+int text_is_number(const char *text, double *value)
 {
     char *end;
     *value = strtod(text, &end);
@@ -90,7 +90,7 @@ static int is_heading(const text_table *table)
 {
     double value;
     for (size_t i = 0; i < table->n_fields && i < TEXT_TABLE_FIELDS; ++i)
-        if (is_number(table->field[i], &value))
+        if (text_is_number(table->field[i], &value))
             return 0;
     return 1;
 }
@@ -117,7 +117,7 @@ int text_table_next(text_table *table)
 int text_table_number(const text_table *table, size_t field, double *value)
 {
     const char *const text = table->field[field];
-    if (!is_number(text, value))
+    if (!text_is_number(text, value))
         return complain("%s:%zu: field %zu, '%s', is not a number", table->path, table->line, field + 1,
                         text);
     if (!isfinite(*value))

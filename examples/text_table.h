@@ -22,7 +22,10 @@ typedef struct text_table {
     char *field[TEXT_TABLE_FIELDS];
 } text_table;
 
-/* One message on stderr, "site_response: ...", and the answer -1, which callers hand on. */
+/* For messages; every program defines its own. */
+extern const char *const program_name;
+
+/* One message on stderr, "PROGRAM: ...", and the answer -1, which callers hand on. */
 int complain(const char *format, ...)
 #ifdef __GNUC__
     __attribute__((format(printf, 1, 2)))
@@ -34,5 +37,8 @@ int text_table_open(text_table *table, const char *path, int blanks_separate);
 int text_table_next(text_table *table); /* 1: a row of at least one field; 0: the end */
 int text_table_number(const text_table *table, size_t field, double *value);
 void text_table_close(text_table *table);
+
+/* Whether all of text is one decimal number, which may be infinite or not a number. No message. */
+int text_is_number(const char *text, double *value);
 
 #endif

@@ -2,7 +2,7 @@
 
    The headers are the reference manual, in the order in which data goes through them:
 
-       system -> coefficients -> step -> record, channels, bank
+       system -> coefficients -> step -> record, channels, bank -> peaks, spectrum
 
    A record in a few lines:
 
@@ -27,6 +27,9 @@
 #include "rampwise/channels.h"
 #include "rampwise/instructions.h"
 #include "rampwise/bank.h"
+#include "rampwise/peak.h"
+#include "rampwise/peaks.h"
+#include "rampwise/spectrum.h"
 #include "rampwise/foreign.h"
 
 #endif

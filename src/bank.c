@@ -67,11 +67,6 @@ static void release(rampwise_bank *bank, size_t i)
     b->stopped[i % LANES] = 0;
 }
 
-static int alike(const rampwise_coeffs *a, const rampwise_coeffs *b)
-{
-    return a->dt == b->dt && a->input == b->input && a->between == b->between;
-}
-
 size_t rampwise_bank_size(size_t n)
 {
     const size_t blocks = blocks_of(n);
@@ -89,12 +84,9 @@ static int check_bank(size_t n, const rampwise_coeffs *c, int instructions)
 {
     if (rampwise_bank_size(n) == 0)
         return RAMPWISE_ERROR_COUNT;
-    for (size_t i = 0; i < n; ++i) {
-        if (!coeffs_are_made(&c[i]))
-            return RAMPWISE_ERROR_NOT_MADE;
-        if (!alike(&c[i], &c[0]))
-            return RAMPWISE_ERROR_DIFFERENT;
-    }
+    const int status = check_alike(n, c);
+    if (status != RAMPWISE_OK)
+        return status;
     return rampwise_kernels_(instructions) != NULL ? RAMPWISE_OK : RAMPWISE_ERROR_INSTRUCTIONS;
 }
 
@@ -168,12 +160,9 @@ int rampwise_bank_set(rampwise_bank *bank, const rampwise_state *s)
 {
     if (bank == NULL || s == NULL)
         return RAMPWISE_ERROR_MISSING;
-    for (size_t i = 0; i < bank->n; ++i) {
-        if (!state_is_finite(&s[i]))
-            return RAMPWISE_ERROR_STATE;
-        if (s[i].p != s[0].p || s[i].p_before != s[0].p_before)
-            return RAMPWISE_ERROR_DIFFERENT;
-    }
+    const int status = check_shared_input(bank->n, s);
+    if (status != RAMPWISE_OK)
+        return status;
     bank->p = s[0].p;
     bank->p_before = s[0].p_before;
     for (size_t i = 0; i < bank->n; ++i) {
@@ -199,10 +188,10 @@ int rampwise_bank_retune(rampwise_bank *bank, size_t i, const rampwise_coeffs *c
         return RAMPWISE_ERROR_MISSING;
     if (i >= bank->n)
         return RAMPWISE_ERROR_COUNT;
-    if (!coeffs_are_made(c))
-        return RAMPWISE_ERROR_NOT_MADE;
-    if (!alike(c, coeffs_of(bank, 0)))
-        return RAMPWISE_ERROR_DIFFERENT;
+    const rampwise_coeffs both[2] = {*coeffs_of(bank, 0), *c};
+    const int status = check_alike(2, both);
+    if (status != RAMPWISE_OK)
+        return status;
     bank->blocks[i / LANES].c[i % LANES] = *c;
     release(bank, i);
     return RAMPWISE_OK;

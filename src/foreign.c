@@ -26,7 +26,9 @@ static const struct {
     CONSTANT(RAMPWISE_ERROR_NAME),
     CONSTANT(RAMPWISE_ERROR_MEMORY),
     CONSTANT(RAMPWISE_ERROR_COUNT),
+    CONSTANT(RAMPWISE_ERROR_QUANTITY),
     CONSTANT(RAMPWISE_ERROR_INSTRUCTIONS),
+    CONSTANT(RAMPWISE_ERROR_FLAGS),
     CONSTANT(RAMPWISE_ERROR_MASS),
     CONSTANT(RAMPWISE_ERROR_DAMPER),
     CONSTANT(RAMPWISE_ERROR_STIFFNESS),
@@ -53,6 +55,12 @@ static const struct {
     CONSTANT(RAMPWISE_AVX2),
     CONSTANT(RAMPWISE_AVX512),
     CONSTANT(RAMPWISE_NEON),
+    CONSTANT(RAMPWISE_DISPLACEMENT),
+    CONSTANT(RAMPWISE_VELOCITY),
+    CONSTANT(RAMPWISE_TOTAL_ACCELERATION),
+    CONSTANT(RAMPWISE_AT_SAMPLES),
+    CONSTANT(RAMPWISE_RESIDUAL),
+    CONSTANT(RAMPWISE_MAXIMAX),
 };
 
 static const struct {
@@ -64,6 +72,8 @@ static const struct {
     {"rampwise_state", sizeof(rampwise_state)},
     {"rampwise_history", sizeof(rampwise_history)},
     {"rampwise_bank_wanted", sizeof(rampwise_bank_wanted)},
+    {"rampwise_instant", sizeof(rampwise_instant)},
+    {"rampwise_peak", sizeof(rampwise_peak)},
 };
 
 int rampwise_constant(const char *name, int *value)

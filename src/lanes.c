@@ -60,9 +60,13 @@ static void take_samples(group *g, size_t n, const double *p, layout in)
         g->k->gather(p, in.lane, g->count, n, g->p + 1);
         return;
     }
-    for (size_t i = 0; i < n; ++i)
-        for (size_t j = 0; j < g->count; ++j)
-            g->p[i + 1][j] = p[j * in.lane + i * in.sample];
+    for (size_t i = 0; i < n; ++i) {
+        if (in.lane == 1)
+            memcpy(g->p[i + 1], p + i * in.sample, g->count * sizeof *p);
+        else
+            for (size_t j = 0; j < g->count; ++j)
+                g->p[i + 1][j] = p[j * in.lane + i * in.sample];
+    }
 }
 
 /* Lane j met an overflow in this tile: taken again by itself, from where the tile began. */
@@ -104,10 +108,14 @@ static void put_tile(const group *g, size_t before, size_t n, double *to, layout
         g->k->scatter(to, at.lane, g->count, n, tile);
         return;
     }
-    for (size_t i = 0; i < n; ++i)
-        for (size_t j = 0; j < g->count; ++j)
-            if (before + i < g->reached[j])
-                to[j * at.lane + i * at.sample] = tile[i][j];
+    for (size_t i = 0; i < n; ++i) {
+        if (at.lane == 1 && g->left == g->count)
+            memcpy(to + i * at.sample, tile[i], g->count * sizeof *to);
+        else
+            for (size_t j = 0; j < g->count; ++j)
+                if (before + i < g->reached[j])
+                    to[j * at.lane + i * at.sample] = tile[i][j];
+    }
 }
 
 static void put_outputs(group *g, size_t before, size_t n, const rampwise_history *out, layout to)

@@ -53,3 +53,12 @@ AT(rampwise_bank_wanted, chosen, 3 * sizeof(size_t));
 AT(rampwise_bank_wanted, history, 4 * sizeof(size_t));
 AT(rampwise_bank_wanted, reserve, 8 * sizeof(size_t));
 SIZE(rampwise_bank_wanted, 12 * sizeof(size_t));
+
+AT(rampwise_instant, value, 0);
+AT(rampwise_instant, sample, 8);
+AT(rampwise_instant, fraction, 16);
+SIZE(rampwise_instant, 24);
+
+AT(rampwise_peak, high, 0);
+AT(rampwise_peak, low, 24);
+SIZE(rampwise_peak, 48);

@@ -25,6 +25,11 @@ const char *rampwise_status_text(int status)
         return "The memory is too small, not aligned, or not to be had";
     case RAMPWISE_ERROR_COUNT:
         return "A number of things, or the number of one of them, is out of range";
+    case RAMPWISE_ERROR_QUANTITY:
+        return "The quantity is not displacement, velocity or total acceleration, or not one asked for "
+               "before";
+    case RAMPWISE_ERROR_FLAGS:
+        return "The flags are unknown, or not for this call";
     case RAMPWISE_ERROR_INSTRUCTIONS:
         return "The set of instructions is unknown, was not built, or does not run on this "
                "processor";

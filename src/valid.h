@@ -39,4 +39,28 @@ static inline int check_samples(size_t n, const double *p, size_t *bad)
     return wrong < n ? blame(RAMPWISE_ERROR_SAMPLE, wrong, bad) : RAMPWISE_OK;
 }
 
+/* Coefficients of oscillators that share one input. */
+static inline int check_alike(size_t n, const rampwise_coeffs *c)
+{
+    for (size_t i = 0; i < n; ++i) {
+        if (!coeffs_are_made(&c[i]))
+            return RAMPWISE_ERROR_NOT_MADE;
+        if (c[i].dt != c[0].dt || c[i].input != c[0].input || c[i].between != c[0].between)
+            return RAMPWISE_ERROR_DIFFERENT;
+    }
+    return RAMPWISE_OK;
+}
+
+/* Their states. */
+static inline int check_shared_input(size_t n, const rampwise_state *s)
+{
+    for (size_t i = 0; i < n; ++i) {
+        if (!state_is_finite(&s[i]))
+            return RAMPWISE_ERROR_STATE;
+        if (s[i].p != s[0].p || s[i].p_before != s[0].p_before)
+            return RAMPWISE_ERROR_DIFFERENT;
+    }
+    return RAMPWISE_OK;
+}
+
 #endif

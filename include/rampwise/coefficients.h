@@ -83,7 +83,7 @@ RAMPWISE_BEGIN
    overflows, or a motion of an unstable system grows more than 2^900 times in one step. A
    coefficient below the smallest normal double comes out subnormal or zero.
 
-   About 0.3 to 1 microsecond, growing with log2(w dt); no allocation. Since 0.1. */
+   About 0.4 to 1.3 microseconds, growing with log2(w dt); no allocation. Since 0.1. */
 RAMPWISE_API int rampwise_coeffs_make(rampwise_coeffs *c, const rampwise_system *sys, double dt, int input,
                                       int between);
 

@@ -24,7 +24,9 @@ enum {
     RAMPWISE_ERROR_NAME = -22,         /* no constant or struct of that name */
     RAMPWISE_ERROR_MEMORY = -24,       /* memory is short, not aligned, or not to be had */
     RAMPWISE_ERROR_COUNT = -26,        /* a number of things, or the number of one, is out of range */
+    RAMPWISE_ERROR_QUANTITY = -27,     /* not a quantity, or not one of this object */
     RAMPWISE_ERROR_INSTRUCTIONS = -28, /* no set of instructions, or not one that runs here */
+    RAMPWISE_ERROR_FLAGS = -29,        /* flags that are unknown, or not for this call */
 
     /* A number that describes the oscillator or the step is out of range. */
     RAMPWISE_ERROR_MASS = -30,        /* mass is not a finite number above 0 */

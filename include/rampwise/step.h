@@ -35,7 +35,7 @@ RAMPWISE_API int rampwise_start_settled(const rampwise_coeffs *c, rampwise_state
 /* The exact state at a fraction (0 to 1) of the coming step, from *s towards p_next, for the input
    as c takes it between samples; *s stays. at may be s. Fraction 1 is rampwise_step to p_next, bit
    for bit; at fraction 0, at->p_before already belongs to the coming line. Otherwise one making of
-   coefficients (0.3 to 1 microsecond).
+   coefficients (0.4 to 1.3 microseconds).
    RAMPWISE_ERROR_MISSING, _NOT_MADE, _FRACTION, _STATE, _SAMPLE (p_next), _OVERFLOW. Since 0.1. */
 RAMPWISE_API int rampwise_inside(const rampwise_coeffs *c, const rampwise_state *s, double p_next,
                                  double fraction, rampwise_state *at);

@@ -73,6 +73,22 @@ static inline __m256d vector_larger(__m256d a, __m256d b)
     return _mm256_max_pd(a, b);
 }
 
+static inline __m256d vector_smaller(__m256d a, __m256d b)
+{
+    return _mm256_min_pd(a, b);
+}
+
+static inline __m256d vector_positive(__m256d a)
+{
+    return _mm256_cmp_pd(a, _mm256_setzero_pd(), _CMP_GT_OQ);
+}
+
+/* A bit a lane, the first lane lowest */
+static inline unsigned mask_bits(__m256d a)
+{
+    return (unsigned)_mm256_movemask_pd(a);
+}
+
 static inline __m256d mask_below(__m256d a, double limit)
 {
     return _mm256_cmp_pd(vector_size(a), _mm256_set1_pd(limit), _CMP_LT_OQ);

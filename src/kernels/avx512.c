@@ -73,6 +73,22 @@ static inline __m512d vector_larger(__m512d a, __m512d b)
     return _mm512_max_pd(a, b);
 }
 
+static inline __m512d vector_smaller(__m512d a, __m512d b)
+{
+    return _mm512_min_pd(a, b);
+}
+
+static inline __mmask8 vector_positive(__m512d a)
+{
+    return _mm512_cmp_pd_mask(a, _mm512_setzero_pd(), _CMP_GT_OQ);
+}
+
+/* A bit a lane, the first lane lowest */
+static inline unsigned mask_bits(__mmask8 a)
+{
+    return a;
+}
+
 static inline __mmask8 mask_below(__m512d a, double limit)
 {
     return _mm512_cmp_pd_mask(vector_size(a), _mm512_set1_pd(limit), _CMP_LT_OQ);

@@ -59,6 +59,22 @@ static inline double vector_larger(double a, double b)
     return a > b ? a : b;
 }
 
+static inline double vector_smaller(double a, double b)
+{
+    return a < b ? a : b;
+}
+
+static inline int vector_positive(double a)
+{
+    return a > 0;
+}
+
+/* A bit a lane, the first lane lowest */
+static inline unsigned mask_bits(int a)
+{
+    return (unsigned)a;
+}
+
 static inline int mask_all(void)
 {
     return 1;

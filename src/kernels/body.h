@@ -50,10 +50,11 @@ static size_t first_not_finite(size_t n, const double *x)
     return i;
 }
 
-/* GCC would pack u and v into one vector and unpack it again in every step. */
+/* GCC would pack u and v of one oscillator into a vector and unpack it again in every step; and it would fetch
+   all coefficients of a block before the loop, only to put most of them on the stack. */
 #if defined(__GNUC__) && !defined(__clang__)
 #pragma GCC push_options
-#pragma GCC optimize("no-tree-slp-vectorize")
+#pragma GCC optimize("no-tree-slp-vectorize", "no-tree-loop-im", "no-move-loop-invariants")
 #endif
 
 /* The step from u, v under `before` to `now`, and its entry in the outputs; 0 where it overflows. */
@@ -117,10 +118,6 @@ static size_t advance(const rampwise_coeffs *c, rampwise_state *s, size_t first,
     return advance_with(0, c, s, first, end, stride, p, out);
 }
 
-#if defined(__GNUC__) && !defined(__clang__)
-#pragma GCC pop_options
-#endif
-
 /* `flight` vectors from lane `at` on; answers whether one is not finite any more. flight and
  * gathering are constants where this is inlined. */
 static inline __attribute__((always_inline)) int one_input(lane_block *block, size_t at, int flight,
@@ -181,6 +178,123 @@ static int under_one_input(lane_block *block, size_t lanes, double p_last, size_
     }
 #undef FLY
     return lost;
+}
+
+/* Quantity q of stretch(): u, v, or the row over {u, v, p}. */
+static inline VECTOR looked_at(int q, double (*row)[LANES], size_t lane, VECTOR u, VECTOR v, VECTOR p)
+{
+    if (q < 2)
+        return q == 0 ? u : v;
+    return vector_fma(
+        vector_load(row[0] + lane), u,
+        vector_fma(vector_load(row[1] + lane), v, vector_product(vector_load(row[2] + lane), p)));
+}
+
+static inline __attribute__((always_inline)) int one_stretch(lane_block *block, size_t at, int flight,
+                                                             unsigned looked, double (*row)[LANES],
+                                                             double p_last, size_t n, const double *p,
+                                                             double (*high)[LANES], double (*low)[LANES])
+{
+    VECTOR u[FLIGHT], v[FLIGHT], top[3][FLIGHT], bottom[3][FLIGHT];
+    for (int j = 0; j < flight; ++j) {
+        u[j] = vector_load(block->u + at + (size_t)j * WIDTH);
+        v[j] = vector_load(block->v + at + (size_t)j * WIDTH);
+    }
+    int was_silent = is_silent(p_last);
+    VECTOR before = vector_all(p_last);
+    for (int q = 0; q < 3; ++q)
+        for (int j = 0; (looked >> q & 1) && j < flight; ++j)
+            top[q][j] = bottom[q][j] = looked_at(q, row, at + (size_t)j * WIDTH, u[j], v[j], before);
+    for (size_t i = 0; i < n; ++i) {
+        const VECTOR now = vector_all(p[i]);
+        const int silent = is_silent(p[i]);
+        for (int j = 0; j < flight; ++j) {
+            const size_t lane = at + (size_t)j * WIDTH;
+            const VECTOR old = u[j];
+            u[j] = next_u(block, lane, old, v[j], before, now);
+            v[j] = next_v(block, lane, old, v[j], before, now);
+        }
+        if (silent & was_silent)
+            for (int j = 0; j < flight; ++j) {
+                u[j] = vector_unless_below(u[j], SPENT, mask_all());
+                v[j] = vector_unless_below(v[j], SPENT, mask_all());
+            }
+        for (int q = 0; q < 3; ++q)
+            for (int j = 0; (looked >> q & 1) && j < flight; ++j) {
+                const VECTOR z = looked_at(q, row, at + (size_t)j * WIDTH, u[j], v[j], now);
+                top[q][j] = vector_larger(z, top[q][j]);
+                bottom[q][j] = vector_smaller(z, bottom[q][j]);
+            }
+        was_silent = silent;
+        before = now;
+    }
+    VECTOR zero = vector_all(0);
+    for (int j = 0; j < flight; ++j) {
+        const size_t lane = at + (size_t)j * WIDTH;
+        vector_store(block->u + lane, u[j]);
+        vector_store(block->v + lane, v[j]);
+        zero = vector_fma(u[j], vector_all(0), vector_fma(v[j], vector_all(0), zero));
+        for (int q = 0; q < 3; ++q)
+            if (looked >> q & 1) {
+                vector_store(high[q] + lane, top[q][j]);
+                vector_store(low[q] + lane, bottom[q][j]);
+            }
+    }
+    return vector_any_nan(zero);
+}
+
+/* Each choice of quantities has code of its own. */
+static int stretch(lane_block *block, size_t lanes, unsigned looked, double (*row)[LANES], double p_last,
+                   size_t n, const double *p, double (*high)[LANES], double (*low)[LANES])
+{
+#define LOOK(which)                                                                                          \
+    case which:                                                                                              \
+        lost |= one_stretch(block, at, FLIGHT, which, row, p_last, n, p, high, low);                         \
+        break
+    int lost = 0;
+    for (size_t at = 0; at < lanes; at += FLIGHT * WIDTH)
+        switch (looked) {
+            LOOK(1);
+            LOOK(2);
+            LOOK(3);
+            LOOK(4);
+            LOOK(5);
+            LOOK(6);
+            LOOK(7);
+        }
+#undef LOOK
+    return lost;
+}
+
+#if defined(__GNUC__) && !defined(__clang__)
+#pragma GCC pop_options
+#endif
+
+static void may_exceed(size_t lanes, size_t count, const double *high, const double *low, size_t stride,
+                       const double *floor_high, const double *floor_low, double (*excess)[LANES],
+                       const double *largest_p, const double *largest_change, uint32_t *flags)
+{
+    for (size_t i = 0; i < 2 * count; ++i)
+        flags[i] = 0;
+    for (size_t lane = 0; lane < lanes; lane += WIDTH) {
+        const VECTOR constant = vector_load(excess[0] + lane), from_p = vector_load(excess[1] + lane);
+        const VECTOR from_change = vector_load(excess[2] + lane), from_size = vector_load(excess[3] + lane);
+        const VECTOR floor_above = vector_load(floor_high + lane),
+                     floor_below = vector_load(floor_low + lane);
+        for (size_t i = 0; i < count; ++i) {
+            const VECTOR top = vector_load(high + i * stride + lane),
+                         bottom = vector_load(low + i * stride + lane);
+            const VECTOR size = vector_larger(vector_size(top), vector_size(bottom));
+            const VECTOR more =
+                vector_fma(from_size, size,
+                           vector_fma(from_change, vector_all(largest_change[i]),
+                                      vector_fma(from_p, vector_all(largest_p[i]), constant)));
+            const VECTOR above = vector_difference(vector_sum(top, more), floor_above);
+            const VECTOR below = vector_difference(floor_below, vector_difference(bottom, more));
+            flags[2 * i] |= (uint32_t)mask_bits(vector_positive(above)) << lane;
+            flags[2 * i + 1] |= (uint32_t)mask_bits(vector_positive(below)) << lane;
+        }
+    }
 }
 
 static inline __attribute__((always_inline)) void own_inputs(lane_block *block, size_t at, int flight,
@@ -282,5 +396,5 @@ static void scatter(double *to, size_t stride, size_t count, size_t n, double (*
 }
 
 extern const kernels KERNELS;
-const kernels KERNELS = {KERNELS_NAME, first_not_finite, advance, under_one_input, under_own_inputs,
-                         rows,         gather,           scatter};
+const kernels KERNELS = {KERNELS_NAME, first_not_finite, advance, under_one_input, stretch,
+                         may_exceed,   under_own_inputs, rows,    gather,          scatter};

@@ -7,6 +7,7 @@
 #define RAMPWISE_KERNELS_H
 
 #include <stddef.h>
+#include <stdint.h>
 #include "rampwise/instructions.h"
 #include "rampwise/record.h"
 
@@ -38,6 +39,18 @@ typedef struct kernels {
        more. */
     int (*under_one_input)(lane_block *block, size_t lanes, double p_last, size_t n, const double *p,
                            double *largest);
+
+    /* As under_one_input, gathering for each quantity that is looked at (bit 0 u, 1 v, 2 the row over
+       {u, v, p}) the greatest and least of the stretch's samples, the one it begins with among them. */
+    int (*stretch)(lane_block *block, size_t lanes, unsigned looked, double (*row)[LANES], double p_last,
+                   size_t n, const double *p, double (*high)[LANES], double (*low)[LANES]);
+
+    /* Which lanes of which of `count` stretches may exceed a floor at or between their samples, with the excess
+       of extremes.h: flags[2 i] has a bit a lane for the high side of stretch i, flags[2 i + 1] for the low one.
+       high and low of stretch i are at i stride. */
+    void (*may_exceed)(size_t lanes, size_t count, const double *high, const double *low, size_t stride,
+                       const double *floor_high, const double *floor_low, double (*excess)[LANES],
+                       const double *largest_p, const double *largest_change, uint32_t *flags);
 
     /* Each lane under its own input, p[1] to p[n], n <= TILE; p[0] is the sample before. The states
        after each sample go to u and v. */

@@ -67,6 +67,22 @@ static inline float64x2_t vector_larger(float64x2_t a, float64x2_t b)
     return vmaxq_f64(a, b);
 }
 
+static inline float64x2_t vector_smaller(float64x2_t a, float64x2_t b)
+{
+    return vminq_f64(a, b);
+}
+
+static inline uint64x2_t vector_positive(float64x2_t a)
+{
+    return vcgtzq_f64(a);
+}
+
+/* A bit a lane, the first lane lowest */
+static inline unsigned mask_bits(uint64x2_t a)
+{
+    return (unsigned)(vgetq_lane_u64(a, 0) & 1) | (unsigned)(vgetq_lane_u64(a, 1) & 2);
+}
+
 static inline uint64x2_t mask_below(float64x2_t a, double limit)
 {
     return vcltq_f64(vabsq_f64(a), vdupq_n_f64(limit));

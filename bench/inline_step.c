@@ -1,0 +1,15 @@
+/* The inline step as a caller writes it. meson.build compiles this file twice, with INLINE_STEP the name of
+   the function and other processors in mind. */
+#include "methods.h"
+
+void INLINE_STEP(const rampwise_coeffs *c, rampwise_state *s, size_t n, const double *p, double *u)
+{
+    /* copies, so that no store to u can be taken for one to them */
+    const rampwise_coeffs mine = *c;
+    rampwise_state now = *s;
+    for (size_t i = 0; i < n; ++i) {
+        rampwise_step(&mine, &now, p[i]);
+        u[i] = now.u;
+    }
+    *s = now;
+}

@@ -1,0 +1,124 @@
+#include "readings.h"
+
+#include <math.h>
+#include <stdarg.h>
+#include <stdio.h>
+#include "machine_limits.h"
+
+typedef struct readings {
+    reading *r;
+    size_t count;
+    const task_list *list;
+} readings;
+
+enum bound { AT_LEAST = 1, AT_MOST = 0 };
+
+/* Leaves out what was not measured, a value of NAN. */
+static void add(readings *all, const char *id, double value, enum bound bound, double target,
+                const char *text, ...) __attribute__((format(printf, 6, 7)));
+
+static void add(readings *all, const char *id, double value, enum bound bound, double target,
+                const char *text, ...)
+{
+    va_list rest;
+    if (isnan(value) || all->count == READINGS_MOST)
+        return;
+    reading *const r = &all->r[all->count++];
+    *r = (reading){.id = id, .value = value, .target = target, .at_least = bound == AT_LEAST};
+    va_start(rest, text);
+    vsnprintf(r->text, sizeof r->text, text, rest);
+    va_end(rest);
+}
+
+/* How many times the cost of `fast` that of `slow` is. */
+static double times(const readings *all, const char *slow, const char *fast)
+{
+    const task *const a = task_find(all->list, slow), *const b = task_find(all->list, fast);
+    return a != NULL && b != NULL ? a->best / b->best : NAN;
+}
+
+static double share_of_limit(const readings *all, const char *bank, const char *set)
+{
+    const task *const t = task_find(all->list, bank);
+    const double limit = limits_rate(all->list, "mix", set);
+    return t != NULL && limit > 0 ? 1 / t->best / limit : NAN;
+}
+
+static double times_chain(const readings *all, const char *id)
+{
+    const task *const t = task_find(all->list, id);
+    const double rate = limits_rate(all->list, "chain", "scalar");
+    return t != NULL && rate > 0 ? t->best * rate : NAN;
+}
+
+static void against_limits(readings *all)
+{
+    add(all, "bank_of_limit_avx512", share_of_limit(all, "bank_1000_avx512_largest", "AVX-512"), AT_LEAST,
+        0.85, "bank, AVX-512: rate / limit of a step's operations");
+    add(all, "bank_of_limit_avx2", share_of_limit(all, "bank_1000_avx2_largest", "AVX2"), AT_LEAST, 0.85,
+        "bank, AVX2: rate / limit of a step's operations");
+    add(all, "bank_of_limit_neon", share_of_limit(all, "bank_1000_neon_largest", "NEON"), AT_LEAST, 0.85,
+        "bank, NEON: rate / limit of a step's operations");
+    add(all, "run_of_chain", times_chain(all, "run"), AT_MOST, 1.2, "rampwise_run, last state / bare chain");
+    add(all, "run_history_of_chain", times_chain(all, "run_history"), AT_MOST, NAN,
+        "rampwise_run, u / bare chain");
+    add(all, "inline_of_chain", times_chain(all, "inline_step_fused"), AT_MOST, NAN,
+        "rampwise_step inline, u / bare chain");
+}
+
+static void against_gsl(readings *all)
+{
+    const double h = CASE_DT, error = task_find(all->list, "gsl_rk8pd_10")->error;
+    const double ours = task_find(all->list, "run_history")->error;
+    add(all, "gsl_of_bank_avx512", times(all, "gsl_rk8pd_10", "bank_1000_avx512_largest"), AT_LEAST, 1000,
+        "GSL rk8pd at 1e-10 (error %.1e) / bank, AVX-512 (%.1e)", error, ours);
+    add(all, "gsl_of_bank_avx2", times(all, "gsl_rk8pd_10", "bank_1000_avx2_largest"), AT_LEAST, 450,
+        "GSL rk8pd at 1e-10 (error %.1e) / bank, AVX2 (%.1e)", error, ours);
+    add(all, "gsl_of_bank_shortest", times(all, "gsl_rk8pd_10_shortest", "bank_1000_largest"), AT_LEAST, NAN,
+        "GSL rk8pd at 1e-10 / bank, T/h = %.0f alone", CASE_SHORTEST / h);
+    add(all, "gsl_of_bank_longest", times(all, "gsl_rk8pd_10_longest", "bank_1000_largest"), AT_LEAST, NAN,
+        "GSL rk8pd at 1e-10 / bank, T/h = %.0f alone", CASE_LONGEST / h);
+}
+
+static void against_others(readings *all)
+{
+    add(all, "lfilter_of_bank_avx512", times(all, "scipy_lfilter", "bank_1000_avx512_largest"), AT_LEAST, 30,
+        "SciPy lfilter / bank, AVX-512");
+    add(all, "lfilter_of_bank_avx2", times(all, "scipy_lfilter", "bank_1000_avx2_largest"), AT_LEAST, 15,
+        "SciPy lfilter / bank, AVX2");
+    add(all, "lfilter_of_run", times(all, "scipy_lfilter", "run_history"), AT_LEAST, NAN,
+        "SciPy lfilter / rampwise_run, u");
+    add(all, "printed_of_run", times(all, "printed_double", "run_history"), AT_LEAST, NAN,
+        "printed formulas in double / rampwise_run, u");
+}
+
+static void of_size(readings *all)
+{
+    add(all, "samples_200", times(all, "bank_1000_largest_n200", "bank_1000_largest"), AT_MOST, NAN,
+        "a step of the bank over 200 samples / over 20,000");
+    add(all, "samples_2000", times(all, "bank_1000_largest_n2000", "bank_1000_largest"), AT_MOST, NAN,
+        "a step of the bank over 2,000 samples / over 20,000");
+    add(all, "oscillators_10000", times(all, "bank_10000_largest", "bank_1000_largest"), AT_MOST, NAN,
+        "a step of the bank of 10,000 / of 1,000");
+    add(all, "frames_200", times(all, "run_frames_n200", "bank_1000"), AT_MOST, NAN,
+        "run_frames, 64 channels, 200 samples / bank, last state");
+    add(all, "records_200", times(all, "run_records_n200", "bank_1000"), AT_MOST, NAN,
+        "run_records, 64 records, 200 samples / bank, last state");
+    add(all, "bank_bytes", (double)rampwise_bank_size(CASE_OSCILLATORS) / CASE_OSCILLATORS, AT_MOST, NAN,
+        "memory of the bank: bytes an oscillator, whatever the record");
+}
+
+size_t readings_make(reading *r, const task_list *list)
+{
+    readings all = {r, 0, list};
+    against_limits(&all);
+    against_gsl(&all);
+    against_others(&all);
+    of_size(&all);
+    return all.count;
+}
+
+int reading_met(const reading *r)
+{
+    return r->at_least ? r->value >= r->target : r->value <= r->target;
+}

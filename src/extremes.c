@@ -1,0 +1,557 @@
+#include "extremes.h"
+
+#include <float.h>
+#include <math.h>
+#include <stdint.h>
+#include "rampwise/motion.h"
+#include "rampwise/status.h"
+
+/* Relative motion at one instant: y'' + damping y' + stiffness y = f, f with the slope f_slope; and what
+   rounding may have done to y and w. */
+typedef struct relative {
+    double y, w, f, f_slope, y_noise, w_noise;
+} relative;
+
+/* z and its first three derivatives, and what rounding may have done to the first two */
+typedef struct derivatives {
+    double z, z1, z2, z3, z1_noise, z2_noise;
+} derivatives;
+
+#define ROUNDING (16 * DBL_EPSILON)
+
+/* z over a piece of length 1: z + sum of e[n] x^n, n = 1 to count. Above the second power the terms follow
+   z'''' + S z''' + K z'' = 0; they end where two in a row have fallen below 2^-60 of the first two. With |S| and
+   |K| up to 1 that is before 24. */
+enum { TERMS = 24 };
+
+typedef struct series {
+    double z, e[TERMS + 1];
+    int count;
+} series;
+
+/* Where a piece lies: begin and length in steps of the oscillator, counted from sample. */
+typedef struct place {
+    uint64_t sample;
+    double begin, length;
+} place;
+
+static derivatives derivatives_of(const extremes *x, relative r)
+{
+    const double a2 = r.f - x->damping * r.w - x->stiffness * r.y;
+    const double a3 = r.f_slope - x->damping * a2 - x->stiffness * r.w;
+    const double a4 = -x->damping * a3 - x->stiffness * a2;
+    const double a5 = -x->damping * a4 - x->stiffness * a3;
+    const double d = fabs(x->damping), k = fabs(x->stiffness);
+    const double n2 = d * r.w_noise + k * r.y_noise + ROUNDING * (fabs(r.f) + d * fabs(r.w) + k * fabs(r.y));
+    const double n3 = d * n2 + k * r.w_noise, n4 = d * n3 + k * n2;
+    if (x->quantity == RAMPWISE_DISPLACEMENT)
+        return (derivatives){r.y, r.w, a2, a3, r.w_noise, n2};
+    if (x->quantity == RAMPWISE_VELOCITY)
+        return (derivatives){r.w, a2, a3, a4, n2, n3};
+    if (x->c->input == RAMPWISE_FORCE)
+        return (derivatives){a2, a3, a4, a5, n3, n4};
+    /* The base's acceleration is -f. */
+    return (derivatives){
+        -x->damping * r.w - x->stiffness * r.y, -x->damping * a2 - x->stiffness * r.w, a4, a5, n3, n4};
+}
+
+static const double inverse_factorial[TERMS + 1] = {1.0,
+                                                    1.0,
+                                                    0.5,
+                                                    0.16666666666666666,
+                                                    0.041666666666666664,
+                                                    0.008333333333333333,
+                                                    0.001388888888888889,
+                                                    0.0001984126984126984,
+                                                    2.48015873015873e-05,
+                                                    2.7557319223985893e-06,
+                                                    2.755731922398589e-07,
+                                                    2.505210838544172e-08,
+                                                    2.08767569878681e-09,
+                                                    1.6059043836821613e-10,
+                                                    1.1470745597729725e-11,
+                                                    7.647163731819816e-13,
+                                                    4.779477332387385e-14,
+                                                    2.8114572543455206e-15,
+                                                    1.5619206968586225e-16,
+                                                    8.22063524662433e-18,
+                                                    4.110317623312165e-19,
+                                                    1.9572941063391263e-20,
+                                                    8.896791392450574e-22,
+                                                    3.8681701706306835e-23,
+                                                    1.6117375710961184e-24};
+
+static void series_make(series *s, const extremes *x, relative r, double length)
+{
+    const derivatives d = derivatives_of(x, r);
+    const double S = x->damping * length, K = x->stiffness * length * length;
+    double before = d.z2 * length * length, last = d.z3 * length * length * length;
+    s->z = d.z;
+    s->e[1] = d.z1 * length;
+    s->e[2] = before / 2;
+    s->e[3] = last * inverse_factorial[3];
+    const double small = 0x1p-60 * (fabs(s->e[1]) + fabs(s->e[2]));
+    int n = 3;
+    while (n < TERMS && fabs(s->e[n]) + fabs(s->e[n - 1]) > small) {
+        const double next = -S * last - K * before;
+        before = last;
+        last = next;
+        ++n;
+        s->e[n] = last * inverse_factorial[n];
+    }
+    s->count = n;
+}
+
+static double series_value(const series *s, double x)
+{
+    double sum = 0;
+    for (int n = s->count; n >= 1; --n)
+        sum = (sum + s->e[n]) * x;
+    return s->z + sum;
+}
+
+/* The first derivative and the second. */
+static double series_slope(const series *s, double x, double *second)
+{
+    double first = 0, next = 0;
+    for (int n = s->count; n >= 1; --n) {
+        next = next * x + first;
+        first = first * x + n * s->e[n];
+    }
+    *second = next;
+    return first;
+}
+
+static int opposite(double a, double b)
+{
+    return (a < 0 && b > 0) || (a > 0 && b < 0);
+}
+
+/* The zero of the slope between low and high, where it has opposite signs: Newton's steps, halving where one
+   leaves the bracket. */
+static double slope_zero(const series *s, double low, double high, double at_low, double at_high)
+{
+    const int rising = at_low < 0;
+    double x = low + (high - low) * (at_low / (at_low - at_high)), second;
+    for (int i = 0; i < 100; ++i) {
+        const double slope = series_slope(s, x, &second);
+        if (slope == 0)
+            return x;
+        if ((slope < 0) == rising)
+            low = x;
+        else
+            high = x;
+        double next = x - slope / second;
+        if (!(next > low && next < high))
+            next = 0.5 * (low + high);
+        if (fabs(next - x) <= 0x1p-54)
+            return next;
+        x = next;
+    }
+    return x;
+}
+
+/* Where the slope turns: the zero of the second derivative, by halving. It need not be sharp: beside it the
+   slope is flat. */
+static double turning_point(const series *s)
+{
+    double low = 0, high = 1, second;
+    (void)series_slope(s, 0, &second);
+    const int rising = second < 0;
+    for (int i = 0; i < 54; ++i) {
+        const double middle = 0.5 * (low + high);
+        (void)series_slope(s, middle, &second);
+        if ((second < 0) == rising)
+            low = middle;
+        else
+            high = middle;
+    }
+    return 0.5 * (low + high);
+}
+
+static void note_at(rampwise_peak *peak, double value, const place *where, double x)
+{
+    const double steps = where->begin + x * where->length, whole = floor(steps);
+    note_value(peak, value, where->sample + (uint64_t)whole, steps - whole);
+}
+
+static void between(const series *s, double low, double high, const place *where, rampwise_peak *peak)
+{
+    double second;
+    const double begin = series_slope(s, low, &second), end = series_slope(s, high, &second);
+    if (!opposite(begin, end))
+        return;
+    const double x = slope_zero(s, low, high, begin, end);
+    note_at(peak, series_value(s, x), where, x);
+}
+
+/* A piece so short that z'' has one zero in it at most. */
+static void in_piece(const extremes *x, relative r, double length, const place *where, rampwise_peak *peak)
+{
+    series s;
+    double begin, end;
+    series_make(&s, x, r, length);
+    (void)series_slope(&s, 0, &begin);
+    (void)series_slope(&s, 1, &end);
+    if (opposite(begin, end)) {
+        const double turn = turning_point(&s);
+        between(&s, 0, turn, where, peak);
+        between(&s, turn, 1, where, peak);
+    } else {
+        between(&s, 0, 1, where, peak);
+    }
+}
+
+/* The motion a step of coefficients `c` later. */
+static relative later(const rampwise_coeffs *c, relative r)
+{
+    const double mass = c->system.mass, f = r.f + r.f_slope * c->dt, load = mass * fmax(fabs(r.f), fabs(f));
+    rampwise_state s = {r.y, r.w, mass * r.f, 0};
+    rampwise_step(c, &s, mass * f);
+    const double y_terms = fabs(r.y) + fabs(c->B * r.w) + (fabs(c->C) + fabs(c->D)) * load;
+    const double w_terms = fabs(r.w) + fabs(c->Ap * r.y) + (fabs(c->Cp) + fabs(c->Dp)) * load;
+    return (relative){s.u, s.v, f, r.f_slope, ROUNDING * y_terms, ROUNDING * w_terms};
+}
+
+/* A short piece is passed by where the slope z' keeps its sign: it does not turn, or turns where it is too large
+   to come to zero (z'' is nowhere twice its larger end). And where it changes its sign once, if z then rises over
+   its ends, or falls below them, by too little: less than a triangle of twice the height. */
+static int passed_by(derivatives begin, derivatives end, double length, const rampwise_peak *peak)
+{
+    const double a = fabs(begin.z1), b = fabs(end.z1);
+    if (!opposite(begin.z1, end.z1))
+        return !opposite(begin.z2, end.z2) || fmin(a, b) > 2 * length * fmax(fabs(begin.z2), fabs(end.z2));
+    if (opposite(begin.z2, end.z2))
+        return 0;
+    const double most = length * a * (b / (a + b));
+    return begin.z1 > 0 ? fmax(begin.z, end.z) + most <= peak->high.value
+                        : fmin(begin.z, end.z) - most >= peak->low.value;
+}
+
+/* An extreme on the end of a piece, or within rounding of it, is the value there. */
+static void walk(const extremes *x, relative r, size_t count, place where, rampwise_peak *peak)
+{
+    const double begin = where.begin;
+    for (size_t i = 0; i < count; ++i) {
+        const relative next = later(&x->piece, r);
+        const derivatives end = derivatives_of(x, next);
+        where.begin = begin + (double)i * where.length;
+        if (!passed_by(derivatives_of(x, r), end, x->piece.dt, peak))
+            in_piece(x, r, x->piece.dt, &where, peak);
+        if (i + 1 < count)
+            note_at(peak, end.z, &where, 1);
+        r = next;
+    }
+}
+
+static int sign_of(double x, double noise)
+{
+    return x > noise ? 1 : x < -noise ? -1 : 0;
+}
+
+/* Where the roots are real, z'' has one zero at most in all: a part in which neither z' nor z'' changes its
+   sign is passed by. What is lost in rounding has no sign; a part that begins and ends so has died away. `depth`
+   halvings are left until a piece is short. */
+static void halve(const extremes *x, relative r, double length, place where, int depth, rampwise_peak *peak)
+{
+    rampwise_coeffs whole, half;
+    const rampwise_system *const system = &x->c->system;
+    if (rampwise_coeffs_make(&whole, system, length, RAMPWISE_FORCE, RAMPWISE_RAMP) != RAMPWISE_OK)
+        return;
+    const derivatives begin = derivatives_of(x, r), end = derivatives_of(x, later(&whole, r));
+    if (sign_of(begin.z1, begin.z1_noise) == sign_of(end.z1, end.z1_noise) &&
+        sign_of(begin.z2, begin.z2_noise) == sign_of(end.z2, end.z2_noise))
+        return;
+    if (depth <= 0) {
+        in_piece(x, r, length, &where, peak);
+        return;
+    }
+    if (rampwise_coeffs_make(&half, system, length / 2, RAMPWISE_FORCE, RAMPWISE_RAMP) != RAMPWISE_OK)
+        return;
+    const relative middle = later(&half, r);
+    where.length /= 2;
+    halve(x, r, length / 2, where, depth - 1, peak);
+    note_at(peak, derivatives_of(x, middle).z, &where, 1);
+    where.begin += where.length;
+    halve(x, middle, length / 2, where, depth - 1, peak);
+}
+
+/* Halvings until a step of this length is short; negative where it could be longer. */
+static int halvings_for(const extremes *x, double length)
+{
+    int for_S, for_K;
+    const double S = fabs(x->damping) * length, K = fabs(x->stiffness) * length * length;
+    (void)frexp(S, &for_S);
+    (void)frexp(K, &for_K);
+    for_S = S > 0 ? for_S : -1000;
+    for_K = K > 0 ? (for_K + (for_K > 0)) / 2 : -1000;
+    return for_S > for_K ? for_S : for_K;
+}
+
+/* Pieces of `length` until two extremes of each sign must have passed, or the motion has died to 1e-40. */
+static double pieces_until_decided(const extremes *x, double length)
+{
+    const double sigma = fabs(x->damping) / 2, square = x->stiffness - sigma * sigma;
+    const double turns = 9.5 / (sqrt(square) * length), dies = 92 / (sigma * length);
+    return (turns < dies ? turns : dies) + 2;
+}
+
+static void make_bounds(extremes *x)
+{
+    const rampwise_coeffs *const c = x->c;
+    const double h = c->dt, S = fabs(x->damping) * h, K = fabs(x->stiffness) * h * h;
+    const double rest = 1 - S - K / 8, unit = rest > 0.25 ? h * h / 8 / rest : 0;
+    const double per_load = c->input == RAMPWISE_FORCE ? 1 / c->system.mass : 1;
+    const int ramp = c->between == RAMPWISE_RAMP, loaded = c->input <= RAMPWISE_BASE_ACCELERATION;
+    /* Relative motion over a moving base is not what the samples of u bound. */
+    x->constant = rest > 0.25 && !x->jumps && c->input != RAMPWISE_BASE_DISPLACEMENT ? 0 : INFINITY;
+    x->from_p = x->from_change = 0;
+    x->from_size = unit * fabs(x->stiffness);
+    /* z'' + damping z' + stiffness z = F inside the step */
+    if (x->quantity == RAMPWISE_DISPLACEMENT) {
+        x->from_p = loaded ? unit * per_load : 0;
+        x->from_change = c->input == RAMPWISE_BASE_VELOCITY ? unit / h : 0;
+    } else if (x->quantity == RAMPWISE_VELOCITY) {
+        x->from_change = loaded && ramp ? unit * per_load / h : 0;
+    } else if (c->input == RAMPWISE_BASE_ACCELERATION) {
+        x->from_p = unit * fabs(x->stiffness);
+        x->from_change = ramp ? unit * fabs(x->damping) / h : 0;
+    } else if (c->input == RAMPWISE_BASE_VELOCITY) {
+        x->from_change = unit * fabs(x->stiffness) / h;
+    }
+}
+
+/* Does the quantity jump where the input, or its slope, does? */
+static int jumps_at_samples(const rampwise_coeffs *c, int quantity)
+{
+    const int held = c->between == RAMPWISE_HOLD;
+    if (c->input == RAMPWISE_BASE_DISPLACEMENT)
+        return held ? quantity != RAMPWISE_VELOCITY
+                    : quantity == RAMPWISE_VELOCITY ||
+                          (quantity == RAMPWISE_TOTAL_ACCELERATION && c->system.damper != 0);
+    return held && c->input == RAMPWISE_FORCE && quantity == RAMPWISE_TOTAL_ACCELERATION;
+}
+
+void rampwise_extremes_bound_(extremes *x, const rampwise_coeffs *c, int quantity)
+{
+    const rampwise_system *const system = &c->system;
+    x->c = c;
+    x->quantity = quantity;
+    x->damping = system->damper / system->mass;
+    x->stiffness = system->stiffness / system->mass;
+    x->oscillates = x->damping * x->damping / 4 < x->stiffness;
+    x->jumps = jumps_at_samples(c, quantity);
+    x->halvings = halvings_for(x, c->dt);
+    x->halvings = x->halvings > 0 ? x->halvings : 0;
+    x->pieces = 1;
+    make_bounds(x);
+}
+
+int rampwise_extremes_make_(extremes *x, const rampwise_coeffs *c, int quantity)
+{
+    rampwise_extremes_bound_(x, c, quantity);
+    if (x->halvings == 0 || !x->oscillates)
+        return RAMPWISE_OK;
+    const double all = ldexp(1, x->halvings), piece = ldexp(c->dt, -x->halvings);
+    const double decided = pieces_until_decided(x, piece);
+    x->pieces = (size_t)(2 * decided >= all ? all : decided);
+    const int status = rampwise_coeffs_make(&x->piece, &c->system, piece, RAMPWISE_FORCE, RAMPWISE_RAMP);
+    if (status != RAMPWISE_OK || (double)x->pieces >= all)
+        return status;
+    return rampwise_coeffs_make(&x->leap, &c->system, c->dt - (double)x->pieces * piece, RAMPWISE_FORCE,
+                                RAMPWISE_RAMP);
+}
+
+double rampwise_extremes_value_(const extremes *x, const rampwise_state *s)
+{
+    if (x->quantity == RAMPWISE_DISPLACEMENT)
+        return rampwise_relative_displacement(x->c, s);
+    if (x->quantity == RAMPWISE_VELOCITY)
+        return rampwise_relative_velocity(x->c, s);
+    return rampwise_total_acceleration(x->c, s);
+}
+
+/* At the beginning of the step to p_next, as the step's own line has it. */
+static relative relative_to_base(const rampwise_coeffs *c, const rampwise_state *s, double p_next)
+{
+    const double slope = c->between == RAMPWISE_RAMP ? (p_next - s->p) / c->dt : 0;
+    const double y_noise = DBL_EPSILON * fabs(s->u), w_noise = DBL_EPSILON * fabs(s->v);
+    switch (c->input) {
+    case RAMPWISE_FORCE:
+        return (relative){s->u, s->v, s->p / c->system.mass, slope / c->system.mass, y_noise, w_noise};
+    case RAMPWISE_BASE_ACCELERATION:
+        return (relative){s->u, s->v, -s->p, -slope, y_noise, w_noise};
+    case RAMPWISE_BASE_VELOCITY:
+        return (relative){s->u, s->v, -slope, 0, y_noise, w_noise};
+    default:
+        return (relative){s->u - s->p, s->v - slope, 0, 0, y_noise, w_noise};
+    }
+}
+
+double rampwise_extremes_begin_(const extremes *x, const rampwise_state *s, double p_next)
+{
+    return derivatives_of(x, relative_to_base(x->c, s, p_next)).z;
+}
+
+double rampwise_extremes_end_(const extremes *x, const rampwise_state *s)
+{
+    rampwise_state before = *s;
+    if (x->c->between == RAMPWISE_HOLD)
+        before.p = s->p_before;
+    return rampwise_extremes_value_(x, &before);
+}
+
+/* At the end of the same step. */
+static relative relative_at_end(const rampwise_coeffs *c, const relative *begin, const rampwise_state *s,
+                                const rampwise_state *next)
+{
+    relative end = *begin;
+    end.f += begin->f_slope * c->dt;
+    end.y = next->u;
+    end.w = next->v;
+    if (c->input == RAMPWISE_BASE_DISPLACEMENT) {
+        end.y -= c->between == RAMPWISE_RAMP ? next->p : s->p;
+        end.w += begin->w - s->v;
+    }
+    return end;
+}
+
+void rampwise_extremes_inside_(const extremes *x, const rampwise_state *s, const rampwise_state *next,
+                               uint64_t sample, rampwise_peak *peak)
+{
+    const relative r = relative_to_base(x->c, s, next->p);
+    const double h = x->c->dt;
+    place where = {sample, 0, 1};
+    if (x->halvings == 0) {
+        const relative end = relative_at_end(x->c, &r, s, next);
+        if (!passed_by(derivatives_of(x, r), derivatives_of(x, end), h, peak))
+            in_piece(x, r, h, &where, peak);
+        return;
+    }
+    if (!x->oscillates) {
+        halve(x, r, h, where, x->halvings, peak);
+        return;
+    }
+    where.length = ldexp(1, -x->halvings);
+    walk(x, r, x->pieces, where, peak);
+    if ((double)x->pieces * where.length < 1) {
+        where.begin = 1 - (double)x->pieces * where.length;
+        walk(x, later(&x->leap, r), x->pieces, where, peak);
+    }
+}
+
+static void note_never_reached(rampwise_peak *peak, double value)
+{
+    note_value(peak, value, UINT64_MAX, 0);
+}
+
+/* A free motion that grows: to both sides where it oscillates, else to the side of its growing part. */
+static void note_growth(const extremes *x, relative r, rampwise_peak *peak)
+{
+    if (x->oscillates) {
+        note_never_reached(peak, INFINITY);
+        note_never_reached(peak, -INFINITY);
+        return;
+    }
+    const double sigma = x->damping / 2, root = sqrt(sigma * sigma - x->stiffness);
+    const double growing = -sigma + root, other = -sigma - root;
+    double part = r.w - other * r.y; /* times a positive number: the growing part of y, z = y or z'' */
+    if (x->quantity == RAMPWISE_VELOCITY)
+        part *= growing;
+    if (part != 0 && !(x->quantity == RAMPWISE_TOTAL_ACCELERATION && growing == 0))
+        note_never_reached(peak, part > 0 ? INFINITY : -INFINITY);
+}
+
+/* Does a free motion from here stay bounded? Not a free mass that moves, nor what grows. */
+static int stays(const extremes *x, relative r)
+{
+    if (r.y == 0 && r.w == 0)
+        return 1;
+    if (x->stiffness == 0 && x->damping >= 0)
+        return x->damping > 0 || r.w == 0 || x->quantity != RAMPWISE_DISPLACEMENT;
+    return x->stiffness >= 0 && x->damping >= 0;
+}
+
+/* What a motion that stays comes to, where it never gets there. */
+static double comes_to(const extremes *x, relative r)
+{
+    return x->stiffness == 0 && x->damping > 0 && x->quantity == RAMPWISE_DISPLACEMENT
+               ? r.y + r.w / x->damping
+               : 0;
+}
+
+/* Real roots: intervals of doubling length, until z' and z'' have come to their last signs or the motion has
+   died. */
+static void spread(const extremes *x, relative r, double length, place where, rampwise_peak *peak)
+{
+    for (int i = 0; i < 200 && (r.y != 0 || r.w != 0); ++i) {
+        rampwise_coeffs c;
+        if (rampwise_coeffs_make(&c, &x->c->system, length, RAMPWISE_FORCE, RAMPWISE_RAMP) != RAMPWISE_OK)
+            return;
+        halve(x, r, length, where, halvings_for(x, length), peak);
+        r = later(&c, r);
+        note_at(peak, derivatives_of(x, r).z, &where, 1);
+        where.begin += where.length;
+        if (i > 0) {
+            length *= 2;
+            where.length *= 2;
+        }
+    }
+}
+
+/* One whole turn of a free motion that does not grow: it has the greatest and the least value there is. What
+   exceeds an earlier value by rounding only is the same amplitude come again. */
+static void first_turn(const extremes *x, relative r, place where, rampwise_peak *peak)
+{
+    const double sigma = x->damping / 2, turn = 6.283185307179586 / sqrt(x->stiffness - sigma * sigma);
+    const double dies = sigma > 0 ? 92 / sigma : INFINITY, until = (turn < dies ? turn : dies) / x->piece.dt;
+    for (double i = 0; i < until; ++i) {
+        rampwise_peak with = *peak;
+        const relative next = later(&x->piece, r);
+        walk(x, r, 1, where, &with);
+        note_at(&with, derivatives_of(x, next).z, &where, 1);
+        if (with.high.value > peak->high.value + ROUNDING * fabs(peak->high.value))
+            peak->high = with.high;
+        if (with.low.value < peak->low.value - ROUNDING * fabs(peak->low.value))
+            peak->low = with.low;
+        r = next;
+        where.begin += where.length;
+    }
+}
+
+static relative left_alone(const extremes *x, const rampwise_state *s)
+{
+    const int moved = x->c->input == RAMPWISE_BASE_DISPLACEMENT;
+    return (relative){moved ? s->u - s->p : s->u, s->v, 0, 0, DBL_EPSILON * fabs(s->u),
+                      DBL_EPSILON * fabs(s->v)};
+}
+
+double rampwise_extremes_after_begin_(const extremes *x, const rampwise_state *s)
+{
+    return derivatives_of(x, left_alone(x, s)).z;
+}
+
+void rampwise_extremes_after_(const extremes *x, const rampwise_state *s, uint64_t sample,
+                              rampwise_peak *peak)
+{
+    const relative r = left_alone(x, s);
+    const int halvings = halvings_for(x, x->c->dt);
+    const double length = ldexp(x->c->dt, -halvings);
+    place where = {sample, 0, ldexp(1, -halvings)};
+    extremes free = *x;
+    free.piece.dt = length;
+    note_value(peak, derivatives_of(x, r).z, sample, 0);
+    if (!stays(x, r))
+        note_growth(x, r, peak);
+    else if (x->damping > 0)
+        note_never_reached(peak, comes_to(x, r));
+    if (halvings < -900 || !isfinite(length))
+        return; /* no spring and no damper: the motion is even */
+    if (!x->oscillates) {
+        spread(x, r, length, where, peak);
+        return;
+    }
+    if (stays(x, r) && rampwise_coeffs_make(&free.piece, &x->c->system, length, RAMPWISE_FORCE,
+                                            RAMPWISE_RAMP) == RAMPWISE_OK)
+        first_turn(&free, r, where, peak);
+}

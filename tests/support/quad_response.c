@@ -1,0 +1,203 @@
+#include "quad_response.h"
+
+#include <math.h>
+
+enum { TERMS = 44 };
+
+/* Relative motion y'' + damping y' + stiffness y = f + f_slope t inside a step; the base's acceleration is
+   -f - f_slope t for a moving base. */
+typedef struct motion {
+    quad damping, stiffness, y, w, f, f_slope;
+} motion;
+
+/* Powers of x = t/length in [0, 1] */
+typedef struct series {
+    quad y[TERMS], z[TERMS];
+} series;
+
+static quad size_of(quad a)
+{
+    return a < 0 ? -a : a;
+}
+
+static quad derivative_at(const quad *power, int order, quad x)
+{
+    quad sum = 0;
+    for (int n = TERMS - 1; n >= order; --n) {
+        quad factor = 1;
+        for (int k = 0; k < order; ++k)
+            factor *= n - k;
+        sum = sum * x + factor * power[n];
+    }
+    return sum;
+}
+
+static void series_of(const rampwise_coeffs *c, int quantity, const motion *m, quad length, series *s)
+{
+    const quad S = m->damping * length, K = m->stiffness * length * length;
+    s->y[0] = m->y;
+    s->y[1] = m->w * length;
+    for (int n = 0; n + 2 < TERMS; ++n) {
+        quad right = -S * (n + 1) * s->y[n + 1] - K * s->y[n];
+        right += n == 0 ? m->f * length * length : n == 1 ? m->f_slope * length * length * length : 0;
+        s->y[n + 2] = right / ((n + 1) * (n + 2));
+    }
+    for (int n = 0; n < TERMS; ++n) {
+        const quad w = n + 1 < TERMS ? (n + 1) * s->y[n + 1] / length : 0;
+        const quad a = n + 2 < TERMS ? (n + 1) * (n + 2) * s->y[n + 2] / (length * length) : 0;
+        const quad load = n == 0 ? m->f : n == 1 ? m->f_slope * length : 0;
+        if (quantity == RAMPWISE_DISPLACEMENT)
+            s->z[n] = s->y[n];
+        else if (quantity == RAMPWISE_VELOCITY)
+            s->z[n] = w;
+        else
+            s->z[n] = c->input == RAMPWISE_FORCE ? a : a - load;
+    }
+}
+
+static void note(quad_peaks *peaks, quad value, quad time, quad sharp)
+{
+    if (value > peaks->high.value) {
+        if (size_of(time - peaks->high.time) > (quad)1e-3 && peaks->high.value > peaks->next_high)
+            peaks->next_high = peaks->high.value;
+        peaks->high = (quad_extreme){value, time, sharp};
+    } else if (size_of(time - peaks->high.time) > (quad)1e-3 && value > peaks->next_high) {
+        peaks->next_high = value;
+    }
+    if (value < peaks->low.value) {
+        if (size_of(time - peaks->low.time) > (quad)1e-3 && peaks->low.value < peaks->next_low)
+            peaks->next_low = peaks->low.value;
+        peaks->low = (quad_extreme){value, time, sharp};
+    } else if (size_of(time - peaks->low.time) > (quad)1e-3 && value < peaks->next_low) {
+        peaks->next_low = value;
+    }
+}
+
+/* Bisection to a hundred bits: slow and certain. */
+static quad zero_between(const quad *power, int order, quad low, quad high)
+{
+    const int rising = derivative_at(power, order, low) < 0;
+    for (int i = 0; i < 104; ++i) {
+        const quad middle = (low + high) / 2;
+        if ((derivative_at(power, order, middle) < 0) == rising)
+            low = middle;
+        else
+            high = middle;
+    }
+    return (low + high) / 2;
+}
+
+static void scan_part(const series *s, quad low, quad high, quad begin, quad length, quad_peaks *peaks)
+{
+    const quad a = derivative_at(s->z, 1, low), b = derivative_at(s->z, 1, high);
+    if ((a < 0 && b > 0) || (a > 0 && b < 0)) {
+        const quad x = zero_between(s->z, 1, low, high);
+        note(peaks, derivative_at(s->z, 0, x), begin + x * length,
+             size_of(derivative_at(s->z, 2, x)) / (length * length));
+    }
+}
+
+static void scan_piece(const series *s, quad begin, quad length, quad_peaks *peaks)
+{
+    const quad a = derivative_at(s->z, 2, 0), b = derivative_at(s->z, 2, 1);
+    if ((a < 0 && b > 0) || (a > 0 && b < 0)) {
+        const quad turn = zero_between(s->z, 2, 0, 1);
+        scan_part(s, 0, turn, begin, length, peaks);
+        scan_part(s, turn, 1, begin, length, peaks);
+    } else {
+        scan_part(s, 0, 1, begin, length, peaks);
+    }
+}
+
+/* What the step from p to p_next does to relative coordinates, after the line before it had `slope`. */
+static void enter_step(const rampwise_coeffs *c, motion *m, quad p, quad p_next, quad *slope)
+{
+    const quad h = c->dt, next = c->between == RAMPWISE_RAMP ? (p_next - p) / h : 0;
+    m->f = m->f_slope = 0;
+    if (c->input == RAMPWISE_FORCE) {
+        m->f = p / (quad)c->system.mass;
+        m->f_slope = next / (quad)c->system.mass;
+    } else if (c->input == RAMPWISE_BASE_ACCELERATION) {
+        m->f = -p;
+        m->f_slope = -next;
+    } else if (c->input == RAMPWISE_BASE_VELOCITY) {
+        m->f = -next;
+    } else {
+        m->w += *slope - next;
+    }
+    *slope = next;
+}
+
+static int pieces_for(const rampwise_coeffs *c)
+{
+    const double S = fabs(c->system.damper) / c->system.mass * c->dt;
+    const double theta = sqrt(fabs(c->system.stiffness) / c->system.mass) * c->dt;
+    return 1 + (int)(4 * fmax(S, theta));
+}
+
+static motion at_start(const rampwise_coeffs *c, double u0, double v0, double p0)
+{
+    motion m = {(quad)c->system.damper / (quad)c->system.mass, (quad)c->system.stiffness / (quad)c->system.mass,
+                u0, v0, 0, 0};
+    if (c->input == RAMPWISE_BASE_DISPLACEMENT)
+        m.y -= (quad)p0;
+    return m;
+}
+
+/* The quantity at sample 0, where a line of slope zero ends. */
+static quad first_value(const rampwise_coeffs *c, const motion *m, double p0, int quantity)
+{
+    const quad total = -m->damping * m->w - m->stiffness * m->y;
+    if (quantity == RAMPWISE_DISPLACEMENT)
+        return m->y;
+    if (quantity == RAMPWISE_VELOCITY)
+        return m->w;
+    return c->input == RAMPWISE_FORCE ? total + (quad)p0 / (quad)c->system.mass : total;
+}
+
+/* To p[n - 1] where peaks are wanted, else to `time`, whose value is returned. */
+static quad go(const rampwise_coeffs *c, double u0, double v0, size_t n, const double *p, int quantity, quad time,
+               quad_peaks *peaks)
+{
+    const int pieces = pieces_for(c);
+    const quad length = (quad)1 / pieces;
+    motion m = at_start(c, u0, v0, p[0]);
+    quad slope = 0, value = first_value(c, &m, p[0], quantity);
+    series s;
+    if (peaks != NULL) {
+        peaks->high = peaks->low = (quad_extreme){value, 0, 0};
+        peaks->next_high = -INFINITY;
+        peaks->next_low = INFINITY;
+    }
+    for (size_t i = 0; i + 1 < n; ++i) {
+        enter_step(c, &m, p[i], p[i + 1], &slope);
+        for (int k = 0; k < pieces; ++k) {
+            const quad begin = (quad)i + k * length;
+            series_of(c, quantity, &m, length * (quad)c->dt, &s);
+            if (peaks != NULL) {
+                note(peaks, s.z[0], begin, 0);
+                scan_piece(&s, begin, length, peaks);
+                note(peaks, derivative_at(s.z, 0, 1), begin + length, 0);
+            } else if (time < begin + length || (i + 2 == n && k + 1 == pieces)) {
+                return derivative_at(s.z, 0, (time - begin) / length);
+            }
+            m.y = derivative_at(s.y, 0, 1);
+            m.w = derivative_at(s.y, 1, 1) / (length * (quad)c->dt);
+            m.f += m.f_slope * length * (quad)c->dt;
+        }
+        if (c->input == RAMPWISE_BASE_DISPLACEMENT && c->between == RAMPWISE_HOLD)
+            m.y -= (quad)p[i + 1] - (quad)p[i];
+    }
+    return value;
+}
+
+void quad_response(const rampwise_coeffs *c, double u0, double v0, size_t n, const double *p, int quantity,
+                   quad_peaks *peaks)
+{
+    (void)go(c, u0, v0, n, p, quantity, 0, peaks);
+}
+
+quad quad_value(const rampwise_coeffs *c, double u0, double v0, size_t n, const double *p, int quantity, quad time)
+{
+    return go(c, u0, v0, n, p, quantity, time, NULL);
+}
