@@ -5,8 +5,7 @@
 #include "rampwise/status.h"
 #include "valid.h"
 
-/* Channel j under c[j c_step], everything checked; returns the smallest index at fault, or channels
- * n. */
+/* Channel j under c[j c_step], everything checked; returns the smallest index at fault, or channels n. */
 static size_t run_channels(size_t channels, const rampwise_coeffs *c, size_t c_step, rampwise_state *s,
                            size_t n, const double *p, layout at, const rampwise_history *out)
 {

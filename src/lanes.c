@@ -30,8 +30,8 @@ typedef struct group {
     size_t *reached;
     lane_block block;
     _Alignas(LANE_ALIGNMENT) double acceleration[4][LANES];
-    double total[4][LANES], p[TILE + 1][LANES];
-    lane_tile u, v, a, t; /* t: total */
+    double total[4][LANES], p[TILE + 1][LANES], p_before[LANES]; /* before p[0] */
+    lane_tile u, v, a, t;                                        /* t: total */
 } group;
 
 static void group_start(group *g, size_t n)
@@ -46,6 +46,7 @@ static void group_start(group *g, size_t n)
         g->block.u[j] = g->s[j].u;
         g->block.v[j] = g->s[j].v;
         g->p[0][j] = g->s[j].p;
+        g->p_before[j] = g->s[j].p_before;
         g->reached[j] = n;
         for (size_t i = 0; i < 4; ++i) {
             g->acceleration[i][j] = g->c[j]->acceleration[i];
@@ -75,7 +76,7 @@ static void stop_lane(group *g, size_t j, double u, double v, size_t before, siz
 {
     const rampwise_history column = {g->u[0] + j, g->v[0] + j, out->a != NULL ? g->a[0] + j : NULL,
                                      out->total != NULL ? g->t[0] + j : NULL};
-    rampwise_state s = {u, v, g->p[0][j], g->s[j].p_before};
+    rampwise_state s = {u, v, g->p[0][j], g->p_before[j]};
     const size_t end = n * LANES;
     g->reached[j] = before + g->k->advance(g->c[j], &s, 0, end, LANES, g->p[1] + j, &column) / LANES;
     g->s[j] = s;
@@ -89,12 +90,12 @@ static void step_tile(group *g, size_t before, size_t n, const rampwise_history 
     double u[LANES], v[LANES], a_finite[LANES] = {0}, total_finite[LANES] = {0};
     memcpy(u, g->block.u, sizeof u);
     memcpy(v, g->block.v, sizeof v);
-    g->k->under_own_inputs(&g->block, g->count, n, g->p, g->u, g->v);
+    int lost = g->k->under_own_inputs(&g->block, g->count, n, g->p, g->u, g->v);
     if (out->a != NULL)
-        g->k->rows(g->acceleration, g->count, n, g->p, g->u, g->v, g->a, a_finite);
+        lost |= g->k->rows(g->acceleration, g->count, n, g->p, g->u, g->v, g->a, a_finite);
     if (out->total != NULL)
-        g->k->rows(g->total, g->count, n, g->p, g->u, g->v, g->t, total_finite);
-    for (size_t j = 0; j < g->count; ++j) {
+        lost |= g->k->rows(g->total, g->count, n, g->p, g->u, g->v, g->t, total_finite);
+    for (size_t j = 0; lost && j < g->count; ++j) {
         const int finite =
             isfinite(g->block.u[j]) && isfinite(g->block.v[j]) && a_finite[j] == 0 && total_finite[j] == 0;
         if (!finite && g->reached[j] > before)
@@ -147,11 +148,10 @@ void rampwise_lanes_run_(const kernels *k, size_t count, const rampwise_coeffs *
         take_samples(&g, part, p + before * in.sample, in);
         step_tile(&g, before, part, out);
         put_outputs(&g, before, part, out, to);
-        for (size_t j = 0; j < count; ++j)
-            g.s[j].p_before = g.reached[j] == n ? g.p[part - 1][j] : g.s[j].p_before;
+        memcpy(g.p_before, g.p[part - 1], sizeof g.p_before);
         memcpy(g.p[0], g.p[part], sizeof g.p[0]);
     }
     for (size_t j = 0; j < count; ++j)
         if (reached[j] == n)
-            s[j] = (rampwise_state){g.block.u[j], g.block.v[j], g.p[0][j], s[j].p_before};
+            s[j] = (rampwise_state){g.block.u[j], g.block.v[j], g.p[0][j], g.p_before[j]};
 }

@@ -1,5 +1,4 @@
-/* The layout of every public struct, pinned: callers in other languages and older builds rely on
- * it. */
+/* The layout of every public struct, pinned: callers in other languages and older builds rely on it. */
 #include <stddef.h>
 #include "rampwise.h"
 

@@ -118,8 +118,25 @@ static size_t advance(const rampwise_coeffs *c, rampwise_state *s, size_t first,
     return advance_with(0, c, s, first, end, stride, p, out);
 }
 
-/* `flight` vectors from lane `at` on; answers whether one is not finite any more. flight and
- * gathering are constants where this is inlined. */
+/* `flight` vectors from lane `at` on over one step of their one input. */
+static inline __attribute__((always_inline)) void step_together(const lane_block *block, size_t at,
+                                                                int flight, VECTOR *u, VECTOR *v,
+                                                                VECTOR before, VECTOR now, int silent)
+{
+    for (int j = 0; j < flight; ++j) {
+        const size_t lane = at + (size_t)j * WIDTH;
+        const VECTOR old = u[j];
+        u[j] = next_u(block, lane, old, v[j], before, now);
+        v[j] = next_v(block, lane, old, v[j], before, now);
+    }
+    for (int j = 0; silent && j < flight; ++j) {
+        u[j] = vector_unless_below(u[j], SPENT, mask_all());
+        v[j] = vector_unless_below(v[j], SPENT, mask_all());
+    }
+}
+
+/* Answers whether one of the vectors is not finite any more. flight and gathering are constants where this is
+   inlined. */
 static inline __attribute__((always_inline)) int one_input(lane_block *block, size_t at, int flight,
                                                            int gathering, double p_last, size_t n,
                                                            const double *p, double *largest)
@@ -136,17 +153,7 @@ static inline __attribute__((always_inline)) int one_input(lane_block *block, si
     for (size_t i = 0; i < n; ++i) {
         const VECTOR now = vector_all(p[i]);
         const int silent = is_silent(p[i]);
-        for (int j = 0; j < flight; ++j) {
-            const size_t lane = at + (size_t)j * WIDTH;
-            const VECTOR old = u[j];
-            u[j] = next_u(block, lane, old, v[j], before, now);
-            v[j] = next_v(block, lane, old, v[j], before, now);
-        }
-        if (silent & was_silent)
-            for (int j = 0; j < flight; ++j) {
-                u[j] = vector_unless_below(u[j], SPENT, mask_all());
-                v[j] = vector_unless_below(v[j], SPENT, mask_all());
-            }
+        step_together(block, at, flight, u, v, before, now, silent & was_silent);
         if (gathering)
             for (int j = 0; j < flight; ++j)
                 top[j] = vector_larger(vector_size(u[j]), top[j]);
@@ -208,17 +215,7 @@ static inline __attribute__((always_inline)) int one_stretch(lane_block *block, 
     for (size_t i = 0; i < n; ++i) {
         const VECTOR now = vector_all(p[i]);
         const int silent = is_silent(p[i]);
-        for (int j = 0; j < flight; ++j) {
-            const size_t lane = at + (size_t)j * WIDTH;
-            const VECTOR old = u[j];
-            u[j] = next_u(block, lane, old, v[j], before, now);
-            v[j] = next_v(block, lane, old, v[j], before, now);
-        }
-        if (silent & was_silent)
-            for (int j = 0; j < flight; ++j) {
-                u[j] = vector_unless_below(u[j], SPENT, mask_all());
-                v[j] = vector_unless_below(v[j], SPENT, mask_all());
-            }
+        step_together(block, at, flight, u, v, before, now, silent & was_silent);
         for (int q = 0; q < 3; ++q)
             for (int j = 0; (looked >> q & 1) && j < flight; ++j) {
                 const VECTOR z = looked_at(q, row, at + (size_t)j * WIDTH, u[j], v[j], now);
@@ -297,9 +294,9 @@ static void may_exceed(size_t lanes, size_t count, const double *high, const dou
     }
 }
 
-static inline __attribute__((always_inline)) void own_inputs(lane_block *block, size_t at, int flight,
-                                                             size_t n, double (*p)[LANES], lane_tile u_out,
-                                                             lane_tile v_out)
+static inline __attribute__((always_inline)) int own_inputs(lane_block *block, size_t at, int flight,
+                                                            size_t n, double (*p)[LANES], lane_tile u_out,
+                                                            lane_tile v_out)
 {
     VECTOR u[FLIGHT], v[FLIGHT], before[FLIGHT];
     MASK was_silent[FLIGHT];
@@ -326,25 +323,31 @@ static inline __attribute__((always_inline)) void own_inputs(lane_block *block, 
             before[j] = now;
             was_silent[j] = silent;
         }
+    VECTOR zero = vector_all(0);
     for (int j = 0; j < flight; ++j) {
         const size_t lane = at + (size_t)j * WIDTH;
         vector_store(block->u + lane, u[j]);
         vector_store(block->v + lane, v[j]);
+        zero = vector_fma(u[j], vector_all(0), vector_fma(v[j], vector_all(0), zero));
     }
+    return vector_any_nan(zero);
 }
 
-static void under_own_inputs(lane_block *block, size_t lanes, size_t n, double (*p)[LANES], lane_tile u,
-                             lane_tile v)
+static int under_own_inputs(lane_block *block, size_t lanes, size_t n, double (*p)[LANES], lane_tile u,
+                            lane_tile v)
 {
+    int lost = 0;
     for (size_t at = 0; at < lanes; at += FLIGHT * WIDTH)
-        own_inputs(block, at, FLIGHT, n, p, u, v);
+        lost |= own_inputs(block, at, FLIGHT, n, p, u, v);
+    return lost;
 }
 
 /* fma(row[0], u, fma(row[1], v, fma(row[2], p, row[3] (p - p_before)))), as row_value of row.h:
    where a lane's last entry is zero, its change is not asked. */
-static void rows(double (*row)[LANES], size_t lanes, size_t n, double (*p)[LANES], lane_tile u, lane_tile v,
-                 lane_tile out, double *finite)
+static int rows(double (*row)[LANES], size_t lanes, size_t n, double (*p)[LANES], lane_tile u, lane_tile v,
+                lane_tile out, double *finite)
 {
+    int lost = 0;
     for (size_t lane = 0; lane < lanes; lane += WIDTH) {
         VECTOR zero = vector_all(0);
         const VECTOR from_u = vector_load(row[0] + lane), from_v = vector_load(row[1] + lane);
@@ -360,7 +363,9 @@ static void rows(double (*row)[LANES], size_t lanes, size_t n, double (*p)[LANES
             zero = vector_fma(value, vector_all(0), zero);
         }
         vector_store(finite + lane, zero);
+        lost |= vector_any_nan(zero);
     }
+    return lost;
 }
 
 static void gather(const double *from, size_t stride, size_t count, size_t n, double (*tile)[LANES])

@@ -53,14 +53,14 @@ typedef struct kernels {
                        const double *largest_p, const double *largest_change, uint32_t *flags);
 
     /* Each lane under its own input, p[1] to p[n], n <= TILE; p[0] is the sample before. The states
-       after each sample go to u and v. */
-    void (*under_own_inputs)(lane_block *block, size_t lanes, size_t n, double (*p)[LANES], lane_tile u,
-                             lane_tile v);
+       after each sample go to u and v. Answers whether a lane is not finite any more. */
+    int (*under_own_inputs)(lane_block *block, size_t lanes, size_t n, double (*p)[LANES], lane_tile u,
+                            lane_tile v);
 
     /* Each lane's row of the coefficients (row.h) over such a tile. `finite` becomes 0 in lanes
-       whose values are all finite, NaN in others. */
-    void (*rows)(double (*row)[LANES], size_t lanes, size_t n, double (*p)[LANES], lane_tile u, lane_tile v,
-                 lane_tile out, double *finite);
+       whose values are all finite, NaN in others, and it answers whether there are others. */
+    int (*rows)(double (*row)[LANES], size_t lanes, size_t n, double (*p)[LANES], lane_tile u, lane_tile v,
+                lane_tile out, double *finite);
 
     /* `count` arrays of n <= TILE values, `stride` apart, into the columns of a tile, and back. */
     void (*gather)(const double *from, size_t stride, size_t count, size_t n, double (*tile)[LANES]);

@@ -32,3 +32,18 @@ rampwise_coeffs made(rampwise_system sys, double dt, int kind)
     ck_assert_int_eq(rampwise_coeffs_make(&c, &sys, dt, kinds[kind][0], kinds[kind][1]), RAMPWISE_OK);
     return c;
 }
+
+const int sets[SETS] = {RAMPWISE_BASELINE, RAMPWISE_AVX2, RAMPWISE_AVX512, RAMPWISE_NEON};
+
+int runs_here(int set)
+{
+    const int runs = rampwise_instructions(set) == set;
+#ifdef RAMPWISE_ALL_INSTRUCTIONS
+#if defined(__x86_64__)
+    ck_assert(runs || set == RAMPWISE_NEON);
+#elif defined(__aarch64__)
+    ck_assert(runs || set == RAMPWISE_AVX2 || set == RAMPWISE_AVX512);
+#endif
+#endif
+    return runs;
+}

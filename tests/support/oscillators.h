@@ -20,4 +20,10 @@ rampwise_coeffs made(rampwise_system sys, double dt, int kind);
 /* Whether the kind is allowed for the system. */
 int kind_allowed(const rampwise_system *sys, int kind);
 
+/* Every set of instructions there is, and whether this processor runs it. Built with
+   RAMPWISE_ALL_INSTRUCTIONS, a set that its platform should have must run. */
+enum { SETS = 4 };
+extern const int sets[SETS];
+int runs_here(int set);
+
 #endif

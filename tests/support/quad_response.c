@@ -137,8 +137,12 @@ static int pieces_for(const rampwise_coeffs *c)
 
 static motion at_start(const rampwise_coeffs *c, double u0, double v0, double p0)
 {
-    motion m = {(quad)c->system.damper / (quad)c->system.mass, (quad)c->system.stiffness / (quad)c->system.mass,
-                u0, v0, 0, 0};
+    motion m = {(quad)c->system.damper / (quad)c->system.mass,
+                (quad)c->system.stiffness / (quad)c->system.mass,
+                u0,
+                v0,
+                0,
+                0};
     if (c->input == RAMPWISE_BASE_DISPLACEMENT)
         m.y -= (quad)p0;
     return m;
@@ -156,8 +160,8 @@ static quad first_value(const rampwise_coeffs *c, const motion *m, double p0, in
 }
 
 /* To p[n - 1] where peaks are wanted, else to `time`, whose value is returned. */
-static quad go(const rampwise_coeffs *c, double u0, double v0, size_t n, const double *p, int quantity, quad time,
-               quad_peaks *peaks)
+static quad go(const rampwise_coeffs *c, double u0, double v0, size_t n, const double *p, int quantity,
+               quad time, quad_peaks *peaks)
 {
     const int pieces = pieces_for(c);
     const quad length = (quad)1 / pieces;
@@ -197,7 +201,8 @@ void quad_response(const rampwise_coeffs *c, double u0, double v0, size_t n, con
     (void)go(c, u0, v0, n, p, quantity, 0, peaks);
 }
 
-quad quad_value(const rampwise_coeffs *c, double u0, double v0, size_t n, const double *p, int quantity, quad time)
+quad quad_value(const rampwise_coeffs *c, double u0, double v0, size_t n, const double *p, int quantity,
+                quad time)
 {
     return go(c, u0, v0, n, p, quantity, time, NULL);
 }

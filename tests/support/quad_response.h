@@ -24,6 +24,7 @@ void quad_response(const rampwise_coeffs *c, double u0, double v0, size_t n, con
                    quad_peaks *peaks);
 
 /* The quantity at a time (in steps) of the same response. */
-quad quad_value(const rampwise_coeffs *c, double u0, double v0, size_t n, const double *p, int quantity, quad time);
+quad quad_value(const rampwise_coeffs *c, double u0, double v0, size_t n, const double *p, int quantity,
+                quad time);
 
 #endif

@@ -7,21 +7,7 @@
 #include "../support/oscillators.h"
 #include "../support/suite.h"
 
-enum { MOST = 70, N = 300, SETS = 4 };
-static const int sets[SETS] = {RAMPWISE_BASELINE, RAMPWISE_AVX2, RAMPWISE_AVX512, RAMPWISE_NEON};
-
-static int runs_here(int set)
-{
-    const int runs = rampwise_instructions(set) == set;
-#ifdef RAMPWISE_ALL_INSTRUCTIONS
-#if defined(__x86_64__)
-    ck_assert(runs || set == RAMPWISE_NEON);
-#elif defined(__aarch64__)
-    ck_assert(runs || set == RAMPWISE_AVX2 || set == RAMPWISE_AVX512);
-#endif
-#endif
-    return runs;
-}
+enum { MOST = 70, N = 300 };
 
 /* n oscillators of all regimes and lengths of period under one kind of input. */
 static void make_oscillators(rampwise_coeffs *c, int n, int kind)

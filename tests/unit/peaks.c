@@ -11,23 +11,9 @@
 #define ROUNDING (0.5 * DBL_EPSILON) /* largest relative error of one rounding */
 
 /* N is more than one of the segments in which records are gone through. */
-enum { MOST = 70, N = 530, SETS = 4 };
-static const int sets[SETS] = {RAMPWISE_BASELINE, RAMPWISE_AVX2, RAMPWISE_AVX512, RAMPWISE_NEON};
+enum { MOST = 70, N = 530 };
 static const int all[3] = {RAMPWISE_TOTAL_ACCELERATION, RAMPWISE_DISPLACEMENT, RAMPWISE_VELOCITY};
 static const unsigned times[3] = {0, RAMPWISE_RESIDUAL, RAMPWISE_MAXIMAX};
-
-static int runs_here(int set)
-{
-    const int runs = rampwise_instructions(set) == set;
-#ifdef RAMPWISE_ALL_INSTRUCTIONS
-#if defined(__x86_64__)
-    ck_assert(runs || set == RAMPWISE_NEON);
-#elif defined(__aarch64__)
-    ck_assert(runs || set == RAMPWISE_AVX2 || set == RAMPWISE_AVX512);
-#endif
-#endif
-    return runs;
-}
 
 /* n oscillators of all regimes that stay finite, and of all lengths of period, under one kind of input. */
 static void make_oscillators(rampwise_coeffs *c, int n, int kind)
