@@ -78,10 +78,10 @@ void rampwise_group_start_(peaks_group *g, const rampwise_state *s, double p0)
     }
 }
 
-/* |p - before|, finite where that is beyond the range: it meets factors of zero. */
-static double change_of(double before, double p)
+/* A change of the input, finite where it is beyond the range: it meets factors of zero. */
+static double in_range(double change)
 {
-    return fmin(fabs(p - before), DBL_MAX);
+    return change < DBL_MAX ? change : DBL_MAX;
 }
 
 void rampwise_segment_make_(segment *along, uint64_t sample, double p_before, double p_last, size_t n,
@@ -96,13 +96,13 @@ void rampwise_segment_make_(segment *along, uint64_t sample, double p_before, do
     for (size_t i = 0; i < n; i += STRETCH) {
         double largest = fabs(before), change = 0;
         for (size_t j = i; j < n && j < i + STRETCH; ++j) {
-            const double size = fabs(p[j]), apart = change_of(before, p[j]);
+            const double size = fabs(p[j]), apart = fabs(p[j] - before);
             largest = size > largest ? size : largest;
             change = apart > change ? apart : change;
             before = p[j];
         }
         along->largest_p[i / STRETCH] = largest;
-        along->largest_change[i / STRETCH] = change;
+        along->largest_change[i / STRETCH] = in_range(change);
     }
 }
 
@@ -130,7 +130,7 @@ static void look_into_step(const extremes *x, int inside, const rampwise_state *
                            double z, double z_next, uint64_t sample, rampwise_peak *peak)
 {
     const double excess = x->constant + x->from_p * fmax(fabs(s->p), fabs(next->p)) +
-                          x->from_change * change_of(s->p, next->p) +
+                          x->from_change * in_range(fabs(next->p - s->p)) +
                           x->from_size * fmax(fabs(z), fabs(z_next));
     if (x->jumps)
         note_value(peak, rampwise_extremes_begin_(x, s, next->p), sample, 0);

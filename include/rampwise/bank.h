@@ -80,7 +80,8 @@ typedef struct rampwise_bank_wanted {
 RAMPWISE_API void rampwise_bank_wanted_init(rampwise_bank_wanted *wanted);
 
 /* The next n samples, one step each, for all; n = 1 is a live step. wanted may be NULL.
-   RAMPWISE_ERROR_MISSING, _SAMPLE (with the index in bad), _COUNT (a chosen number is N or more):
+   RAMPWISE_ERROR_MISSING, _SAMPLE (with the index in bad), _COUNT (a chosen number is N or more, or wanted was
+   not begun with its init):
    nothing has changed. RAMPWISE_ERROR_OVERFLOW: an oscillator was stopped or a history ended during
    this call, the earliest at sample bad; all others are complete. bad may be NULL. */
 RAMPWISE_API int rampwise_bank_run(rampwise_bank *bank, size_t n, const double *p,

@@ -11,7 +11,7 @@ enum {
     RAMPWISE_FASTEST = 41,  /* the best that this processor has */
     RAMPWISE_BASELINE = 42, /* what every processor of the platform has */
     RAMPWISE_AVX2 = 43,     /* AVX2 with fused multiply-add */
-    RAMPWISE_AVX512 = 44,   /* AVX-512F and VL */
+    RAMPWISE_AVX512 = 44,   /* AVX-512F, VL and DQ */
     RAMPWISE_NEON = 45      /* AArch64 Advanced SIMD */
 };
 

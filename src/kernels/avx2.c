@@ -73,6 +73,12 @@ static inline __m256d vector_larger(__m256d a, __m256d b)
     return _mm256_max_pd(a, b);
 }
 
+/* The larger of |a| and top, which is not negative */
+static inline __m256d vector_larger_size(__m256d a, __m256d top)
+{
+    return vector_larger(vector_size(a), top);
+}
+
 static inline __m256d vector_smaller(__m256d a, __m256d b)
 {
     return _mm256_min_pd(a, b);

@@ -1,4 +1,4 @@
-/* Eight lanes a vector: x86-64 with AVX-512F and VL. */
+/* Eight lanes a vector: x86-64 with AVX-512F, VL and DQ. */
 #include "sets.h"
 
 #ifdef RAMPWISE_BUILD_X86
@@ -10,10 +10,11 @@
 #include <string.h>
 
 #ifdef __clang__
-#pragma clang attribute push(__attribute__((target("avx512f,avx512vl,avx2,fma"))), apply_to = function)
+#pragma clang attribute push(__attribute__((target("avx512f,avx512vl,avx512dq,avx2,fma"))),                  \
+                             apply_to = function)
 #else
 #pragma GCC push_options
-#pragma GCC target("avx512f,avx512vl,avx2,fma")
+#pragma GCC target("avx512f,avx512vl,avx512dq,avx2,fma")
 #endif
 
 #define WIDTH 8
@@ -71,6 +72,12 @@ static inline __m512d vector_size(__m512d a)
 static inline __m512d vector_larger(__m512d a, __m512d b)
 {
     return _mm512_max_pd(a, b);
+}
+
+/* The larger of |a| and top, which is not negative: the larger in size, its sign cleared, in one operation */
+static inline __m512d vector_larger_size(__m512d a, __m512d top)
+{
+    return _mm512_range_pd(a, top, 0x0b);
 }
 
 static inline __m512d vector_smaller(__m512d a, __m512d b)

@@ -59,6 +59,12 @@ static inline double vector_larger(double a, double b)
     return a > b ? a : b;
 }
 
+/* The larger of |a| and top, which is not negative */
+static inline double vector_larger_size(double a, double top)
+{
+    return vector_larger(vector_size(a), top);
+}
+
 static inline double vector_smaller(double a, double b)
 {
     return a < b ? a : b;

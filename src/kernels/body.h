@@ -156,7 +156,7 @@ static inline __attribute__((always_inline)) int one_input(lane_block *block, si
         step_together(block, at, flight, u, v, before, now, silent & was_silent);
         if (gathering)
             for (int j = 0; j < flight; ++j)
-                top[j] = vector_larger(vector_size(u[j]), top[j]);
+                top[j] = vector_larger_size(u[j], top[j]);
         was_silent = silent;
         before = now;
     }

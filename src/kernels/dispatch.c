@@ -14,7 +14,8 @@ static int runs_avx2(void)
 
 static int runs_avx512(void)
 {
-    return runs_avx2() && __builtin_cpu_supports("avx512f") && __builtin_cpu_supports("avx512vl");
+    return runs_avx2() && __builtin_cpu_supports("avx512f") && __builtin_cpu_supports("avx512vl") &&
+           __builtin_cpu_supports("avx512dq");
 }
 #endif
 

@@ -67,6 +67,12 @@ static inline float64x2_t vector_larger(float64x2_t a, float64x2_t b)
     return vmaxq_f64(a, b);
 }
 
+/* The larger of |a| and top, which is not negative */
+static inline float64x2_t vector_larger_size(float64x2_t a, float64x2_t top)
+{
+    return vector_larger(vector_size(a), top);
+}
+
 static inline float64x2_t vector_smaller(float64x2_t a, float64x2_t b)
 {
     return vminq_f64(a, b);
