@@ -80,6 +80,29 @@ static void against_gsl(readings *all)
         "GSL rk8pd at 1e-10 / bank, T/h = %.0f alone", CASE_LONGEST / h);
 }
 
+/* The set that RAMPWISE_FASTEST is here, by the name of its limits. */
+static const char *fastest_set(void)
+{
+    switch (rampwise_instructions(RAMPWISE_FASTEST)) {
+    case RAMPWISE_AVX512:
+        return "AVX-512";
+    case RAMPWISE_AVX2:
+        return "AVX2";
+    case RAMPWISE_NEON:
+        return "NEON";
+    default:
+        return "scalar";
+    }
+}
+
+static void of_spectra(readings *all)
+{
+    add(all, "spectrum_of_limit", share_of_limit(all, "spectrum_samples", fastest_set()), AT_LEAST, 0.85,
+        "spectrum of 200 periods at samples: rate / limit, %s", fastest_set());
+    add(all, "spectrum_between_of_samples", times(all, "spectrum_between", "spectrum_samples"), AT_MOST, 1.25,
+        "the same between samples / at samples");
+}
+
 static void against_others(readings *all)
 {
     add(all, "lfilter_of_bank_avx512", times(all, "scipy_lfilter", "bank_1000_avx512_largest"), AT_LEAST, 30,
@@ -114,6 +137,7 @@ size_t readings_make(reading *r, const task_list *list)
     against_limits(&all);
     against_gsl(&all);
     against_others(&all);
+    of_spectra(&all);
     of_size(&all);
     return all.count;
 }
