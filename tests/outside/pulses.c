@@ -193,7 +193,7 @@ static void check_random_pulses(const char *name, load (*make)(double r), closed
 {
     gsl_rng *const random = random_make(name);
     double worst = 0;
-    for (int i = 0; i < 3000; ++i) {
+    for (int i = 0; i < 1500; ++i) {
         const int steps = 1 + (int)gsl_rng_uniform_int(random, 200);
         worst = fmax(worst, check_pulse(make(random_log(random, 0.02, 10)), steps, residual));
     }
@@ -715,7 +715,7 @@ START_TEST(residual_instants)
 {
     gsl_rng *const random = random_make("residual_instants");
     double p[50], worst = 0;
-    for (int i = 0; i < 6000; ++i) {
+    for (int i = 0; i < 2000; ++i) {
         const size_t n = 2 + gsl_rng_uniform_int(random, 48);
         /* omega a power of two: the square, and its root, are exact, so that both calls see one oscillator. */
         const double omega = ldexp(1, (int)gsl_rng_uniform_int(random, 5));
