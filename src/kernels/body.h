@@ -129,10 +129,11 @@ static inline __attribute__((always_inline)) void step_together(const lane_block
         u[j] = next_u(block, lane, old, v[j], before, now);
         v[j] = next_v(block, lane, old, v[j], before, now);
     }
-    for (int j = 0; silent && j < flight; ++j) {
-        u[j] = vector_unless_below(u[j], SPENT, mask_all());
-        v[j] = vector_unless_below(v[j], SPENT, mask_all());
-    }
+    if (__builtin_expect(silent, 0))
+        for (int j = 0; j < flight; ++j) {
+            u[j] = vector_unless_below(u[j], SPENT, mask_all());
+            v[j] = vector_unless_below(v[j], SPENT, mask_all());
+        }
 }
 
 /* Answers whether one of the vectors is not finite any more. flight and gathering are constants where this is
