@@ -63,9 +63,9 @@ static void read_processor(machine *m)
     fclose(f);
 }
 
-static const char *set_name(int instructions)
+const char *machine_best_set(void)
 {
-    switch (instructions) {
+    switch (rampwise_instructions(RAMPWISE_FASTEST)) {
     case RAMPWISE_AVX512:
         return "AVX-512";
     case RAMPWISE_AVX2:
@@ -82,5 +82,5 @@ void machine_describe(machine *m, int core)
     *m = (machine){.processor = "unknown", .sets = "unknown", .core = core};
     read_processor(m);
     m->processors = (int)sysconf(_SC_NPROCESSORS_ONLN);
-    m->best_set = set_name(rampwise_instructions(RAMPWISE_FASTEST));
+    m->best_set = machine_best_set();
 }

@@ -13,6 +13,9 @@ typedef struct machine {
     const char *best_set; /* that the library takes */
 } machine;
 
+/* The name of the set of instructions that RAMPWISE_FASTEST is here. */
+const char *machine_best_set(void);
+
 void machine_describe(machine *m, int core);
 
 #endif

@@ -3,6 +3,7 @@
 #include <math.h>
 #include <stdarg.h>
 #include <stdio.h>
+#include "machine.h"
 #include "machine_limits.h"
 
 typedef struct readings {
@@ -80,25 +81,10 @@ static void against_gsl(readings *all)
         "GSL rk8pd at 1e-10 / bank, T/h = %.0f alone", CASE_LONGEST / h);
 }
 
-/* The set that RAMPWISE_FASTEST is here, by the name of its limits. */
-static const char *fastest_set(void)
-{
-    switch (rampwise_instructions(RAMPWISE_FASTEST)) {
-    case RAMPWISE_AVX512:
-        return "AVX-512";
-    case RAMPWISE_AVX2:
-        return "AVX2";
-    case RAMPWISE_NEON:
-        return "NEON";
-    default:
-        return "scalar";
-    }
-}
-
 static void of_spectra(readings *all)
 {
-    add(all, "spectrum_of_limit", share_of_limit(all, "spectrum_samples", fastest_set()), AT_LEAST, 0.85,
-        "spectrum of 200 periods at samples: rate / limit, %s", fastest_set());
+    add(all, "spectrum_of_limit", share_of_limit(all, "spectrum_samples", machine_best_set()), AT_LEAST, 0.85,
+        "spectrum of 200 periods at samples: rate / limit, %s", machine_best_set());
     add(all, "spectrum_between_of_samples", times(all, "spectrum_between", "spectrum_samples"), AT_MOST, 1.25,
         "the same between samples / at samples");
 }

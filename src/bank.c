@@ -32,11 +32,6 @@ enum { SEGMENT = 2048 };
 static const size_t header_size =
     (sizeof(struct rampwise_bank) + LANE_ALIGNMENT - 1) / LANE_ALIGNMENT * LANE_ALIGNMENT;
 
-static size_t blocks_of(size_t n)
-{
-    return n / LANES + (n % LANES != 0);
-}
-
 static size_t lanes_in(const rampwise_bank *bank, size_t b)
 {
     return bank->n - b * LANES < LANES ? bank->n - b * LANES : LANES;
@@ -69,10 +64,7 @@ static void release(rampwise_bank *bank, size_t i)
 
 size_t rampwise_bank_size(size_t n)
 {
-    const size_t blocks = blocks_of(n);
-    if (n == 0 || blocks > (SIZE_MAX - header_size) / sizeof(block))
-        return 0;
-    return header_size + blocks * sizeof(block);
+    return lane_groups_size(n, header_size, sizeof(block));
 }
 
 size_t rampwise_bank_alignment(void)
@@ -299,7 +291,7 @@ static size_t step_blocks(rampwise_bank *bank, size_t n, const double *p, double
     size_t earliest = n;
     for (size_t done = 0, part = 0; done < n; done += part) {
         part = n - done < SEGMENT ? n - done : SEGMENT;
-        for (size_t b = 0; b < blocks_of(bank->n); ++b) {
+        for (size_t b = 0; b < lane_groups(bank->n); ++b) {
             const size_t stop = step_block(bank, &bank->blocks[b], lanes_in(bank, b), part, p + done,
                                            largest != NULL ? largest + b * LANES : NULL);
             if (stop < part && done + stop < earliest)

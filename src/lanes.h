@@ -5,6 +5,20 @@
 
 #include "kernels/kernels.h"
 
+/* Objects of many oscillators are a header and groups of LANES after it. */
+static inline size_t lane_groups(size_t n)
+{
+    return n / LANES + (n % LANES != 0);
+}
+
+/* The bytes that takes; 0 where n is 0 or they are too many. Sizes are multiples of LANE_ALIGNMENT. */
+static inline size_t lane_groups_size(size_t n, size_t header, size_t group)
+{
+    if (n == 0 || lane_groups(n) > (SIZE_MAX - header) / group)
+        return 0;
+    return header + lane_groups(n) * group;
+}
+
 /* Where value i of lane j is: at j lane + i sample, from the first lane's first value. */
 typedef struct layout {
     size_t lane, sample;

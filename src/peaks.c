@@ -20,20 +20,14 @@ struct rampwise_peaks {
     peaks_group *groups;
 };
 
+_Static_assert(sizeof(peaks_group) % LANE_ALIGNMENT == 0, "groups follow each other aligned");
+
 static const size_t header_size =
     (sizeof(struct rampwise_peaks) + LANE_ALIGNMENT - 1) / LANE_ALIGNMENT * LANE_ALIGNMENT;
 
-static size_t groups_of(size_t n)
-{
-    return n / LANES + (n % LANES != 0);
-}
-
 size_t rampwise_peaks_size(size_t n)
 {
-    const size_t groups = groups_of(n);
-    if (n == 0 || groups > (SIZE_MAX - header_size) / sizeof(peaks_group))
-        return 0;
-    return header_size + groups * sizeof(peaks_group);
+    return lane_groups_size(n, header_size, sizeof(peaks_group));
 }
 
 size_t rampwise_peaks_alignment(void)
@@ -89,7 +83,7 @@ int rampwise_peaks_init(void *memory, size_t bytes, size_t n, const rampwise_coe
     made->quantity_count = quantity_count;
     memcpy(made->quantity, quantity, quantity_count * sizeof *quantity);
     made->groups = (peaks_group *)((char *)memory + header_size);
-    for (size_t g = 0; g < groups_of(n); ++g) {
+    for (size_t g = 0; g < lane_groups(n); ++g) {
         const size_t left = n - g * LANES;
         rampwise_group_make_(&made->groups[g], left < LANES ? left : LANES, c + g * LANES, quantity_count,
                              quantity, flags);
@@ -125,7 +119,7 @@ static void begin(rampwise_peaks *peaks, const rampwise_state *s, double p0)
     peaks->p_before = s != NULL ? s[0].p_before : p0;
     peaks->sample = 0;
     peaks->started = 1;
-    for (size_t g = 0; g < groups_of(peaks->n); ++g)
+    for (size_t g = 0; g < lane_groups(peaks->n); ++g)
         rampwise_group_start_(&peaks->groups[g], s != NULL ? s + g * LANES : NULL, peaks->p);
 }
 
@@ -159,7 +153,7 @@ int rampwise_peaks_run(rampwise_peaks *peaks, size_t n, const double *p, size_t 
         const size_t part = n - done < SEGMENT ? n - done : SEGMENT;
         segment along;
         rampwise_segment_make_(&along, peaks->sample, peaks->p_before, peaks->p, part, p + done);
-        for (size_t g = 0; g < groups_of(peaks->n); ++g)
+        for (size_t g = 0; g < lane_groups(peaks->n); ++g)
             rampwise_group_run_(peaks->k, &peaks->groups[g], &along);
         peaks->p_before = part > 1 ? p[done + part - 2] : peaks->p;
         peaks->p = p[done + part - 1];

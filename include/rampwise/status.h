@@ -3,9 +3,9 @@
    Functions that can fail return RAMPWISE_OK (0) or one of the negative numbers below. The numbers
    are pinned: they never change their meaning, and new ones go into the gaps.
 
-   A call that reports an error has changed nothing: not the state, not the outputs. There is one
-   exception, RAMPWISE_ERROR_OVERFLOW from a record: there the samples before the one at fault are
-   valid and the state is the last finite one. */
+   A call that reports an error has changed nothing: not the state, not the outputs. There is one exception,
+   RAMPWISE_ERROR_OVERFLOW from a record, channels or a bank: there the samples before the one at fault are
+   valid, the state is the last finite one, and other channels and oscillators have gone on. */
 #ifndef RAMPWISE_STATUS_H
 #define RAMPWISE_STATUS_H
 

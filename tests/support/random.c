@@ -42,3 +42,10 @@ void random_whisper(gsl_rng *r, double *x, size_t n)
                    ? 0
                    : ldexp(random_between(r, -1, 1), -908 + (int)gsl_rng_uniform_int(r, 16));
 }
+
+void random_record(gsl_rng *r, double *p, int n)
+{
+    random_fill(r, p, (size_t)n);
+    for (int i = n / 3; i < n / 2; ++i)
+        p[i] = 0;
+}

@@ -11,6 +11,9 @@ double random_log(gsl_rng *r, double low, double high); /* evenly spread logarit
 double random_sign(gsl_rng *r);
 void random_fill(gsl_rng *r, double *x, size_t n); /* in [-1, 1) */
 
+/* A record in [-1, 1) with a pause of exact zeros from a third to a half, so that silence is met. */
+void random_record(gsl_rng *r, double *p, int n);
+
 /* Samples around the limit of silence, 2^-900, zeros among them. */
 void random_whisper(gsl_rng *r, double *x, size_t n);
 

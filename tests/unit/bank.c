@@ -20,13 +20,6 @@ static void make_oscillators(rampwise_coeffs *c, int n, int kind)
     }
 }
 
-static void make_record(gsl_rng *r, double *p, int n)
-{
-    random_fill(r, p, (size_t)n);
-    for (int i = n / 3; i < n / 2; ++i)
-        p[i] = 0;
-}
-
 static rampwise_bank *make_bank(int n, const rampwise_coeffs *c, int set)
 {
     rampwise_bank *bank = NULL;
@@ -68,7 +61,7 @@ START_TEST(every_set_and_tail)
     gsl_rng *const r = random_make("every_set_and_tail");
     rampwise_coeffs c[MOST];
     double p[N + 1], largest[MOST + 1], expected[MOST];
-    make_record(r, p, N + 1);
+    random_record(r, p, N + 1);
     for (int i = 0; i < SETS; ++i)
         for (int n = 1; n <= MOST && runs_here(sets[i]); ++n) {
             rampwise_state s[MOST];
@@ -136,7 +129,7 @@ START_TEST(long_record)
     gsl_rng *const r = random_make("long_record");
     rampwise_coeffs c[MOST];
     rampwise_state s[MOST];
-    make_record(r, p, LONG);
+    random_record(r, p, LONG);
     make_oscillators(c, MOST, 2);
     rampwise_bank *const bank = make_bank(MOST, c, rampwise_instructions(RAMPWISE_FASTEST));
     for (int j = 0; j < MOST; ++j) {
@@ -157,7 +150,7 @@ START_TEST(histories)
     rampwise_coeffs c[MOST];
     double p[N];
     size_t chosen[MOST];
-    make_record(r, p, N);
+    random_record(r, p, N);
     for (int i = 0; i < SETS * KINDS; ++i) {
         const int set = sets[i % SETS], n = 41;
         if (!runs_here(set))
@@ -198,7 +191,7 @@ START_TEST(callers_memory)
     rampwise_state s[COUNT];
     double p[N];
     make_oscillators(c, COUNT, 0);
-    make_record(r, p, N);
+    random_record(r, p, N);
     for (int j = 0; j < COUNT; ++j) {
         s[j] = (rampwise_state){0, 0, 0, 0};
         ck_assert_int_eq(rampwise_run(&c[j], &s[j], N, p, NULL, NULL), RAMPWISE_OK);
@@ -228,7 +221,7 @@ START_TEST(set_and_retune)
     rampwise_state s[COUNT];
     double p[N];
     make_oscillators(c, COUNT, 2);
-    make_record(r, p, N);
+    random_record(r, p, N);
     rampwise_bank *const bank = make_bank(COUNT, c, rampwise_instructions(RAMPWISE_FASTEST));
     for (int j = 0; j < COUNT; ++j)
         s[j] = (rampwise_state){0.1 * j, -0.2 * j, 3, 4};
@@ -256,7 +249,7 @@ START_TEST(overflow)
     gsl_rng *const r = random_make("overflow");
     static double o[COUNT * N];
     double p[N], largest[COUNT];
-    make_record(r, p, N);
+    random_record(r, p, N);
     for (int i = 0; i < SETS; ++i) {
         rampwise_coeffs c[COUNT];
         rampwise_state s[COUNT];

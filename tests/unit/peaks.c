@@ -26,13 +26,6 @@ static void make_oscillators(rampwise_coeffs *c, int n, int kind)
     }
 }
 
-static void make_record(gsl_rng *r, double *p, int n)
-{
-    random_fill(r, p, (size_t)n);
-    for (int i = n / 3; i < n / 2; ++i)
-        p[i] = 0;
-}
-
 static rampwise_peaks *make_peaks(int n, const rampwise_coeffs *c, int count, const int *quantity,
                                   unsigned flags, int set)
 {
@@ -104,7 +97,7 @@ static void check_every_set(gsl_rng *r, int kind, unsigned flags)
     static rampwise_peak want[MOST][3][3];
     rampwise_coeffs c[MOST];
     double p[N];
-    make_record(r, p, N);
+    random_record(r, p, N);
     make_oscillators(c, MOST, kind);
     for (int j = 0; j < MOST; ++j)
         for (int q = 0; q < 3; ++q)
@@ -481,7 +474,7 @@ START_TEST(overflow)
 {
     gsl_rng *const r = random_make("overflow");
     double p[2 * N];
-    make_record(r, p, 2 * N);
+    random_record(r, p, 2 * N);
     for (int i = 0; i < SETS; ++i) {
         static rampwise_peak want[40][3][3];
         rampwise_coeffs c[40];
@@ -524,7 +517,7 @@ START_TEST(callers_memory)
     rampwise_coeffs c[MOST];
     double p[N];
     make_oscillators(c, MOST, 2);
-    make_record(r, p, N);
+    random_record(r, p, N);
     for (int j = 0; j < MOST; ++j)
         for (int q = 0; q < 3; ++q)
             alone(&c[j], N, p, all[q], 0, want[j][q]);
@@ -560,7 +553,7 @@ START_TEST(bad_samples_change_nothing)
     rampwise_coeffs c[40];
     rampwise_peak ignored[40];
     double p[N], chunk[CHUNK];
-    make_record(r, p, N);
+    random_record(r, p, N);
     make_oscillators(c, 40, 0);
     for (int j = 0; j < 40; ++j)
         for (int q = 0; q < 3; ++q)

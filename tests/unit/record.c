@@ -38,13 +38,6 @@ static rampwise_history shifted(const rampwise_history *h, int by)
     return (rampwise_history){h->u + by, h->v + by, h->a + by, h->total + by};
 }
 
-static void fill(gsl_rng *r, double *p, int n)
-{
-    random_fill(r, p, (size_t)n);
-    for (int i = n / 3; i < n / 2; ++i) /* a pause, so that silence is met */
-        p[i] = 0;
-}
-
 /* Every kind and regime: inline steps and motion.h = one call = calls of any size, 0 and 1 included
    = rampwise_solve. */
 START_TEST(same_bits_however_cut)
@@ -60,7 +53,7 @@ START_TEST(same_bits_however_cut)
         outputs_make(&whole);
         outputs_make(&cut);
         outputs_make(&solved);
-        fill(r, p, N);
+        random_record(r, p, N);
         rampwise_state a, b, s;
         rampwise_start(&a, 0.1, -0.2, p[0]);
         b = s = a;
@@ -121,7 +114,7 @@ START_TEST(each_output_in_place)
     double p[N];
     outputs apart;
     outputs_make(&apart);
-    fill(r, p, N);
+    random_record(r, p, N);
     ck_assert_int_eq(rampwise_solve(&c, 0, 0, N, p, &apart.history, NULL), RAMPWISE_OK);
     for (int i = 0; i < 4; ++i) {
         double in_place[N], t[N], t_last = -1;
@@ -302,7 +295,7 @@ START_TEST(regular_times)
         outputs run, at;
         outputs_make(&run);
         outputs_make(&at);
-        fill(r, p, N);
+        random_record(r, p, N);
         for (int j = 0; j < N; ++j)
             t[j] = 100 + j * dt;
         rampwise_state a = {0, 0, 0, 0}, b = a;
@@ -336,7 +329,7 @@ START_TEST(irregular_times)
         double p[N], t[N], t_last = 0;
         outputs o;
         outputs_make(&o);
-        fill(r, p, N);
+        random_record(r, p, N);
         for (int j = 0; j < N; ++j)
             t[j] = (j > 0 ? t[j - 1] : 0) + 0x1p-10 * (double)(1 + gsl_rng_uniform_int(r, 13));
         rampwise_state s = {0, 0, 0, 0}, all = s;
