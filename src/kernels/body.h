@@ -172,7 +172,14 @@ static inline __attribute__((always_inline)) int one_input(lane_block *block, si
     return vector_any_nan(zero);
 }
 
-/* As many vectors in flight as there are left, each number with code of its own. */
+/* Vectors in flight next, where the lanes from `at` on are left: so that the last ones are not few. */
+static inline size_t next_flight(size_t lanes, size_t at)
+{
+    const size_t left = (lanes - at + WIDTH - 1) / WIDTH, passes = (left + FLIGHT - 1) / FLIGHT;
+    return (left + passes - 1) / passes;
+}
+
+/* Each number of vectors in flight has code of its own. */
 static int under_one_input(lane_block *block, size_t lanes, double p_last, size_t n, const double *p,
                            double *largest)
 {
@@ -180,9 +187,9 @@ static int under_one_input(lane_block *block, size_t lanes, double p_last, size_
     (largest != NULL ? one_input(block, at, flight, 1, p_last, n, p, largest)                                \
                      : one_input(block, at, flight, 0, p_last, n, p, NULL))
     int lost = 0;
-    for (size_t at = 0; at < lanes; at += FLIGHT * WIDTH) {
-        const size_t left = (lanes - at + WIDTH - 1) / WIDTH;
-        lost |= left == 1 ? FLY(1) : left == 2 ? FLY(2) : left == 3 ? FLY(3) : FLY(4);
+    for (size_t at = 0, flight = 0; at < lanes; at += flight * WIDTH) {
+        flight = next_flight(lanes, at);
+        lost |= flight == 1 ? FLY(1) : flight == 2 ? FLY(2) : flight == 3 ? FLY(3) : FLY(4);
     }
 #undef FLY
     return lost;
@@ -198,12 +205,30 @@ static inline VECTOR looked_at(int q, double (*row)[LANES], size_t lane, VECTOR 
         vector_fma(vector_load(row[1] + lane), v, vector_product(vector_load(row[2] + lane), p)));
 }
 
+/* The greatest and least of what is looked at, so far. A NaN does not count. */
+typedef struct range {
+    VECTOR top[3][FLIGHT], bottom[3][FLIGHT];
+} range;
+
+static inline __attribute__((always_inline)) void widen(range *r, unsigned looked, double (*row)[LANES],
+                                                        size_t lane, int j, VECTOR u, VECTOR v, VECTOR p)
+{
+    for (int q = 0; q < 3; ++q)
+        if (looked >> q & 1) {
+            const VECTOR z = looked_at(q, row, lane, u, v, p);
+            r->top[q][j] = vector_larger(z, r->top[q][j]);
+            r->bottom[q][j] = vector_smaller(z, r->bottom[q][j]);
+        }
+}
+
+/* Two steps of one vector after the other, so that its coefficients are fetched once for both. */
 static inline __attribute__((always_inline)) int one_stretch(lane_block *block, size_t at, int flight,
                                                              unsigned looked, double (*row)[LANES],
                                                              double p_last, size_t n, const double *p,
                                                              double (*high)[LANES], double (*low)[LANES])
 {
-    VECTOR u[FLIGHT], v[FLIGHT], top[3][FLIGHT], bottom[3][FLIGHT];
+    VECTOR u[FLIGHT], v[FLIGHT];
+    range r;
     for (int j = 0; j < flight; ++j) {
         u[j] = vector_load(block->u + at + (size_t)j * WIDTH);
         v[j] = vector_load(block->v + at + (size_t)j * WIDTH);
@@ -212,17 +237,31 @@ static inline __attribute__((always_inline)) int one_stretch(lane_block *block, 
     VECTOR before = vector_all(p_last);
     for (int q = 0; q < 3; ++q)
         for (int j = 0; (looked >> q & 1) && j < flight; ++j)
-            top[q][j] = bottom[q][j] = looked_at(q, row, at + (size_t)j * WIDTH, u[j], v[j], before);
-    for (size_t i = 0; i < n; ++i) {
+            r.top[q][j] = r.bottom[q][j] = looked_at(q, row, at + (size_t)j * WIDTH, u[j], v[j], before);
+    size_t i = 0;
+    for (; i + 2 <= n; i += 2) {
+        const VECTOR now = vector_all(p[i]), next = vector_all(p[i + 1]);
+        const int silent = is_silent(p[i]), silent_next = is_silent(p[i + 1]);
+        if (__builtin_expect(silent & (was_silent | silent_next), 0))
+            break;
+        for (int j = 0; j < flight; ++j) {
+            const size_t lane = at + (size_t)j * WIDTH;
+            const VECTOR u1 = next_u(block, lane, u[j], v[j], before, now);
+            const VECTOR v1 = next_v(block, lane, u[j], v[j], before, now);
+            u[j] = next_u(block, lane, u1, v1, now, next);
+            v[j] = next_v(block, lane, u1, v1, now, next);
+            widen(&r, looked, row, lane, j, u1, v1, now);
+            widen(&r, looked, row, lane, j, u[j], v[j], next);
+        }
+        was_silent = silent_next;
+        before = next;
+    }
+    for (; i < n; ++i) {
         const VECTOR now = vector_all(p[i]);
         const int silent = is_silent(p[i]);
         step_together(block, at, flight, u, v, before, now, silent & was_silent);
-        for (int q = 0; q < 3; ++q)
-            for (int j = 0; (looked >> q & 1) && j < flight; ++j) {
-                const VECTOR z = looked_at(q, row, at + (size_t)j * WIDTH, u[j], v[j], now);
-                top[q][j] = vector_larger(z, top[q][j]);
-                bottom[q][j] = vector_smaller(z, bottom[q][j]);
-            }
+        for (int j = 0; j < flight; ++j)
+            widen(&r, looked, row, at + (size_t)j * WIDTH, j, u[j], v[j], now);
         was_silent = silent;
         before = now;
     }
@@ -234,33 +273,46 @@ static inline __attribute__((always_inline)) int one_stretch(lane_block *block, 
         zero = vector_fma(u[j], vector_all(0), vector_fma(v[j], vector_all(0), zero));
         for (int q = 0; q < 3; ++q)
             if (looked >> q & 1) {
-                vector_store(high[q] + lane, top[q][j]);
-                vector_store(low[q] + lane, bottom[q][j]);
+                vector_store(high[q] + lane, r.top[q][j]);
+                vector_store(low[q] + lane, r.bottom[q][j]);
             }
     }
     return vector_any_nan(zero);
 }
 
-/* Each choice of quantities has code of its own. */
+/* Each choice of quantities has code of its own, and for a single one each number of vectors in flight. */
 static int stretch(lane_block *block, size_t lanes, unsigned looked, double (*row)[LANES], double p_last,
                    size_t n, const double *p, double (*high)[LANES], double (*low)[LANES])
 {
+#define FLY(which, flight) one_stretch(block, at, flight, which, row, p_last, n, p, high, low)
 #define LOOK(which)                                                                                          \
     case which:                                                                                              \
-        lost |= one_stretch(block, at, FLIGHT, which, row, p_last, n, p, high, low);                         \
+        lost |= flight == 1   ? FLY(which, 1)                                                                \
+                : flight == 2 ? FLY(which, 2)                                                                \
+                : flight == 3 ? FLY(which, 3)                                                                \
+                              : FLY(which, 4);                                                               \
+        break
+#define LOOK_AT_MORE(which)                                                                                  \
+    case which:                                                                                              \
+        lost |= FLY(which, FLIGHT);                                                                          \
+        flight = FLIGHT;                                                                                     \
         break
     int lost = 0;
-    for (size_t at = 0; at < lanes; at += FLIGHT * WIDTH)
+    for (size_t at = 0, flight = 0; at < lanes; at += flight * WIDTH) {
+        flight = next_flight(lanes, at);
         switch (looked) {
             LOOK(1);
             LOOK(2);
-            LOOK(3);
             LOOK(4);
-            LOOK(5);
-            LOOK(6);
-            LOOK(7);
+            LOOK_AT_MORE(3);
+            LOOK_AT_MORE(5);
+            LOOK_AT_MORE(6);
+            LOOK_AT_MORE(7);
         }
+    }
+#undef LOOK_AT_MORE
 #undef LOOK
+#undef FLY
     return lost;
 }
 
