@@ -72,6 +72,10 @@ static const struct {
     {"rampwise_state", sizeof(rampwise_state)},
     {"rampwise_history", sizeof(rampwise_history)},
     {"rampwise_bank_wanted", sizeof(rampwise_bank_wanted)},
+    {"rampwise_coeffs_f32", sizeof(rampwise_coeffs_f32)},
+    {"rampwise_state_f32", sizeof(rampwise_state_f32)},
+    {"rampwise_history_f32", sizeof(rampwise_history_f32)},
+    {"rampwise_bank_wanted_f32", sizeof(rampwise_bank_wanted_f32)},
     {"rampwise_instant", sizeof(rampwise_instant)},
     {"rampwise_peak", sizeof(rampwise_peak)},
 };

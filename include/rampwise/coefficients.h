@@ -64,6 +64,21 @@ typedef struct rampwise_coeffs {
     double reserve[9]; /* zero */
 } rampwise_coeffs;
 
+/* The same for steps in single precision, each member rounded once from the twofold value. Public, of frozen
+   layout; written by rampwise_coeffs_make_f32, or by hand of a program into constants of a source. Only dt is a
+   double: it is kept as it was given, and nothing in single precision computes with it. */
+typedef struct rampwise_coeffs_f32 {
+    float A, B, C, D;
+    float Ap, Bp, Cp, Dp;
+    float A_minus_1, Bp_minus_1;
+    float acceleration[4];
+    float total[4];
+    float mass, damper, stiffness, rate; /* rate: 1/dt */
+    double dt;
+    int32_t input, between;
+    float reserve[6]; /* zero */
+} rampwise_coeffs_f32;
+
 RAMPWISE_BEGIN
 
 /* Fills *c for one oscillator and one length of step.
@@ -86,6 +101,13 @@ RAMPWISE_BEGIN
    About 0.4 to 1.3 microseconds, growing with log2(w dt); no allocation. Since 0.1. */
 RAMPWISE_API int rampwise_coeffs_make(rampwise_coeffs *c, const rampwise_system *sys, double dt, int input,
                                       int between);
+
+/* The same for single precision. Every member is the float nearest to the exact value for sys and dt as they
+   are given (ties to even, subnormal floats included), where the bound above leaves no doubt: a coefficient
+   whose double would be 0.6 ulp of it itself. RAMPWISE_ERROR_COEFFICIENT also where a member is larger than a
+   float can hold. Uses double arithmetic; where that is dear, take constants that a host has made. Since 0.1. */
+RAMPWISE_API int rampwise_coeffs_make_f32(rampwise_coeffs_f32 *c, const rampwise_system *sys, double dt,
+                                          int input, int between);
 
 RAMPWISE_END
 
