@@ -64,9 +64,9 @@ typedef struct rampwise_coeffs {
     double reserve[9]; /* zero */
 } rampwise_coeffs;
 
-/* The same for steps in single precision, each member rounded once from the twofold value. Public, of frozen
-   layout; written by rampwise_coeffs_make_f32, or by hand of a program into constants of a source. Only dt is a
-   double: it is kept as it was given, and nothing in single precision computes with it. */
+/* The same for steps in single precision. Public, of frozen layout, to be read; only rampwise_coeffs_make_f32
+   writes it, here or on a host that prints it as a constant. dt is kept as it was given: nothing in single
+   precision computes with it. */
 typedef struct rampwise_coeffs_f32 {
     float A, B, C, D;
     float Ap, Bp, Cp, Dp;
@@ -103,9 +103,10 @@ RAMPWISE_API int rampwise_coeffs_make(rampwise_coeffs *c, const rampwise_system 
                                       int between);
 
 /* The same for single precision. Every member is the float nearest to the exact value for sys and dt as they
-   are given (ties to even, subnormal floats included), where the bound above leaves no doubt: a coefficient
-   whose double would be 0.6 ulp of it itself. RAMPWISE_ERROR_COEFFICIENT also where a member is larger than a
-   float can hold. Uses double arithmetic; where that is dear, take constants that a host has made. Since 0.1. */
+   are given, rounded once (subnormal floats included); only where a free motion has decayed within the step may
+   it be off, by 2^-100 of its largest value over steps of length 0 to h. RAMPWISE_ERROR_COEFFICIENT also where
+   a member is larger than a float can hold. This is double arithmetic; where that is dear, let a host make
+   constants (tools/coefficients_as_source). Since 0.1. */
 RAMPWISE_API int rampwise_coeffs_make_f32(rampwise_coeffs_f32 *c, const rampwise_system *sys, double dt,
                                           int input, int between);
 

@@ -115,7 +115,7 @@ static inline MASK mask_below(VECTOR a, real limit)
 
 static inline MASK mask_all(void)
 {
-    return MASK_OF(vdupq_n)(-1);
+    return REAL_OF(vceqq)(vector_all(0), vector_all(0));
 }
 
 static inline MASK mask_both(MASK a, MASK b)
