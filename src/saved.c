@@ -100,32 +100,24 @@ int rampwise_saved_write_(const saved_kind *k, const void *object, void *bytes, 
     return RAMPWISE_OK;
 }
 
-int rampwise_saved_check_(const saved_kind *k, const void *bytes, size_t count)
+int rampwise_saved_open_(const saved_kind *k, const void *object, const void *bytes, size_t count, saved *s)
 {
     uint32_t kind = 0, version = 0, edition = 0, checksum = 0;
     uint64_t length = 0;
     if (count < HEAD + TAIL || memcmp(bytes, letters, sizeof letters) != 0)
         return RAMPWISE_ERROR_DAMAGED;
-    saved s = {NULL, bytes, 0};
-    head(&s, &kind, &version, &edition, &length);
-    s.at = count - TAIL;
-    rampwise_saved_uint32_(&s, &checksum);
+    saved from = {NULL, bytes, 0};
+    head(&from, &kind, &version, &edition, &length);
+    saved tail = {NULL, bytes, count - TAIL};
+    rampwise_saved_uint32_(&tail, &checksum);
     if (length != count || checksum != rampwise_saved_checksum_(bytes, count - TAIL))
         return RAMPWISE_ERROR_DAMAGED;
     if (kind != k->kind)
         return RAMPWISE_ERROR_KIND;
-    return version == k->version && edition == RAMPWISE_ARITHMETIC_EDITION ? RAMPWISE_OK
-                                                                           : RAMPWISE_ERROR_EDITION;
-}
-
-int rampwise_saved_read_(const saved_kind *k, void *object, const void *bytes, size_t count)
-{
-    const int status = rampwise_saved_check_(k, bytes, count);
-    if (status != RAMPWISE_OK)
-        return status;
+    if (version != k->version || edition != RAMPWISE_ARITHMETIC_EDITION)
+        return RAMPWISE_ERROR_EDITION;
     if (rampwise_saved_size_(k, object) != count)
         return RAMPWISE_ERROR_DAMAGED;
-    saved s = {NULL, bytes, HEAD};
-    k->pass(&s, object);
+    *s = from;
     return RAMPWISE_OK;
 }

@@ -26,6 +26,8 @@ START_TEST(struct_sizes)
     ck_assert_uint_eq(rampwise_struct_size("rampwise_coeffs"), 256);
     ck_assert_uint_eq(rampwise_struct_size("rampwise_state"), 32);
     ck_assert_uint_eq(rampwise_struct_size("rampwise_history"), 4 * sizeof(double *));
+    ck_assert_uint_eq(rampwise_struct_size("rampwise_event"), 48);
+    ck_assert_uint_eq(rampwise_struct_size("rampwise_stream"), sizeof(rampwise_stream));
     ck_assert_uint_eq(rampwise_struct_size("rampwise_nothing"), 0);
     ck_assert_uint_eq(rampwise_struct_size(NULL), 0);
 }
