@@ -112,6 +112,10 @@ AT(rampwise_output, row, 0);
 AT(rampwise_output, quantity, 32);
 SIZE(rampwise_output, 40);
 
+AT(rampwise_response, gain, 0);
+AT(rampwise_response, phase, 8);
+SIZE(rampwise_response, 16);
+
 AT(rampwise_event, sample, 0);
 AT(rampwise_event, fraction, 8);
 AT(rampwise_event, value, 16);
