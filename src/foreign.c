@@ -21,6 +21,7 @@ static const struct {
     CONSTANT(RAMPWISE_ERROR_INPUT),
     CONSTANT(RAMPWISE_ERROR_BETWEEN),
     CONSTANT(RAMPWISE_ERROR_IMPULSES),
+    CONSTANT(RAMPWISE_ERROR_FRAME),
     CONSTANT(RAMPWISE_ERROR_NOT_MADE),
     CONSTANT(RAMPWISE_ERROR_DIFFERENT),
     CONSTANT(RAMPWISE_ERROR_NAME),
@@ -61,6 +62,8 @@ static const struct {
     CONSTANT(RAMPWISE_AT_SAMPLES),
     CONSTANT(RAMPWISE_RESIDUAL),
     CONSTANT(RAMPWISE_MAXIMAX),
+    CONSTANT(RAMPWISE_RELATIVE),
+    CONSTANT(RAMPWISE_ABSOLUTE),
 };
 
 static const struct {
@@ -74,6 +77,8 @@ static const struct {
     {"rampwise_bank_wanted", sizeof(rampwise_bank_wanted)},
     {"rampwise_instant", sizeof(rampwise_instant)},
     {"rampwise_peak", sizeof(rampwise_peak)},
+    {"rampwise_energy", sizeof(rampwise_energy)},
+    {"rampwise_meter", sizeof(rampwise_meter)},
 };
 
 int rampwise_constant(const char *name, int *value)
