@@ -2,7 +2,8 @@
 
    The headers are the reference manual, in the order in which data goes through them:
 
-       system -> coefficients -> step -> record, channels, bank -> peaks, spectrum
+       system -> coefficients -> step -> record, channels, bank -> peaks, spectrum,
+       directions
 
    A record in a few lines:
 
@@ -30,6 +31,7 @@
 #include "rampwise/peak.h"
 #include "rampwise/peaks.h"
 #include "rampwise/spectrum.h"
+#include "rampwise/directions.h"
 #include "rampwise/foreign.h"
 
 #endif

@@ -4,13 +4,12 @@
 #include <stddef.h>
 #include "peaks_group.h"
 #include "rampwise/status.h"
+#include "spectrum_list.h"
 #include "valid.h"
 
 typedef struct record {
-    size_t n;
-    double dt;
+    record_kind kind;
     const double *p;
-    int input, quantity;
     unsigned flags;
 } record;
 
@@ -19,9 +18,9 @@ static void respond(const record *r, peaks_group *g)
 {
     const kernels *const k = rampwise_kernels_(RAMPWISE_FASTEST);
     rampwise_group_start_(g, NULL, r->p[0]);
-    for (size_t done = 1, part = 0; done < r->n; done += part) {
+    for (size_t done = 1, part = 0; done < r->kind.n; done += part) {
         segment along;
-        part = r->n - done < SEGMENT ? r->n - done : SEGMENT;
+        part = r->kind.n - done < SEGMENT ? r->kind.n - done : SEGMENT;
         rampwise_segment_make_(&along, done - 1, r->p[done > 1 ? done - 2 : 0], r->p[done - 1], part,
                                r->p + done);
         rampwise_group_run_(k, g, &along);
@@ -31,18 +30,18 @@ static void respond(const record *r, peaks_group *g)
 /* A stiff oscillator without limit: no relative motion, and the mass goes with its base, from rest and to rest. */
 static void follow_base(const record *r, rampwise_peak *peak)
 {
-    const int moves = r->quantity == RAMPWISE_TOTAL_ACCELERATION && r->flags != RAMPWISE_RESIDUAL;
-    const rampwise_instant nothing = {0, r->flags == RAMPWISE_RESIDUAL ? r->n - 1 : 0, 0};
+    const int moves = r->kind.quantity == RAMPWISE_TOTAL_ACCELERATION && r->flags != RAMPWISE_RESIDUAL;
+    const rampwise_instant nothing = {0, r->flags == RAMPWISE_RESIDUAL ? r->kind.n - 1 : 0, 0};
     *peak = (rampwise_peak){nothing, nothing};
-    for (size_t i = 0; moves && i < r->n; ++i) {
-        if (r->input == RAMPWISE_BASE_ACCELERATION)
+    for (size_t i = 0; moves && i < r->kind.n; ++i) {
+        if (r->kind.input == RAMPWISE_BASE_ACCELERATION)
             note_value(peak, r->p[i], i, 0);
-        else if (r->input == RAMPWISE_BASE_VELOCITY && i > 0)
-            note_value(peak, (r->p[i] - r->p[i - 1]) / r->dt, i - 1, 0);
+        else if (r->kind.input == RAMPWISE_BASE_VELOCITY && i > 0)
+            note_value(peak, (r->p[i] - r->p[i - 1]) / r->kind.dt, i - 1, 0);
     }
 }
 
-static int check_record(const record *r, size_t *bad)
+int rampwise_record_kind_check_(const record_kind *r)
 {
     if (r->n == 0)
         return RAMPWISE_ERROR_COUNT;
@@ -52,39 +51,45 @@ static int check_record(const record *r, size_t *bad)
         return RAMPWISE_ERROR_INPUT;
     if (r->quantity < RAMPWISE_DISPLACEMENT || r->quantity > RAMPWISE_TOTAL_ACCELERATION)
         return RAMPWISE_ERROR_QUANTITY;
-    const unsigned when = r->flags & ~(unsigned)RAMPWISE_AT_SAMPLES;
-    if (when != 0 && when != RAMPWISE_RESIDUAL && when != RAMPWISE_MAXIMAX)
-        return RAMPWISE_ERROR_FLAGS;
-    return check_samples(r->n, r->p, bad);
+    return RAMPWISE_OK;
 }
 
-/* A stiff oscillator without limit, where the input allows one. */
-static int is_stiff(const record *r, double omega)
+int rampwise_record_is_stiff_(const record_kind *r, double omega)
 {
     return isinf(omega) && omega > 0 && r->input != RAMPWISE_BASE_DISPLACEMENT;
 }
 
-static int make_oscillator(const record *r, double omega, double zeta, rampwise_coeffs *c)
+int rampwise_record_oscillator_(const record_kind *r, double omega, double zeta, rampwise_coeffs *c)
 {
     rampwise_system system;
     const int status = rampwise_system_natural(&system, omega, zeta);
     return status == RAMPWISE_OK ? rampwise_coeffs_make(c, &system, r->dt, r->input, RAMPWISE_RAMP) : status;
 }
 
-/* Before anything is written: stiff oscillators need a damping ratio too. */
-static int check_oscillators(const record *r, size_t n_osc, const double *omega, const double *zeta,
-                             size_t *bad)
+int rampwise_record_list_check_(const record_kind *r, size_t n_osc, const double *omega, const double *zeta,
+                                size_t *bad)
 {
     for (size_t i = 0; i < n_osc; ++i) {
         rampwise_coeffs c;
-        const int stiff = is_stiff(r, omega[i]);
-        const int status = !stiff              ? make_oscillator(r, omega[i], zeta[i], &c)
+        const int stiff = rampwise_record_is_stiff_(r, omega[i]);
+        const int status = !stiff              ? rampwise_record_oscillator_(r, omega[i], zeta[i], &c)
                            : isfinite(zeta[i]) ? RAMPWISE_OK
                                                : RAMPWISE_ERROR_DAMPER;
         if (status != RAMPWISE_OK)
             return blame(status, i, bad);
     }
     return RAMPWISE_OK;
+}
+
+static int check_record(const record *r, size_t *bad)
+{
+    const int status = rampwise_record_kind_check_(&r->kind);
+    if (status != RAMPWISE_OK)
+        return status;
+    const unsigned when = r->flags & ~(unsigned)RAMPWISE_AT_SAMPLES;
+    if (when != 0 && when != RAMPWISE_RESIDUAL && when != RAMPWISE_MAXIMAX)
+        return RAMPWISE_ERROR_FLAGS;
+    return check_samples(r->kind.n, r->p, bad);
 }
 
 /* The next oscillators until LANES of them are not stiff; returns how many that took. */
@@ -94,31 +99,32 @@ static size_t respond_next(const record *r, size_t left, const double *omega, co
     rampwise_coeffs c[LANES];
     size_t which[LANES], count = 0, taken = 0;
     for (; taken < left && count < LANES; ++taken) {
-        if (is_stiff(r, omega[taken])) {
+        if (rampwise_record_is_stiff_(&r->kind, omega[taken])) {
             follow_base(r, &peak[taken]);
             continue;
         }
-        (void)make_oscillator(r, omega[taken], zeta[taken], &c[count]);
+        (void)rampwise_record_oscillator_(&r->kind, omega[taken], zeta[taken], &c[count]);
         which[count++] = taken;
     }
     peaks_group g;
-    rampwise_group_make_(&g, count, c, 1, &r->quantity, at_samples ? RAMPWISE_AT_SAMPLES : 0);
+    rampwise_group_make_(&g, count, c, 1, &r->kind.quantity, at_samples ? RAMPWISE_AT_SAMPLES : 0);
     respond(r, &g);
     for (size_t j = 0; j < count; ++j)
-        peak[which[j]] = rampwise_group_peak_(rampwise_kernels_(RAMPWISE_FASTEST), &g, j, 0, r->flags,
-                                              r->p[r->n > 1 ? r->n - 2 : 0], r->p[r->n - 1], r->n - 1);
+        peak[which[j]] =
+            rampwise_group_peak_(rampwise_kernels_(RAMPWISE_FASTEST), &g, j, 0, r->flags,
+                                 r->p[r->kind.n > 1 ? r->kind.n - 2 : 0], r->p[r->kind.n - 1], r->kind.n - 1);
     return taken;
 }
 
 int rampwise_spectrum(size_t n, double dt, const double *p, int input, size_t n_osc, const double *omega,
                       const double *zeta, int quantity, unsigned flags, rampwise_peak *peak, size_t *bad)
 {
-    const record r = {n, dt, p, input, quantity, flags & ~(unsigned)RAMPWISE_AT_SAMPLES};
+    const record r = {{n, dt, input, quantity}, p, flags & ~(unsigned)RAMPWISE_AT_SAMPLES};
     if (p == NULL || (n_osc > 0 && (omega == NULL || zeta == NULL || peak == NULL)))
         return RAMPWISE_ERROR_MISSING;
     int status = check_record(&r, bad);
     if (status == RAMPWISE_OK)
-        status = check_oscillators(&r, n_osc, omega, zeta, bad);
+        status = rampwise_record_list_check_(&r.kind, n_osc, omega, zeta, bad);
     for (size_t done = 0; status == RAMPWISE_OK && done < n_osc;)
         done += respond_next(&r, n_osc - done, omega + done, zeta + done, (flags & RAMPWISE_AT_SAMPLES) != 0,
                              peak + done);
