@@ -9,16 +9,16 @@
    Orientation-independent, nongeometric-mean measures of seismic intensity from two horizontal components of motion,
    Bulletin of the Seismological Society of America 100(4), 1830-1835, 2010.
 
-   How. S is the support function of the outline (the convex hull) of all points +-(u1, u2), and between two of its
-   corners, S(phi) = |corner| cos(phi - its angle): no angle is ever tried. Both components are stepped side by side,
-   with the bits of rampwise_run; a stretch of samples inside a polygon of eight
-   corners of the outline is passed by at lane speed, and few others are left. Work: two steps a sample and oscillator, and for each point that the outline gains, a copy
-   of its corners (16 bytes each).
+   How. S is the support function of the outline (the convex hull) of all points +-(u1, u2): between the directions of
+   two neighbouring edges S(phi) = |corner| cos(phi - its angle), and no angle is ever tried. Both components are stepped
+   side by side, with the bits of rampwise_run; a stretch of samples inside a polygon of eight corners of the outline is
+   passed by at lane speed, others are looked at step by step. Work: two steps a sample and oscillator, and for each
+   point that the outline gains, a move of its corners (16 bytes each).
 
-   At the samples the outline is exact, to 2e-13 of the largest S, for the rounding of points that lie nearly in a line. Between
-   the samples it gains exact points of the response inside steps until every S(phi) falls short by less than 1e-6 of the
-   largest: a part of a step bends away from its chord by no more than its length squared over 8 times its largest second
-   derivative, and parts that could stick out by more are halved.
+   At the samples the outline is exact, to 2e-13 of the largest S for the rounding of points that lie nearly in a line.
+   Between the samples it gains exact points of the response inside steps until every S(phi) falls short by less than
+   1e-6 of the largest: a part of a step bends away from its chord by no more than its length squared over 8 times its
+   largest second derivative, and parts that could stick out by more are halved.
 
    Percentiles need angles: they are as good as the platform's atan2, acos, sin and cos, and not part of the contract of
    bits. Areas are computed: histories larger than 1e150, or everywhere smaller than 1e-150, are out of range. All since

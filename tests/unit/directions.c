@@ -278,20 +278,21 @@ END_TEST
 START_TEST(between_on_a_line)
 {
     gsl_rng *const r = random_make("between_on_a_line");
-    static const double zero[N];
-    double p[N], omega[MOST], zeta[MOST], value[MOST][PERCENTS];
+    enum { LINE = 150 };
+    static const double zero[LINE];
+    double p[LINE], omega[MOST], zeta[MOST], value[MOST][PERCENTS];
     rampwise_peak peak[MOST];
-    random_record(r, p, N);
+    random_record(r, p, LINE);
     for (int j = 0; j < MOST; ++j) {
         omega[j] = random_log(r, 0.1, 300);
         zeta[j] = j % 4 == 0 ? random_log(r, 0.5, 50) : random_log(r, 1e-3, 0.5);
     }
     for (int q = RAMPWISE_DISPLACEMENT; q <= RAMPWISE_TOTAL_ACCELERATION; ++q) {
         ck_assert_int_eq(
-            rampwise_spectrum(N, 1, p, RAMPWISE_BASE_ACCELERATION, MOST, omega, zeta, q, 0, peak, NULL),
+            rampwise_spectrum(LINE, 1, p, RAMPWISE_BASE_ACCELERATION, MOST, omega, zeta, q, 0, peak, NULL),
             RAMPWISE_OK);
-        ck_assert_int_eq(rampwise_spectrum_directions(N, 1, p, zero, RAMPWISE_BASE_ACCELERATION, MOST, omega,
-                                                      zeta, q, 0, PERCENTS, percent, value[0], NULL),
+        ck_assert_int_eq(rampwise_spectrum_directions(LINE, 1, p, zero, RAMPWISE_BASE_ACCELERATION, MOST,
+                                                      omega, zeta, q, 0, PERCENTS, percent, value[0], NULL),
                          RAMPWISE_OK);
         for (int j = 0; j < MOST; ++j)
             check_line(value[j], fabs(rampwise_peak_larger(&peak[j])->value), 1e-6);
