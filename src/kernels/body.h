@@ -1,6 +1,7 @@
 /* The one body of all kernels. The including file has defined a thin layer over its vectors:
    VECTOR, MASK, WIDTH and the functions vector_*, mask_*; and KERNELS, the table's name, and
-   KERNELS_NAME; all in one precision (../precision.h). The arithmetic is that of step.h, operation by operation. */
+   KERNELS_NAME; all in one precision (../precision.h). The arithmetic is that of step.h, operation by
+   operation. */
 
 #include <stdint.h>
 #include <string.h>
