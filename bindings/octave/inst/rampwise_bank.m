@@ -24,7 +24,7 @@ function bank = rampwise_bank (dt, varargin)
   [input, between] = kinds (caller, options);
   [status, fault, object] = __rampwise__ ("bank_make", s, scalar (caller, "DT", dt), input, between);
   check (caller, status, fault);
-  bank = struct ("dt", dt, "count", columns (s), "provenance", provenance (), "object", object,
+  bank = struct ("dt", dt, "count", columns (s), "provenance", provenance (), "kinds", {{input, between}}, "object", object,
                  "guard", onCleanup (@() __rampwise__ ("object_free", object)));
 endfunction
 

@@ -16,7 +16,7 @@ function rampwise_bank_retune (bank, i, varargin)
   if (columns (s) != 1)
     error ("rampwise:argument", "%s: one oscillator is retuned at a time", caller);
   endif
-  [status, fault] = __rampwise__ ("bank_retune", object, scalar (caller, "I", i), s);
+  [status, fault] = __rampwise__ ("bank_retune", object, scalar (caller, "I", i), s, bank.dt, bank.kinds{:});
   check (caller, status, fault);
 endfunction
 
