@@ -82,5 +82,7 @@ endfunction
 %!error id=rampwise:count rampwise_bank_push (rampwise_bank (0.05, o{:}), p, [1, 1])
 %!error id=rampwise:count rampwise_bank_push (rampwise_bank (0.05, o{:}), p, 1.5)
 %!error id=rampwise:count rampwise_bank_push (rampwise_bank (0.05, o{:}), p, NaN)
-%!error id=rampwise:freed rampwise_bank_push (struct ("object", uint64 (12345)), 1)
-%!error id=rampwise:gateway rampwise_bank_push (struct ("object", 12345), 1)
+%!test # freed by hand
+%! b = rampwise_bank (0.05, o{:});
+%! __rampwise__ ("object_free", b.object);
+%! fail ("rampwise_bank_push (b, 1)", "there is no such bank");
