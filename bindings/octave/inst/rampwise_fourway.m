@@ -31,14 +31,14 @@ function h = rampwise_fourway (s, units = {"", "", "", ""})
   across = decades (T);
   up = decades (V(:));
   ## On axes that the lines were drawn into first, the curves lie over them.
-  set (gca (), "xscale", "log", "yscale", "log", "nextplot", "add", "box", "on", "layer", "top",
+  set (gca (), "xscale", "log", "yscale", "log", "nextplot", "add", "box", "on", "layer", "top", "gridcolor", [0.85, 0.85, 0.85],
        "xlim", across, "ylim", up, "plotboxaspectratio", [diff(log10 (across)), diff(log10 (up)), 1]);
   grid ("on");
   slanted (across, up, 1, units{4});
   slanted (across, up, -1, units{2});
   curves = loglog (T, V, "linewidth", 1.5);
   legend (curves, arrayfun (@(z) sprintf ("damping %g", z), s.damping, "UniformOutput", false), "location",
-          "northeast");
+          "south");
   xlabel (label_of ("natural period", units{1}));
   ylabel (label_of ("pseudo-velocity", units{3}));
   if (nargout > 0)
