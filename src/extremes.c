@@ -5,11 +5,6 @@
 #include <stdint.h>
 #include "rampwise/motion.h"
 #include "rampwise/status.h"
-
-#define REAL double
-#define REAL_C(x) x
-#define REAL_EPSILON DBL_EPSILON
-#define REAL_SIZE fabs
 #include "series.h"
 
 /* Relative motion at one instant: y'' + damping y' + stiffness y = f, f with the slope f_slope; and what

@@ -98,6 +98,10 @@ static const struct {
     {"rampwise_state", sizeof(rampwise_state)},
     {"rampwise_history", sizeof(rampwise_history)},
     {"rampwise_bank_wanted", sizeof(rampwise_bank_wanted)},
+    {"rampwise_coeffs_f32", sizeof(rampwise_coeffs_f32)},
+    {"rampwise_state_f32", sizeof(rampwise_state_f32)},
+    {"rampwise_history_f32", sizeof(rampwise_history_f32)},
+    {"rampwise_bank_wanted_f32", sizeof(rampwise_bank_wanted_f32)},
     {"rampwise_instant", sizeof(rampwise_instant)},
     {"rampwise_peak", sizeof(rampwise_peak)},
     {"rampwise_output", sizeof(rampwise_output)},
@@ -111,6 +115,12 @@ static const struct {
     {"rampwise_stream_options", sizeof(rampwise_stream_options)},
     {"rampwise_stream_counts", sizeof(rampwise_stream_counts)},
     {"rampwise_stream", sizeof(rampwise_stream)},
+    {"rampwise_instant_f32", sizeof(rampwise_instant_f32)},
+    {"rampwise_peak_f32", sizeof(rampwise_peak_f32)},
+    {"rampwise_watched_f32", sizeof(rampwise_watched_f32)},
+    {"rampwise_watch_f32", sizeof(rampwise_watch_f32)},
+    {"rampwise_interval_f32", sizeof(rampwise_interval_f32)},
+    {"rampwise_stream_f32", sizeof(rampwise_stream_f32)},
 };
 
 int rampwise_constant(const char *name, int *value)

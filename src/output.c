@@ -5,22 +5,22 @@
 #include "valid.h"
 
 /* factor (u - x_g) and factor (v - x_g'): relative motion, of the base or of the fixed frame */
-static void relative_displacement(const rampwise_coeffs *c, double factor, double row[4])
+static void relative_displacement(const real_coeffs *c, real factor, real row[4])
 {
     row[0] = factor;
     row[2] = c->input == RAMPWISE_BASE_DISPLACEMENT ? -factor : 0;
 }
 
-static void relative_velocity(const rampwise_coeffs *c, double factor, double row[4])
+static void relative_velocity(const real_coeffs *c, real factor, real row[4])
 {
     row[1] = factor;
     if (c->input == RAMPWISE_BASE_DISPLACEMENT && c->between == RAMPWISE_RAMP)
-        row[3] = -factor / c->dt;
+        row[3] = -over_dt(c, factor);
 }
 
-int rampwise_output_row(const rampwise_coeffs *c, const rampwise_output *output, double *row)
+int PUBLIC(output_row)(const real_coeffs *c, const rampwise_output *output, real *row)
 {
-    double made[4] = {0, 0, 0, 0};
+    real made[4] = {0, 0, 0, 0};
     if (c == NULL || output == NULL || row == NULL)
         return RAMPWISE_ERROR_MISSING;
     if (!coeffs_are_made(c))
@@ -39,16 +39,17 @@ int rampwise_output_row(const rampwise_coeffs *c, const rampwise_output *output,
         memcpy(made, c->acceleration, sizeof made);
         break;
     case RAMPWISE_SPRING_FORCE:
-        relative_displacement(c, c->system.stiffness, made);
+        relative_displacement(c, stiffness_of(c), made);
         break;
     case RAMPWISE_DAMPER_FORCE:
-        relative_velocity(c, c->system.damper, made);
+        relative_velocity(c, damper_of(c), made);
         break;
     case RAMPWISE_LOAD:
         made[2] = 1;
         break;
     case RAMPWISE_WEIGHTED:
-        memcpy(made, output->row, sizeof made);
+        for (int i = 0; i < 4; ++i)
+            made[i] = (real)output->row[i];
         break;
     default:
         return RAMPWISE_ERROR_QUANTITY;

@@ -10,7 +10,7 @@
 
 #include <stddef.h>
 #include <stdint.h>
-#include "rampwise/step.h"
+#include "precision.h"
 
 /* One way through the members of an object: written where `to` is set, read where `from` is, else counted. */
 typedef struct saved {
@@ -76,29 +76,55 @@ static inline void saved_size(saved *s, size_t *x)
         *x = (size_t)wide;
 }
 
-static inline void saved_coeffs(saved *s, rampwise_coeffs *c)
+static inline void saved_real(saved *s, real *x)
 {
-    double *const numbers[] = {&c->A,  &c->B,  &c->C,  &c->D,         &c->Ap,
-                               &c->Bp, &c->Cp, &c->Dp, &c->A_minus_1, &c->Bp_minus_1};
+#ifdef SINGLE_PRECISION
+    rampwise_saved_float_(s, x);
+#else
+    rampwise_saved_double_(s, x);
+#endif
+}
+
+static inline void saved_reals(saved *s, real *x, size_t n)
+{
+    for (size_t i = 0; i < n; ++i)
+        saved_real(s, &x[i]);
+}
+
+static inline void saved_coeffs(saved *s, real_coeffs *c)
+{
+    real *const numbers[] = {&c->A,  &c->B,  &c->C,  &c->D,         &c->Ap,
+                             &c->Bp, &c->Cp, &c->Dp, &c->A_minus_1, &c->Bp_minus_1};
     for (size_t i = 0; i < sizeof numbers / sizeof *numbers; ++i)
-        rampwise_saved_double_(s, numbers[i]);
-    saved_doubles(s, c->acceleration, 4);
-    saved_doubles(s, c->total, 4);
-    rampwise_saved_double_(s, &c->system.mass);
-    rampwise_saved_double_(s, &c->system.damper);
-    rampwise_saved_double_(s, &c->system.stiffness);
+        saved_real(s, numbers[i]);
+    saved_reals(s, c->acceleration, 4);
+    saved_reals(s, c->total, 4);
+#ifdef SINGLE_PRECISION
+    saved_real(s, &c->mass);
+    saved_real(s, &c->damper);
+    saved_real(s, &c->stiffness);
+    saved_real(s, &c->rate);
+#else
+    saved_real(s, &c->system.mass);
+    saved_real(s, &c->system.damper);
+    saved_real(s, &c->system.stiffness);
+#endif
     rampwise_saved_double_(s, &c->dt);
     saved_int(s, &c->input);
     saved_int(s, &c->between);
-    saved_doubles(s, c->reserve, sizeof c->reserve / sizeof *c->reserve);
+    saved_reals(s, c->reserve, sizeof c->reserve / sizeof *c->reserve);
 }
 
-static inline void saved_state(saved *s, rampwise_state *x)
+static inline void saved_state(saved *s, real_state *x)
 {
-    rampwise_saved_double_(s, &x->u);
-    rampwise_saved_double_(s, &x->v);
-    rampwise_saved_double_(s, &x->p);
-    rampwise_saved_double_(s, &x->p_before);
+    saved_real(s, &x->u);
+    saved_real(s, &x->v);
+    saved_real(s, &x->p);
+    saved_real(s, &x->p_before);
+#ifdef SINGLE_PRECISION
+    saved_real(s, &x->u_low);
+    saved_real(s, &x->v_low);
+#endif
 }
 
 #endif

@@ -1,8 +1,18 @@
-/* The motion inside a piece of a step as a power series, its slope's zeros and where it turns: one body for both
-   precisions. The including file has defined REAL, REAL_C (a constant of it), REAL_EPSILON and
-   REAL_SIZE (the absolute value). */
+/* The motion inside a piece of a step as a power series, its slope's zeros and where it turns, in both precisions. */
 #ifndef RAMPWISE_SERIES_H
 #define RAMPWISE_SERIES_H
+
+#include <float.h>
+#include <math.h>
+#include "precision.h"
+
+#ifdef SINGLE_PRECISION
+#define REAL_C(x) x##f
+#define REAL_EPSILON FLT_EPSILON
+#else
+#define REAL_C(x) x
+#define REAL_EPSILON DBL_EPSILON
+#endif
 
 /* z over a piece of length 1: z + sum of e[n] x^n, n = 1 to count. Above the second power the terms follow
    z'''' + S z''' + K z'' = 0; they end where two in a row have fallen below 2^-60 of the first two. With |S| and
@@ -10,12 +20,12 @@
 enum { TERMS = 24 };
 
 typedef struct series {
-    REAL z, e[TERMS + 1];
+    real z, e[TERMS + 1];
     int count;
 } series;
 
 /* clang-format off */
-static const REAL inverse_factorial[TERMS + 1] = {
+static const real inverse_factorial[TERMS + 1] = {
     REAL_C(1.0), REAL_C(1.0), REAL_C(0.5), REAL_C(0.16666666666666666), REAL_C(0.041666666666666664),
     REAL_C(0.008333333333333333), REAL_C(0.001388888888888889), REAL_C(0.0001984126984126984), REAL_C(2.48015873015873e-05), REAL_C(2.7557319223985893e-06),
     REAL_C(2.755731922398589e-07), REAL_C(2.505210838544172e-08), REAL_C(2.08767569878681e-09), REAL_C(1.6059043836821613e-10), REAL_C(1.1470745597729725e-11),
@@ -25,19 +35,19 @@ static const REAL inverse_factorial[TERMS + 1] = {
 /* clang-format on */
 
 /* From z and three derivatives where the piece begins. */
-static void series_make(series *s, REAL z, REAL z1, REAL z2, REAL z3, REAL damping, REAL stiffness,
-                        REAL length)
+static void series_make(series *s, real z, real z1, real z2, real z3, real damping, real stiffness,
+                        real length)
 {
-    const REAL S = damping * length, K = stiffness * length * length;
-    REAL before = z2 * length * length, last = z3 * length * length * length;
+    const real S = damping * length, K = stiffness * length * length;
+    real before = z2 * length * length, last = z3 * length * length * length;
     s->z = z;
     s->e[1] = z1 * length;
     s->e[2] = before / 2;
     s->e[3] = last * inverse_factorial[3];
-    const REAL small = REAL_EPSILON / 256 * (REAL_SIZE(s->e[1]) + REAL_SIZE(s->e[2]));
+    const real small = REAL_EPSILON / 256 * (REAL_SIZE(s->e[1]) + REAL_SIZE(s->e[2]));
     int n = 3;
     while (n < TERMS && REAL_SIZE(s->e[n]) + REAL_SIZE(s->e[n - 1]) > small) {
-        const REAL next = -S * last - K * before;
+        const real next = -S * last - K * before;
         before = last;
         last = next;
         ++n;
@@ -46,46 +56,46 @@ static void series_make(series *s, REAL z, REAL z1, REAL z2, REAL z3, REAL dampi
     s->count = n;
 }
 
-static REAL series_value(const series *s, REAL x)
+static real series_value(const series *s, real x)
 {
-    REAL sum = 0;
+    real sum = 0;
     for (int n = s->count; n >= 1; --n)
         sum = (sum + s->e[n]) * x;
     return s->z + sum;
 }
 
 /* The first derivative and the second. */
-static REAL series_slope(const series *s, REAL x, REAL *second)
+static real series_slope(const series *s, real x, real *second)
 {
-    REAL first = 0, next = 0;
+    real first = 0, next = 0;
     for (int n = s->count; n >= 1; --n) {
         next = next * x + first;
-        first = first * x + (REAL)n * s->e[n];
+        first = first * x + (real)n * s->e[n];
     }
     *second = next;
     return first;
 }
 
-static int opposite(REAL a, REAL b)
+static int opposite(real a, real b)
 {
     return (a < 0 && b > 0) || (a > 0 && b < 0);
 }
 
 /* The zero of the slope between low and high, where it has opposite signs: Newton's steps, halving where one
    leaves the bracket. */
-static REAL slope_zero(const series *s, REAL low, REAL high, REAL at_low, REAL at_high)
+static real slope_zero(const series *s, real low, real high, real at_low, real at_high)
 {
     const int rising = at_low < 0;
-    REAL x = low + (high - low) * (at_low / (at_low - at_high)), second;
+    real x = low + (high - low) * (at_low / (at_low - at_high)), second;
     for (int i = 0; i < 100; ++i) {
-        const REAL slope = series_slope(s, x, &second);
+        const real slope = series_slope(s, x, &second);
         if (slope == 0)
             return x;
         if ((slope < 0) == rising)
             low = x;
         else
             high = x;
-        REAL next = x - slope / second;
+        real next = x - slope / second;
         if (!(next > low && next < high))
             next = (low + high) / 2;
         if (REAL_SIZE(next - x) <= REAL_EPSILON / 4)
@@ -97,13 +107,13 @@ static REAL slope_zero(const series *s, REAL low, REAL high, REAL at_low, REAL a
 
 /* Where the slope turns: the zero of the second derivative, by halving. It need not be sharp: beside it the
    slope is flat. */
-static REAL turning_point(const series *s)
+static real turning_point(const series *s)
 {
-    REAL low = 0, high = 1, second;
+    real low = 0, high = 1, second;
     (void)series_slope(s, 0, &second);
     const int rising = second < 0;
     for (int i = 0; i < 54; ++i) {
-        const REAL middle = (low + high) / 2;
+        const real middle = (low + high) / 2;
         (void)series_slope(s, middle, &second);
         if ((second < 0) == rising)
             low = middle;

@@ -66,7 +66,7 @@ const char *rampwise_status_text(int status)
     case RAMPWISE_ERROR_EDITION:
         return "The bytes were saved by a version of the library that gives other bits";
     case RAMPWISE_ERROR_OVERFLOW:
-        return "The response is too large for a double";
+        return "The response is too large for its precision";
     case RAMPWISE_ERROR_FUSED:
         return "The fused multiply-add of this platform is not correctly rounded";
     case RAMPWISE_ERROR_ARITHMETIC:

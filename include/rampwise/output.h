@@ -35,6 +35,8 @@ RAMPWISE_BEGIN
    RAMPWISE_ERROR_MISSING, _NOT_MADE, _QUANTITY, _COEFFICIENT (a weight is not finite). Any thread; constant work.
    Since 0.1. */
 RAMPWISE_API int rampwise_output_row(const rampwise_coeffs *c, const rampwise_output *output, double *row);
+RAMPWISE_API int rampwise_output_row_f32(const rampwise_coeffs_f32 *c, const rampwise_output *output,
+                                         float *row);
 
 RAMPWISE_END
 

@@ -52,7 +52,7 @@ enum {
     RAMPWISE_ERROR_EDITION = -74, /* saved by another version, whose bits may differ */
 
     /* The results are. */
-    RAMPWISE_ERROR_OVERFLOW = -80, /* the response is larger than a double can hold */
+    RAMPWISE_ERROR_OVERFLOW = -80, /* the response is larger than its precision can hold */
 
     /* The platform is. */
     RAMPWISE_ERROR_FUSED = -90,     /* the fused multiply-add is not one */

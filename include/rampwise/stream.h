@@ -111,8 +111,36 @@ typedef struct rampwise_stream {
     uint64_t reserve_[4];
 } rampwise_stream;
 
+/* In single precision; options and counts are the same. Intervals that are not prepared are made, in double arithmetic,
+   of the oscillator as its coefficients keep it, in single precision; rampwise_interval_make_f32 does so too. */
+typedef struct rampwise_interval_f32 {
+    uint64_t ticks;
+    rampwise_coeffs_f32 c;
+} rampwise_interval_f32;
+
+typedef struct rampwise_stream_f32 {
+    rampwise_coeffs_f32 c_, other_;
+    rampwise_state_f32 s_;
+    float row_[RAMPWISE_STREAM_OUTPUTS][4];
+    float scale_, offset_, rail_low_, rail_high_;
+    rampwise_output output_[RAMPWISE_STREAM_OUTPUTS];
+    const rampwise_interval_f32 *intervals_;
+    size_t interval_count_;
+    rampwise_watch_f32 *watches_;
+    uint64_t other_ticks_, ticks_, longest_;
+    uint64_t time_;
+    uint64_t pending_;
+    uint64_t sample_;
+    uint64_t run_;
+    rampwise_stream_counts counts_;
+    int32_t start_, missing_, beyond_, missing_raw_, output_count_;
+    int32_t started_, timed_, touched_;
+    uint64_t reserve_[4];
+} rampwise_stream_f32;
+
 /* The same in bytes, for memory that is not declared with the type; alignment that of a double and a pointer. */
 #define RAMPWISE_STREAM_BYTES (sizeof(rampwise_stream))
+#define RAMPWISE_STREAM_BYTES_F32 (sizeof(rampwise_stream_f32))
 
 RAMPWISE_BEGIN
 
@@ -189,6 +217,33 @@ RAMPWISE_API int rampwise_stream_attach(rampwise_stream *stream, rampwise_watch 
 RAMPWISE_API size_t rampwise_stream_saved_size(const rampwise_stream *stream);
 RAMPWISE_API int rampwise_stream_save(const rampwise_stream *stream, void *bytes, size_t count);
 RAMPWISE_API int rampwise_stream_resume(rampwise_stream *stream, const void *bytes, size_t count);
+
+/* The same in single precision. */
+RAMPWISE_API int rampwise_interval_make_f32(rampwise_interval_f32 *interval, const rampwise_coeffs_f32 *c,
+                                            uint64_t ticks, uint64_t interval_ticks);
+RAMPWISE_API int rampwise_stream_init_f32(rampwise_stream_f32 *stream, const rampwise_coeffs_f32 *c,
+                                          const rampwise_stream_options *options);
+RAMPWISE_API int rampwise_stream_start_f32(rampwise_stream_f32 *stream, const rampwise_state_f32 *s,
+                                           uint64_t number);
+RAMPWISE_API int rampwise_stream_put_f32(rampwise_stream_f32 *stream, size_t n, const float *p, float *out,
+                                         uint8_t *flags, size_t *bad);
+RAMPWISE_API int rampwise_stream_put_raw_f32(rampwise_stream_f32 *stream, size_t n, const int32_t *raw,
+                                             float *out, uint8_t *flags, size_t *bad);
+RAMPWISE_API int rampwise_stream_put_at_f32(rampwise_stream_f32 *stream, size_t n, const int64_t *t,
+                                            const float *p, float *out, uint8_t *flags, size_t *bad);
+RAMPWISE_API int rampwise_stream_put_raw_at_f32(rampwise_stream_f32 *stream, size_t n, const int64_t *t,
+                                                const int32_t *raw, float *out, uint8_t *flags, size_t *bad);
+RAMPWISE_API int rampwise_stream_skip_to_f32(rampwise_stream_f32 *stream, uint64_t number);
+RAMPWISE_API int rampwise_stream_read_f32(const rampwise_stream_f32 *stream, float *out, uint8_t *flags);
+RAMPWISE_API int rampwise_stream_state_f32(const rampwise_stream_f32 *stream, rampwise_state_f32 *s,
+                                           uint64_t *number);
+RAMPWISE_API int rampwise_stream_count_f32(const rampwise_stream_f32 *stream, rampwise_stream_counts *counts);
+RAMPWISE_API int rampwise_stream_retune_f32(rampwise_stream_f32 *stream, const rampwise_coeffs_f32 *c,
+                                            const rampwise_interval_f32 *intervals, size_t interval_count);
+RAMPWISE_API int rampwise_stream_attach_f32(rampwise_stream_f32 *stream, rampwise_watch_f32 *watch);
+RAMPWISE_API size_t rampwise_stream_saved_size_f32(const rampwise_stream_f32 *stream);
+RAMPWISE_API int rampwise_stream_save_f32(const rampwise_stream_f32 *stream, void *bytes, size_t count);
+RAMPWISE_API int rampwise_stream_resume_f32(rampwise_stream_f32 *stream, const void *bytes, size_t count);
 
 RAMPWISE_END
 

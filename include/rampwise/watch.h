@@ -85,6 +85,20 @@ typedef struct rampwise_watched {
     uint64_t begin;
 } rampwise_watched;
 
+typedef struct rampwise_instant_f32 {
+    uint64_t sample;
+    float value, fraction;
+} rampwise_instant_f32;
+
+typedef struct rampwise_peak_f32 {
+    rampwise_instant_f32 high, low;
+} rampwise_peak_f32;
+
+typedef struct rampwise_watched_f32 {
+    rampwise_instant_f32 at;
+    uint64_t begin;
+} rampwise_watched_f32;
+
 typedef struct rampwise_watch_options {
     size_t size; /* of this struct */
     rampwise_output output;
@@ -120,8 +134,8 @@ typedef struct rampwise_watch {
     rampwise_coeffs piece_;       /* of the usual step, where that has several pieces */
     rampwise_output output_;
     double row_[4], relative_[3]; /* over {u, v, p, p - p_before}; over motion against the base, and p */
-    double damping_, stiffness_, inertia_, dt_;
-    double now_; /* the value at the sample reached */
+    double damping_, stiffness_, inertia_, step_, dt_; /* step_: dt as real numbers are */
+    double now_;                                       /* the value at the sample reached */
     uint64_t sample_;
     rampwise_peak since_start_, since_reset_;
     struct rampwise_watch_queue_ high_, low_;
@@ -132,6 +146,38 @@ typedef struct rampwise_watch {
     uint64_t lost_, resets_;
     int32_t level_count_, number_, pieces_, input_, between_, jumps_, started_, reserve_;
 } rampwise_watch;
+
+/* In single precision. Options, events, reports and peaks read are the same; nothing in a step is double but the
+   numbers in an event. */
+struct rampwise_watch_queue_f32_ {
+    rampwise_watched_f32 *place;
+    size_t first, count;
+};
+
+struct rampwise_watch_level_f32_ {
+    float enter, leave, sign;
+    uint64_t passed, cycles;
+    int32_t beyond, latch, latched, reserve;
+};
+
+typedef struct rampwise_watch_f32 {
+    struct rampwise_watch_f32 *next_;
+    rampwise_coeffs_f32 piece_;
+    rampwise_output output_;
+    float row_[4], relative_[3];
+    float damping_, stiffness_, inertia_, step_;
+    double dt_;
+    float now_;
+    uint64_t sample_;
+    rampwise_peak_f32 since_start_, since_reset_;
+    struct rampwise_watch_queue_f32_ high_, low_;
+    size_t window_steps_;
+    struct rampwise_watch_level_f32_ level_[RAMPWISE_WATCH_LEVELS];
+    rampwise_event *events_;
+    size_t event_capacity_, event_first_, event_count_;
+    uint64_t lost_, resets_;
+    int32_t level_count_, number_, pieces_, input_, between_, jumps_, started_, reserve_;
+} rampwise_watch_f32;
 
 RAMPWISE_BEGIN
 
@@ -187,6 +233,28 @@ RAMPWISE_API int rampwise_watch_counts(const rampwise_watch *watch, uint64_t *lo
 RAMPWISE_API size_t rampwise_watch_saved_size(const rampwise_watch *watch);
 RAMPWISE_API int rampwise_watch_save(const rampwise_watch *watch, void *bytes, size_t count);
 RAMPWISE_API int rampwise_watch_resume(rampwise_watch *watch, const void *bytes, size_t count);
+
+/* The same in single precision. */
+RAMPWISE_API int rampwise_watch_init_f32(rampwise_watch_f32 *watch, const rampwise_coeffs_f32 *c,
+                                         const rampwise_watch_options *options);
+RAMPWISE_API int rampwise_watch_start_f32(rampwise_watch_f32 *watch, const rampwise_state_f32 *s,
+                                          uint64_t sample);
+RAMPWISE_API void rampwise_watch_step_f32(rampwise_watch_f32 *watch, const rampwise_coeffs_f32 *c,
+                                          const rampwise_state_f32 *before, const rampwise_state_f32 *after,
+                                          uint64_t sample, uint64_t samples, uint32_t flags);
+RAMPWISE_API int rampwise_watch_retune_f32(rampwise_watch_f32 *watch, const rampwise_coeffs_f32 *c,
+                                           const rampwise_state_f32 *now);
+RAMPWISE_API int rampwise_watch_peak_f32(const rampwise_watch_f32 *watch, int span, rampwise_peak *peak);
+RAMPWISE_API int rampwise_watch_reset_f32(rampwise_watch_f32 *watch);
+RAMPWISE_API int rampwise_watch_level_f32(const rampwise_watch_f32 *watch, size_t i,
+                                          rampwise_level_report *report);
+RAMPWISE_API int rampwise_watch_release_f32(rampwise_watch_f32 *watch, size_t i);
+RAMPWISE_API size_t rampwise_watch_events_f32(rampwise_watch_f32 *watch, size_t capacity,
+                                              rampwise_event *events);
+RAMPWISE_API int rampwise_watch_counts_f32(const rampwise_watch_f32 *watch, uint64_t *lost, uint64_t *resets);
+RAMPWISE_API size_t rampwise_watch_saved_size_f32(const rampwise_watch_f32 *watch);
+RAMPWISE_API int rampwise_watch_save_f32(const rampwise_watch_f32 *watch, void *bytes, size_t count);
+RAMPWISE_API int rampwise_watch_resume_f32(rampwise_watch_f32 *watch, const void *bytes, size_t count);
 
 RAMPWISE_END
 

@@ -100,38 +100,19 @@ int answer(mxArray **out, int status, size_t fault)
 
 /* ---- both ---- */
 
-rampwise_coeffs *make_coefficients(mxArray **out, const mxArray **in)
-{
-    const size_t n = count_systems(in[0]);
-    const double *const given = mxGetPr(in[0]), dt = scalar(in[1]);
-    const int input = integer(in[2]), between = integer(in[3]);
-    rampwise_coeffs *const c = mxCalloc(n + 1, sizeof *c);
-    for (size_t i = 0; i < n; ++i) {
-        const rampwise_system system = {given[3 * i], given[3 * i + 1], given[3 * i + 2]};
-        const int status = rampwise_coeffs_make(&c[i], &system, dt, input, between);
-        if (status != RAMPWISE_OK) {
-            answer(out, status, i + 1);
-            return NULL;
-        }
-    }
-    return c;
-}
+#define REAL double
+#define PRECISION(name) name
+#include "coefficients_body.h"
+#undef REAL
+#undef PRECISION
+#define REAL float
+#define PRECISION(name) name##_f32
+#include "coefficients_body.h"
 
-void want_histories(mxArray **out, const mxArray *wanted, size_t n, size_t columns)
+void want_histories(mxArray **out, const mxArray *wanted, mxClassID class, size_t n, size_t columns)
 {
     const double *const w = doubles(wanted, 4);
     for (int i = 0; i < 4; ++i)
         if (w[i] != 0)
-            out[2 + i] = matrix(n, columns);
-}
-
-static double *column(const mxArray *a, size_t n, size_t j)
-{
-    return mxIsEmpty(a) ? NULL : mxGetPr(a) + n * j;
-}
-
-rampwise_history histories(mxArray **out, size_t n, size_t j)
-{
-    return (rampwise_history){column(out[2], n, j), column(out[3], n, j), column(out[4], n, j),
-                              column(out[5], n, j)};
+            out[2 + i] = mxCreateNumericMatrix((mwSize)n, (mwSize)columns, class, mxREAL);
 }

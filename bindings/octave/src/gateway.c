@@ -45,6 +45,7 @@ static const struct command {
     {"objects", 0, 1, objects},
     {"peaks", 7, 3, peaks},
     {"response", 10, 6, response},
+    {"response_f32", 10, 6, response_f32},
     {"rigid_peaks", 4, 3, rigid_peaks},
     {"status_text", 1, 1, status_text},
     {"stream_make", 11, 3, stream_make},

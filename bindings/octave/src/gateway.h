@@ -34,6 +34,7 @@ void *memory(size_t bytes, size_t alignment);
 
 /* One set a system, from in[0..3]: systems, dt, input, between. NULL, with the answer given, where it fails. */
 rampwise_coeffs *make_coefficients(mxArray **out, const mxArray **in);
+rampwise_coeffs_f32 *make_coefficients_f32(mxArray **out, const mxArray **in);
 
 /* ---- what goes out ---- */
 
@@ -45,8 +46,9 @@ mxArray *empty(void);
 int answer(mxArray **out, int status, size_t fault);
 
 /* Room from out[2] on for the histories wanted, u, v, u'' and total; the others stay empty. And column j of them. */
-void want_histories(mxArray **out, const mxArray *wanted, size_t n, size_t columns);
+void want_histories(mxArray **out, const mxArray *wanted, mxClassID class, size_t n, size_t columns);
 rampwise_history histories(mxArray **out, size_t n, size_t j);
+rampwise_history_f32 histories_f32(mxArray **out, size_t n, size_t j);
 
 /* ---- objects that stay (objects.c) ---- */
 
@@ -66,7 +68,7 @@ void objects_clear(void);
 /* ---- commands ---- */
 
 typedef void command_call(mxArray **out, const mxArray **in);
-command_call coefficients, system_from, response, peaks, rigid_peaks, list_log, list_octaves;
+command_call coefficients, system_from, response, response_f32, peaks, rigid_peaks, list_log, list_octaves;
 command_call object_free, objects;
 command_call bank_make, bank_start, bank_run, bank_read, bank_set, bank_retune, bank_count;
 command_call stream_make, stream_put, stream_read, stream_start, stream_skip, stream_watch, stream_save,

@@ -45,82 +45,40 @@ void system_from(mxArray **out, const mxArray **in)
 
 /* ---- whole records ---- */
 
+/* response, response_f32: systems, dt, input, between, start, u0, v0, samples (of class double, single), wanted, times
+   (empty where regular) -> u, v, u'', total.
+   One column of answers for each system or column of samples; where both are many they go in pairs. */
 enum { AT_ONCE, BY_A_RAMP, SETTLED }; /* the starts of step.h */
 
-typedef struct whole {
-    size_t n, columns, systems;
-    const double *p, *t; /* t is NULL for regular samples */
-    const double *u0, *v0;
-    int start;
-    rampwise_coeffs *c;
-} whole;
-
-/* The first sample of a column, and the state there. */
-static int begin(const whole *w, size_t j, rampwise_state *s)
+/* The samples after the first; t holds the first's time too. */
+static int run_rest(const rampwise_coeffs *c, rampwise_state *s, size_t n, const double *t, const double *p,
+                    const rampwise_history *out, size_t *bad)
 {
-    const rampwise_coeffs *const c = &w->c[w->systems > 1 ? j : 0];
-    const double p0 = w->p[w->columns > 1 ? j * w->n : 0];
-    if (w->start == SETTLED)
-        return rampwise_start_settled(c, s, p0);
-    rampwise_start(s, w->u0[j], w->v0[j], w->start == AT_ONCE ? p0 : 0);
-    return RAMPWISE_OK;
+    if (t == NULL)
+        return rampwise_run(c, s, n, p, out, bad);
+    double last = t[0];
+    return rampwise_run_at(c, s, &last, n, t + 1, p, out, bad);
 }
 
-static int respond(const whole *w, size_t j, const rampwise_history *h, size_t *bad)
+/* There are no irregular times in single precision. */
+static int run_rest_f32(const rampwise_coeffs_f32 *c, rampwise_state_f32 *s, size_t n, const double *t,
+                        const float *p, const rampwise_history_f32 *out, size_t *bad)
 {
-    const rampwise_coeffs *const c = &w->c[w->systems > 1 ? j : 0];
-    const double *const p = w->p + (w->columns > 1 ? j * w->n : 0);
-    rampwise_state s;
-    *bad = 0;
-    int status = begin(w, j, &s);
-    if (status != RAMPWISE_OK)
-        return status;
-    if (w->start == BY_A_RAMP)
-        return rampwise_run(c, &s, w->n, p, h, bad);
-    if (w->t == NULL)
-        return rampwise_solve(c, s.u, s.v, w->n, p, h, bad);
-    /* Entry 0 is the initial state; its own call refuses a sample that is not finite. */
-    status = rampwise_solve(c, s.u, s.v, 1, p, h, bad);
-    if (status != RAMPWISE_OK || w->n < 2)
-        return status;
-    double last = w->t[0];
-    const rampwise_history rest = {h->u ? h->u + 1 : NULL, h->v ? h->v + 1 : NULL, h->a ? h->a + 1 : NULL,
-                                   h->total ? h->total + 1 : NULL};
-    status = rampwise_run_at(c, &s, &last, w->n - 1, w->t + 1, p + 1, &rest, bad);
-    *bad += status != RAMPWISE_OK;
-    return status;
+    (void)t;
+    return rampwise_run_f32(c, s, n, p, out, bad);
 }
 
-/* From in: systems, dt, input, between, start, u0, v0, samples, wanted, times (empty where regular).
-   One column of answers for each system or column of samples; where both are many they go in pairs. */
-void response(mxArray **out, const mxArray **in)
-{
-    whole w = {.n = mxGetM(real_double(in[7])), .columns = mxGetN(in[7]), .systems = count_systems(in[0])};
-    const size_t wide = w.systems > 1 ? w.systems : w.columns;
-    if (w.n == 0 || w.systems == 0 || (w.columns > 1 ? w.columns : wide) != wide || w.columns == 0)
-        refuse("systems and columns of samples must be as many, or one");
-    w.start = integer(in[4]);
-    w.u0 = doubles(in[5], wide);
-    w.v0 = doubles(in[6], wide);
-    w.p = mxGetPr(in[7]);
-    w.t = mxIsEmpty(in[9]) ? NULL : doubles(in[9], w.n);
-    if (w.start < AT_ONCE || w.start > SETTLED || (w.t != NULL && w.start == BY_A_RAMP))
-        refuse("no such start");
-    w.c = make_coefficients(out, in);
-    if (w.c == NULL)
-        return;
-    answer(out, RAMPWISE_OK, 0);
-    want_histories(out, in[8], w.n, wide);
-    for (size_t j = 0; j < wide; ++j) {
-        const rampwise_history h = histories(out, w.n, j);
-        size_t bad;
-        const int status = respond(&w, j, &h, &bad);
-        if (status != RAMPWISE_OK) {
-            answer(out, status, bad + 1 + (w.columns > 1 ? j * w.n : 0));
-            return;
-        }
-    }
-}
+#define REAL double
+#define CLASS mxDOUBLE_CLASS
+#define PRECISION(name) name
+#include "response_body.h"
+#undef REAL
+#undef CLASS
+#undef PRECISION
+#define REAL float
+#define CLASS mxSINGLE_CLASS
+#define PRECISION(name) name##_f32
+#include "response_body.h"
 
 /* ---- peaks ---- */
 

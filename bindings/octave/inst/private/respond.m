@@ -1,5 +1,6 @@
 ## respond (CALLER, T, P, DT, OPTIONS): the histories under P, at the times T where that is not empty.
 function r = respond (caller, t, p, dt, options)
+  in_single = isa (p, "single") && isempty (t);
   p = samples (caller, p);
   s = systems (caller, options);
   [input, between] = kinds (caller, options);
@@ -15,8 +16,13 @@ function r = respond (caller, t, p, dt, options)
     error ("rampwise:option", "%s: 'displacement' and 'velocity' belong to the start 'at once'", caller);
   endif
   r = struct ("time", t);
+  command = "response";
+  if (in_single)
+    command = "response_f32";
+    p = single (p);
+  endif
   [status, fault, r.displacement, r.velocity, r.acceleration, r.total_acceleration] = ...
-    __rampwise__ ("response", s, dt, input, between, start, u0, v0, p, ones (1, 4), t);
+    __rampwise__ (command, s, dt, input, between, start, u0, v0, p, ones (1, 4), t);
   check (caller, status, fault, size (p));
   r.provenance = provenance ();
 endfunction
