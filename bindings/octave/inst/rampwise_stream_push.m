@@ -34,10 +34,10 @@ function h = rampwise_stream_push (stream, p, t = [])
     check (caller, status, fault, size (p(:)));
   endif
   h = cell2struct (num2cell (frames.', 1), stream.outputs, 2);
-  h.started = logical (bitand (flags, 1));
-  h.clipped = logical (bitand (flags, 2));
-  h.bridged = logical (bitand (flags, 4));
-  h.waiting = logical (bitand (flags, 8));
+  names = {"started", "clipped", "bridged", "waiting"};
+  for i = 1:4
+    h.(names{i}) = bitand (flags, 2 ^ (i - 1)) != 0;
+  endfor
 endfunction
 
 function t = stamps (caller, t, n)
