@@ -31,8 +31,8 @@ function h = rampwise_fourway (s, units = {"", "", "", ""})
   across = decades (T);
   up = decades (V(:));
   ## On axes that the lines were drawn into first, the curves lie over them.
-  set (gca (), "xscale", "log", "yscale", "log", "nextplot", "add", "box", "on", "layer", "top", "gridcolor", [0.85, 0.85, 0.85],
-       "xlim", across, "ylim", up, "plotboxaspectratio", [diff(log10 (across)), diff(log10 (up)), 1]);
+  set (gca (), "xscale", "log", "yscale", "log", "nextplot", "add", "box", "on", "layer", "top",
+       "gridcolor", [0.85, 0.85, 0.85], "xlim", across, "ylim", up, "plotboxaspectratio", [diff(log10 (across)), diff(log10 (up)), 1]);
   grid ("on");
   slanted (across, up, 1, units{4});
   slanted (across, up, -1, units{2});

@@ -3,8 +3,8 @@
 ## The exact response of oscillators to the samples @var{p} at the times @var{t}, which may be any distance apart.
 ##
 ## @var{t} is a vector of as many times, strictly increasing, as @var{p} has rows. All else, options included, is as in
-## @code{rampwise_response}, but single samples are taken as doubles, which is exact; the start is "at once" or "settled". Steps as long as the median interval of @var{t} are the
-## quickest.
+## @code{rampwise_response}, but the start is "at once" or "settled", and single samples are taken as doubles, which is
+## exact. Steps as long as the median interval of @var{t} are the quickest.
 ##
 ## @code{time} of @var{r} is @var{t} as a column.
 ## @seealso{rampwise_response}

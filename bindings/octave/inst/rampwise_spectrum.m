@@ -5,8 +5,9 @@
 ## at the first sample, true between the samples too.
 ##
 ## @var{p} is a vector, or a matrix of a column each channel. Exactly one of "period", "frequency" and "omega" is
-## given, a vector, and "damping", the damping ratios, 0.05 unless given. Results are arrays of a row each period, a column each damping
-## ratio, and a page each channel. Period 0, or an infinite frequency, is the rigid mass that goes with its base.
+## given, a vector, and "damping", the damping ratios, 0.05 unless given. Results are arrays of a row each period, a
+## column each damping ratio, and a page each channel. Period 0, or an infinite frequency, is the rigid mass that goes
+## with its base.
 ##
 ## Further options:
 ##
