@@ -37,10 +37,11 @@ void random_fill(gsl_rng *r, double *x, size_t n)
 
 void random_whisper(gsl_rng *r, double *x, size_t n)
 {
-    for (size_t i = 0; i < n; ++i)
-        x[i] = gsl_rng_uniform_int(r, 3) == 0
-                   ? 0
-                   : ldexp(random_between(r, -1, 1), -908 + (int)gsl_rng_uniform_int(r, 16));
+    for (size_t i = 0; i < n; ++i) {
+        const int is_zero = gsl_rng_uniform_int(r, 3) == 0;
+        const int exponent = -908 + (int)gsl_rng_uniform_int(r, 16);
+        x[i] = is_zero ? 0 : ldexp(random_between(r, -1, 1), exponent);
+    }
 }
 
 void random_record(gsl_rng *r, double *p, int n)
