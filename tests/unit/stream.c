@@ -1,5 +1,6 @@
 /* Streams: the bits of rampwise_run for any cutting into blocks and of rampwise_run_at over irregular or missing
    samples; policies, rails, raw integers, stamps, numbers, retuning, saving, refusals. */
+#include <fenv.h>
 #include <float.h>
 #include <math.h>
 #include <stdint.h>
@@ -526,6 +527,28 @@ START_TEST(overflow)
 }
 END_TEST
 
+/* Rounding and, on x86-64, masks and flushing of subnormal numbers. */
+static unsigned control(void)
+{
+#if defined(__x86_64__)
+    return (__builtin_ia32_stmxcsr() & ~0x3fu) + (unsigned)fegetround();
+#else
+    return (unsigned)fegetround();
+#endif
+}
+
+START_TEST(floating_point_environment)
+{
+    const rampwise_stream_options o = options_of_four();
+    const double p[4] = {1, NAN, 1e-310, 2};
+    const int64_t t[4] = {1, 2, 5, 900};
+    const unsigned before = control();
+    rampwise_stream stream = stream_of(plain(), &o);
+    ck_assert_int_eq(rampwise_stream_put_at(&stream, 4, t, p, NULL, NULL, NULL), RAMPWISE_OK);
+    ck_assert_uint_eq(control(), before);
+}
+END_TEST
+
 START_TEST(refused_options)
 {
     rampwise_stream stream;
@@ -701,6 +724,7 @@ static void add_tests(TCase *tests)
     tcase_add_test(tests, retuning);
     tcase_add_test(tests, named_outputs);
     tcase_add_test(tests, overflow);
+    tcase_add_test(tests, floating_point_environment);
     tcase_add_test(tests, refused_options);
     tcase_add_test(tests, saved_and_resumed);
     tcase_add_test(tests, damaged_bytes);
