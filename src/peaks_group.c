@@ -297,3 +297,34 @@ rampwise_peak rampwise_group_peak_(const kernels *k, const peaks_group *g, size_
         rampwise_extremes_after_(&x, &s, sample, &peak);
     return peak;
 }
+
+void rampwise_group_get_(const peaks_group *g, size_t lane, group_lane *x)
+{
+    memset(x, 0, sizeof *x);
+    x->c = g->c[lane];
+    x->u = g->lanes.u[lane];
+    x->v = g->lanes.v[lane];
+    x->stopped = g->stopped[lane];
+    for (size_t q = 0; q < g->quantity_count; ++q) {
+        x->peak[q] = g->peak[q][lane];
+        x->high[q] = g->high[q][lane];
+        x->low[q] = g->low[q][lane];
+    }
+}
+
+void rampwise_group_put_(peaks_group *g, size_t lane, const group_lane *x)
+{
+    g->lanes.u[lane] = x->u;
+    g->lanes.v[lane] = x->v;
+    g->stopped[lane] = (unsigned char)x->stopped;
+    if (x->stopped)
+        rampwise_lane_still_(&g->lanes, lane);
+    else
+        rampwise_lane_set_(&g->lanes, lane, &g->c[lane]);
+    for (size_t q = 0; q < g->quantity_count; ++q) {
+        g->peak[q][lane] = x->peak[q];
+        g->high[q][lane] = x->high[q];
+        g->low[q][lane] = x->low[q];
+        raise_floors(g, lane, q);
+    }
+}

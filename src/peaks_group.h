@@ -55,6 +55,20 @@ void rampwise_segment_make_(segment *along, uint64_t sample, double p_before, do
 
 void rampwise_group_run_(const kernels *k, peaks_group *g, const segment *along);
 
+/* Everything of one lane that cannot be made of what the object was made with. */
+typedef struct group_lane {
+    rampwise_coeffs c;
+    double u, v;
+    int stopped;
+    rampwise_peak peak[3];
+    candidate high[3], low[3];
+} group_lane;
+
+void rampwise_group_get_(const peaks_group *g, size_t lane, group_lane *x);
+
+/* The other way, after rampwise_group_make_ with its coefficients. */
+void rampwise_group_put_(peaks_group *g, size_t lane, const group_lane *x);
+
 /* The peak of one lane as rampwise_peaks_get answers it. */
 rampwise_peak rampwise_group_peak_(const kernels *k, const peaks_group *g, size_t lane, size_t q,
                                    unsigned flags, double p_before, double p, uint64_t sample);

@@ -27,7 +27,8 @@ enum {
     SAVED_WATCH_F32 = 4,
     SAVED_BANK = 5,
     SAVED_PEAKS = 6,
-    SAVED_MODES = 7
+    SAVED_MODES = 7,
+    SAVED_BANK_F32 = 8
 };
 
 typedef struct saved_kind {
