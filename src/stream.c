@@ -142,8 +142,8 @@ static real unless(int condition, real x)
     return x;
 }
 
-/* The step of step.h, bit for bit, with masks where compilers make branches of the rule of silence: every sample
-   takes the same instructions. */
+/* The step of step.h, bit for bit, with masks where compilers make branches of the rule of silence: every
+   sample takes the same instructions. */
 static void step_evenly(const real_coeffs *c, real_state *s, real p)
 {
 #ifdef SINGLE_PRECISION
@@ -307,6 +307,7 @@ static int take_one(real_stream *x, const block *in, size_t i, real *out)
     else
         x->time_ += x->timed_ ? x->ticks_ : 0;
     x->timed_ = 1;
+    x->flags_ = flags;
     return flags;
 }
 
@@ -455,7 +456,7 @@ int PUBLIC(stream_start)(real_stream *stream, const real_state *s, uint64_t numb
     if (s != NULL && !state_is_finite(s))
         return RAMPWISE_ERROR_STATE;
     stream->run_ = stream->pending_ = stream->time_ = 0;
-    stream->timed_ = stream->touched_ = 0;
+    stream->timed_ = stream->touched_ = stream->flags_ = 0;
     stream->started_ = s != NULL;
     stream->counts_.next = number;
     if (s == NULL)
@@ -480,7 +481,7 @@ int PUBLIC(stream_read)(const real_stream *stream, real *out, uint8_t *flags)
     if (out != NULL)
         memcpy(out, frame, (size_t)stream->output_count_ * sizeof *out);
     if (flags != NULL)
-        *flags = stream->run_ > 0 ? (uint8_t)show_missing(stream, frame) : (uint8_t)stream->touched_;
+        *flags = (uint8_t)(stream->run_ > 0 ? show_missing(stream, frame) : stream->flags_);
     return RAMPWISE_OK;
 }
 
@@ -535,6 +536,9 @@ int PUBLIC(stream_attach)(real_stream *stream, real_watch *watch)
     const int status = PRIVATE(watch_tunable)(watch, &stream->c_);
     if (status != RAMPWISE_OK)
         return status;
+    for (const real_watch *w = stream->watches_; w != NULL; w = w->next_)
+        if (w == watch)
+            return RAMPWISE_OK;
     watch->next_ = stream->watches_;
     stream->watches_ = watch;
     return stream->started_ ? PUBLIC(watch_start)(watch, &stream->s_, stream->sample_) : RAMPWISE_OK;
@@ -576,8 +580,8 @@ static void pass_stream(saved *s, void *object)
     for (size_t i = 0; i < sizeof wide / sizeof *wide; ++i)
         rampwise_saved_uint64_(s, wide[i]);
     pass_counts(s, &x->counts_);
-    int32_t *const numbers[] = {&x->start_,        &x->missing_, &x->beyond_, &x->missing_raw_,
-                                &x->output_count_, &x->started_, &x->timed_,  &x->touched_};
+    int32_t *const numbers[] = {&x->start_,   &x->missing_, &x->beyond_,  &x->missing_raw_, &x->output_count_,
+                                &x->started_, &x->timed_,   &x->touched_, &x->flags_};
     for (size_t i = 0; i < sizeof numbers / sizeof *numbers; ++i)
         saved_int(s, numbers[i]);
 }

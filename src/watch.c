@@ -160,8 +160,8 @@ static void note(real_peak *peak, real_instant at)
         peak->low = at;
 }
 
-/* Where the series meets `edge` between low and high, over which it is monotone: Newton's steps, halving where one
-   leaves the bracket, and every other time when eight have not ended it. */
+/* Where the series meets `edge` between low and high, over which it is monotone: Newton's steps, halving where
+   one leaves the bracket, and every other time when eight have not ended it. */
 static real meeting(const series *s, real low, real high, real edge, int rising)
 {
     real x = (low + high) / 2, second;
@@ -217,7 +217,8 @@ static int is_monotone(const derivatives *begin, const derivatives *end, real le
            (!opposite(begin->z2, end->z2) || (a < b ? a : b) > 2 * length * (c > d ? c : d));
 }
 
-/* From `*from` up to x, by way of the zero of the slope between, if there is one; *from and *z become x and z_end. */
+/* From `*from` up to x, by way of the zero of the slope between, if there is one; *from and *z become x and
+   z_end. */
 static void up_to(passage *at, const series *s, real *from, real *z, real x, real z_end)
 {
     real second;
@@ -307,8 +308,9 @@ static real_watched *place_of(const queue *q, size_t steps, size_t i)
     return &q->place[place < steps ? place : place - steps];
 }
 
-/* The greatest (sign 1) or least (-1) value of each step that no later one outdoes, the oldest first: values fall. Steps
-   that begin before `oldest` leave, the one that ended now joins, and those it outdoes are found by halving. */
+/* The greatest (sign 1) or least (-1) value of each step that no later one outdoes, the oldest first: values
+   fall. Steps that begin before `oldest` leave, the one that ended now joins, and those it outdoes are found
+   by halving. */
 static void join(queue *q, size_t steps, real sign, uint64_t oldest, real_instant at, uint64_t begin)
 {
     while (q->count > 0 && place_of(q, steps, 0)->begin < oldest) {

@@ -1,6 +1,6 @@
-/* Banks in both precisions and peaks as bytes: what is resumed goes on with the same bits, on every set of instructions,
-   stopped oscillators too; damaged bytes and those of other objects are refused and change nothing. Streams and watches
-   are in tests of their own. */
+/* Banks in both precisions and peaks as bytes: what is resumed goes on with the same bits, on every set of
+   instructions, stopped oscillators too; damaged bytes and those of other objects are refused and change
+   nothing. Streams and watches are in tests of their own. */
 #include <math.h>
 #include <stdint.h>
 #include <string.h>

@@ -1,5 +1,5 @@
-/* Streams and watches in single precision: the bits of rampwise_run_f32, bridges by coefficients made for them, saving;
-   a watch beside the same one in double. */
+/* Streams and watches in single precision: the bits of rampwise_run_f32, bridges by coefficients made for
+   them, saving; a watch beside the same one in double. */
 #include <float.h>
 #include <math.h>
 #include <stdint.h>
@@ -122,8 +122,9 @@ START_TEST(bridges_and_saving)
 }
 END_TEST
 
-/* Both streams see the same floats. Single precision is off by some 1e-6 of the largest value (tests/unit/single.c), 2e-5
-   leaves room; nine crossings of ten, those that are not nearly touches, agree within 1e-3 of a step. Crossings are counted behind a hysteresis that both errors together cannot bridge. */
+/* Both streams see the same floats. Single precision is off by some 1e-6 of the largest value
+   (tests/unit/single.c), 2e-5 leaves room; nine crossings of ten, those that are not nearly touches, agree
+   within 1e-3 of a step. Crossings are counted behind a hysteresis that both errors together cannot bridge. */
 START_TEST(watch_beside_double)
 {
     gsl_rng *const r = random_make("watch_beside_double");

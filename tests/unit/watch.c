@@ -1,5 +1,5 @@
-/* Watches: tables of levels, hysteresis and latch; queues, windows, resets, saving, refusals. What lies between samples is
-   checked against quad precision in tests/property/watch_exact.c. */
+/* Watches: tables of levels, hysteresis and latch; queues, windows, resets, saving, refusals. What lies
+   between samples is checked against quad precision in tests/property/watch_exact.c. */
 #include <float.h>
 #include <math.h>
 #include <stdint.h>
@@ -44,6 +44,7 @@ static void bench_make(bench *b, rampwise_level level)
     ck_assert_int_eq(rampwise_stream_init(&b->stream, &b->c, &o), RAMPWISE_OK);
     ck_assert_int_eq(rampwise_watch_init(&b->watch, &b->c, &w), RAMPWISE_OK);
     ck_assert_int_eq(rampwise_stream_attach(&b->stream, &b->watch), RAMPWISE_OK);
+    ck_assert_int_eq(rampwise_stream_attach(&b->stream, &b->watch), RAMPWISE_OK); /* is attached already */
 }
 
 static void put(bench *b, double p)
@@ -238,8 +239,8 @@ START_TEST(resets)
 }
 END_TEST
 
-/* With w dt = 10 a step has 16 pieces, a bridge over 6 samples 128: it is passed over, counted and told, the spans
-   begin anew, and the level sees its end. A bridge over 3 has 64. */
+/* With w dt = 10 a step has 16 pieces, a bridge over 6 samples 128: it is passed over, counted and told, the
+   spans begin anew, and the level sees its end. A bridge over 3 has 64. */
 START_TEST(too_long_a_bridge)
 {
     rampwise_stream_options o;
