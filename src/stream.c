@@ -286,7 +286,8 @@ static int show_missing(const real_stream *x, real *out)
             out[i] = (real)NAN;
     else
         (void)outputs_at(x, &x->s_, out);
-    return x->started_ && x->pending_ == 0 ? RAMPWISE_BRIDGED : RAMPWISE_WAITING;
+    const int held = x->started_ && x->missing_ == RAMPWISE_GAP_HOLD && x->run_ <= x->longest_;
+    return held ? RAMPWISE_BRIDGED : RAMPWISE_WAITING;
 }
 
 /* Sample i of a block; its flags, or -1 where it overflows. */

@@ -308,15 +308,25 @@ static real_watched *place_of(const queue *q, size_t steps, size_t i)
     return &q->place[place < steps ? place : place - steps];
 }
 
-/* The greatest (sign 1) or least (-1) value of each step that no later one outdoes, the oldest first: values
-   fall. Steps that begin before `oldest` leave, the one that ended now joins, and those it outdoes are found
-   by halving. */
-static void join(queue *q, size_t steps, real sign, uint64_t oldest, real_instant at, uint64_t begin)
+/* Steps that begin before `oldest` leave. Steps are in the order of time. */
+static void leave(queue *q, size_t steps, uint64_t oldest)
 {
-    while (q->count > 0 && place_of(q, steps, 0)->begin < oldest) {
-        q->first = q->first + 1 < steps ? q->first + 1 : 0;
-        --q->count;
+    size_t low = 0, high = q->count;
+    while (low < high) {
+        const size_t middle = low + (high - low) / 2;
+        if (place_of(q, steps, middle)->begin < oldest)
+            low = middle + 1;
+        else
+            high = middle;
     }
+    q->first = q->first + low < steps ? q->first + low : q->first + low - steps;
+    q->count -= low;
+}
+
+/* The greatest (sign 1) or least (-1) value of each step that no later one outdoes, the oldest first: values
+   fall. The step that ended now joins, in place of those it outdoes. */
+static void join(queue *q, size_t steps, real sign, real_instant at, uint64_t begin)
+{
     size_t low = 0, high = q->count;
     while (low < high) {
         const size_t middle = low + (high - low) / 2;
@@ -486,8 +496,10 @@ static void keep(real_watch *w, const passage *at)
     note(&w->since_reset_, at->peak.low);
     if (w->window_steps_ > 0) {
         const uint64_t oldest = w->sample_ > w->window_steps_ ? w->sample_ - w->window_steps_ : 0;
-        join(&w->high_, w->window_steps_, 1, oldest, at->peak.high, at->sample);
-        join(&w->low_, w->window_steps_, -1, oldest, at->peak.low, at->sample);
+        leave(&w->high_, w->window_steps_, oldest);
+        leave(&w->low_, w->window_steps_, oldest);
+        join(&w->high_, w->window_steps_, 1, at->peak.high, at->sample);
+        join(&w->low_, w->window_steps_, -1, at->peak.low, at->sample);
     }
 }
 

@@ -7,13 +7,11 @@
    - Samples are numbered from 0, or from what rampwise_stream_start says; missing ones have numbers too. At a
      fixed rate a stream has the bits of rampwise_run on the same samples, however they are cut into blocks.
    - Stamps are whole numbers of a tick, `ticks` of which make one dt: for nanoseconds and dt = 0.005 s, ticks
-   is
-     5,000,000. A step is as long as its two stamps say. Steps of exactly one dt have the fixed rate's bits;
-     others are dt ticks' / ticks long, rounded once, and have the bits of rampwise_run_at where that sees the
-     same intervals (outputs that contain p - p_before: up to the last digits).
-   - A sample is missing where it is NaN or infinite, where a raw one is missing_raw, where stamps are further
-   apart
-     than one and a half dt (as many as fit, rounded), and where rampwise_stream_skip_to says so.
+     is 5,000,000. A step is as long as its two stamps say. Steps of exactly one dt have the fixed rate's bits;
+     others are dt d / ticks long for stamps d apart, rounded once, and have the bits of rampwise_run_at where
+     that sees the same intervals (outputs that contain p - p_before: up to the last digits).
+   - A sample is missing where it is NaN or infinite, where a raw one is missing_raw, where stamps are one and a
+     half dt apart or more (as many as fit, rounded), and where rampwise_stream_skip_to says so.
      RAMPWISE_GAP_BRIDGE: nothing happens until the next good sample, then one exact step over all of them
      under one straight (or held) load. A block's outputs and reads give the values of the last good sample.
      RAMPWISE_GAP_HOLD: each missing sample is a step under the last good load; outputs are that response.
@@ -27,8 +25,8 @@
    Errors: a call that reports one has changed nothing, but for RAMPWISE_ERROR_OVERFLOW, as in record.h: the
    samples before `bad` were taken, and the state is the last finite one.
 
-   Work a sample: at a fixed rate one step, 4 fused multiply-adds an output, the watches' work, and nothing that
-   depends on the data. An interval of another length is looked for in the last one, in the
+   Work a sample: at a fixed rate one step, 3 fused multiply-adds an output, the watches' work, and beside theirs
+   nothing that depends on the data. An interval of another length is looked for in the last one, then in the
    caller's prepared table (one comparison an entry), and else costs one making of coefficients
    (coefficients.h). With RAMPWISE_GAP_HOLD a jump over k missing samples takes the smaller of k and `longest`
    steps. After a stream is made: no allocation, lock, system call or unbounded loop; the floating-point
@@ -146,8 +144,7 @@ typedef struct rampwise_stream_f32 {
     uint64_t reserve_[3];
 } rampwise_stream_f32;
 
-/* The same in bytes, for memory that is not declared with the type; alignment that of a double and a pointer.
-   */
+/* The same in bytes, for memory that is not declared with the type; aligned as doubles and pointers are. */
 #define RAMPWISE_STREAM_BYTES (sizeof(rampwise_stream))
 #define RAMPWISE_STREAM_BYTES_F32 (sizeof(rampwise_stream_f32))
 
@@ -193,8 +190,7 @@ RAMPWISE_API int rampwise_stream_put_raw_at(rampwise_stream *stream, size_t n, c
                                             const int32_t *raw, double *out, uint8_t *flags, size_t *bad);
 
 /* The samples before `number` are missing: a gap in the sender's sequence, or a flag on one sample.
-   RAMPWISE_ERROR_MISSING; _TIME (number lies before the expected one); _GAP (RAMPWISE_GAP_REFUSE); _OVERFLOW.
-   */
+   RAMPWISE_ERROR_MISSING; _TIME (it lies before the expected one); _GAP (RAMPWISE_GAP_REFUSE); _OVERFLOW. */
 RAMPWISE_API int rampwise_stream_skip_to(rampwise_stream *stream, uint64_t number);
 
 /* The outputs as they stand, out[output_count], and their flags: either may be NULL. While samples are missing

@@ -3,10 +3,10 @@
    A watch looks at one output (output.h) of one oscillator and is told every step, by a stream (stream.h) that
    it is attached to or by rampwise_watch_step. It keeps
 
-   - the greatest and the least value since the start, since the last reset, and over the last whole steps;
-   - for up to four levels: whether the response is beyond, the crossings up and down with their exact
-   instants, a
-     latch, and counts;
+   - the greatest and the least value since the start, since the last reset, and over the last whole steps (a bridge
+     that is longer counts as a whole);
+   - for up to four levels: whether the response is beyond, the crossings up and down with their exact instants,
+     a latch, and counts;
    - a queue of events in the caller's memory.
 
    Inside a step the response is a line plus a free vibration. A step is cut into pieces so short that the
@@ -19,7 +19,7 @@
    Work a step: one piece for each radian of w dt or unit of c dt/m, whichever are more, as a power of two, 64
    at most. A piece has at most two extremes and, for each level, three crossings; one of them costs at most 100
    evaluations of a polynomial of degree 24, and most steps have none: some tens of operations. A window costs
-   2 log2(steps) + 6 comparisons. A step of another length than the coefficients' that needs more than one piece
+   4 log2(steps) comparisons and some. A step of another length than the coefficients' that needs more than one piece
    costs one making of coefficients. A step that would need more than 64 pieces (a long gap in a stream) is
    not looked into: the watch is reset, the reset is counted, and levels see the value at its end.
 
