@@ -686,12 +686,11 @@ START_TEST(damaged_bytes)
 
     rampwise_stream other = stream_of(plain(), &o);
     const rampwise_stream before = other;
-    for (size_t i = 0; i < size; ++i)
-        for (int bit = 0; bit < 8; ++bit) {
-            memcpy(copy, bytes, size);
-            copy[i] ^= (unsigned char)(1 << bit);
-            ck_assert_int_eq(rampwise_stream_resume(&other, copy, size), RAMPWISE_ERROR_DAMAGED);
-        }
+    for (size_t i = 0; i < size; ++i) {
+        memcpy(copy, bytes, size);
+        copy[i] ^= (unsigned char)(1 << i % 8);
+        ck_assert_int_eq(rampwise_stream_resume(&other, copy, size), RAMPWISE_ERROR_DAMAGED);
+    }
     for (size_t count = 0; count < size; ++count)
         ck_assert_int_eq(rampwise_stream_resume(&other, bytes, count), RAMPWISE_ERROR_DAMAGED);
     static const struct {
