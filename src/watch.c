@@ -137,7 +137,7 @@ static void pass(real_watch *w, int i, real_instant when, uint32_t flags)
     level->beyond = !level->beyond;
     level->passed += (uint64_t)level->beyond;
     level->cycles += (uint64_t)!level->beyond;
-    level->latched |= level->latch & level->beyond;
+    level->latched |= level->latch;
     tell(w, RAMPWISE_EVENT_LEVEL, i, (level->sign > 0) == (level->beyond != 0) ? 1 : -1, when, flags);
 }
 

@@ -8,7 +8,7 @@
 #include "../support/quad_response.h"
 #include "../support/suite.h"
 
-enum { N = 44, W = 5, EVENTS = 1000, SCAN = 5 };
+enum { N = 30, W = 5, EVENTS = 1000, SCAN = 5 };
 
 typedef struct worst {
     double peak, instant;

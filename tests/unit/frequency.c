@@ -10,9 +10,14 @@
 
 static const double pi = 3.14159265358979323846;
 
+static double complex number(double re, double im)
+{
+    return re + im * I;
+}
+
 static double complex polar(rampwise_response r)
 {
-    return r.gain * cexp(CMPLX(0, r.phase));
+    return r.gain * cexp(number(0, r.phase));
 }
 
 static rampwise_output named(int quantity)
@@ -72,7 +77,7 @@ START_TEST(a_tone_that_was_run)
             ck_assert_int_eq(rampwise_stream_state(&part[0], &s, NULL), RAMPWISE_OK);
             terms = fabs(row[0]) * hypot(s.u, s.v * c.dt) + fabs(row[1]) * hypot(s.v, s.u / c.dt) +
                     fabs(row[2]) + fabs(row[3]) + got.gain;
-            const double complex want = CMPLX(out[0][q], out[1][q]) / CMPLX(p[0], p[1]);
+            const double complex want = number(out[0][q], out[1][q]) / number(p[0], p[1]);
             ck_assert_msg(cabs(polar(got) - want) <= 1e-11 * terms, "kind %d quantity %d: %g of %g", i % 6,
                           quantities[q], cabs(polar(got) - want), terms);
         }
@@ -99,7 +104,7 @@ START_TEST(sum_of_images)
             ck_assert_int_eq(rampwise_frequency_response(&c, &u, fabs(w), NULL, &one), RAMPWISE_OK);
             const double complex answer = w < 0 ? conj(polar(one)) : polar(one);
             const double sinc = sin(x) / x;
-            all += answer * (hold ? sinc * cexp(CMPLX(0, -x)) : sinc * sinc);
+            all += answer * (hold ? sinc * cexp(number(0, -x)) : sinc * sinc);
         }
         rampwise_response got;
         ck_assert_int_eq(rampwise_frequency_response(&c, &u, omega, &got, NULL), RAMPWISE_OK);

@@ -22,7 +22,7 @@ static void make_oscillators(rampwise_coeffs *c, int n, int kind, double faster)
 static void check_refusals(int (*resume)(void *object, const void *bytes, size_t count), void *object,
                            unsigned char *bytes, size_t size)
 {
-    for (size_t i = 0; i < size; i += 1 + size / 100) {
+    for (size_t i = 0; i < size; i += 1 + size / 40) {
         bytes[i] ^= 0x10;
         ck_assert_int_eq(resume(object, bytes, size), RAMPWISE_ERROR_DAMAGED);
         bytes[i] ^= 0x10;
@@ -84,8 +84,8 @@ START_TEST(banks)
         rampwise_bank *larger;
         rampwise_peaks *peaks;
         const int u = RAMPWISE_DISPLACEMENT;
-        c[n] = c[0];
         if (n < MOST) {
+            c[n] = c[0];
             ck_assert_int_eq(rampwise_bank_create((size_t)n + 1, c, set, &larger), RAMPWISE_OK);
             ck_assert_int_eq(rampwise_bank_resume(larger, bytes, size), RAMPWISE_ERROR_DAMAGED);
             rampwise_bank_free(larger);

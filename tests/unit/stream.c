@@ -128,7 +128,7 @@ START_TEST(bridges_are_exact)
     gsl_rng *const r = random_make("bridges_are_exact");
     double p[N], out[OUTPUTS];
     int missing[N];
-    for (int i = 0; i < KINDS * WAYS * 4; ++i) {
+    for (int i = 0; i < KINDS * WAYS * 2; ++i) {
         const int kind = i % KINDS, way = i / KINDS % WAYS;
         const rampwise_coeffs c = regime_coeffs(i % 6, kind, random_log(r, 1e-2, 2), dt);
         rampwise_stream_options o = options_of_four();
@@ -210,7 +210,7 @@ START_TEST(stamps)
 {
     gsl_rng *const r = random_make("stamps");
     static const int64_t origins[] = {0, -77777, INT64_MAX - 1024 * (N + 1), INT64_MIN};
-    for (int i = 0; i < KINDS * 8; ++i) {
+    for (int i = 0; i < KINDS * 4; ++i) {
         const rampwise_coeffs c = regime_coeffs(i % 6, i % KINDS, random_log(r, 1e-2, 2), dt);
         const int64_t origin = origins[i / KINDS % 4];
         const int jitter = i % 3;
@@ -360,6 +360,49 @@ START_TEST(beyond_the_longest_gap)
     ck_assert_int_eq(rampwise_stream_start(&stream, NULL, 5), RAMPWISE_OK);
     ck_assert_int_eq(rampwise_stream_put(&stream, 1, p + 5, NULL, NULL, NULL), RAMPWISE_OK);
     check_state(&stream, &s, 5);
+}
+END_TEST
+
+/* Held steps end after the longest gap, and the values wait. */
+START_TEST(held_no_longer)
+{
+    rampwise_stream_options o = options_of_four();
+    o.missing = RAMPWISE_GAP_HOLD;
+    o.longest = 3;
+    const double p[6] = {1, NAN, NAN, NAN, NAN, NAN};
+    double out[6][OUTPUTS];
+    uint8_t flags[6];
+    rampwise_state s;
+    rampwise_stream stream = stream_of(plain(), &o);
+    ck_assert_int_eq(rampwise_stream_put(&stream, 6, p, out[0], flags, NULL), RAMPWISE_OK);
+    rampwise_start(&s, 0, 0, 1);
+    for (int i = 1; i < 6; ++i) {
+        if (i <= 3)
+            rampwise_step(plain(), &s, 1);
+        ck_assert(out[i][0] == s.u && flags[i] == (i <= 3 ? RAMPWISE_BRIDGED : RAMPWISE_WAITING));
+    }
+    check_state(&stream, &s, 3);
+}
+END_TEST
+
+/* Stamps count as a gap from one and a half dt on. */
+START_TEST(how_many_fit)
+{
+    static const int64_t apart[] = {1, 1023, 1024, 1535, 1536, 2048, 2559, 2560};
+    static const uint64_t missing[] = {0, 0, 0, 0, 1, 1, 1, 2};
+    rampwise_stream_options o = options_of_four();
+    o.ticks = 1024;
+    for (int i = 0; i < 8; ++i) {
+        rampwise_stream stream = stream_of(plain(), &o);
+        const int64_t t[2] = {5, 5 + apart[i]};
+        const double p[2] = {1, 2};
+        rampwise_stream_counts counts;
+        ck_assert_int_eq(rampwise_stream_put_at(&stream, 2, t, p, NULL, NULL, NULL), RAMPWISE_OK);
+        ck_assert_int_eq(rampwise_stream_count(&stream, &counts), RAMPWISE_OK);
+        ck_assert_uint_eq(counts.missing, missing[i]);
+        ck_assert_uint_eq(counts.bridges, missing[i] > 0);
+        ck_assert_uint_eq(counts.next, 2 + missing[i]);
+    }
 }
 END_TEST
 
@@ -723,6 +766,8 @@ static void add_tests(TCase *tests)
     tcase_add_test(tests, stamps_that_stand_or_run_back);
     tcase_add_test(tests, raw_and_rails);
     tcase_add_test(tests, beyond_the_longest_gap);
+    tcase_add_test(tests, held_no_longer);
+    tcase_add_test(tests, how_many_fit);
     tcase_add_test(tests, refused_gaps);
     tcase_add_test(tests, a_million_missing);
     tcase_add_test(tests, large_numbers);
