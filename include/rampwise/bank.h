@@ -103,8 +103,8 @@ RAMPWISE_API size_t rampwise_bank_saved_size(const rampwise_bank *bank);
 RAMPWISE_API int rampwise_bank_save(const rampwise_bank *bank, void *bytes, size_t count);
 RAMPWISE_API int rampwise_bank_resume(rampwise_bank *bank, const void *bytes, size_t count);
 
-/* All of it in single precision: twice the lanes, a little more work a step (step_f32), about 200 bytes an
-   oscillator. What is said above holds with float for double. */
+/* All of it in single precision: twice the lanes, a little more work a step (step_f32), about 180 bytes an
+   oscillator. What is said above holds with float for double. Since 0.1. */
 typedef struct rampwise_bank_f32 rampwise_bank_f32;
 
 typedef struct rampwise_bank_wanted_f32 {

@@ -1,6 +1,7 @@
 /* The one body of all kernels. The including file has defined a thin layer over its vectors:
    VECTOR, MASK, WIDTH and the functions vector_*, mask_*; and KERNELS, the table's name, and
-   KERNELS_NAME; all in one precision (../precision.h). The arithmetic is that of step.h, operation by operation. */
+   KERNELS_NAME; all in one precision (../precision.h). The arithmetic is that of step.h, operation by
+   operation. */
 
 #include <stdint.h>
 #include <string.h>
@@ -15,9 +16,8 @@
 #define SPENT 0x1p-960
 #endif
 
-/* Vectors in flight: enough to hide the latency of a step, few enough for the registers, which single precision
-   needs for the low words too. */
-enum { MOST_IN_FLIGHT = 4, FLIGHT = sizeof(real) == sizeof(float) ? 2 : 4 };
+/* Vectors in flight: enough to hide the latency of a step, few enough for the registers; a block may have fewer. */
+enum { MOST_IN_FLIGHT = 4, FLIGHT = LANES / WIDTH < MOST_IN_FLIGHT ? LANES / WIDTH : MOST_IN_FLIGHT };
 
 /* Oscillators on their way, one a lane. */
 typedef struct moving {
@@ -258,7 +258,7 @@ static int under_one_input(lane_block *block, size_t lanes, real p_last, size_t 
     int lost = 0;
     for (size_t at = 0; at < lanes; at += FLIGHT * WIDTH) {
         const size_t left = (lanes - at + WIDTH - 1) / WIDTH;
-        lost |= left == 1 ? FLY(1) : left == 2 || FLIGHT == 2 ? FLY(2) : left == 3 ? FLY(3) : FLY(4);
+        lost |= left == 1 ? FLY(1) : left == 2 ? FLY(2) : left == 3 ? FLY(3) : FLY(4);
     }
 #undef FLY
     return lost;
