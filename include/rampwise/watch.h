@@ -232,7 +232,7 @@ RAMPWISE_API size_t rampwise_watch_events(rampwise_watch *watch, size_t capacity
 /* Events lost, and steps too long to be looked into. Either pointer may be NULL. RAMPWISE_ERROR_MISSING. */
 RAMPWISE_API int rampwise_watch_counts(const rampwise_watch *watch, uint64_t *lost, uint64_t *resets);
 
-/* All of a watch as bytes, its window and waiting events too (saved.h). It is resumed into a watch that was
+/* All of a watch as bytes, its window and waiting events too (as in stream.h). It is resumed into a watch that was
    made with the same capacities; the attachment to a stream stays. */
 RAMPWISE_API size_t rampwise_watch_saved_size(const rampwise_watch *watch);
 RAMPWISE_API int rampwise_watch_save(const rampwise_watch *watch, void *bytes, size_t count);
