@@ -9,6 +9,7 @@
 #include "precision.h"
 #include "rampwise/motion.h"
 #include "rampwise/status.h"
+#include "saved.h"
 #include "valid.h"
 
 typedef PUBLIC(bank) real_bank;
@@ -344,4 +345,95 @@ int PUBLIC(bank_read)(const real_bank *bank, const real_history *now)
             now->total[i] = is_stopped(bank, i) ? NAN : PUBLIC(total_acceleration)(coeffs_of(bank, i), &s);
     }
     return RAMPWISE_OK;
+}
+
+/* ---- saving ---- */
+
+/* One oscillator as it is saved. */
+typedef struct one {
+    real_coeffs c;
+    real_state s;
+    int32_t stopped;
+} one;
+
+static void pass_one(saved *s, one *x)
+{
+    saved_coeffs(s, &x->c);
+    saved_state(s, &x->s);
+    saved_int(s, &x->stopped);
+}
+
+static void pass_bank(saved *s, void *object)
+{
+    const real_bank *const bank = object;
+    for (size_t i = 0; i < bank->n; ++i) {
+        one x = {*coeffs_of(bank, i), state_of(bank, i), is_stopped(bank, i)};
+        pass_one(s, &x);
+    }
+}
+
+#ifdef SINGLE_PRECISION
+static const saved_kind kind = {SAVED_BANK_F32, 1, pass_bank};
+#else
+static const saved_kind kind = {SAVED_BANK, 1, pass_bank};
+#endif
+
+size_t PUBLIC(bank_saved_size)(const real_bank *bank)
+{
+    return bank != NULL ? rampwise_saved_size_(&kind, bank) : 0;
+}
+
+int PUBLIC(bank_save)(const real_bank *bank, void *bytes, size_t count)
+{
+    return bank != NULL && bytes != NULL ? rampwise_saved_write_(&kind, bank, bytes, count)
+                                         : RAMPWISE_ERROR_MISSING;
+}
+
+/* Whether n saved oscillators share what those of a bank do. */
+static int check_saved(saved s, size_t n)
+{
+    one first, x;
+    memset(&x, 0, sizeof x);
+    first = x;
+    for (size_t i = 0; i < n; ++i) {
+        pass_one(&s, &x);
+        first = i == 0 ? x : first;
+        if (!coeffs_are_made(&x.c) || !same_dt(&x.c, &first.c) || x.c.input != first.c.input ||
+            x.c.between != first.c.between || !state_is_finite(&x.s) || x.s.p != first.s.p ||
+            x.s.p_before != first.s.p_before)
+            return RAMPWISE_ERROR_DAMAGED;
+    }
+    return RAMPWISE_OK;
+}
+
+static void put_one(real_bank *bank, size_t i, const one *x)
+{
+    block *const b = &bank->blocks[i / LANES];
+    b->c[i % LANES] = x->c;
+    lane_put(&b->lanes, i % LANES, &x->s);
+    release(bank, i);
+    bank->p = x->s.p;
+    bank->p_before = x->s.p_before;
+    if (x->stopped == 0)
+        return;
+    PRIVATE(lane_still)(&b->lanes, i % LANES);
+    b->stopped[i % LANES] = 1;
+    ++bank->stopped;
+}
+
+int PUBLIC(bank_resume)(real_bank *bank, const void *bytes, size_t count)
+{
+    saved s;
+    one x;
+    if (bank == NULL || bytes == NULL)
+        return RAMPWISE_ERROR_MISSING;
+    int status = rampwise_saved_open_(&kind, bank, bytes, count, &s);
+    if (status == RAMPWISE_OK)
+        status = check_saved(s, bank->n);
+    memset(&x, 0, sizeof x);
+    for (size_t i = 0; status == RAMPWISE_OK && i < bank->n; ++i) {
+        pass_one(&s, &x);
+        put_one(bank, i, &x);
+    }
+    return status;
 }

@@ -9,6 +9,7 @@
 #include "lanes.h"
 #include "peaks_group.h"
 #include "rampwise/status.h"
+#include "saved.h"
 #include "valid.h"
 
 struct rampwise_peaks {
@@ -234,4 +235,172 @@ int rampwise_peaks_evidence(const rampwise_peaks *peaks, int quantity, unsigned 
     if (peaks == NULL || evidence == NULL)
         return RAMPWISE_ERROR_MISSING;
     return has_evidence(peaks) ? get(peaks, quantity, flags, NULL, evidence) : RAMPWISE_ERROR_FLAGS;
+}
+
+/* ---- saving ---- */
+
+/* What the oscillators share, as it is saved. */
+typedef struct shared {
+    int32_t quantity_count, quantity[3], looks, started;
+    input_end end;
+    record_ends ends;
+} shared;
+
+static shared shared_of(const rampwise_peaks *peaks)
+{
+    shared x = {.quantity_count = (int32_t)peaks->quantity_count,
+                .looks = (int32_t)peaks->looks,
+                .started = peaks->started,
+                .end = peaks->end,
+                .ends = peaks->ends};
+    memcpy(x.quantity, peaks->quantity, sizeof x.quantity);
+    return x;
+}
+
+static void pass_shared(saved *s, shared *x)
+{
+    double *const numbers[] = {&x->end.p_before, &x->end.p,        &x->end.d,
+                               &x->end.next,     &x->ends.largest, &x->ends.at_start};
+    saved_int(s, &x->quantity_count);
+    for (int q = 0; q < 3; ++q)
+        saved_int(s, &x->quantity[q]);
+    saved_int(s, &x->looks);
+    saved_int(s, &x->started);
+    saved_int(s, &x->end.is_behind);
+    rampwise_saved_uint64_(s, &x->end.sample);
+    rampwise_saved_uint64_(s, &x->ends.n);
+    for (size_t i = 0; i < sizeof numbers / sizeof *numbers; ++i)
+        rampwise_saved_double_(s, numbers[i]);
+    saved_doubles(s, x->ends.recent, END_SAMPLES);
+}
+
+static void pass_instant(saved *s, rampwise_instant *x)
+{
+    rampwise_saved_double_(s, &x->value);
+    rampwise_saved_uint64_(s, &x->sample);
+    rampwise_saved_double_(s, &x->fraction);
+}
+
+static void pass_candidate(saved *s, candidate *x)
+{
+    double *const numbers[] = {&x->best, &x->most, &x->u, &x->v, &x->error_u, &x->error_v};
+    for (size_t i = 0; i < sizeof numbers / sizeof *numbers; ++i)
+        rampwise_saved_double_(s, numbers[i]);
+    rampwise_saved_uint64_(s, &x->sample);
+    saved_size(s, &x->n);
+    saved_int(s, &x->ends_record);
+    saved_doubles(s, x->p, STRETCH + 3);
+}
+
+static void pass_lane(saved *s, group_lane *x)
+{
+    saved_coeffs(s, &x->c);
+    rampwise_saved_double_(s, &x->u);
+    rampwise_saved_double_(s, &x->v);
+    rampwise_saved_double_(s, &x->error_u);
+    rampwise_saved_double_(s, &x->error_v);
+    saved_int(s, &x->stopped);
+    for (int q = 0; q < 3; ++q) {
+        pass_instant(s, &x->found[q].peak.high);
+        pass_instant(s, &x->found[q].peak.low);
+        rampwise_saved_double_(s, &x->found[q].evidence.error_high);
+        rampwise_saved_double_(s, &x->found[q].evidence.error_low);
+        pass_candidate(s, &x->high[q]);
+        pass_candidate(s, &x->low[q]);
+    }
+}
+
+static void pass_peaks(saved *s, void *object)
+{
+    const rampwise_peaks *const peaks = object;
+    shared all = shared_of(peaks);
+    pass_shared(s, &all);
+    for (size_t i = 0; i < peaks->n; ++i) {
+        group_lane x;
+        rampwise_group_get_(&peaks->groups[i / LANES], i % LANES, &x);
+        pass_lane(s, &x);
+    }
+}
+
+static const saved_kind kind = {SAVED_PEAKS, 1, pass_peaks};
+
+size_t rampwise_peaks_saved_size(const rampwise_peaks *peaks)
+{
+    return peaks != NULL ? rampwise_saved_size_(&kind, peaks) : 0;
+}
+
+int rampwise_peaks_save(const rampwise_peaks *peaks, void *bytes, size_t count)
+{
+    return peaks != NULL && bytes != NULL ? rampwise_saved_write_(&kind, peaks, bytes, count)
+                                          : RAMPWISE_ERROR_MISSING;
+}
+
+static int candidate_is_right(const candidate *x)
+{
+    return x->n <= STRETCH;
+}
+
+/* Whether what was saved could have come of n oscillators for these quantities. */
+static int check_saved(saved s, const rampwise_peaks *peaks)
+{
+    const shared mine = shared_of(peaks);
+    shared all = mine;
+    rampwise_coeffs pair[2];
+    group_lane x;
+    memset(&x, 0, sizeof x);
+    pass_shared(&s, &all);
+    if (all.quantity_count != mine.quantity_count || all.looks != mine.looks ||
+        memcmp(all.quantity, mine.quantity, sizeof all.quantity) != 0)
+        return RAMPWISE_ERROR_DIFFERENT;
+    for (size_t i = 0; i < peaks->n; ++i) {
+        pass_lane(&s, &x);
+        pair[0] = i == 0 ? x.c : pair[0];
+        pair[1] = x.c;
+        if (check_alike(2, pair) != RAMPWISE_OK)
+            return RAMPWISE_ERROR_DAMAGED;
+        for (int q = 0; q < 3; ++q)
+            if (!candidate_is_right(&x.high[q]) || !candidate_is_right(&x.low[q]))
+                return RAMPWISE_ERROR_DAMAGED;
+    }
+    return RAMPWISE_OK;
+}
+
+/* One group from *s on, which comes to stand behind it. */
+static void read_group(saved *s, const rampwise_peaks *peaks, peaks_group *g)
+{
+    rampwise_coeffs c[LANES];
+    group_lane x;
+    saved again = *s;
+    const size_t count = g->count;
+    memset(c, 0, sizeof c);
+    memset(&x, 0, sizeof x);
+    for (size_t j = 0; j < count; ++j) {
+        pass_lane(&again, &x);
+        c[j] = x.c;
+    }
+    rampwise_group_make_(g, count, c, peaks->quantity_count, peaks->quantity, peaks->looks);
+    for (size_t j = 0; j < count; ++j) {
+        pass_lane(s, &x);
+        rampwise_group_put_(g, j, &x);
+    }
+}
+
+int rampwise_peaks_resume(rampwise_peaks *peaks, const void *bytes, size_t count)
+{
+    saved s;
+    if (peaks == NULL || bytes == NULL)
+        return RAMPWISE_ERROR_MISSING;
+    int status = rampwise_saved_open_(&kind, peaks, bytes, count, &s);
+    if (status == RAMPWISE_OK)
+        status = check_saved(s, peaks);
+    if (status != RAMPWISE_OK)
+        return status;
+    shared all = shared_of(peaks);
+    pass_shared(&s, &all);
+    peaks->started = all.started;
+    peaks->end = all.end;
+    peaks->ends = all.ends;
+    for (size_t g = 0; g < lane_groups(peaks->n); ++g)
+        read_group(&s, peaks, &peaks->groups[g]);
+    return RAMPWISE_OK;
 }

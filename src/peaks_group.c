@@ -501,3 +501,40 @@ findings rampwise_group_findings_(const kernels *k, const peaks_group *g, size_t
         find_after(g, &x, &last, flags, &found);
     return found;
 }
+
+void rampwise_group_get_(const peaks_group *g, size_t lane, group_lane *x)
+{
+    memset(x, 0, sizeof *x);
+    x->c = g->c[lane];
+    x->u = g->lanes.u[lane];
+    x->v = g->lanes.v[lane];
+    x->error_u = g->errors.u[lane];
+    x->error_v = g->errors.v[lane];
+    x->stopped = g->stopped[lane];
+    for (size_t q = 0; q < g->quantity_count; ++q) {
+        x->found[q] = g->found[q][lane];
+        x->high[q] = g->high[q][lane];
+        x->low[q] = g->low[q][lane];
+    }
+}
+
+void rampwise_group_put_(peaks_group *g, size_t lane, const group_lane *x)
+{
+    g->lanes.u[lane] = x->u;
+    g->lanes.v[lane] = x->v;
+    g->errors.u[lane] = x->error_u;
+    g->errors.v[lane] = x->error_v;
+    g->stopped[lane] = (unsigned char)x->stopped;
+    lane_block *const blocks[2] = {&g->lanes, &g->errors};
+    for (size_t i = 0; i < 2; ++i)
+        if (x->stopped)
+            rampwise_lane_still_(blocks[i], lane);
+        else
+            rampwise_lane_set_(blocks[i], lane, &g->c[lane]);
+    for (size_t q = 0; q < g->quantity_count; ++q) {
+        g->found[q][lane] = x->found[q];
+        g->high[q][lane] = x->high[q];
+        g->low[q][lane] = x->low[q];
+        raise_floors(g, lane, q);
+    }
+}

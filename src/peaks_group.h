@@ -77,6 +77,20 @@ void rampwise_segment_end_(const segment *along, input_end *end);
 
 void rampwise_group_run_(const kernels *k, peaks_group *g, const segment *along);
 
+/* Everything of one lane that cannot be made of what the object was made with. */
+typedef struct group_lane {
+    rampwise_coeffs c;
+    double u, v, error_u, error_v;
+    int stopped;
+    findings found[3];
+    candidate high[3], low[3];
+} group_lane;
+
+void rampwise_group_get_(const peaks_group *g, size_t lane, group_lane *x);
+
+/* The other way, after rampwise_group_make_ with its coefficients. */
+void rampwise_group_put_(peaks_group *g, size_t lane, const group_lane *x);
+
 /* What rampwise_peaks_get answers for one lane, and what the evidence is; its ends are the caller's. */
 findings rampwise_group_findings_(const kernels *k, const peaks_group *g, size_t lane, size_t q,
                                   unsigned flags, const input_end *end);

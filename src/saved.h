@@ -27,7 +27,8 @@ enum {
     SAVED_WATCH_F32 = 4,
     SAVED_BANK = 5,
     SAVED_PEAKS = 6,
-    SAVED_MODES = 7
+    SAVED_MODES = 7,
+    SAVED_BANK_F32 = 8
 };
 
 typedef struct saved_kind {
@@ -47,9 +48,9 @@ size_t rampwise_saved_size_(const saved_kind *k, const void *object);
 /* Writes it. RAMPWISE_ERROR_MEMORY where there are fewer bytes than that. */
 int rampwise_saved_write_(const saved_kind *k, const void *object, void *bytes, size_t count);
 
-/* Whether the bytes are one whole object of this kind, as long as *object; then *s reads its members from the first
-   on. RAMPWISE_ERROR_DAMAGED, _KIND, _EDITION. What the members may hold is for the caller to check, before they
-   become an object. */
+/* Whether the bytes are one whole object of this kind, as long as *object; then *s reads its members from the
+   first on. RAMPWISE_ERROR_DAMAGED, _KIND, _EDITION. What the members may hold is for the caller to check,
+   before they become an object. */
 int rampwise_saved_open_(const saved_kind *k, const void *object, const void *bytes, size_t count, saved *s);
 
 uint32_t rampwise_saved_checksum_(const unsigned char *bytes, size_t count);

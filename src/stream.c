@@ -126,6 +126,45 @@ static int outputs_at(const real_stream *x, const real_state *s, real *out)
     return finite;
 }
 
+#ifdef SINGLE_PRECISION
+typedef uint32_t real_bits;
+#else
+typedef uint64_t real_bits;
+#endif
+
+/* x, or +0 where the condition, 0 or 1, holds. */
+static real unless(int condition, real x)
+{
+    real_bits bits;
+    memcpy(&bits, &x, sizeof bits);
+    bits &= (real_bits)condition - 1;
+    memcpy(&x, &bits, sizeof bits);
+    return x;
+}
+
+/* The step of step.h, bit for bit, with masks where compilers make branches of the rule of silence: every
+   sample takes the same instructions. */
+static void step_evenly(const real_coeffs *c, real_state *s, real p)
+{
+#ifdef SINGLE_PRECISION
+    const real spent = 0x1p-100f;
+    const int silent = rampwise_silent_f32_(s->p, p);
+    rampwise_next_f32_(c, s, p);
+    const int u_spent = silent & (s->u < spent) & (s->u > -spent);
+    const int v_spent = silent & (s->v < spent) & (s->v > -spent);
+    s->u_low = unless(u_spent, s->u_low);
+    s->v_low = unless(v_spent, s->v_low);
+#else
+    const real spent = 0x1p-960;
+    const int silent = rampwise_silent_(s->p, p);
+    const real u = rampwise_next_u_(c, s->u, s->v, s->p, p), v = rampwise_next_v_(c, s->u, s->v, s->p, p);
+    const int u_spent = silent & (u < spent) & (u > -spent), v_spent = silent & (v < spent) & (v > -spent);
+    *s = (real_state){u, v, p, s->p};
+#endif
+    s->u = unless(u_spent, s->u);
+    s->v = unless(v_spent, s->v);
+}
+
 /* One step over `samples` numbers to the load p; 0 and nothing changed where it overflows. */
 static int advance(real_stream *x, uint64_t ticks, real p, uint64_t samples, uint32_t flags, real *out)
 {
@@ -133,7 +172,7 @@ static int advance(real_stream *x, uint64_t ticks, real p, uint64_t samples, uin
     real_state next = x->s_;
     if (c == NULL)
         return 0;
-    PUBLIC(step)(c, &next, p);
+    step_evenly(c, &next, p);
     if (ticks != x->ticks_) /* p_before belongs to one dt */
         next.p_before = p - (p - x->s_.p) * dt_over(&x->c_, c);
     if (!state_is_finite(&next) || !outputs_at(x, &next, out))
@@ -217,7 +256,7 @@ static int miss_many(real_stream *x, uint64_t samples)
 /* A good sample, so many ticks after the one before; its flags, or -1 where it overflows. */
 static int take(real_stream *x, const sample *now, real *out)
 {
-    int flags = now->clipped ? RAMPWISE_CLIPPED : 0;
+    int flags = now->clipped * RAMPWISE_CLIPPED;
     if (!x->started_ || x->run_ > x->longest_) {
         if (!begin(x, now->p, out))
             return -1;
@@ -225,18 +264,16 @@ static int take(real_stream *x, const sample *now, real *out)
     } else {
         const int held = x->missing_ == RAMPWISE_GAP_HOLD;
         const uint64_t samples = held ? 1 : x->run_ + 1;
-        flags |= x->touched_ | (x->run_ > 0 ? RAMPWISE_BRIDGED : 0);
+        flags |= x->touched_ | (x->run_ > 0) * RAMPWISE_BRIDGED;
         if (!advance(x, x->pending_ + now->ticks, now->p, samples, (uint32_t)flags, out))
             return -1;
         x->counts_.bridges += x->run_ > 0;
     }
     x->run_ = x->pending_ = 0;
-    x->touched_ = now->clipped ? RAMPWISE_CLIPPED : 0;
+    x->touched_ = now->clipped * RAMPWISE_CLIPPED;
     ++x->counts_.good;
-    if (now->clipped) {
-        ++x->counts_.clipped;
-        x->counts_.last_clipped = x->counts_.next;
-    }
+    x->counts_.clipped += (uint64_t)now->clipped;
+    x->counts_.last_clipped += (x->counts_.next - x->counts_.last_clipped) * (uint64_t)now->clipped;
     ++x->counts_.next;
     return flags;
 }
@@ -249,7 +286,8 @@ static int show_missing(const real_stream *x, real *out)
             out[i] = (real)NAN;
     else
         (void)outputs_at(x, &x->s_, out);
-    return x->started_ && x->pending_ == 0 ? RAMPWISE_BRIDGED : RAMPWISE_WAITING;
+    const int held = x->started_ && x->missing_ == RAMPWISE_GAP_HOLD && x->run_ <= x->longest_;
+    return held ? RAMPWISE_BRIDGED : RAMPWISE_WAITING;
 }
 
 /* Sample i of a block; its flags, or -1 where it overflows. */
@@ -270,6 +308,7 @@ static int take_one(real_stream *x, const block *in, size_t i, real *out)
     else
         x->time_ += x->timed_ ? x->ticks_ : 0;
     x->timed_ = 1;
+    x->flags_ = flags;
     return flags;
 }
 
@@ -418,7 +457,7 @@ int PUBLIC(stream_start)(real_stream *stream, const real_state *s, uint64_t numb
     if (s != NULL && !state_is_finite(s))
         return RAMPWISE_ERROR_STATE;
     stream->run_ = stream->pending_ = stream->time_ = 0;
-    stream->timed_ = stream->touched_ = 0;
+    stream->timed_ = stream->touched_ = stream->flags_ = 0;
     stream->started_ = s != NULL;
     stream->counts_.next = number;
     if (s == NULL)
@@ -443,7 +482,7 @@ int PUBLIC(stream_read)(const real_stream *stream, real *out, uint8_t *flags)
     if (out != NULL)
         memcpy(out, frame, (size_t)stream->output_count_ * sizeof *out);
     if (flags != NULL)
-        *flags = stream->run_ > 0 ? (uint8_t)show_missing(stream, frame) : (uint8_t)stream->touched_;
+        *flags = (uint8_t)(stream->run_ > 0 ? show_missing(stream, frame) : stream->flags_);
     return RAMPWISE_OK;
 }
 
@@ -498,6 +537,9 @@ int PUBLIC(stream_attach)(real_stream *stream, real_watch *watch)
     const int status = PRIVATE(watch_tunable)(watch, &stream->c_);
     if (status != RAMPWISE_OK)
         return status;
+    for (const real_watch *w = stream->watches_; w != NULL; w = w->next_)
+        if (w == watch)
+            return RAMPWISE_OK;
     watch->next_ = stream->watches_;
     stream->watches_ = watch;
     return stream->started_ ? PUBLIC(watch_start)(watch, &stream->s_, stream->sample_) : RAMPWISE_OK;
@@ -539,8 +581,8 @@ static void pass_stream(saved *s, void *object)
     for (size_t i = 0; i < sizeof wide / sizeof *wide; ++i)
         rampwise_saved_uint64_(s, wide[i]);
     pass_counts(s, &x->counts_);
-    int32_t *const numbers[] = {&x->start_,        &x->missing_, &x->beyond_, &x->missing_raw_,
-                                &x->output_count_, &x->started_, &x->timed_,  &x->touched_};
+    int32_t *const numbers[] = {&x->start_,   &x->missing_, &x->beyond_,  &x->missing_raw_, &x->output_count_,
+                                &x->started_, &x->timed_,   &x->touched_, &x->flags_};
     for (size_t i = 0; i < sizeof numbers / sizeof *numbers; ++i)
         saved_int(s, numbers[i]);
 }

@@ -137,7 +137,7 @@ static void pass(real_watch *w, int i, real_instant when, uint32_t flags)
     level->beyond = !level->beyond;
     level->passed += (uint64_t)level->beyond;
     level->cycles += (uint64_t)!level->beyond;
-    level->latched |= level->latch & level->beyond;
+    level->latched |= level->latch;
     tell(w, RAMPWISE_EVENT_LEVEL, i, (level->sign > 0) == (level->beyond != 0) ? 1 : -1, when, flags);
 }
 
@@ -160,8 +160,8 @@ static void note(real_peak *peak, real_instant at)
         peak->low = at;
 }
 
-/* Where the series meets `edge` between low and high, over which it is monotone: Newton's steps, halving where one
-   leaves the bracket, and every other time when eight have not ended it. */
+/* Where the series meets `edge` between low and high, over which it is monotone: Newton's steps, halving where
+   one leaves the bracket, and every other time when eight have not ended it. */
 static real meeting(const series *s, real low, real high, real edge, int rising)
 {
     real x = (low + high) / 2, second;
@@ -217,7 +217,8 @@ static int is_monotone(const derivatives *begin, const derivatives *end, real le
            (!opposite(begin->z2, end->z2) || (a < b ? a : b) > 2 * length * (c > d ? c : d));
 }
 
-/* From `*from` up to x, by way of the zero of the slope between, if there is one; *from and *z become x and z_end. */
+/* From `*from` up to x, by way of the zero of the slope between, if there is one; *from and *z become x and
+   z_end. */
 static void up_to(passage *at, const series *s, real *from, real *z, real x, real z_end)
 {
     real second;
@@ -307,14 +308,25 @@ static real_watched *place_of(const queue *q, size_t steps, size_t i)
     return &q->place[place < steps ? place : place - steps];
 }
 
-/* The greatest (sign 1) or least (-1) value of each step that no later one outdoes, the oldest first: values fall. Steps
-   that begin before `oldest` leave, the one that ended now joins, and those it outdoes are found by halving. */
-static void join(queue *q, size_t steps, real sign, uint64_t oldest, real_instant at, uint64_t begin)
+/* Steps that begin before `oldest` leave. Steps are in the order of time. */
+static void leave(queue *q, size_t steps, uint64_t oldest)
 {
-    while (q->count > 0 && place_of(q, steps, 0)->begin < oldest) {
-        q->first = q->first + 1 < steps ? q->first + 1 : 0;
-        --q->count;
+    size_t low = 0, high = q->count;
+    while (low < high) {
+        const size_t middle = low + (high - low) / 2;
+        if (place_of(q, steps, middle)->begin < oldest)
+            low = middle + 1;
+        else
+            high = middle;
     }
+    q->first = q->first + low < steps ? q->first + low : q->first + low - steps;
+    q->count -= low;
+}
+
+/* The greatest (sign 1) or least (-1) value of each step that no later one outdoes, the oldest first: values
+   fall. The step that ended now joins, in place of those it outdoes. */
+static void join(queue *q, size_t steps, real sign, real_instant at, uint64_t begin)
+{
     size_t low = 0, high = q->count;
     while (low < high) {
         const size_t middle = low + (high - low) / 2;
@@ -484,8 +496,10 @@ static void keep(real_watch *w, const passage *at)
     note(&w->since_reset_, at->peak.low);
     if (w->window_steps_ > 0) {
         const uint64_t oldest = w->sample_ > w->window_steps_ ? w->sample_ - w->window_steps_ : 0;
-        join(&w->high_, w->window_steps_, 1, oldest, at->peak.high, at->sample);
-        join(&w->low_, w->window_steps_, -1, oldest, at->peak.low, at->sample);
+        leave(&w->high_, w->window_steps_, oldest);
+        leave(&w->low_, w->window_steps_, oldest);
+        join(&w->high_, w->window_steps_, 1, at->peak.high, at->sample);
+        join(&w->low_, w->window_steps_, -1, at->peak.low, at->sample);
     }
 }
 

@@ -96,6 +96,13 @@ RAMPWISE_API size_t rampwise_bank_stopped(const rampwise_bank *bank, size_t *fir
    where wanted. Accelerations of a stopped oscillator are NaN. RAMPWISE_ERROR_MISSING. */
 RAMPWISE_API int rampwise_bank_read(const rampwise_bank *bank, const rampwise_history *now);
 
+/* All of a bank as bytes, coefficients and states; resumed, it goes on with the same bits, on any machine and set of
+   instructions. Resumed into a bank of as many oscillators, of any kind: everything is replaced. The bytes and the
+   errors are those of rampwise_stream_save and rampwise_stream_resume (stream.h). */
+RAMPWISE_API size_t rampwise_bank_saved_size(const rampwise_bank *bank);
+RAMPWISE_API int rampwise_bank_save(const rampwise_bank *bank, void *bytes, size_t count);
+RAMPWISE_API int rampwise_bank_resume(rampwise_bank *bank, const void *bytes, size_t count);
+
 /* All of it in single precision: twice the lanes, a little more work a step (step_f32), about 180 bytes an
    oscillator. What is said above holds with float for double. Since 0.1. */
 typedef struct rampwise_bank_f32 rampwise_bank_f32;
@@ -127,6 +134,9 @@ RAMPWISE_API int rampwise_bank_run_f32(rampwise_bank_f32 *bank, size_t n, const 
                                        const rampwise_bank_wanted_f32 *wanted, size_t *bad);
 RAMPWISE_API size_t rampwise_bank_stopped_f32(const rampwise_bank_f32 *bank, size_t *first);
 RAMPWISE_API int rampwise_bank_read_f32(const rampwise_bank_f32 *bank, const rampwise_history_f32 *now);
+RAMPWISE_API size_t rampwise_bank_saved_size_f32(const rampwise_bank_f32 *bank);
+RAMPWISE_API int rampwise_bank_save_f32(const rampwise_bank_f32 *bank, void *bytes, size_t count);
+RAMPWISE_API int rampwise_bank_resume_f32(rampwise_bank_f32 *bank, const void *bytes, size_t count);
 
 RAMPWISE_END
 

@@ -5,8 +5,8 @@
 
        row[0] u + (row[1] v + (row[2] p + row[3] (p - p_before)))
 
-   with a fused multiply-add for each of the three sums; for u, v, u'' and the total acceleration that has the bits
-   of rampwise_run. For relative velocity and forces it may differ from motion.h in the last digit. */
+   with a fused multiply-add for each of the three sums; for u, v, u'' and the total acceleration that has the
+   bits of rampwise_run. For relative velocity and forces it may differ from motion.h in the last digit. */
 #ifndef RAMPWISE_OUTPUT_H
 #define RAMPWISE_OUTPUT_H
 
@@ -32,8 +32,8 @@ typedef struct rampwise_output {
 RAMPWISE_BEGIN
 
 /* The weights of an output under coefficients c into row[4].
-   RAMPWISE_ERROR_MISSING, _NOT_MADE, _QUANTITY, _COEFFICIENT (a weight is not finite). Any thread; constant work.
-   Since 0.1. */
+   RAMPWISE_ERROR_MISSING, _NOT_MADE, _QUANTITY, _COEFFICIENT (a weight is not finite). Any thread; constant
+   work. Since 0.1. */
 RAMPWISE_API int rampwise_output_row(const rampwise_coeffs *c, const rampwise_output *output, double *row);
 RAMPWISE_API int rampwise_output_row_f32(const rampwise_coeffs_f32 *c, const rampwise_output *output,
                                          float *row);

@@ -73,6 +73,13 @@ RAMPWISE_API int rampwise_peaks_get(const rampwise_peaks *peaks, int quantity, u
 RAMPWISE_API int rampwise_peaks_evidence(const rampwise_peaks *peaks, int quantity, unsigned flags,
                                          rampwise_evidence *evidence);
 
+/* All of it as bytes; resumed, it goes on to the same peaks, on any machine and set of instructions. Resumed into an
+   object of as many oscillators for the same quantities and flags (RAMPWISE_ERROR_DIFFERENT); coefficients are
+   replaced. The bytes and the other errors are those of rampwise_stream_save and rampwise_stream_resume (stream.h). */
+RAMPWISE_API size_t rampwise_peaks_saved_size(const rampwise_peaks *peaks);
+RAMPWISE_API int rampwise_peaks_save(const rampwise_peaks *peaks, void *bytes, size_t count);
+RAMPWISE_API int rampwise_peaks_resume(rampwise_peaks *peaks, const void *bytes, size_t count);
+
 RAMPWISE_END
 
 #endif

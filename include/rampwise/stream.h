@@ -1,17 +1,17 @@
 /* rampwise/stream.h: one oscillator on live data.
 
    A stream takes samples as they come, one or a block at a time, in the caller's memory, and keeps what a live
-   signal needs beside the step: raw integers with scale and offset, rails, time stamps that jitter, samples that
-   are missing, a start by the first sample, outputs by name, watches (watch.h), saving.
+   signal needs beside the step: raw integers with scale and offset, rails, time stamps that jitter, samples
+   that are missing, a start by the first sample, outputs by name, watches (watch.h), saving.
 
    - Samples are numbered from 0, or from what rampwise_stream_start says; missing ones have numbers too. At a
      fixed rate a stream has the bits of rampwise_run on the same samples, however they are cut into blocks.
-   - Stamps are whole numbers of a tick, `ticks` of which make one dt: for nanoseconds and dt = 0.005 s, ticks is
-     5,000,000. A step is as long as its two stamps say. Steps of exactly one dt have the fixed rate's bits; others
-     are dt ticks' / ticks long, rounded once, and have the bits of rampwise_run_at where that sees the same
-     intervals (outputs that contain p - p_before: up to the last digits).
-   - A sample is missing where it is NaN or infinite, where a raw one is missing_raw, where stamps are further apart
-     than one and a half dt (as many as fit, rounded), and where rampwise_stream_skip_to says so.
+   - Stamps are whole numbers of a tick, `ticks` of which make one dt: for nanoseconds and dt = 0.005 s, ticks
+     is 5,000,000. A step is as long as its two stamps say. Steps of exactly one dt have the fixed rate's bits;
+     others are dt d / ticks long for stamps d apart, rounded once, and have the bits of rampwise_run_at where
+     that sees the same intervals (outputs that contain p - p_before: up to the last digits).
+   - A sample is missing where it is NaN or infinite, where a raw one is missing_raw, where stamps are one and a
+     half dt apart or more (as many as fit, rounded), and where rampwise_stream_skip_to says so.
      RAMPWISE_GAP_BRIDGE: nothing happens until the next good sample, then one exact step over all of them
      under one straight (or held) load. A block's outputs and reads give the values of the last good sample.
      RAMPWISE_GAP_HOLD: each missing sample is a step under the last good load; outputs are that response.
@@ -22,14 +22,15 @@
    - Flags (watch.h) follow what they touch: a clipped sample marks its own value and the next, whose step
      begins with it; a bridge marks the value at its end.
 
-   Errors: a call that reports one has changed nothing, but for RAMPWISE_ERROR_OVERFLOW, as in record.h: the samples
-   before `bad` were taken, and the state is the last finite one.
+   Errors: a call that reports one has changed nothing, but for RAMPWISE_ERROR_OVERFLOW, as in record.h: the
+   samples before `bad` were taken, and the state is the last finite one.
 
-   Work a sample: at a fixed rate one step, 4 fused multiply-adds an output, the watches' work, and nothing that
-   depends on the data. An interval of another length is looked for in the last one, in the
-   caller's prepared table (one comparison an entry), and else costs one making of coefficients (coefficients.h).
-   With RAMPWISE_GAP_HOLD a jump over k missing samples takes the smaller of k and `longest` steps. After a stream is made: no
-   allocation, lock, system call or unbounded loop; the floating-point environment stays. Silence costs no more than sound (step.h).
+   Work a sample: at a fixed rate one step, 3 fused multiply-adds an output, the watches' work, and beside theirs
+   nothing that depends on the data. An interval of another length is looked for in the last one, then in the
+   caller's prepared table (one comparison an entry), and else costs one making of coefficients
+   (coefficients.h). With RAMPWISE_GAP_HOLD a jump over k missing samples takes the smaller of k and `longest`
+   steps. After a stream is made: no allocation, lock, system call or unbounded loop; the floating-point
+   environment stays. Silence costs no more than sound (step.h).
 
    Threads: a stream and its watches belong to one thread at a time. All since 0.1. */
 #ifndef RAMPWISE_STREAM_H
@@ -66,22 +67,24 @@ typedef struct rampwise_stream_options {
     int32_t missing_raw; /* the raw integer that is no sample: INT32_MIN */
     uint64_t longest;    /* samples in a row that may be missing: 10 */
     uint64_t ticks;      /* ticks in one dt: 1 */
-    /* A raw integer is offset + scale raw, rounded once (both are rounded to single precision first there, and raw
-       integers above 2^24 too): 1 and 0. */
+    /* A raw integer is offset + scale raw, rounded once (both are rounded to single precision first there, and
+       raw integers above 2^24 too): 1 and 0. */
     double scale, offset;
-    /* A sample at or beyond a rail, as it is put in (raw ones before scale and offset), is clipped: -INFINITY and INFINITY. */
+    /* A sample at or beyond a rail, as it is put in (raw ones before scale and offset), is clipped: -INFINITY
+       and INFINITY. */
     double rail_low, rail_high;
     int32_t output_count; /* 0 to 8: 1 */
     int32_t reserve_count;
     rampwise_output output[RAMPWISE_STREAM_OUTPUTS]; /* displacement */
-    /* Prepared intervals, rampwise_interval[interval_count] (_f32 in single precision), of the stream's system, input and
-       between; used, not copied: NULL and 0. */
+    /* Prepared intervals, rampwise_interval[interval_count] (_f32 in single precision), of the stream's
+       system, input and between; used, not copied: NULL and 0. */
     const void *intervals;
     size_t interval_count;
     size_t reserve[4];
 } rampwise_stream_options;
 
-/* What has come in so far. Numbers of samples; last_... are those of the last such sample, UINT64_MAX for none. */
+/* What has come in so far. Numbers of samples; last_... are those of the last such sample, UINT64_MAX for
+   none. */
 typedef struct rampwise_stream_counts {
     uint64_t next; /* number of the sample that is expected next */
     uint64_t good, missing, clipped;
@@ -108,11 +111,13 @@ typedef struct rampwise_stream {
     rampwise_stream_counts counts_;
     int32_t start_, missing_, beyond_, missing_raw_, output_count_;
     int32_t started_, timed_, touched_; /* flags that the next step inherits */
-    uint64_t reserve_[4];
+    int32_t flags_, reserve_number_;    /* of the last sample */
+    uint64_t reserve_[3];
 } rampwise_stream;
 
-/* In single precision; options and counts are the same. Intervals that are not prepared are made, in double arithmetic,
-   of the oscillator as its coefficients keep it, in single precision; rampwise_interval_make_f32 does so too. */
+/* In single precision; options and counts are the same. Intervals that are not prepared are made, in double
+   arithmetic, of the oscillator as its coefficients keep it, in single precision; rampwise_interval_make_f32
+   does so too. */
 typedef struct rampwise_interval_f32 {
     uint64_t ticks;
     rampwise_coeffs_f32 c;
@@ -135,10 +140,11 @@ typedef struct rampwise_stream_f32 {
     rampwise_stream_counts counts_;
     int32_t start_, missing_, beyond_, missing_raw_, output_count_;
     int32_t started_, timed_, touched_;
-    uint64_t reserve_[4];
+    int32_t flags_, reserve_number_;
+    uint64_t reserve_[3];
 } rampwise_stream_f32;
 
-/* The same in bytes, for memory that is not declared with the type; alignment that of a double and a pointer. */
+/* The same in bytes, for memory that is not declared with the type; aligned as doubles and pointers are. */
 #define RAMPWISE_STREAM_BYTES (sizeof(rampwise_stream))
 #define RAMPWISE_STREAM_BYTES_F32 (sizeof(rampwise_stream_f32))
 
@@ -146,16 +152,17 @@ RAMPWISE_BEGIN
 
 RAMPWISE_API void rampwise_stream_options_init(rampwise_stream_options *options);
 
-/* Prepares coefficients for `interval_ticks` under those of one dt, c, of `ticks` ticks. RAMPWISE_ERROR_MISSING,
-   _NOT_MADE, _COUNT (either is 0, or above 2^53), or one of rampwise_coeffs_make. */
+/* Prepares coefficients for `interval_ticks` under those of one dt, c, of `ticks` ticks.
+   RAMPWISE_ERROR_MISSING, _NOT_MADE, _COUNT (either is 0, or above 2^53), or one of rampwise_coeffs_make. */
 RAMPWISE_API int rampwise_interval_make(rampwise_interval *interval, const rampwise_coeffs *c, uint64_t ticks,
                                         uint64_t interval_ticks);
 
 /* A stream under coefficients c, copied, that waits for its first sample, number 0.
    RAMPWISE_ERROR_MISSING, _NOT_MADE; _COUNT (options not begun with their init, output_count, or ticks 0 or
    (longest + 1) ticks above 2^52); _FLAGS (start, missing or beyond); _QUANTITY, _COEFFICIENT (output.h);
-   _SAMPLE (scale, offset or a rail is NaN, or infinite where it must not be); _NO_REST (settled, and there is no rest); _DIFFERENT
-   (a prepared interval of another oscillator); or one of rampwise_coeffs_make for the longest bridge, 2 (longest + 1) dt. */
+   _SAMPLE (scale, offset or a rail is NaN, or infinite where it must not be); _NO_REST (settled, and there is
+   no rest); _DIFFERENT (a prepared interval of another oscillator); or one of rampwise_coeffs_make for the
+   longest bridge, 2 (longest + 1) dt. */
 RAMPWISE_API int rampwise_stream_init(rampwise_stream *stream, const rampwise_coeffs *c,
                                       const rampwise_stream_options *options);
 
@@ -163,9 +170,10 @@ RAMPWISE_API int rampwise_stream_init(rampwise_stream *stream, const rampwise_co
    sample `number`, and the next sample comes one dt later. RAMPWISE_ERROR_MISSING, _STATE. */
 RAMPWISE_API int rampwise_stream_start(rampwise_stream *stream, const rampwise_state *s, uint64_t number);
 
-/* The next n samples, one dt apart. out (or NULL) gets frames of the outputs, [n][output_count]; flags (or NULL) one
-   number each, of RAMPWISE_STARTED and so on. Before the first good sample outputs are NaN. bad may be NULL.
-   Nothing may overlap. RAMPWISE_ERROR_MISSING; _SAMPLE (missing under RAMPWISE_GAP_REFUSE); _GAP; _OVERFLOW. */
+/* The next n samples, one dt apart. out (or NULL) gets frames of the outputs, [n][output_count]; flags (or
+   NULL) one number each, of RAMPWISE_STARTED and so on. Before the first good sample outputs are NaN. bad may
+   be NULL. Nothing may overlap. RAMPWISE_ERROR_MISSING; _SAMPLE (missing under RAMPWISE_GAP_REFUSE); _GAP;
+   _OVERFLOW. */
 RAMPWISE_API int rampwise_stream_put(rampwise_stream *stream, size_t n, const double *p, double *out,
                                      uint8_t *flags, size_t *bad);
 
@@ -173,8 +181,8 @@ RAMPWISE_API int rampwise_stream_put(rampwise_stream *stream, size_t n, const do
 RAMPWISE_API int rampwise_stream_put_raw(rampwise_stream *stream, size_t n, const int32_t *raw, double *out,
                                          uint8_t *flags, size_t *bad);
 
-/* The same with stamps t[n], in ticks, each later than the one before; missing samples have stamps too, or none.
-   rampwise_stream_put counts one dt on from the last stamp, or from 0 at the first sample.
+/* The same with stamps t[n], in ticks, each later than the one before; missing samples have stamps too, or
+   none. rampwise_stream_put counts one dt on from the last stamp, or from 0 at the first sample.
    RAMPWISE_ERROR_TIME where a stamp stands still or runs back. */
 RAMPWISE_API int rampwise_stream_put_at(rampwise_stream *stream, size_t n, const int64_t *t, const double *p,
                                         double *out, uint8_t *flags, size_t *bad);
@@ -182,11 +190,11 @@ RAMPWISE_API int rampwise_stream_put_raw_at(rampwise_stream *stream, size_t n, c
                                             const int32_t *raw, double *out, uint8_t *flags, size_t *bad);
 
 /* The samples before `number` are missing: a gap in the sender's sequence, or a flag on one sample.
-   RAMPWISE_ERROR_MISSING; _TIME (number lies before the expected one); _GAP (RAMPWISE_GAP_REFUSE); _OVERFLOW. */
+   RAMPWISE_ERROR_MISSING; _TIME (it lies before the expected one); _GAP (RAMPWISE_GAP_REFUSE); _OVERFLOW. */
 RAMPWISE_API int rampwise_stream_skip_to(rampwise_stream *stream, uint64_t number);
 
-/* The outputs as they stand, out[output_count], and their flags: either may be NULL. While samples are missing those
-   of the last good one, or the held load's. RAMPWISE_ERROR_MISSING; _COUNT (no good sample yet). */
+/* The outputs as they stand, out[output_count], and their flags: either may be NULL. While samples are missing
+   those of the last good one, or the held load's. RAMPWISE_ERROR_MISSING; _COUNT (no good sample yet). */
 RAMPWISE_API int rampwise_stream_read(const rampwise_stream *stream, double *out, uint8_t *flags);
 
 /* The state and its sample's number (either may be NULL). RAMPWISE_ERROR_MISSING, _COUNT. */
@@ -194,15 +202,16 @@ RAMPWISE_API int rampwise_stream_state(const rampwise_stream *stream, rampwise_s
 
 RAMPWISE_API int rampwise_stream_count(const rampwise_stream *stream, rampwise_stream_counts *counts);
 
-/* Other coefficients of the same dt, input and between, from the next step on: displacement and velocity stay, named
-   outputs follow, and so do the watches. intervals and interval_count replace the prepared ones.
+/* Other coefficients of the same dt, input and between, from the next step on: displacement and velocity stay,
+   named outputs follow, and so do the watches. intervals and interval_count replace the prepared ones.
    RAMPWISE_ERROR_MISSING, _NOT_MADE, _DIFFERENT, or others of rampwise_stream_init and rampwise_watch_init. */
 RAMPWISE_API int rampwise_stream_retune(rampwise_stream *stream, const rampwise_coeffs *c,
                                         const rampwise_interval *intervals, size_t interval_count);
 
-/* The watch is told every step from here on; it begins at the present state, or with the first sample. It must have
-   been made for the same dt, input and between (RAMPWISE_ERROR_DIFFERENT), and not be attached yet. Without end:
-   detach all by watch NULL. RAMPWISE_ERROR_MISSING (stream). */
+/* The watch is told every step from here on; it begins at the present state, or with the first sample. It must
+   have been made for the same dt, input and between (RAMPWISE_ERROR_DIFFERENT, or others of
+   rampwise_watch_init), and not be attached to another stream. NULL detaches all. RAMPWISE_ERROR_MISSING
+   (stream). */
 RAMPWISE_API int rampwise_stream_attach(rampwise_stream *stream, rampwise_watch *watch);
 
 /* All of a stream as bytes; it goes on with the same bits where they are resumed, on any machine. Watches are
@@ -211,9 +220,11 @@ RAMPWISE_API int rampwise_stream_attach(rampwise_stream *stream, rampwise_watch 
 
    saved_size   the bytes it takes, always the same for a stream.
    save         RAMPWISE_ERROR_MISSING; _MEMORY (count is less than that).
-   resume       into a stream that was made by rampwise_stream_init: everything is replaced, but its prepared intervals
-                and watches stay. count is exactly the size. RAMPWISE_ERROR_MISSING; _DAMAGED; _KIND (bytes of another kind of object); _EDITION
-                (of a version with other bits); _DIFFERENT (the prepared intervals are another oscillator's). */
+   resume       into a stream that was made by rampwise_stream_init: everything is replaced, but its prepared
+   intervals
+                and watches stay. count is exactly the size. RAMPWISE_ERROR_MISSING; _DAMAGED; _KIND (bytes of
+                another kind of object); _EDITION (of a version with other bits); _DIFFERENT (the prepared
+                intervals are another oscillator's). */
 RAMPWISE_API size_t rampwise_stream_saved_size(const rampwise_stream *stream);
 RAMPWISE_API int rampwise_stream_save(const rampwise_stream *stream, void *bytes, size_t count);
 RAMPWISE_API int rampwise_stream_resume(rampwise_stream *stream, const void *bytes, size_t count);

@@ -1,28 +1,30 @@
 /* rampwise/watch.h: what a live response does between its samples: greatest and least values, levels passed.
 
-   A watch looks at one output (output.h) of one oscillator and is told every step, by a stream (stream.h) that it
-   is attached to or by rampwise_watch_step. It keeps
+   A watch looks at one output (output.h) of one oscillator and is told every step, by a stream (stream.h) that
+   it is attached to or by rampwise_watch_step. It keeps
 
-   - the greatest and the least value since the start, since the last reset, and over the last whole steps;
-   - for up to four levels: whether the response is beyond, the crossings up and down with their exact instants, a
-     latch, and counts;
+   - the greatest and the least value since the start, since the last reset, and over the last whole steps (a bridge
+     that is longer counts as a whole);
+   - for up to four levels: whether the response is beyond, the crossings up and down with their exact instants,
+     a latch, and counts;
    - a queue of events in the caller's memory.
 
-   Inside a step the response is a line plus a free vibration. A step is cut into pieces so short that the second
-   derivative of the output has one zero in each at most; between the zeros of the slope the output is monotone,
-   so its extremes and crossings are bracketed, and refined on a power series of the piece. Instants are exact to
-   1e-9 of a step where the response passes the level at an angle. Where an output jumps at a sample, because the input or its
-   slope does, the values on both sides count, and a level between them is passed at that sample.
+   Inside a step the response is a line plus a free vibration. A step is cut into pieces so short that the
+   second derivative of the output has one zero in each at most; between the zeros of the slope the output is
+   monotone, so its extremes and crossings are bracketed, and refined on a power series of the piece. Instants
+   are exact to 1e-9 of a step where the response passes the level at an angle. Where an output jumps at a
+   sample, because the input or its slope does, the values on both sides count, and a level between them is
+   passed at that sample.
 
-   Work a step: one piece for each radian of w dt or unit of c dt/m, whichever are more, as a power of two, 64 at
-   most. A piece has at most two extremes and, for each level, three crossings; one of them costs at most 100
+   Work a step: one piece for each radian of w dt or unit of c dt/m, whichever are more, as a power of two, 64
+   at most. A piece has at most two extremes and, for each level, three crossings; one of them costs at most 100
    evaluations of a polynomial of degree 24, and most steps have none: some tens of operations. A window costs
-   2 log2(steps) + 6 comparisons. A step of another length than the coefficients' that needs more than one piece
+   4 log2(steps) comparisons and some. A step of another length than the coefficients' that needs more than one piece
    costs one making of coefficients. A step that would need more than 64 pieces (a long gap in a stream) is
    not looked into: the watch is reset, the reset is counted, and levels see the value at its end.
 
-   Threads: a watch belongs to one thread at a time, that of its stream. Nothing is allocated, locked or waited for.
-   All since 0.1. */
+   Threads: a watch belongs to one thread at a time, that of its stream. Nothing is allocated, locked or waited
+   for. All since 0.1. */
 #ifndef RAMPWISE_WATCH_H
 #define RAMPWISE_WATCH_H
 
@@ -63,9 +65,10 @@ typedef struct rampwise_event {
     int32_t reserve;
 } rampwise_event;
 
-/* A level. With direction 1 the response is beyond it from the instant that it comes up to `value` (equal counts) until it
-   falls below value - hysteresis; with direction -1, from the instant that it comes down to `value` until it rises
-   above value + hysteresis. The first value a watch sees counts as coming from the side that is not beyond. */
+/* A level. With direction 1 the response is beyond it from the instant that it comes up to `value` (equal
+   counts) until it falls below value - hysteresis; with direction -1, from the instant that it comes down to
+   `value` until it rises above value + hysteresis. The first value a watch sees counts as coming from the side
+   that is not beyond. */
 typedef struct rampwise_level {
     double value, hysteresis; /* hysteresis 0 or more */
     int32_t direction;        /* 1 or -1 */
@@ -105,8 +108,8 @@ typedef struct rampwise_watch_options {
     rampwise_level level[RAMPWISE_WATCH_LEVELS];
     int32_t level_count; /* 0 to 4 */
     int32_t number;      /* the caller's name for the output, in its events */
-    /* The window: 2 window_steps places of rampwise_watched (rampwise_watched_f32 in single precision), NULL and 0
-       for none. */
+    /* The window: 2 window_steps places of rampwise_watched (rampwise_watched_f32 in single precision), NULL
+       and 0 for none. */
     void *window;
     size_t window_steps;
     /* The queue of events, NULL and 0 for none. An event that finds it full is lost and counted. */
@@ -127,8 +130,8 @@ struct rampwise_watch_level_ {
     int32_t beyond, latch, latched, reserve;
 };
 
-/* In the caller's memory, and of fixed size; all members are private. It must stay where it is while it is attached
-   to a stream. */
+/* In the caller's memory, and of fixed size; all members are private. It must stay where it is while it is
+   attached to a stream. */
 typedef struct rampwise_watch {
     struct rampwise_watch *next_; /* of the same stream */
     rampwise_coeffs piece_;       /* of the usual step, where that has several pieces */
@@ -147,8 +150,8 @@ typedef struct rampwise_watch {
     int32_t level_count_, number_, pieces_, input_, between_, jumps_, started_, reserve_;
 } rampwise_watch;
 
-/* In single precision. Options, events, reports and peaks read are the same; nothing in a step is double but the
-   numbers in an event. */
+/* In single precision. Options, events, reports and peaks read are the same; nothing in a step is double but
+   the numbers in an event. */
 struct rampwise_watch_queue_f32_ {
     rampwise_watched_f32 *place;
     size_t first, count;
@@ -185,8 +188,8 @@ RAMPWISE_BEGIN
 RAMPWISE_API void rampwise_watch_options_init(rampwise_watch_options *options);
 
 /* A watch over steps of coefficients c (not kept). options is copied, its window and events are used.
-   RAMPWISE_ERROR_MISSING, _NOT_MADE, _QUANTITY, _COEFFICIENT; _COUNT (level_count, or options not begun with its
-   init); _STATE (a level is not a finite number with hysteresis 0 or more and direction 1 or -1);
+   RAMPWISE_ERROR_MISSING, _NOT_MADE, _QUANTITY, _COEFFICIENT; _COUNT (level_count, or options not begun with
+   its init); _STATE (a level is not a finite number with hysteresis 0 or more and direction 1 or -1);
    _STEP_LENGTH (a step would need more than 64 pieces). */
 RAMPWISE_API int rampwise_watch_init(rampwise_watch *watch, const rampwise_coeffs *c,
                                      const rampwise_watch_options *options);
@@ -195,15 +198,16 @@ RAMPWISE_API int rampwise_watch_init(rampwise_watch *watch, const rampwise_coeff
    RAMPWISE_ERROR_MISSING, _STATE. */
 RAMPWISE_API int rampwise_watch_start(rampwise_watch *watch, const rampwise_state *s, uint64_t sample);
 
-/* The step that took `before`, sample `sample`, to `after`, sample + samples, with coefficients c: for callers who step
-   by themselves. flags go into its events. A watch that was not started starts at `before`. Cannot fail; nothing is
-   checked. */
+/* The step that took `before`, sample `sample`, to `after`, sample + samples, with coefficients c: for callers
+   who step by themselves. flags go into its events. A watch that was not started starts at `before`. Cannot
+   fail; nothing is checked. */
 RAMPWISE_API void rampwise_watch_step(rampwise_watch *watch, const rampwise_coeffs *c,
                                       const rampwise_state *before, const rampwise_state *after,
                                       uint64_t sample, uint64_t samples, uint32_t flags);
 
-/* Other coefficients of the same dt, input and between, from the present state on: a named output changes its weights
-   with them, and may jump. A stream does it for those attached. Errors as rampwise_watch_init; _DIFFERENT. */
+/* Other coefficients of the same dt, input and between, from the present state on: a named output changes its
+   weights with them, and may jump. A stream does it for those attached. Errors as rampwise_watch_init;
+   _DIFFERENT. */
 RAMPWISE_API int rampwise_watch_retune(rampwise_watch *watch, const rampwise_coeffs *c,
                                        const rampwise_state *now);
 
@@ -221,15 +225,15 @@ RAMPWISE_API int rampwise_watch_level(const rampwise_watch *watch, size_t i, ram
    RAMPWISE_ERROR_MISSING, _COUNT. */
 RAMPWISE_API int rampwise_watch_release(rampwise_watch *watch, size_t i);
 
-/* Takes the oldest events out of the queue, up to capacity, into events; returns how many. Events come step by step;
-   those of one monotone stretch inside a step come level by level. */
+/* Takes the oldest events out of the queue, up to capacity, into events; returns how many. Events come step by
+   step; those of one monotone stretch inside a step come level by level. */
 RAMPWISE_API size_t rampwise_watch_events(rampwise_watch *watch, size_t capacity, rampwise_event *events);
 
 /* Events lost, and steps too long to be looked into. Either pointer may be NULL. RAMPWISE_ERROR_MISSING. */
 RAMPWISE_API int rampwise_watch_counts(const rampwise_watch *watch, uint64_t *lost, uint64_t *resets);
 
-/* All of a watch as bytes, its window and waiting events too (saved.h). It is resumed into a watch that was made
-   with the same capacities; the attachment to a stream stays. */
+/* All of a watch as bytes, its window and waiting events too (as in stream.h). It is resumed into a watch that was
+   made with the same capacities; the attachment to a stream stays. */
 RAMPWISE_API size_t rampwise_watch_saved_size(const rampwise_watch *watch);
 RAMPWISE_API int rampwise_watch_save(const rampwise_watch *watch, void *bytes, size_t count);
 RAMPWISE_API int rampwise_watch_resume(rampwise_watch *watch, const void *bytes, size_t count);

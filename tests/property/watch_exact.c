@@ -1,6 +1,6 @@
-/* Watches against quad precision (tests/support/quad_response.c): the greatest and least value of each window, within
-   1e-12 of the largest value of the record; the instant of each crossing, within 1e-9 of a step; and that no crossing is
-   missing. RAMPWISE_POINTS in the environment sets the number of cases. */
+/* Watches against quad precision (tests/support/quad_response.c): the greatest and least value of each window,
+   within 1e-12 of the largest value of the record; the instant of each crossing, within 1e-9 of a step; and
+   that no crossing is missing. RAMPWISE_POINTS in the environment sets the number of cases. */
 #include <float.h>
 #include <math.h>
 #include <stdio.h>
@@ -8,7 +8,7 @@
 #include "../support/quad_response.h"
 #include "../support/suite.h"
 
-enum { N = 44, W = 5, EVENTS = 1000, SCAN = 5 };
+enum { N = 30, W = 5, EVENTS = 1000, SCAN = 5 };
 
 typedef struct worst {
     double peak, instant;
@@ -49,8 +49,8 @@ static void check_window(const rampwise_coeffs *c, const rampwise_watch *watch, 
     ck_assert(got.high.sample >= begin && got.high.sample <= k && got.high.fraction < 1);
 }
 
-/* The reference's value a little before and after the told instant is on either side of the edge, unless the response only
-   touches it: the slope there times 1e-9 of a step is lost in the rounding of the values. */
+/* The reference's value a little before and after the told instant is on either side of the edge, unless the
+   response only touches it: the slope there times 1e-9 of a step is lost in the rounding of the values. */
 static void check_crossing(const rampwise_coeffs *c, const rampwise_state *s, const double *p,
                            const rampwise_event *event, int quantity, double scale, worst *w)
 {
@@ -73,8 +73,9 @@ static void check_crossing(const rampwise_coeffs *c, const rampwise_state *s, co
     ck_assert((slope > 0) == (event->direction > 0));
 }
 
-/* Crossings of a level without hysteresis by a scan at SCAN points a step and the extremes between them: told crossings must
-   alternate at the same samples, and their number over each step must have the parity of the ends. */
+/* Crossings of a level without hysteresis by a scan at SCAN points a step and the extremes between them: told
+   crossings must alternate at the same samples, and their number over each step must have the parity of the
+   ends. */
 static void check_count(const rampwise_state *s, const rampwise_coeffs *c, const double *p, double level,
                         int quantity, const rampwise_event *event, size_t told, double scale)
 {

@@ -1,5 +1,5 @@
-/* Frequency response: against the run itself, against the sum of images of the continuous response, against exact
-   facts of the equation of motion; no delay under a ramp; refusals. */
+/* Frequency response: against the run itself, against the sum of images of the continuous response, against
+   exact facts of the equation of motion; no delay under a ramp; refusals. */
 #include <complex.h>
 #include <float.h>
 #include <math.h>
@@ -10,9 +10,14 @@
 
 static const double pi = 3.14159265358979323846;
 
+static double complex number(double re, double im)
+{
+    return re + im * I;
+}
+
 static double complex polar(rampwise_response r)
 {
-    return r.gain * cexp(CMPLX(0, r.phase));
+    return r.gain * cexp(number(0, r.phase));
 }
 
 static rampwise_output named(int quantity)
@@ -33,8 +38,9 @@ static const int quantities[] = {RAMPWISE_DISPLACEMENT, RAMPWISE_VELOCITY,     R
 enum { QUANTITIES = sizeof quantities / sizeof *quantities };
 
 /* A tone for so long that the start has died by exp(-50): cosine and sine through two streams are the parts of
-   one complex answer. Rounding leaves some 1e-16 of the load at every sample, which comes out at resonance, at most 1/(2 zeta)
-   = 17 times the static answer, where the tone's own may be a hundredth of it or less: 1e-11 leaves room. */
+   one complex answer. Rounding leaves some 1e-16 of the load at every sample, which comes out at resonance, at
+   most 1/(2 zeta) = 17 times the static answer, where the tone's own may be a hundredth of it or less: 1e-11
+   leaves room. */
 START_TEST(a_tone_that_was_run)
 {
     gsl_rng *const r = random_make("a_tone_that_was_run");
@@ -71,7 +77,7 @@ START_TEST(a_tone_that_was_run)
             ck_assert_int_eq(rampwise_stream_state(&part[0], &s, NULL), RAMPWISE_OK);
             terms = fabs(row[0]) * hypot(s.u, s.v * c.dt) + fabs(row[1]) * hypot(s.v, s.u / c.dt) +
                     fabs(row[2]) + fabs(row[3]) + got.gain;
-            const double complex want = CMPLX(out[0][q], out[1][q]) / CMPLX(p[0], p[1]);
+            const double complex want = number(out[0][q], out[1][q]) / number(p[0], p[1]);
             ck_assert_msg(cabs(polar(got) - want) <= 1e-11 * terms, "kind %d quantity %d: %g of %g", i % 6,
                           quantities[q], cabs(polar(got) - want), terms);
         }
@@ -81,8 +87,8 @@ START_TEST(a_tone_that_was_run)
 END_TEST
 
 /* Sampling theory (Poisson's sum): the ramp through the samples of a tone is the sum over its aliases w_k of
-   sinc^2(w_k dt/2), the held tone that of (1 - exp(-i w_k dt))/(i w_k dt). The continuous displacement falls with 1/w^2
-   for a force: 4,000 images leave less than 1e-10 (ramp) and 1e-7 (hold) of the rest. */
+   sinc^2(w_k dt/2), the held tone that of (1 - exp(-i w_k dt))/(i w_k dt). The continuous displacement falls
+   with 1/w^2 for a force: 4,000 images leave less than 1e-10 (ramp) and 1e-7 (hold) of the rest. */
 START_TEST(sum_of_images)
 {
     gsl_rng *const r = random_make("sum_of_images");
@@ -98,7 +104,7 @@ START_TEST(sum_of_images)
             ck_assert_int_eq(rampwise_frequency_response(&c, &u, fabs(w), NULL, &one), RAMPWISE_OK);
             const double complex answer = w < 0 ? conj(polar(one)) : polar(one);
             const double sinc = sin(x) / x;
-            all += answer * (hold ? sinc * cexp(CMPLX(0, -x)) : sinc * sinc);
+            all += answer * (hold ? sinc * cexp(number(0, -x)) : sinc * sinc);
         }
         rampwise_response got;
         ck_assert_int_eq(rampwise_frequency_response(&c, &u, omega, &got, NULL), RAMPWISE_OK);
@@ -108,9 +114,9 @@ START_TEST(sum_of_images)
 }
 END_TEST
 
-/* At resonance the displacement under a force is 1/(2 zeta) static ones and a quarter turn late; at sqrt(2) times the natural
-   frequency the mass on a moving base moves as much as the base, whatever the damping; a slow force finds the
-   spring alone. */
+/* At resonance the displacement under a force is 1/(2 zeta) static ones and a quarter turn late; at sqrt(2)
+   times the natural frequency the mass on a moving base moves as much as the base, whatever the damping; a
+   slow force finds the spring alone. */
 START_TEST(facts)
 {
     for (int i = 0; i < 20; ++i) {
@@ -129,9 +135,9 @@ START_TEST(facts)
 }
 END_TEST
 
-/* A held input is late by half a sample. Under a ramp only images turn the phase: the first is (x/(2 pi - x))^2 of the
-   tone, x = omega dt up to 0.6, times the continuous response out there beside the one here, less than
-   0.3/(2 pi - x)^2: together 1e-4, by which the phase can turn, that is 2e-4 samples. */
+/* A held input is late by half a sample. Under a ramp only images turn the phase: the first is (x/(2 pi -
+   x))^2 of the tone, x = omega dt up to 0.6, times the continuous response out there beside the one here, less
+   than 0.3/(2 pi - x)^2: together 1e-4, by which the phase can turn, that is 2e-4 samples. */
 START_TEST(no_added_delay)
 {
     const rampwise_output u = named(RAMPWISE_DISPLACEMENT);

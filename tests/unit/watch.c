@@ -1,5 +1,5 @@
-/* Watches: tables of levels, hysteresis and latch; queues, windows, resets, saving, refusals. What lies between samples is
-   checked against quad precision in tests/property/watch_exact.c. */
+/* Watches: tables of levels, hysteresis and latch; queues, windows, resets, saving, refusals. What lies
+   between samples is checked against quad precision in tests/property/watch_exact.c. */
 #include <float.h>
 #include <math.h>
 #include <stdint.h>
@@ -44,6 +44,7 @@ static void bench_make(bench *b, rampwise_level level)
     ck_assert_int_eq(rampwise_stream_init(&b->stream, &b->c, &o), RAMPWISE_OK);
     ck_assert_int_eq(rampwise_watch_init(&b->watch, &b->c, &w), RAMPWISE_OK);
     ck_assert_int_eq(rampwise_stream_attach(&b->stream, &b->watch), RAMPWISE_OK);
+    ck_assert_int_eq(rampwise_stream_attach(&b->stream, &b->watch), RAMPWISE_OK); /* is attached already */
 }
 
 static void put(bench *b, double p)
@@ -178,6 +179,38 @@ START_TEST(queue)
 }
 END_TEST
 
+/* A free unit mass, v0 = 0.16, under p = -1 + 2 t over one step of 1: u = 0.16 t - t^2/2 + t^3/3 rises until 0.2, falls until
+   0.8, and rises, with the slope up at both ends. Powers of ten in binary: 8 ulp of the largest term, 0.5. */
+START_TEST(two_extremes_in_a_step)
+{
+    const double tolerance = 8 * DBL_EPSILON / 2;
+    const rampwise_coeffs c = made((rampwise_system){1, 0, 0}, 1, 0);
+    rampwise_watch watch;
+    rampwise_watch_options o = options_of(RAMPWISE_DISPLACEMENT);
+    rampwise_event event[4], got[4];
+    rampwise_state s = {0, 0.16, -1, -1}, before = s;
+    rampwise_peak peak;
+    o.level[0] = (rampwise_level){-0.02, 0, -1, 0};
+    o.level_count = 1;
+    o.events = event;
+    o.event_capacity = 4;
+    ck_assert_int_eq(rampwise_watch_init(&watch, &c, &o), RAMPWISE_OK);
+    rampwise_step(&c, &s, 1);
+    rampwise_watch_step(&watch, &c, &before, &s, 7, 1, 0);
+    ck_assert_int_eq(rampwise_watch_peak(&watch, RAMPWISE_SINCE_START, &peak), RAMPWISE_OK);
+    ck_assert(fabs(peak.high.value - 0.044 / 3) <= tolerance &&
+              fabs(peak.low.value + 0.064 / 3) <= tolerance);
+    ck_assert(peak.high.sample == 7 && peak.low.sample == 7);
+    ck_assert(fabs(peak.high.fraction - 0.2) <= 1e-14 && fabs(peak.low.fraction - 0.8) <= 1e-14);
+    ck_assert_uint_eq(rampwise_watch_events(&watch, 4, got), 2);
+    for (int i = 0; i < 2; ++i) {
+        const double t = got[i].fraction, u = t * (0.16 + t * (-0.5 + t / 3));
+        ck_assert(got[i].sample == 7 && got[i].direction == (i == 0 ? -1 : 1) && (t < 0.8) == (i == 0));
+        ck_assert(fabs(u + 0.02) <= tolerance);
+    }
+}
+END_TEST
+
 /* The window against a search through the last steps: the load is greatest and least at samples. */
 START_TEST(window)
 {
@@ -238,8 +271,8 @@ START_TEST(resets)
 }
 END_TEST
 
-/* With w dt = 10 a step has 16 pieces, a bridge over 6 samples 128: it is passed over, counted and told, the spans
-   begin anew, and the level sees its end. A bridge over 3 has 64. */
+/* With w dt = 10 a step has 16 pieces, a bridge over 6 samples 128: it is passed over, counted and told, the
+   spans begin anew, and the level sees its end. A bridge over 3 has 64. */
 START_TEST(too_long_a_bridge)
 {
     rampwise_stream_options o;
@@ -465,6 +498,7 @@ static void add_tests(TCase *tests)
     tcase_add_test(tests, with_hysteresis);
     tcase_add_test(tests, latch);
     tcase_add_test(tests, queue);
+    tcase_add_test(tests, two_extremes_in_a_step);
     tcase_add_test(tests, window);
     tcase_add_test(tests, resets);
     tcase_add_test(tests, too_long_a_bridge);
