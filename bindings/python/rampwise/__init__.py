@@ -1,0 +1,49 @@
+"""Exact response of spring-mass-damper systems to sampled loads.
+
+Three lines::
+
+    import rampwise
+    spectrum = rampwise.response_spectrum(ground, dt=0.005, period=rampwise.equal_ratios(200, 0.02, 4.0))
+    print(spectrum.PSA)
+
+====================================  =================================================================
+`System`, `System.natural`            systems by mass, damper, stiffness, or by period, frequency, omega
+`respond`                             whole records, at regular or irregular times
+`response_spectrum`                   SD, SV, SA, PSV, PSA with instants and signs
+`for_each`                            many records of unequal length; a bad one does not stop the rest
+`Bank`                                many oscillators under one input, fed in blocks
+`coefficients`                        the coefficients of a step
+`equal_ratios`, `octaves`             periods or frequencies of a spectrum
+`rampwise.plot`                       pictures; needs matplotlib
+====================================  =================================================================
+
+Arrays may be of any real type, shape and layout, and are not copied where they need not be. Units are the caller's,
+any consistent set; damping is a ratio. All bits are those of the C library. Results support, and never replace, the
+governing code and a licensed engineer's judgement.
+"""
+
+from ._library import arithmetic_edition, library_version
+from ._version import __version__
+from .bank import Bank
+from .records import Outcomes, for_each
+from .response import Response, respond
+from .spectrum import Peaks, Spectrum, equal_ratios, octaves, response_spectrum
+from .system import System, coefficients
+
+__all__ = [
+    "Bank",
+    "Outcomes",
+    "Peaks",
+    "Response",
+    "Spectrum",
+    "System",
+    "__version__",
+    "arithmetic_edition",
+    "coefficients",
+    "equal_ratios",
+    "for_each",
+    "library_version",
+    "octaves",
+    "respond",
+    "response_spectrum",
+]

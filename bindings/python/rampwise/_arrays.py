@@ -1,0 +1,59 @@
+"""From what users hold to arrays that the library can read, copied only where it must be."""
+
+from __future__ import annotations
+
+from typing import Any, Tuple
+
+import numpy as np
+from numpy.typing import ArrayLike, NDArray
+
+Doubles = NDArray[np.float64]
+
+
+def doubles(values: ArrayLike, name: str) -> Doubles:
+    """Real numbers of any kind as doubles, in any layout; the same array where they are that already."""
+    if isinstance(values, np.ma.MaskedArray) and np.any(values.mask):
+        raise ValueError(f"{name}: values are masked; fill or cut them first")
+    try:
+        array = np.asarray(values)
+    except ValueError as error:
+        raise TypeError(f"{name}: not an array of numbers: {error}") from None
+    if array.dtype.kind not in "biuf":
+        raise TypeError(f"{name}: real numbers are needed, not {array.dtype}")
+    return array.astype(np.float64, copy=False)
+
+
+def double(value: Any, name: str) -> float:
+    """One real number."""
+    array = doubles(value, name)
+    if array.ndim != 0:
+        raise TypeError(f"{name}: one number is needed, not an array of shape {array.shape}")
+    return float(array)
+
+
+def records(values: ArrayLike, name: str) -> Doubles:
+    """Records along the last axis, each without gaps in memory; other axes as they are."""
+    array = doubles(values, name)
+    if array.ndim == 0:
+        raise TypeError(f"{name}: an array of samples is needed, not one number")
+    if array.shape[-1] == 0:
+        raise ValueError(f"{name}: there are no samples")
+    plain = array.strides[-1] == array.itemsize or array.shape[-1] == 1
+    if not plain or not array.flags.aligned:
+        array = np.ascontiguousarray(array)
+    return array
+
+
+def broadcast(first: Tuple[int, ...], second: Tuple[int, ...], name: str) -> Tuple[int, ...]:
+    """The shape that two have in common."""
+    try:
+        return np.broadcast_shapes(first, second)
+    except ValueError:
+        raise ValueError(f"{name}: shapes {first} and {second} do not go together") from None
+
+
+def aligned(size: int, alignment: int) -> NDArray[np.uint8]:
+    """Memory whose first byte lies at a multiple of `alignment`."""
+    memory = np.zeros(size + alignment, np.uint8)
+    first = -int(memory.__array_interface__["data"][0]) % alignment
+    return memory[first : first + size]
