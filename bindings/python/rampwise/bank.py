@@ -190,6 +190,8 @@ class Bank:
         self._coeffs[number] = made.reshape(-1)[0]
 
     def __getstate__(self) -> Dict[str, Any]:
+        if self.stopped > 0:
+            raise ValueError(f"{self.stopped} oscillators are stopped, which a saved bank would forget")
         return {
             "edition": _library.arithmetic_edition,
             "coeffs": self._coeffs.reshape(self.shape),
