@@ -7,6 +7,8 @@ from typing import Any, Tuple
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
+from . import _library
+
 Doubles = NDArray[np.float64]
 
 
@@ -46,14 +48,21 @@ def records(values: ArrayLike, name: str) -> Doubles:
 
 def broadcast(first: Tuple[int, ...], second: Tuple[int, ...], name: str) -> Tuple[int, ...]:
     """The shape that two have in common."""
+    if first == second:
+        return first
     try:
         return np.broadcast_shapes(first, second)
     except ValueError:
         raise ValueError(f"{name}: shapes {first} and {second} do not go together") from None
 
 
+def to_shape(array: NDArray[Any], shape: Tuple[int, ...]) -> NDArray[Any]:
+    """The array, repeated without copying where its shape is another."""
+    return array if array.shape == shape else np.broadcast_to(array, shape)
+
+
 def aligned(size: int, alignment: int) -> NDArray[np.uint8]:
     """Memory whose first byte lies at a multiple of `alignment`."""
     memory = np.zeros(size + alignment, np.uint8)
-    first = -int(memory.__array_interface__["data"][0]) % alignment
+    first = -_library.address(memory) % alignment
     return memory[first : first + size]

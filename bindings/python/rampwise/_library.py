@@ -217,7 +217,7 @@ def check(status: int, where: str = "", **names: str) -> None:
 
 def address(array: NDArray[Any]) -> int:
     """Where the first element lies."""
-    return int(array.__array_interface__["data"][0])
+    return int(array.ctypes.data)
 
 
 def addresses(array: NDArray[Any]) -> NDArray[np.intp]:

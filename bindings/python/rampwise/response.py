@@ -214,7 +214,7 @@ def respond(
     shape = _arrays.broadcast(made.shape, samples.shape[:-1], "record and system")
     states = _states(made, samples, shape, start, displacement, velocity)
     if frames:
-        histories = _run_frames(samples, np.broadcast_to(made, shape), states, start)
+        histories = _run_frames(samples, _arrays.to_shape(made, shape), states, start)
     else:
         histories = _Rows(samples, stamps, made, states, start).run(threads, progress)
     return Response(
@@ -258,7 +258,7 @@ def _are_frames(record: Doubles, made: NDArray[np.void]) -> bool:
         and record.shape[1] > 1
         and record.T.flags.c_contiguous
         and record.flags.aligned
-        and np.broadcast_shapes(made.shape, record.shape[:1]) == record.shape[:1]
+        and made.shape in ((), (1,), record.shape[:1])
     )
 
 
@@ -274,19 +274,19 @@ def _states(
     states = np.zeros(shape, _library.STATE)
     for field, values, name in (("u", displacement, "displacement"), ("v", velocity, "velocity")):
         array = _arrays.doubles(values, name)
-        if start != "at once" and np.any(array):
+        if start != "at once" and array.any():
             raise ValueError(f"{name}: an initial value goes with the start 'at once' only")
         try:
             states[field] = array
         except ValueError:
             raise ValueError(f"{name}: shape {array.shape} for results of shape {shape}") from None
-        if not np.all(np.isfinite(array)):
+        if not np.isfinite(array).all():
             _library.check(_library.constant("ERROR_STATE"), state=name)
     if start == "ramp":
         return states
     states["p"] = states["p_before"] = samples[..., 0]
     if start == "settled":
-        rows = zip(np.ndindex(shape), _library.addresses(np.broadcast_to(made, shape)), _library.addresses(states), states["p"].flat)
+        rows = zip(np.ndindex(shape), _library.addresses(_arrays.to_shape(made, shape)), _library.addresses(states), states["p"].flat)
         for index, coeffs, state, sample in rows:
             status = _library.call("start_settled", int(coeffs), int(state), sample)
             _library.check(status, f"at sample 0{_which(index)}")
@@ -318,8 +318,8 @@ class _Rows:
         self.stamps = stamps
         self.ramps = start == "ramp"
         self.kept = (samples, made)  # alive while their addresses are used
-        self.coeffs_at = _library.addresses(np.broadcast_to(made, self.shape))
-        self.samples_at = _library.addresses(np.broadcast_to(samples[..., 0], self.shape))
+        self.coeffs_at = _library.addresses(_arrays.to_shape(made, self.shape))
+        self.samples_at = _library.addresses(_arrays.to_shape(samples[..., 0], self.shape))
         self.histories = _empty(self.shape + (self.n,))
 
     def run(self, threads: int, progress: bool) -> Tuple[Doubles, ...]:

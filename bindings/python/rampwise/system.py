@@ -46,7 +46,7 @@ def one_of(**values: Optional[ArrayLike]) -> Tuple[str, Doubles]:
 def damping_ratio(damping: ArrayLike, allow_strong_damping: bool) -> Doubles:
     """Damping as a ratio; refused where it looks like per cent."""
     ratio = _arrays.doubles(damping, "damping")
-    if not allow_strong_damping and np.any(ratio > LARGEST_DAMPING):
+    if not allow_strong_damping and (ratio > LARGEST_DAMPING).any():
         raise ValueError(
             f"damping: {ratio.max():g} is above {LARGEST_DAMPING:g}; it is the ratio to critical damping, not per "
             "cent (5 % is 0.05). If it is meant, pass allow_strong_damping=True"
@@ -91,12 +91,12 @@ class System:
         shape = _arrays.broadcast(arrays["mass"].shape, arrays["damper"].shape, "mass and damper")
         shape = _arrays.broadcast(shape, arrays["stiffness"].shape, "stiffness")
         for name, array in arrays.items():
-            object.__setattr__(self, name, np.broadcast_to(array, shape))
-        if not np.all(np.isfinite(self.mass) & (self.mass > 0)):
+            object.__setattr__(self, name, _arrays.to_shape(array, shape))
+        if not (np.isfinite(self.mass) & (self.mass > 0)).all():
             _library.check(_library.constant("ERROR_MASS"))
-        if not np.all(np.isfinite(self.damper)):
+        if not np.isfinite(self.damper).all():
             _library.check(_library.constant("ERROR_DAMPER"))
-        if not np.all(np.isfinite(self.stiffness)):
+        if not np.isfinite(self.stiffness).all():
             _library.check(_library.constant("ERROR_STIFFNESS"))
 
     @classmethod
@@ -141,7 +141,7 @@ class System:
         shape = _arrays.broadcast(given.shape, ratio.shape, f"{name} and damping")
         unit = np.zeros(shape, _library.SYSTEM)
         flat = unit.reshape(-1)
-        pairs = zip(np.broadcast_to(given, shape).flat, np.broadcast_to(ratio, shape).flat)
+        pairs = zip(_arrays.to_shape(given, shape).flat, _arrays.to_shape(ratio, shape).flat)
         for i, (value, zeta) in enumerate(pairs):
             status = _library.call(_MAKERS[name], _library.address(flat[i : i + 1]), value, zeta)
             _library.check(status, f"{value:g}" if flat.size == 1 else f"{value:g}, entry {i}", frequency=name,
