@@ -28,6 +28,7 @@
 #include "rampwise/instructions.h"
 #include "rampwise/bank.h"
 #include "rampwise/peak.h"
+#include "rampwise/evidence.h"
 #include "rampwise/peaks.h"
 #include "rampwise/spectrum.h"
 #include "rampwise/foreign.h"

@@ -287,8 +287,7 @@ static void make_bounds(extremes *x)
     const double rest = 1 - S - K / 8, unit = rest > 0.25 ? h * h / 8 / rest : 0;
     const double per_load = c->input == RAMPWISE_FORCE ? 1 / c->system.mass : 1;
     const int ramp = c->between == RAMPWISE_RAMP, loaded = c->input <= RAMPWISE_BASE_ACCELERATION;
-    /* Relative motion over a moving base is not what the samples of u bound. */
-    x->constant = rest > 0.25 && !x->jumps && c->input != RAMPWISE_BASE_DISPLACEMENT ? 0 : INFINITY;
+    x->constant = rest > 0.25 && x->sampled ? 0 : INFINITY;
     x->from_p = x->from_change = 0;
     x->from_size = unit * fabs(x->stiffness);
     /* z'' + damping z' + stiffness z = F inside the step */
@@ -325,6 +324,8 @@ void rampwise_extremes_bound_(extremes *x, const rampwise_coeffs *c, int quantit
     x->stiffness = system->stiffness / system->mass;
     x->oscillates = x->damping * x->damping / 4 < x->stiffness;
     x->jumps = jumps_at_samples(c, quantity);
+    /* Relative motion over a moving base is not what the kernels see. */
+    x->sampled = !x->jumps && c->input != RAMPWISE_BASE_DISPLACEMENT;
     x->halvings = halvings_for(x, c->dt);
     x->halvings = x->halvings > 0 ? x->halvings : 0;
     x->pieces = 1;
@@ -513,6 +514,11 @@ static relative left_alone(const extremes *x, const rampwise_state *s)
 double rampwise_extremes_after_begin_(const extremes *x, const rampwise_state *s)
 {
     return derivatives_of(x, left_alone(x, s)).z;
+}
+
+double rampwise_extremes_limit_(const extremes *x, const rampwise_state *s)
+{
+    return comes_to(x, left_alone(x, s));
 }
 
 void rampwise_extremes_after_(const extremes *x, const rampwise_state *s, uint64_t sample,

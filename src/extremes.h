@@ -11,7 +11,8 @@
 typedef struct extremes {
     const rampwise_coeffs *c;
     int quantity;
-    int jumps; /* z jumps at samples */
+    int jumps;   /* z jumps at samples */
+    int sampled; /* the kernels' values at the samples are z, and it does not jump there */
     int oscillates;
     int halvings;                /* until a piece is short: |S| and |K| up to 1 */
     double damping, stiffness;   /* per mass */
@@ -45,6 +46,9 @@ void rampwise_extremes_inside_(const extremes *x, const rampwise_state *s, const
 /* The free motion after s for ever, the base at rest or moving on evenly; times count from `sample` on. */
 void rampwise_extremes_after_(const extremes *x, const rampwise_state *s, uint64_t sample,
                               rampwise_peak *peak);
+
+/* What a free motion from s on that stays comes to, where it never gets there. */
+double rampwise_extremes_limit_(const extremes *x, const rampwise_state *s);
 
 /* One value at one instant. */
 static inline void note_value(rampwise_peak *peak, double value, uint64_t sample, double fraction)

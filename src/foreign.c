@@ -61,6 +61,9 @@ static const struct {
     CONSTANT(RAMPWISE_AT_SAMPLES),
     CONSTANT(RAMPWISE_RESIDUAL),
     CONSTANT(RAMPWISE_MAXIMAX),
+    CONSTANT(RAMPWISE_EVIDENCE),
+    CONSTANT(RAMPWISE_ABRUPT_START),
+    CONSTANT(RAMPWISE_ABRUPT_END),
 };
 
 static const struct {
@@ -74,6 +77,7 @@ static const struct {
     {"rampwise_bank_wanted", sizeof(rampwise_bank_wanted)},
     {"rampwise_instant", sizeof(rampwise_instant)},
     {"rampwise_peak", sizeof(rampwise_peak)},
+    {"rampwise_evidence", sizeof(rampwise_evidence)},
 };
 
 int rampwise_constant(const char *name, int *value)

@@ -61,3 +61,9 @@ SIZE(rampwise_instant, 24);
 AT(rampwise_peak, high, 0);
 AT(rampwise_peak, low, 24);
 SIZE(rampwise_peak, 48);
+
+AT(rampwise_evidence, error_high, 0);
+AT(rampwise_evidence, error_low, 8);
+AT(rampwise_evidence, abrupt, 16);
+AT(rampwise_evidence, reserve, 20);
+SIZE(rampwise_evidence, 24);

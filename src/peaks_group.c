@@ -3,12 +3,14 @@
 #include <float.h>
 #include <math.h>
 #include <string.h>
+#include "ends.h"
 #include "lanes.h"
 #include "rampwise/status.h"
 
 /* What a segment left of each stretch: the states where it begins, the greatest and least values in it. */
 typedef struct traces {
     double u[STRETCHES][LANES], v[STRETCHES][LANES];
+    double error_u[STRETCHES][LANES], error_v[STRETCHES][LANES]; /* with evidence */
     double high[STRETCHES][3][LANES], low[STRETCHES][3][LANES];
 } traces;
 
@@ -24,6 +26,7 @@ void rampwise_group_make_(peaks_group *g, size_t count, const rampwise_coeffs *c
     g->count = count;
     g->quantity_count = quantity_count;
     g->at_samples = (flags & RAMPWISE_AT_SAMPLES) != 0;
+    g->with_evidence = (flags & RAMPWISE_EVIDENCE) != 0;
     for (size_t q = 0; q < quantity_count; ++q) {
         g->quantity[q] = quantity[q];
         g->looked |= 1u << kernel_quantity(quantity[q]);
@@ -35,7 +38,7 @@ void rampwise_group_make_(peaks_group *g, size_t count, const rampwise_coeffs *c
         for (size_t q = 0; q < quantity_count; ++q) {
             extremes x;
             rampwise_extremes_bound_(&x, &c[j], quantity[q]);
-            g->excess[q][0][j] = x.constant;
+            g->excess[q][0][j] = g->at_samples && x.sampled ? 0 : x.constant;
             g->excess[q][1][j] = g->at_samples ? 0 : x.from_p;
             g->excess[q][2][j] = g->at_samples ? 0 : x.from_change;
             g->excess[q][3][j] = g->at_samples ? 0 : x.from_size;
@@ -47,7 +50,8 @@ void rampwise_group_make_(peaks_group *g, size_t count, const rampwise_coeffs *c
 static void raise_floors(peaks_group *g, size_t j, size_t q)
 {
     const candidate *const top = &g->high[q][j], *const bottom = &g->low[q][j];
-    const double high = g->peak[q][j].high.value, low = g->peak[q][j].low.value;
+    const rampwise_peak *const peak = &g->found[q][j].peak;
+    const double high = peak->high.value, low = peak->low.value;
     g->floor_high[q][j] = top->n > 0 && top->best > high ? top->best : high;
     g->floor_low[q][j] = bottom->n > 0 && -bottom->best < low ? -bottom->best : low;
 }
@@ -66,13 +70,15 @@ void rampwise_group_start_(peaks_group *g, const rampwise_state *s, double p0)
         g->lanes.u[j] = now.u;
         g->lanes.v[j] = now.v;
         rampwise_lane_set_(&g->lanes, j, &g->c[j]);
+        g->errors.u[j] = g->errors.v[j] = 0;
+        rampwise_lane_set_(&g->errors, j, &g->c[j]);
         for (size_t q = 0; q < g->quantity_count; ++q) {
             extremes x;
             rampwise_extremes_bound_(&x, &g->c[j], g->quantity[q]);
             const double value = rampwise_extremes_value_(&x, &now);
             const rampwise_instant first = {s != NULL ? value : 0, 0, 0}; /* at rest before anything */
-            g->peak[q][j] = (rampwise_peak){first, first};
-            note_value(&g->peak[q][j], value, 0, 0);
+            g->found[q][j] = (findings){{first, first}, {0, 0, 0, 0}};
+            note_value(&g->found[q][j].peak, value, 0, 0);
             raise_floors(g, j, q);
         }
     }
@@ -84,26 +90,47 @@ static double in_range(double change)
     return change < DBL_MAX ? change : DBL_MAX;
 }
 
-void rampwise_segment_make_(segment *along, uint64_t sample, double p_before, double p_last, size_t n,
-                            const double *p)
+/* The greatest sizes of each stretch's samples and changes, the sample before it among them. */
+static void bound_stretches(segment *along)
 {
-    along->sample = sample;
-    along->n = n;
-    along->p_before = p_before;
-    along->p_last = p_last;
-    along->p = p;
-    double before = p_last;
-    for (size_t i = 0; i < n; i += STRETCH) {
+    double before = along->from.p;
+    for (size_t i = 0; i < along->n; i += STRETCH) {
         double largest = fabs(before), change = 0;
-        for (size_t j = i; j < n && j < i + STRETCH; ++j) {
-            const double size = fabs(p[j]), apart = fabs(p[j] - before);
+        for (size_t j = i; j < along->n && j < i + STRETCH; ++j) {
+            const double size = fabs(along->p[j]), apart = fabs(along->p[j] - before);
             largest = size > largest ? size : largest;
             change = apart > change ? apart : change;
-            before = p[j];
+            before = along->p[j];
         }
         along->largest_p[i / STRETCH] = largest;
         along->largest_change[i / STRETCH] = in_range(change);
     }
+}
+
+void rampwise_segment_make_(segment *along, const input_end *end, size_t n, const double *p, unsigned looks)
+{
+    along->from = *end;
+    along->n = n;
+    along->p = p;
+    along->with_evidence = (looks & RAMPWISE_EVIDENCE) != 0;
+    memset(along->largest_p, 0, sizeof along->largest_p);
+    memset(along->largest_change, 0, sizeof along->largest_change);
+    if ((looks & RAMPWISE_AT_SAMPLES) == 0)
+        bound_stretches(along);
+    double before = end->p;
+    for (size_t i = 0; along->with_evidence && i < n; ++i) {
+        along->d[i] = second_difference(before, p[i], p[i + 1]);
+        before = p[i];
+    }
+}
+
+void rampwise_segment_end_(const segment *along, input_end *end)
+{
+    const size_t n = along->n;
+    end->p_before = n > 1 ? along->p[n - 2] : end->p;
+    end->p = along->p[n - 1];
+    end->sample += n;
+    end->d = along->with_evidence ? along->d[n - 1] : 0;
 }
 
 static size_t stretches_of(const segment *along)
@@ -121,7 +148,7 @@ static double sample_before(const segment *along, size_t k, size_t back)
 {
     if (k * STRETCH >= back)
         return along->p[k * STRETCH - back];
-    return k * STRETCH + 1 == back ? along->p_last : along->p_before;
+    return k * STRETCH + 1 == back ? along->from.p : along->from.p_before;
 }
 
 /* One step: its beginning where the quantity jumps, its inside where that may hold more, its end, and the
@@ -142,13 +169,60 @@ static void look_into_step(const extremes *x, int inside, const rampwise_state *
     note_value(peak, z_next, sample + 1, 0);
 }
 
+/* How much of the input's own error a quantity has at once, beside what the motion has: the factor of p in it where
+   the motion is held still. A ramp is off by 6 f (1 - f) d at the fraction f of a step, and so by d on average, which
+   is what d as the input has at the samples too. */
+static double direct_share(const extremes *x)
+{
+    const rampwise_system *const system = &x->c->system;
+    if (x->c->input == RAMPWISE_FORCE)
+        return x->quantity == RAMPWISE_TOTAL_ACCELERATION ? 1 / system->mass : 0;
+    if (x->c->input == RAMPWISE_BASE_ACCELERATION || x->quantity == RAMPWISE_DISPLACEMENT)
+        return 0;
+    return x->quantity == RAMPWISE_VELOCITY ? -1 : system->damper / system->mass;
+}
+
+/* The estimated error of the quantity where the motion's is e, under e->p = d. */
+static double error_of(const extremes *x, const rampwise_state *e, double fraction)
+{
+    const double direct = direct_share(x);
+    const double value = rampwise_extremes_value_(x, e);
+    return direct != 0 ? value + direct * (6 * fraction * (1 - fraction) - 1) * e->p : value;
+}
+
+/* The second difference at the sample i after the candidate's first one; none at the record's ends. */
+static double difference_at(const candidate *at, size_t i)
+{
+    if (at->sample + i == 0 || (at->ends_record && i == at->n))
+        return 0;
+    return second_difference(at->p[i], at->p[i + 1], at->p[i + 2]);
+}
+
+static double error_at(const extremes *x, const candidate *at, const rampwise_instant *when)
+{
+    const size_t whole = (size_t)(when->sample - at->sample);
+    rampwise_state e = {at->error_u, at->error_v, difference_at(at, 0), 0};
+    for (size_t i = 1; i <= whole; ++i)
+        rampwise_step(x->c, &e, difference_at(at, i));
+    if (when->fraction > 0 &&
+        rampwise_inside(x->c, &e, difference_at(at, whole + 1), when->fraction, &e) != RAMPWISE_OK)
+        return NAN;
+    return error_of(x, &e, when->fraction);
+}
+
+static int moved(const rampwise_instant *before, const rampwise_instant *now)
+{
+    return before->sample != now->sample || before->fraction != now->fraction || before->value != now->value;
+}
+
 /* A candidate sample by sample, and inside each step that may hold more. */
 static void look(const kernels *k, const peaks_group *g, const candidate *at, size_t j, size_t q,
-                 rampwise_peak *peak)
+                 findings *found)
 {
     extremes x;
     double u[STRETCH], v[STRETCH], total[STRETCH];
     rampwise_state s = {at->u, at->v, at->p[1], at->p[0]}, end = s;
+    const rampwise_peak before = found->peak;
     rampwise_extremes_bound_(&x, &g->c[j], g->quantity[q]);
     const int inside = !g->at_samples && rampwise_extremes_make_(&x, &g->c[j], g->quantity[q]) == RAMPWISE_OK;
     const rampwise_history out = {u, v, NULL, x.quantity == RAMPWISE_TOTAL_ACCELERATION ? total : NULL};
@@ -157,25 +231,32 @@ static void look(const kernels *k, const peaks_group *g, const candidate *at, si
     for (size_t i = 0; i < n; ++i) {
         const rampwise_state next = {u[i], v[i], at->p[i + 2], at->p[i + 1]};
         const double z_next = out.total != NULL ? total[i] : rampwise_extremes_value_(&x, &next);
-        look_into_step(&x, inside, &s, &next, z, z_next, at->sample + i, peak);
+        look_into_step(&x, inside, &s, &next, z, z_next, at->sample + i, &found->peak);
         s = next;
         z = z_next;
     }
+    if (g->with_evidence && moved(&before.high, &found->peak.high))
+        found->evidence.error_high = error_at(&x, at, &found->peak.high);
+    if (g->with_evidence && moved(&before.low, &found->peak.low))
+        found->evidence.error_low = error_at(&x, at, &found->peak.low);
 }
 
 /* Stretch i of a segment as a candidate. */
-static void take_candidate(candidate *to, const segment *along, const traces *t, size_t i, size_t j,
-                           double best, double most)
+static void take_candidate(candidate *to, const peaks_group *g, const segment *along, const traces *t,
+                           size_t i, size_t j, double best, double most)
 {
     to->best = best;
     to->most = most;
     to->u = t->u[i][j];
     to->v = t->v[i][j];
-    to->sample = along->sample + i * STRETCH;
+    to->error_u = t->error_u[i][j];
+    to->error_v = t->error_v[i][j];
+    to->sample = along->from.sample + i * STRETCH;
     to->n = samples_in(along, i);
+    to->ends_record = 0;
     to->p[0] = sample_before(along, i, 2);
     to->p[1] = sample_before(along, i, 1);
-    memcpy(to->p + 2, along->p + i * STRETCH, to->n * sizeof *to->p);
+    memcpy(to->p + 2, along->p + i * STRETCH, (to->n + (g->with_evidence ? 1 : 0)) * sizeof *to->p);
 }
 
 /* Stretch i against the candidate of one side; sign turns the low side into a high one. Candidates are looked
@@ -185,7 +266,7 @@ static void offer(const kernels *k, peaks_group *g, const segment *along, const 
 {
     const int bit = kernel_quantity(g->quantity[q]);
     candidate *const side = sign > 0 ? &g->high[q][j] : &g->low[q][j];
-    rampwise_peak *const peak = &g->peak[q][j];
+    const rampwise_peak *const peak = &g->found[q][j].peak;
     const double high = t->high[i][bit][j], low = t->low[i][bit][j];
     const double excess = g->excess[q][0][j] + g->excess[q][1][j] * along->largest_p[i] +
                           g->excess[q][2][j] * along->largest_change[i] +
@@ -196,34 +277,43 @@ static void offer(const kernels *k, peaks_group *g, const segment *along, const 
     if (side->n > 0 && !(best > side->most)) {
         if (most < side->best || (excess == 0 && most == side->best))
             return;
-        look(k, g, side, j, q, peak);
+        look(k, g, side, j, q, &g->found[q][j]);
         side->n = 0;
     }
     if (most > (sign > 0 ? peak->high.value : -peak->low.value))
-        take_candidate(side, along, t, i, j, best, most);
+        take_candidate(side, g, along, t, i, j, best, most);
     raise_floors(g, j, q);
+}
+
+/* An infinite peak on the side where the last finite state was, without an estimate. */
+static void note_overflow(const extremes *x, const rampwise_state *s, uint64_t sample, findings *found)
+{
+    const double side = copysign(INFINITY, rampwise_extremes_value_(x, s));
+    note_value(&found->peak, side, sample, 0);
+    *(side > 0 ? &found->evidence.error_high : &found->evidence.error_low) = NAN;
 }
 
 /* Whose displacement or velocity is infinite stands still from here on, with a peak of its last sign. */
 static void stop_lane(const kernels *k, peaks_group *g, const segment *along, const traces *t, size_t j)
 {
-    rampwise_state s = {t->u[0][j], t->v[0][j], along->p_last, along->p_before};
+    rampwise_state s = {t->u[0][j], t->v[0][j], along->from.p, along->from.p_before};
     const rampwise_history nothing = {NULL, NULL, NULL, NULL};
     const size_t reached = k->advance(&g->c[j], &s, 0, along->n, 1, along->p, &nothing);
     for (size_t q = 0; q < g->quantity_count; ++q) {
         extremes x;
         for (size_t i = 0; i < stretches_of(along); ++i) {
             candidate at;
-            take_candidate(&at, along, t, i, j, 0, 0);
-            look(k, g, &at, j, q, &g->peak[q][j]);
+            take_candidate(&at, g, along, t, i, j, 0, 0);
+            look(k, g, &at, j, q, &g->found[q][j]);
         }
         rampwise_extremes_bound_(&x, &g->c[j], g->quantity[q]);
-        note_value(&g->peak[q][j], copysign(INFINITY, rampwise_extremes_value_(&x, &s)),
-                   along->sample + reached + 1, 0);
+        note_overflow(&x, &s, along->from.sample + reached + 1, &g->found[q][j]);
         g->high[q][j].n = g->low[q][j].n = 0;
         raise_floors(g, j, q);
     }
     rampwise_lane_still_(&g->lanes, j);
+    rampwise_lane_still_(&g->errors, j);
+    g->errors.u[j] = g->errors.v[j] = 0;
     g->lanes.u[j] = g->lanes.v[j] = 0;
     g->stopped[j] = 1;
 }
@@ -241,6 +331,14 @@ static void offer_where_needed(const kernels *k, peaks_group *g, const segment *
                 offer(k, g, along, t, i / 2, j, q, i % 2 == 0 ? 1 : -1);
 }
 
+static void run_errors(const kernels *k, peaks_group *g, const segment *along, size_t i, traces *t)
+{
+    memcpy(t->error_u[i], g->errors.u, sizeof t->error_u[i]);
+    memcpy(t->error_v[i], g->errors.v, sizeof t->error_v[i]);
+    (void)k->under_one_input(&g->errors, g->count, i > 0 ? along->d[i * STRETCH - 1] : along->from.d,
+                             samples_in(along, i), along->d + i * STRETCH, NULL);
+}
+
 void rampwise_group_run_(const kernels *k, peaks_group *g, const segment *along)
 {
     traces t;
@@ -250,6 +348,8 @@ void rampwise_group_run_(const kernels *k, peaks_group *g, const segment *along)
         memcpy(t.v[i], g->lanes.v, sizeof t.v[i]);
         lost |= k->stretch(&g->lanes, g->count, g->looked, g->row, sample_before(along, i, 1),
                            samples_in(along, i), along->p + i * STRETCH, t.high[i], t.low[i]);
+        if (g->with_evidence)
+            run_errors(k, g, along, i, &t);
     }
     for (size_t j = 0; lost && j < g->count; ++j)
         if (!isfinite(g->lanes.u[j]) || !isfinite(g->lanes.v[j]))
@@ -258,42 +358,110 @@ void rampwise_group_run_(const kernels *k, peaks_group *g, const segment *along)
         offer_where_needed(k, g, along, &t, q);
 }
 
-/* The peak so far, candidates looked at in the order of time. */
-static rampwise_peak settled(const kernels *k, const peaks_group *g, size_t j, size_t q)
+/* What was found so far, candidates looked at in the order of time. */
+static findings settled(const kernels *k, const peaks_group *g, size_t j, size_t q)
 {
-    rampwise_peak peak = g->peak[q][j];
+    findings found = g->found[q][j];
     const candidate *first = &g->high[q][j], *second = &g->low[q][j];
     if (first->n > 0 && second->n > 0 && second->sample < first->sample) {
         first = &g->low[q][j];
         second = &g->high[q][j];
     }
     if (first->n > 0)
-        look(k, g, first, j, q, &peak);
+        look(k, g, first, j, q, &found);
     if (second->n > 0)
-        look(k, g, second, j, q, &peak);
-    return peak;
+        look(k, g, second, j, q, &found);
+    return found;
 }
 
-rampwise_peak rampwise_group_peak_(const kernels *k, const peaks_group *g, size_t lane, size_t q,
-                                   unsigned flags, double p_before, double p, uint64_t sample)
+/* One lane's motion and its error where the input has come to its end. */
+typedef struct last_states {
+    rampwise_state s, e;
+    uint64_t sample;
+} last_states;
+
+/* The last step of a record with evidence, whose last second difference is zero. */
+static int take_last_step(const kernels *k, const peaks_group *g, size_t j, size_t q, const extremes *x,
+                          const input_end *end, last_states *last, findings *found)
+{
+    candidate at = {.u = last->s.u, .v = last->s.v, .error_u = last->e.u, .error_v = last->e.v};
+    rampwise_state next = last->s;
+    at.sample = last->sample;
+    at.n = 1;
+    at.ends_record = 1;
+    at.p[0] = last->s.p_before;
+    at.p[1] = last->s.p;
+    at.p[2] = end->next;
+    rampwise_step(x->c, &next, end->next);
+    rampwise_step(x->c, &last->e, 0);
+    ++last->sample;
+    look(k, g, &at, j, q, found);
+    if (!isfinite(next.u) || !isfinite(next.v)) {
+        note_overflow(x, &last->s, last->sample, found);
+        return 0;
+    }
+    last->s = next;
+    return 1;
+}
+
+/* Held inputs act for one more dt. */
+static void take_held_step(const peaks_group *g, const extremes *x, last_states *last, rampwise_peak *peak)
+{
+    rampwise_state next = last->s;
+    rampwise_step(x->c, &next, last->s.p);
+    look_into_step(x, !g->at_samples, &last->s, &next, rampwise_extremes_value_(x, &last->s),
+                   rampwise_extremes_value_(x, &next), last->sample++, peak);
+    last->s = next;
+}
+
+/* The error of a value of the free motion after the last sample, whose own error is e there. */
+static double error_after(const extremes *x, const last_states *last, const rampwise_instant *when)
+{
+    rampwise_coeffs c;
+    rampwise_state e = last->e;
+    const double steps = (double)(when->sample - last->sample) + when->fraction;
+    if (when->sample == UINT64_MAX)
+        return isfinite(when->value) ? rampwise_extremes_limit_(x, &e) : NAN;
+    if (steps == 0)
+        return error_of(x, &e, 0);
+    if (rampwise_coeffs_make(&c, &x->c->system, steps * x->c->dt, x->c->input, RAMPWISE_RAMP) != RAMPWISE_OK)
+        return NAN;
+    rampwise_step(&c, &e, 0);
+    return error_of(x, &e, 0);
+}
+
+/* The free motion after the last sample: instead of what was found before, or beside it. */
+static void find_after(const peaks_group *g, const extremes *x, const last_states *last, unsigned flags,
+                       findings *found)
+{
+    if (flags == RAMPWISE_RESIDUAL) {
+        const rampwise_instant first = {rampwise_extremes_after_begin_(x, &last->s), last->sample, 0};
+        found->peak = (rampwise_peak){first, first};
+        found->evidence.error_high = found->evidence.error_low = error_of(x, &last->e, 0);
+    }
+    const rampwise_peak before = found->peak;
+    rampwise_extremes_after_(x, &last->s, last->sample, &found->peak);
+    if (g->with_evidence && moved(&before.high, &found->peak.high))
+        found->evidence.error_high = error_after(x, last, &found->peak.high);
+    if (g->with_evidence && moved(&before.low, &found->peak.low))
+        found->evidence.error_low = error_after(x, last, &found->peak.low);
+}
+
+findings rampwise_group_findings_(const kernels *k, const peaks_group *g, size_t lane, size_t q,
+                                  unsigned flags, const input_end *end)
 {
     extremes x;
-    rampwise_peak peak = settled(k, g, lane, q);
-    rampwise_state s = {g->lanes.u[lane], g->lanes.v[lane], p, p_before};
+    findings found = settled(k, g, lane, q);
+    last_states last = {{g->lanes.u[lane], g->lanes.v[lane], end->p, end->p_before},
+                        {g->errors.u[lane], g->errors.v[lane], end->d, end->d},
+                        end->sample};
     if (g->stopped[lane] || rampwise_extremes_make_(&x, &g->c[lane], g->quantity[q]) != RAMPWISE_OK)
-        return peak;
-    if (x.c->between == RAMPWISE_HOLD) {
-        rampwise_state next = s;
-        rampwise_step(x.c, &next, p);
-        look_into_step(&x, !g->at_samples, &s, &next, rampwise_extremes_value_(&x, &s),
-                       rampwise_extremes_value_(&x, &next), sample++, &peak);
-        s = next;
-    }
-    if (flags == RAMPWISE_RESIDUAL) {
-        const rampwise_instant first = {rampwise_extremes_after_begin_(&x, &s), sample, 0};
-        peak = (rampwise_peak){first, first};
-    }
+        return found;
+    if (end->is_behind && !take_last_step(k, g, lane, q, &x, end, &last, &found))
+        return found;
+    if (x.c->between == RAMPWISE_HOLD)
+        take_held_step(g, &x, &last, &found.peak);
     if (flags != 0)
-        rampwise_extremes_after_(&x, &s, sample, &peak);
-    return peak;
+        find_after(g, &x, &last, flags, &found);
+    return found;
 }

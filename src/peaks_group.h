@@ -4,6 +4,7 @@
 
 #include "extremes.h"
 #include "kernels/kernels.h"
+#include "rampwise/evidence.h"
 
 /* Samples of a stretch, whose greatest and least values the kernels keep; stretches of a segment, which is gone
    through twice: all at lane speed, then those stretches that may hold a peak. */
@@ -14,17 +15,24 @@ enum { STRETCH = 32, STRETCHES = 16, SEGMENT = STRETCH * STRETCHES };
 typedef struct candidate {
     double best, most; /* at its samples; what it can hold at most, with the excess between them */
     double u, v;       /* where it begins */
+    double error_u, error_v;
     uint64_t sample;
     size_t n;              /* samples; 0 where there is no candidate */
-    double p[STRETCH + 2]; /* p_before and p where it begins, then its samples */
+    double p[STRETCH + 3]; /* p_before and p where it begins, its samples; for evidence one more ... */
+    int ends_record;       /* ... but here */
 } candidate;
 
+typedef struct findings {
+    rampwise_peak peak;
+    rampwise_evidence evidence;
+} findings;
+
 typedef struct peaks_group {
-    lane_block lanes;
+    lane_block lanes, errors;   /* errors: under the input of evidence.h, where that is wanted */
     double excess[3][4][LANES]; /* extremes.h: constant, from_p, from_change, from_size */
     double row[3][LANES];
     rampwise_coeffs c[LANES];
-    rampwise_peak peak[3][LANES];
+    findings found[3][LANES];
     double floor_high[3][LANES],
         floor_low[3][LANES]; /* what counts must exceed: peaks and candidates so far */
     candidate high[3][LANES], low[3][LANES];
@@ -32,16 +40,26 @@ typedef struct peaks_group {
     size_t count, quantity_count;
     int quantity[3];
     unsigned looked; /* bits of the kernel's quantities */
-    int at_samples;
+    int at_samples, with_evidence;
 } peaks_group;
 
-/* The input along one segment. */
+/* Where the input has come to. With evidence the oscillators stand one sample behind, at the last whose second
+   difference d is known: `next` was fed and is still to be stepped to. */
+typedef struct input_end {
+    uint64_t sample; /* of p */
+    double p_before, p, d;
+    int is_behind;
+    double next;
+} input_end;
+
+/* The input along one segment: samples p[0] to p[n - 1], and with evidence p[n]. */
 typedef struct segment {
-    uint64_t sample; /* of p_last */
+    input_end from;
     size_t n;
-    double p_before, p_last;
     const double *p;
-    double largest_p[STRETCHES], largest_change[STRETCHES];
+    double largest_p[STRETCHES], largest_change[STRETCHES]; /* 0 where only samples are looked at */
+    int with_evidence;
+    double d[SEGMENT]; /* second differences (evidence.h), with evidence */
 } segment;
 
 void rampwise_group_make_(peaks_group *g, size_t count, const rampwise_coeffs *c, size_t quantity_count,
@@ -50,13 +68,17 @@ void rampwise_group_make_(peaks_group *g, size_t count, const rampwise_coeffs *c
 /* States s, or rest under p0 where s is NULL, at sample 0. */
 void rampwise_group_start_(peaks_group *g, const rampwise_state *s, double p0);
 
-void rampwise_segment_make_(segment *along, uint64_t sample, double p_before, double p_last, size_t n,
-                            const double *p);
+/* The next n samples of an input that has come to `end`, for groups made with the flags `looks`; p[n] is read with
+   evidence. */
+void rampwise_segment_make_(segment *along, const input_end *end, size_t n, const double *p, unsigned looks);
+
+/* Moves *end to where the segment ends. */
+void rampwise_segment_end_(const segment *along, input_end *end);
 
 void rampwise_group_run_(const kernels *k, peaks_group *g, const segment *along);
 
-/* The peak of one lane as rampwise_peaks_get answers it. */
-rampwise_peak rampwise_group_peak_(const kernels *k, const peaks_group *g, size_t lane, size_t q,
-                                   unsigned flags, double p_before, double p, uint64_t sample);
+/* What rampwise_peaks_get answers for one lane, and what the evidence is; its ends are the caller's. */
+findings rampwise_group_findings_(const kernels *k, const peaks_group *g, size_t lane, size_t q,
+                                  unsigned flags, const input_end *end);
 
 #endif

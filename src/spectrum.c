@@ -2,6 +2,8 @@
 
 #include <math.h>
 #include <stddef.h>
+#include "ends.h"
+#include "lanes.h"
 #include "peaks_group.h"
 #include "rampwise/status.h"
 #include "valid.h"
@@ -11,35 +13,48 @@ typedef struct record {
     double dt;
     const double *p;
     int input, quantity;
-    unsigned flags;
+    unsigned looks, when; /* flags of rampwise_peaks_init and of rampwise_peaks_get */
+    uint32_t abrupt;
 } record;
 
-/* One group through the whole record. */
-static void respond(const record *r, peaks_group *g)
+static int has_evidence(const record *r)
 {
-    const kernels *const k = rampwise_kernels_(RAMPWISE_FASTEST);
-    rampwise_group_start_(g, NULL, r->p[0]);
-    for (size_t done = 1, part = 0; done < r->n; done += part) {
-        segment along;
-        part = r->n - done < SEGMENT ? r->n - done : SEGMENT;
-        rampwise_segment_make_(&along, done - 1, r->p[done > 1 ? done - 2 : 0], r->p[done - 1], part,
-                               r->p + done);
-        rampwise_group_run_(k, g, &along);
-    }
+    return (r->looks & RAMPWISE_EVIDENCE) != 0;
 }
 
-/* A stiff oscillator without limit: no relative motion, and the mass goes with its base, from rest and to rest. */
-static void follow_base(const record *r, rampwise_peak *peak)
+/* One group through the whole record, or with evidence up to its last sample but one. */
+static void respond(const record *r, peaks_group *g, input_end *end)
 {
-    const int moves = r->quantity == RAMPWISE_TOTAL_ACCELERATION && r->flags != RAMPWISE_RESIDUAL;
-    const rampwise_instant nothing = {0, r->flags == RAMPWISE_RESIDUAL ? r->n - 1 : 0, 0};
-    *peak = (rampwise_peak){nothing, nothing};
+    const kernels *const k = rampwise_kernels_(RAMPWISE_FASTEST);
+    const size_t behind = has_evidence(r) && r->n > 1;
+    *end = (input_end){.p = r->p[0], .p_before = r->p[0]};
+    rampwise_group_start_(g, NULL, r->p[0]);
+    for (size_t done = 1, part = 0; done + behind < r->n; done += part) {
+        segment along;
+        part = r->n - behind - done < SEGMENT ? r->n - behind - done : SEGMENT;
+        rampwise_segment_make_(&along, end, part, r->p + done, r->looks);
+        rampwise_group_run_(k, g, &along);
+        rampwise_segment_end_(&along, end);
+    }
+    end->is_behind = behind > 0;
+    end->next = r->p[r->n - 1];
+}
+
+/* A stiff oscillator without limit: no relative motion, and the mass goes with its base, from rest and to rest. The
+   base's velocity alone does not tell its acceleration's error. */
+static findings follow_base(const record *r)
+{
+    const int moves = r->quantity == RAMPWISE_TOTAL_ACCELERATION && r->when != RAMPWISE_RESIDUAL;
+    const rampwise_instant nothing = {0, r->when == RAMPWISE_RESIDUAL ? r->n - 1 : 0, 0};
+    const double error = moves && r->input == RAMPWISE_BASE_VELOCITY ? NAN : 0;
+    findings found = {{nothing, nothing}, {error, error, 0, 0}};
     for (size_t i = 0; moves && i < r->n; ++i) {
         if (r->input == RAMPWISE_BASE_ACCELERATION)
-            note_value(peak, r->p[i], i, 0);
+            note_value(&found.peak, r->p[i], i, 0);
         else if (r->input == RAMPWISE_BASE_VELOCITY && i > 0)
-            note_value(peak, (r->p[i] - r->p[i - 1]) / r->dt, i - 1, 0);
+            note_value(&found.peak, (r->p[i] - r->p[i - 1]) / r->dt, i - 1, 0);
     }
+    return found;
 }
 
 static int check_record(const record *r, size_t *bad)
@@ -52,9 +67,10 @@ static int check_record(const record *r, size_t *bad)
         return RAMPWISE_ERROR_INPUT;
     if (r->quantity < RAMPWISE_DISPLACEMENT || r->quantity > RAMPWISE_TOTAL_ACCELERATION)
         return RAMPWISE_ERROR_QUANTITY;
-    const unsigned when = r->flags & ~(unsigned)RAMPWISE_AT_SAMPLES;
-    if (when != 0 && when != RAMPWISE_RESIDUAL && when != RAMPWISE_MAXIMAX)
+    if (r->when != 0 && r->when != RAMPWISE_RESIDUAL && r->when != RAMPWISE_MAXIMAX)
         return RAMPWISE_ERROR_FLAGS;
+    if (has_evidence(r) && check_estimable(r->input, RAMPWISE_RAMP) != RAMPWISE_OK)
+        return check_estimable(r->input, RAMPWISE_RAMP);
     return check_samples(r->n, r->p, bad);
 }
 
@@ -71,12 +87,21 @@ static int make_oscillator(const record *r, double omega, double zeta, rampwise_
     return status == RAMPWISE_OK ? rampwise_coeffs_make(c, &system, r->dt, r->input, RAMPWISE_RAMP) : status;
 }
 
+/* What no maker of coefficients refuses: steps and frequencies far from the ends of the range. */
+static int is_everyday(const record *r, double omega, double zeta)
+{
+    return omega > 1e-60 && omega < 1e60 && r->dt > 1e-60 && r->dt < 1e60 && omega * r->dt < 1e6 &&
+           zeta >= 0 && zeta <= 100;
+}
+
 /* Before anything is written: stiff oscillators need a damping ratio too. */
 static int check_oscillators(const record *r, size_t n_osc, const double *omega, const double *zeta,
                              size_t *bad)
 {
     for (size_t i = 0; i < n_osc; ++i) {
         rampwise_coeffs c;
+        if (is_everyday(r, omega[i], zeta[i]))
+            continue;
         const int stiff = is_stiff(r, omega[i]);
         const int status = !stiff              ? make_oscillator(r, omega[i], zeta[i], &c)
                            : isfinite(zeta[i]) ? RAMPWISE_OK
@@ -87,42 +112,91 @@ static int check_oscillators(const record *r, size_t n_osc, const double *omega,
     return RAMPWISE_OK;
 }
 
-/* The next oscillators until LANES of them are not stiff; returns how many that took. */
+/* Oscillators of the next group, so that the last ones are not few. */
+static size_t group_share(size_t left)
+{
+    const size_t groups = lane_groups(left), share = (left + groups - 1) / groups;
+    return (share + 7) / 8 * 8;
+}
+
+/* The next oscillators until a group's share of them are not stiff; returns how many that took. */
 static size_t respond_next(const record *r, size_t left, const double *omega, const double *zeta,
-                           int at_samples, rampwise_peak *peak)
+                           findings *found)
 {
     rampwise_coeffs c[LANES];
     size_t which[LANES], count = 0, taken = 0;
-    for (; taken < left && count < LANES; ++taken) {
+    const size_t share = group_share(left);
+    for (; taken < left && taken < LANES && count < share; ++taken) {
         if (is_stiff(r, omega[taken])) {
-            follow_base(r, &peak[taken]);
+            found[taken] = follow_base(r);
             continue;
         }
         (void)make_oscillator(r, omega[taken], zeta[taken], &c[count]);
         which[count++] = taken;
     }
     peaks_group g;
-    rampwise_group_make_(&g, count, c, 1, &r->quantity, at_samples ? RAMPWISE_AT_SAMPLES : 0);
-    respond(r, &g);
+    input_end end;
+    rampwise_group_make_(&g, count, c, 1, &r->quantity, r->looks);
+    respond(r, &g, &end);
     for (size_t j = 0; j < count; ++j)
-        peak[which[j]] = rampwise_group_peak_(rampwise_kernels_(RAMPWISE_FASTEST), &g, j, 0, r->flags,
-                                              r->p[r->n > 1 ? r->n - 2 : 0], r->p[r->n - 1], r->n - 1);
+        found[which[j]] =
+            rampwise_group_findings_(rampwise_kernels_(RAMPWISE_FASTEST), &g, j, 0, r->when, &end);
     return taken;
+}
+
+static void find_abrupt_ends(record *r)
+{
+    record_ends ends = {0};
+    for (size_t i = 1; i + 1 < r->n; ++i) {
+        const double d = second_difference(r->p[i - 1], r->p[i], r->p[i + 1]);
+        rampwise_ends_take_(&ends, 1, &d);
+    }
+    r->abrupt = rampwise_ends_abrupt_(&ends);
+}
+
+/* evidence is NULL where it is not wanted. */
+static int solve(record *r, size_t n_osc, const double *omega, const double *zeta, rampwise_peak *peak,
+                 rampwise_evidence *evidence, size_t *bad)
+{
+    if (r->p == NULL || (n_osc > 0 && (omega == NULL || zeta == NULL || peak == NULL)))
+        return RAMPWISE_ERROR_MISSING;
+    int status = check_record(r, bad);
+    if (status == RAMPWISE_OK)
+        status = check_oscillators(r, n_osc, omega, zeta, bad);
+    if (status != RAMPWISE_OK)
+        return status;
+    if (has_evidence(r))
+        find_abrupt_ends(r);
+    for (size_t done = 0, taken; done < n_osc; done += taken) {
+        findings found[LANES];
+        taken = respond_next(r, n_osc - done, omega + done, zeta + done, found);
+        for (size_t i = 0; i < taken; ++i) {
+            peak[done + i] = found[i].peak;
+            found[i].evidence.abrupt = r->abrupt;
+            if (evidence != NULL)
+                evidence[done + i] = found[i].evidence;
+        }
+    }
+    return RAMPWISE_OK;
 }
 
 int rampwise_spectrum(size_t n, double dt, const double *p, int input, size_t n_osc, const double *omega,
                       const double *zeta, int quantity, unsigned flags, rampwise_peak *peak, size_t *bad)
 {
-    const record r = {n, dt, p, input, quantity, flags & ~(unsigned)RAMPWISE_AT_SAMPLES};
-    if (p == NULL || (n_osc > 0 && (omega == NULL || zeta == NULL || peak == NULL)))
+    const unsigned looks = flags & (unsigned)RAMPWISE_AT_SAMPLES;
+    record r = {n, dt, p, input, quantity, looks, flags - looks, 0};
+    return solve(&r, n_osc, omega, zeta, peak, NULL, bad);
+}
+
+int rampwise_spectrum_evidence(size_t n, double dt, const double *p, int input, size_t n_osc,
+                               const double *omega, const double *zeta, int quantity, unsigned flags,
+                               rampwise_peak *peak, rampwise_evidence *evidence, size_t *bad)
+{
+    const unsigned looks = flags & (unsigned)RAMPWISE_AT_SAMPLES;
+    record r = {n, dt, p, input, quantity, looks | RAMPWISE_EVIDENCE, flags - looks, 0};
+    if (n_osc > 0 && evidence == NULL)
         return RAMPWISE_ERROR_MISSING;
-    int status = check_record(&r, bad);
-    if (status == RAMPWISE_OK)
-        status = check_oscillators(&r, n_osc, omega, zeta, bad);
-    for (size_t done = 0; status == RAMPWISE_OK && done < n_osc;)
-        done += respond_next(&r, n_osc - done, omega + done, zeta + done, (flags & RAMPWISE_AT_SAMPLES) != 0,
-                             peak + done);
-    return status;
+    return solve(&r, n_osc, omega, zeta, peak, evidence, bad);
 }
 
 double rampwise_pseudo_velocity(double omega, const rampwise_peak *displacement)

@@ -39,6 +39,15 @@ static inline int check_samples(size_t n, const double *p, size_t *bad)
     return wrong < n ? blame(RAMPWISE_ERROR_SAMPLE, wrong, bad) : RAMPWISE_OK;
 }
 
+/* What the sampling has cost can be estimated where the input is on a line and its kinks do not make the response
+   jump. */
+static inline int check_estimable(int input, int between)
+{
+    if (between != RAMPWISE_RAMP)
+        return RAMPWISE_ERROR_BETWEEN;
+    return input != RAMPWISE_BASE_DISPLACEMENT ? RAMPWISE_OK : RAMPWISE_ERROR_INPUT;
+}
+
 /* Coefficients of oscillators that share one input. */
 static inline int check_alike(size_t n, const rampwise_coeffs *c)
 {

@@ -18,7 +18,8 @@ enum {
 enum {
     RAMPWISE_AT_SAMPLES = 1, /* look at the samples only; without it, between them too */
     RAMPWISE_RESIDUAL = 2,   /* the free motion after the last sample, instead of the time before */
-    RAMPWISE_MAXIMAX = 4     /* both times */
+    RAMPWISE_MAXIMAX = 4,    /* both times */
+    RAMPWISE_EVIDENCE = 8    /* estimate what the sampling has cost too (evidence.h) */
 };
 
 /* A value at (sample + fraction) dt after sample 0, 0 <= fraction < 1. In residuals sample is

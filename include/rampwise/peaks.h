@@ -18,6 +18,7 @@
 #define RAMPWISE_PEAKS_H
 
 #include <stddef.h>
+#include "evidence.h"
 #include "instructions.h"
 #include "peak.h"
 #include "step.h"
@@ -33,9 +34,10 @@ RAMPWISE_API size_t rampwise_peaks_alignment(void);
 
 /* Peaks of n oscillators c[0] to c[n - 1], copied, that share dt, input and between, for quantity[0] to
    quantity[quantity_count - 1] (one to three of peak.h, all different), in the caller's memory; *peaks points
-   into it. flags: 0 or RAMPWISE_AT_SAMPLES. The first sample fed is sample 0, and all are at rest under it.
+   into it. flags: 0, RAMPWISE_AT_SAMPLES, RAMPWISE_EVIDENCE (evidence.h; for RAMPWISE_RAMP and not base
+   displacement) or both. The first sample fed is sample 0, and all are at rest under it.
    RAMPWISE_ERROR_MISSING, _MEMORY, _COUNT (n or quantity_count), _NOT_MADE, _DIFFERENT, _QUANTITY,
-   _FLAGS, _INSTRUCTIONS. */
+   _FLAGS, _INSTRUCTIONS; with evidence _BETWEEN, _INPUT. */
 RAMPWISE_API int rampwise_peaks_init(void *memory, size_t bytes, size_t n, const rampwise_coeffs *c,
                                      size_t quantity_count, const int *quantity, unsigned flags,
                                      int instructions, rampwise_peaks **peaks);
@@ -65,6 +67,11 @@ RAMPWISE_API int rampwise_peaks_run(rampwise_peaks *peaks, size_t n, const doubl
    goes on unchanged. RAMPWISE_ERROR_MISSING, _QUANTITY, _FLAGS, _COUNT (nothing was fed yet). */
 RAMPWISE_API int rampwise_peaks_get(const rampwise_peaks *peaks, int quantity, unsigned flags,
                                     rampwise_peak *peak);
+
+/* The estimated errors of those peaks, evidence[n], for an object with RAMPWISE_EVIDENCE (else
+   RAMPWISE_ERROR_FLAGS). Errors as rampwise_peaks_get. */
+RAMPWISE_API int rampwise_peaks_evidence(const rampwise_peaks *peaks, int quantity, unsigned flags,
+                                         rampwise_evidence *evidence);
 
 RAMPWISE_END
 

@@ -3,6 +3,7 @@
 #define RAMPWISE_SPECTRUM_H
 
 #include <stddef.h>
+#include "evidence.h"
 #include "peak.h"
 #include "system.h"
 
@@ -33,14 +34,22 @@ RAMPWISE_API int rampwise_spectrum(size_t n, double dt, const double *p, int inp
                                    const double *omega, const double *zeta, int quantity, unsigned flags,
                                    rampwise_peak *peak, size_t *bad);
 
+/* The same with evidence[n_osc] of what the sampling has cost (evidence.h), for force, base acceleration and base
+   velocity: RAMPWISE_ERROR_INPUT for base displacement, whose kinks make the response jump. Half as much
+   work again. */
+RAMPWISE_API int rampwise_spectrum_evidence(size_t n, double dt, const double *p, int input, size_t n_osc,
+                                            const double *omega, const double *zeta, int quantity,
+                                            unsigned flags, rampwise_peak *peak, rampwise_evidence *evidence,
+                                            size_t *bad);
+
 /* omega times the larger displacement, and omega^2 times: the pseudo-velocity and the pseudo-acceleration, in
    size. Not the peaks of velocity and total acceleration, but close for light damping. */
 RAMPWISE_API double rampwise_pseudo_velocity(double omega, const rampwise_peak *displacement);
 RAMPWISE_API double rampwise_pseudo_acceleration(double omega, const rampwise_peak *displacement);
 
 /* The larger displacement under a force over the one that p0 causes when it rests: stiffness |u| / |p0|. */
-RAMPWISE_API double rampwise_dynamic_load_factor(const rampwise_system *sys, const rampwise_peak *displacement,
-                                                 double p0);
+RAMPWISE_API double rampwise_dynamic_load_factor(const rampwise_system *sys,
+                                                 const rampwise_peak *displacement, double p0);
 
 /* n values from first to last, both above 0 and either the larger, at equal ratios, list[n]: periods or frequencies
    of a spectrum; n = 1 gives first. The ends are exact; those between are as good as the platform's pow. RAMPWISE_ERROR_MISSING, _FREQUENCY. */

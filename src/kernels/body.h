@@ -268,29 +268,48 @@ static int stretch(lane_block *block, size_t lanes, unsigned looked, double (*ro
 #pragma GCC pop_options
 #endif
 
+/* The largest of `count` values, or of their negatives, that are `stride` apart. */
+static inline VECTOR largest_of(size_t count, const double *x, size_t stride, VECTOR sign)
+{
+    VECTOR largest = vector_product(vector_load(x), sign);
+    for (size_t i = 1; i < count; ++i)
+        largest = vector_larger(vector_product(vector_load(x + i * stride), sign), largest);
+    return largest;
+}
+
 static void may_exceed(size_t lanes, size_t count, const double *high, const double *low, size_t stride,
                        const double *floor_high, const double *floor_low, double (*excess)[LANES],
                        const double *largest_p, const double *largest_change, uint32_t *flags)
 {
+    const VECTOR plus = vector_all(1), minus = vector_all(-1);
     for (size_t i = 0; i < 2 * count; ++i)
         flags[i] = 0;
     for (size_t lane = 0; lane < lanes; lane += WIDTH) {
         const VECTOR constant = vector_load(excess[0] + lane), from_p = vector_load(excess[1] + lane);
         const VECTOR from_change = vector_load(excess[2] + lane), from_size = vector_load(excess[3] + lane);
-        const VECTOR floor_above = vector_load(floor_high + lane),
-                     floor_below = vector_load(floor_low + lane);
+        const VECTOR floor_above = vector_load(floor_high + lane);
+        const VECTOR floor_below = vector_product(vector_load(floor_low + lane), minus);
+        const VECTOR best_above = largest_of(count, high + lane, stride, plus);
+        const VECTOR best_below = largest_of(count, low + lane, stride, minus);
         for (size_t i = 0; i < count; ++i) {
-            const VECTOR top = vector_load(high + i * stride + lane),
-                         bottom = vector_load(low + i * stride + lane);
+            const VECTOR top = vector_load(high + i * stride + lane);
+            const VECTOR bottom = vector_product(vector_load(low + i * stride + lane), minus);
             const VECTOR size = vector_larger(vector_size(top), vector_size(bottom));
             const VECTOR more =
                 vector_fma(from_size, size,
                            vector_fma(from_change, vector_all(largest_change[i]),
                                       vector_fma(from_p, vector_all(largest_p[i]), constant)));
-            const VECTOR above = vector_difference(vector_sum(top, more), floor_above);
-            const VECTOR below = vector_difference(floor_below, vector_difference(bottom, more));
-            flags[2 * i] |= (uint32_t)mask_bits(vector_positive(above)) << lane;
-            flags[2 * i + 1] |= (uint32_t)mask_bits(vector_positive(below)) << lane;
+            const VECTOR above = vector_sum(top, more), below = vector_sum(bottom, more);
+            const uint32_t beaten_above =
+                (uint32_t)mask_bits(vector_positive(vector_difference(best_above, above)));
+            const uint32_t beaten_below =
+                (uint32_t)mask_bits(vector_positive(vector_difference(best_below, below)));
+            flags[2 * i] |=
+                ((uint32_t)mask_bits(vector_positive(vector_difference(above, floor_above))) & ~beaten_above)
+                << lane;
+            flags[2 * i + 1] |=
+                ((uint32_t)mask_bits(vector_positive(vector_difference(below, floor_below))) & ~beaten_below)
+                << lane;
         }
     }
 }

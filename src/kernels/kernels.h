@@ -46,7 +46,7 @@ typedef struct kernels {
                    size_t n, const double *p, double (*high)[LANES], double (*low)[LANES]);
 
     /* Which lanes of which of `count` stretches may exceed a floor at or between their samples, with the excess
-       of extremes.h: flags[2 i] has a bit a lane for the high side of stretch i, flags[2 i + 1] for the low one.
+       of extremes.h, and what the samples of the other stretches reach: flags[2 i] has a bit a lane for the high side of stretch i, flags[2 i + 1] for the low one.
        high and low of stretch i are at i stride. */
     void (*may_exceed)(size_t lanes, size_t count, const double *high, const double *low, size_t stride,
                        const double *floor_high, const double *floor_low, double (*excess)[LANES],
