@@ -6,21 +6,25 @@
 #include <string.h>
 #include "entry.h"
 #include "lanes.h"
+#include "precision.h"
 #include "rampwise/motion.h"
 #include "rampwise/status.h"
 #include "valid.h"
 
+typedef PUBLIC(bank) real_bank;
+typedef PUBLIC(bank_wanted) real_bank_wanted;
+
 /* Followed in its memory by the blocks, each with its coefficients and marks. */
-struct rampwise_bank {
+struct PUBLIC(bank) {
     const kernels *k;
     size_t n, stopped;
-    double p, p_before;
+    real p, p_before;
     struct block *blocks;
 };
 
 typedef struct block {
     lane_block lanes;
-    rampwise_coeffs c[LANES];
+    real_coeffs c[LANES];
     unsigned char stopped[LANES];
 } block;
 
@@ -30,71 +34,70 @@ _Static_assert(sizeof(block) % LANE_ALIGNMENT == 0, "blocks follow each other al
 enum { SEGMENT = 2048 };
 
 static const size_t header_size =
-    (sizeof(struct rampwise_bank) + LANE_ALIGNMENT - 1) / LANE_ALIGNMENT * LANE_ALIGNMENT;
+    (sizeof(struct PUBLIC(bank)) + LANE_ALIGNMENT - 1) / LANE_ALIGNMENT * LANE_ALIGNMENT;
 
-static size_t lanes_in(const rampwise_bank *bank, size_t b)
+static size_t lanes_in(const real_bank *bank, size_t b)
 {
     return bank->n - b * LANES < LANES ? bank->n - b * LANES : LANES;
 }
 
-static const rampwise_coeffs *coeffs_of(const rampwise_bank *bank, size_t i)
+static const real_coeffs *coeffs_of(const real_bank *bank, size_t i)
 {
     return &bank->blocks[i / LANES].c[i % LANES];
 }
 
-static rampwise_state state_of(const rampwise_bank *bank, size_t i)
+static real_state state_of(const real_bank *bank, size_t i)
 {
-    const lane_block *const lanes = &bank->blocks[i / LANES].lanes;
-    return (rampwise_state){lanes->u[i % LANES], lanes->v[i % LANES], bank->p, bank->p_before};
+    return lane_state(&bank->blocks[i / LANES].lanes, i % LANES, bank->p, bank->p_before);
 }
 
-static int is_stopped(const rampwise_bank *bank, size_t i)
+static int is_stopped(const real_bank *bank, size_t i)
 {
     return bank->blocks[i / LANES].stopped[i % LANES];
 }
 
 /* Puts oscillator i into its lane and lets it go. */
-static void release(rampwise_bank *bank, size_t i)
+static void release(real_bank *bank, size_t i)
 {
     block *const b = &bank->blocks[i / LANES];
-    rampwise_lane_set_(&b->lanes, i % LANES, &b->c[i % LANES]);
+    PRIVATE(lane_set)(&b->lanes, i % LANES, &b->c[i % LANES]);
     bank->stopped -= b->stopped[i % LANES];
     b->stopped[i % LANES] = 0;
 }
 
-size_t rampwise_bank_size(size_t n)
+size_t PUBLIC(bank_size)(size_t n)
 {
     return lane_groups_size(n, header_size, sizeof(block));
 }
 
-size_t rampwise_bank_alignment(void)
+size_t PUBLIC(bank_alignment)(void)
 {
     return LANE_ALIGNMENT;
 }
 
-static int check_bank(size_t n, const rampwise_coeffs *c, int instructions)
+static int check_bank(size_t n, const real_coeffs *c, int instructions)
 {
-    if (rampwise_bank_size(n) == 0)
+    if (PUBLIC(bank_size)(n) == 0)
         return RAMPWISE_ERROR_COUNT;
     const int status = check_alike(n, c);
     if (status != RAMPWISE_OK)
         return status;
-    return rampwise_kernels_(instructions) != NULL ? RAMPWISE_OK : RAMPWISE_ERROR_INSTRUCTIONS;
+    return PRIVATE(kernels)(instructions) != NULL ? RAMPWISE_OK : RAMPWISE_ERROR_INSTRUCTIONS;
 }
 
-int rampwise_bank_init(void *memory, size_t bytes, size_t n, const rampwise_coeffs *c, int instructions,
-                       rampwise_bank **bank)
+int PUBLIC(bank_init)(void *memory, size_t bytes, size_t n, const real_coeffs *c, int instructions,
+                      real_bank **bank)
 {
     if (memory == NULL || c == NULL || bank == NULL)
         return RAMPWISE_ERROR_MISSING;
     const int status = check_bank(n, c, instructions);
     if (status != RAMPWISE_OK)
         return status;
-    if (bytes < rampwise_bank_size(n) || (uintptr_t)memory % LANE_ALIGNMENT != 0)
+    if (bytes < PUBLIC(bank_size)(n) || (uintptr_t)memory % LANE_ALIGNMENT != 0)
         return RAMPWISE_ERROR_MEMORY;
-    rampwise_bank *const made = memory;
-    memset(memory, 0, rampwise_bank_size(n));
-    made->k = rampwise_kernels_(instructions);
+    real_bank *const made = memory;
+    memset(memory, 0, PUBLIC(bank_size)(n));
+    made->k = PRIVATE(kernels)(instructions);
     made->n = n;
     made->blocks = (block *)((char *)memory + header_size);
     for (size_t i = 0; i < n; ++i) {
@@ -105,35 +108,35 @@ int rampwise_bank_init(void *memory, size_t bytes, size_t n, const rampwise_coef
     return RAMPWISE_OK;
 }
 
-int rampwise_bank_create(size_t n, const rampwise_coeffs *c, int instructions, rampwise_bank **bank)
+int PUBLIC(bank_create)(size_t n, const real_coeffs *c, int instructions, real_bank **bank)
 {
     if (c == NULL || bank == NULL)
         return RAMPWISE_ERROR_MISSING;
     int status = check_bank(n, c, instructions);
     if (status != RAMPWISE_OK)
         return status;
-    void *const memory = aligned_alloc(LANE_ALIGNMENT, rampwise_bank_size(n));
+    void *const memory = aligned_alloc(LANE_ALIGNMENT, PUBLIC(bank_size)(n));
     if (memory == NULL)
         return RAMPWISE_ERROR_MEMORY;
-    return rampwise_bank_init(memory, rampwise_bank_size(n), n, c, instructions, bank);
+    return PUBLIC(bank_init)(memory, PUBLIC(bank_size)(n), n, c, instructions, bank);
 }
 
-void rampwise_bank_free(rampwise_bank *bank)
+void PUBLIC(bank_free)(real_bank *bank)
 {
     free(bank);
 }
 
-size_t rampwise_bank_count(const rampwise_bank *bank)
+size_t PUBLIC(bank_count)(const real_bank *bank)
 {
     return bank != NULL ? bank->n : 0;
 }
 
-int rampwise_bank_instructions(const rampwise_bank *bank)
+int PUBLIC(bank_instructions)(const real_bank *bank)
 {
     return bank != NULL ? bank->k->name : RAMPWISE_ERROR_MISSING;
 }
 
-int rampwise_bank_start(rampwise_bank *bank, double p0)
+int PUBLIC(bank_start)(real_bank *bank, real p0)
 {
     if (bank == NULL)
         return RAMPWISE_ERROR_MISSING;
@@ -141,14 +144,13 @@ int rampwise_bank_start(rampwise_bank *bank, double p0)
         return RAMPWISE_ERROR_SAMPLE;
     bank->p = bank->p_before = p0;
     for (size_t i = 0; i < bank->n; ++i) {
-        bank->blocks[i / LANES].lanes.u[i % LANES] = 0;
-        bank->blocks[i / LANES].lanes.v[i % LANES] = 0;
+        lane_put(&bank->blocks[i / LANES].lanes, i % LANES, &(const real_state){0});
         release(bank, i);
     }
     return RAMPWISE_OK;
 }
 
-int rampwise_bank_set(rampwise_bank *bank, const rampwise_state *s)
+int PUBLIC(bank_set)(real_bank *bank, const real_state *s)
 {
     if (bank == NULL || s == NULL)
         return RAMPWISE_ERROR_MISSING;
@@ -158,14 +160,13 @@ int rampwise_bank_set(rampwise_bank *bank, const rampwise_state *s)
     bank->p = s[0].p;
     bank->p_before = s[0].p_before;
     for (size_t i = 0; i < bank->n; ++i) {
-        bank->blocks[i / LANES].lanes.u[i % LANES] = s[i].u;
-        bank->blocks[i / LANES].lanes.v[i % LANES] = s[i].v;
+        lane_put(&bank->blocks[i / LANES].lanes, i % LANES, &s[i]);
         release(bank, i);
     }
     return RAMPWISE_OK;
 }
 
-int rampwise_bank_get(const rampwise_bank *bank, rampwise_state *s)
+int PUBLIC(bank_get)(const real_bank *bank, real_state *s)
 {
     if (bank == NULL || s == NULL)
         return RAMPWISE_ERROR_MISSING;
@@ -174,13 +175,13 @@ int rampwise_bank_get(const rampwise_bank *bank, rampwise_state *s)
     return RAMPWISE_OK;
 }
 
-int rampwise_bank_retune(rampwise_bank *bank, size_t i, const rampwise_coeffs *c)
+int PUBLIC(bank_retune)(real_bank *bank, size_t i, const real_coeffs *c)
 {
     if (bank == NULL || c == NULL)
         return RAMPWISE_ERROR_MISSING;
     if (i >= bank->n)
         return RAMPWISE_ERROR_COUNT;
-    const rampwise_coeffs both[2] = {*coeffs_of(bank, 0), *c};
+    const real_coeffs both[2] = {*coeffs_of(bank, 0), *c};
     const int status = check_alike(2, both);
     if (status != RAMPWISE_OK)
         return status;
@@ -189,13 +190,13 @@ int rampwise_bank_retune(rampwise_bank *bank, size_t i, const rampwise_coeffs *c
     return RAMPWISE_OK;
 }
 
-void rampwise_bank_wanted_init(rampwise_bank_wanted *wanted)
+void PUBLIC(bank_wanted_init)(real_bank_wanted *wanted)
 {
     memset(wanted, 0, sizeof *wanted);
     wanted->size = sizeof *wanted;
 }
 
-static int check_wanted(const rampwise_bank *bank, const rampwise_bank_wanted *wanted)
+static int check_wanted(const real_bank *bank, const real_bank_wanted *wanted)
 {
     if (wanted->size != sizeof *wanted)
         return RAMPWISE_ERROR_COUNT;
@@ -210,11 +211,11 @@ static int check_wanted(const rampwise_bank *bank, const rampwise_bank_wanted *w
 /* Histories of up to LANES chosen ones, from copies of their states; returns how many, and lowers
    the earliest sample that overflows in one. The first that is stopped ends the group, and is
    passed over where it is alone. */
-static size_t histories_of_group(const rampwise_bank *bank, size_t n, const double *p, const size_t *chosen,
-                                 size_t left, const rampwise_history *out, size_t *earliest)
+static size_t histories_of_group(const real_bank *bank, size_t n, const real *p, const size_t *chosen,
+                                 size_t left, const real_history *out, size_t *earliest)
 {
-    const rampwise_coeffs *c[LANES];
-    rampwise_state s[LANES];
+    const real_coeffs *c[LANES];
+    real_state s[LANES];
     size_t count = 0, reached[LANES];
     for (; count < left && count < LANES && !is_stopped(bank, chosen[count]); ++count) {
         c[count] = coeffs_of(bank, chosen[count]);
@@ -222,19 +223,18 @@ static size_t histories_of_group(const rampwise_bank *bank, size_t n, const doub
     }
     if (count == 0)
         return 1;
-    rampwise_lanes_run_(bank->k, count, c, s, n, p, (layout){0, 1}, out, (layout){n, 1}, reached);
+    PRIVATE(lanes_run)(bank->k, count, c, s, n, p, (layout){0, 1}, out, (layout){n, 1}, reached);
     for (size_t j = 0; j < count; ++j)
         *earliest = reached[j] < *earliest ? reached[j] : *earliest;
     return count;
 }
 
 /* Returns the earliest sample that overflows in a history, or n. */
-static size_t histories(const rampwise_bank *bank, size_t n, const double *p,
-                        const rampwise_bank_wanted *wanted)
+static size_t histories(const real_bank *bank, size_t n, const real *p, const real_bank_wanted *wanted)
 {
     size_t earliest = n;
     for (size_t first = 0; first < wanted->chosen_count;) {
-        const rampwise_history there = wanted_from(&wanted->history, first * n);
+        const real_history there = wanted_from(&wanted->history, first * n);
         first += histories_of_group(bank, n, p, wanted->chosen + first, wanted->chosen_count - first, &there,
                                     &earliest);
     }
@@ -243,31 +243,30 @@ static size_t histories(const rampwise_bank *bank, size_t n, const double *p,
 
 /* Lane j met an overflow in this segment: taken again by itself, from where the segment began, to
    its last finite state; returns the sample at fault. */
-static size_t stop_lane(rampwise_bank *bank, block *b, size_t j, rampwise_state s, size_t n, const double *p,
-                        double *largest)
+static size_t stop_lane(real_bank *bank, block *b, size_t j, real_state s, size_t n, const real *p,
+                        real *largest)
 {
     size_t i = 0;
-    const rampwise_history one = {NULL, NULL, NULL, NULL};
+    const real_history one = {NULL, NULL, NULL, NULL};
     while (i < n && bank->k->advance(&b->c[j], &s, i, i + 1, 1, p, &one) > i) {
-        if (largest != NULL)
-            *largest = fmax(*largest, fabs(s.u));
+        if (largest != NULL && REAL_SIZE(s.u) > *largest)
+            *largest = REAL_SIZE(s.u);
         ++i;
     }
-    rampwise_lane_still_(&b->lanes, j);
-    b->lanes.u[j] = s.u;
-    b->lanes.v[j] = s.v;
+    PRIVATE(lane_still)(&b->lanes, j);
+    lane_put(&b->lanes, j, &s);
     b->stopped[j] = 1;
     ++bank->stopped;
     return i;
 }
 
 /* One block over one segment; returns the earliest sample at which a lane stops, or n. */
-static size_t step_block(rampwise_bank *bank, block *b, size_t lanes, size_t n, const double *p,
-                         double *largest)
+static size_t step_block(real_bank *bank, block *b, size_t lanes, size_t n, const real *p, real *largest)
 {
-    double u[LANES], v[LANES], top[LANES] = {0}, *const gathered = largest != NULL ? top : NULL;
-    memcpy(u, b->lanes.u, sizeof u);
-    memcpy(v, b->lanes.v, sizeof v);
+    real top[LANES] = {0}, *const gathered = largest != NULL ? top : NULL;
+    real_state at[LANES];
+    for (size_t j = 0; j < lanes; ++j)
+        at[j] = lane_state(&b->lanes, j, bank->p, bank->p_before);
     if (largest != NULL)
         memcpy(top, largest, lanes * sizeof *top);
     const int lost = bank->k->under_one_input(&b->lanes, lanes, bank->p, n, p, gathered);
@@ -277,8 +276,7 @@ static size_t step_block(rampwise_bank *bank, block *b, size_t lanes, size_t n, 
             continue;
         if (largest != NULL)
             top[j] = largest[j];
-        const rampwise_state s = {u[j], v[j], bank->p, bank->p_before};
-        const size_t i = stop_lane(bank, b, j, s, n, p, largest != NULL ? &top[j] : NULL);
+        const size_t i = stop_lane(bank, b, j, at[j], n, p, largest != NULL ? &top[j] : NULL);
         earliest = i < earliest ? i : earliest;
     }
     if (largest != NULL)
@@ -286,7 +284,7 @@ static size_t step_block(rampwise_bank *bank, block *b, size_t lanes, size_t n, 
     return earliest;
 }
 
-static size_t step_blocks(rampwise_bank *bank, size_t n, const double *p, double *largest)
+static size_t step_blocks(real_bank *bank, size_t n, const real *p, real *largest)
 {
     size_t earliest = n;
     for (size_t done = 0, part = 0; done < n; done += part) {
@@ -303,8 +301,7 @@ static size_t step_blocks(rampwise_bank *bank, size_t n, const double *p, double
     return earliest;
 }
 
-int rampwise_bank_run(rampwise_bank *bank, size_t n, const double *p, const rampwise_bank_wanted *wanted,
-                      size_t *bad)
+int PUBLIC(bank_run)(real_bank *bank, size_t n, const real *p, const real_bank_wanted *wanted, size_t *bad)
 {
     if (bank == NULL || (p == NULL && n > 0))
         return RAMPWISE_ERROR_MISSING;
@@ -319,7 +316,7 @@ int rampwise_bank_run(rampwise_bank *bank, size_t n, const double *p, const ramp
     return earliest < n ? blame(RAMPWISE_ERROR_OVERFLOW, earliest, bad) : RAMPWISE_OK;
 }
 
-size_t rampwise_bank_stopped(const rampwise_bank *bank, size_t *first)
+size_t PUBLIC(bank_stopped)(const real_bank *bank, size_t *first)
 {
     size_t i = 0;
     if (bank == NULL || bank->stopped == 0)
@@ -331,20 +328,20 @@ size_t rampwise_bank_stopped(const rampwise_bank *bank, size_t *first)
     return bank->stopped;
 }
 
-int rampwise_bank_read(const rampwise_bank *bank, const rampwise_history *now)
+int PUBLIC(bank_read)(const real_bank *bank, const real_history *now)
 {
     if (bank == NULL || now == NULL)
         return RAMPWISE_ERROR_MISSING;
     for (size_t i = 0; i < bank->n; ++i) {
-        const rampwise_state s = state_of(bank, i);
+        const real_state s = state_of(bank, i);
         if (now->u != NULL)
             now->u[i] = s.u;
         if (now->v != NULL)
             now->v[i] = s.v;
         if (now->a != NULL)
-            now->a[i] = is_stopped(bank, i) ? NAN : rampwise_acceleration(coeffs_of(bank, i), &s);
+            now->a[i] = is_stopped(bank, i) ? NAN : PUBLIC(acceleration)(coeffs_of(bank, i), &s);
         if (now->total != NULL)
-            now->total[i] = is_stopped(bank, i) ? NAN : rampwise_total_acceleration(coeffs_of(bank, i), &s);
+            now->total[i] = is_stopped(bank, i) ? NAN : PUBLIC(total_acceleration)(coeffs_of(bank, i), &s);
     }
     return RAMPWISE_OK;
 }

@@ -2,178 +2,76 @@
 
 #include <math.h>
 #include <stddef.h>
+#include <stdint.h>
 #include <string.h>
+#include "precision.h"
 #include "rampwise/status.h"
-#include "twofold.h"
+#include "step_response.h"
 
-/* A twofold number times a power of two, so that the range of doubles does not limit what is on the
-   way: value.hi is in [0.5, 1), or 0 with an exponent below all others. */
-typedef struct scaled {
-    twofold value;
-    int exponent;
-} scaled;
+#ifdef SINGLE_PRECISION
+enum { COMPUTED = offsetof(rampwise_coeffs_f32, dt) / sizeof(float) }; /* members that can overflow */
 
-static const scaled scaled_zero = {{0, 0}, -100000};
-
-static scaled scaled_double(double x)
+/* The twofold number as a double whose last bit tells whether there is more behind it (rounding to odd: S. Boldo
+   and G. Melquiond, IEEE Trans. Computers 57(4), 462-471, 2008), which makes the float it is rounded to next the
+   nearest to the twofold number itself. */
+static double sticky(twofold x)
 {
-    int exponent;
-    const double mantissa = frexp(x, &exponent);
-    return x == 0 ? scaled_zero : (scaled){{mantissa, 0}, exponent};
+    uint64_t bits;
+    double odd;
+    memcpy(&bits, &x.hi, sizeof bits);
+    if (x.lo != 0 && (bits & 1) == 0)
+        bits += (x.lo > 0) == (x.hi > 0) ? 1 : UINT64_MAX;
+    memcpy(&odd, &bits, sizeof odd);
+    return odd;
 }
 
-/* value is 0 or in (0.125, 4). */
-static scaled scaled_of(twofold value, int exponent)
+/* x 2^exponent, rounded once; + 0.0f makes -0 plain. */
+static float rounded_power(twofold x, int exponent)
 {
-    if (value.hi == 0)
-        return scaled_zero;
-    const double size = fabs(value.hi);
-    const int shift = (size >= 0.25) + (size >= 0.5) + (size >= 1) + (size >= 2) - 2;
-    return (scaled){twofold_times_power(value, -shift), exponent + shift};
+    return (float)ldexp(sticky(x), exponent) + 0.0f;
 }
 
-static scaled scaled_multiply(scaled a, scaled b)
+/* x/y, rounded once. */
+static float quotient(double x, double y)
 {
-    return scaled_of(twofold_multiply(a.value, b.value), a.exponent + b.exponent);
+    const scaled q = scaled_divide(scaled_double(x), scaled_double(y));
+    return rounded_power(q.value, q.exponent);
 }
 
-static scaled scaled_divide(scaled a, scaled b)
+static void describe(rampwise_coeffs_f32 *c, const rampwise_system *sys)
 {
-    return scaled_of(twofold_divide(a.value, b.value), a.exponent - b.exponent);
+    c->mass = (float)sys->mass;
+    c->damper = (float)sys->damper;
+    c->stiffness = (float)sys->stiffness;
+    c->rate = quotient(1, c->dt);
+}
+#else
+enum { COMPUTED = offsetof(rampwise_coeffs, system) / sizeof(double) };
+
+static double rounded_power(twofold x, int exponent)
+{
+    return ldexp(x.hi, exponent) + 0.0;
 }
 
-/* What is below 2^-120 cannot touch numbers near 1 in twofold arithmetic, and its powers would
-   underflow: it counts as zero. */
-static twofold beside_one(scaled a)
+static double quotient(double x, double y)
 {
-    return a.exponent < -120 ? (twofold){0, 0} : twofold_times_power(a.value, a.exponent);
+    return x / y;
 }
 
-/* One oscillator and one step, without units: K = k h^2/m, S = c h/m. */
-typedef struct step {
-    scaled K, S, h, h_over_m, stiffness_h_over_m;
-} step;
-
-/* Displacements after the step, from rest, for a unit of initial velocity, of constant load and of
-   a ramp from zero to one, in units of h, h^2/m and h^3/m. They satisfy g + S G1 + K G2 = 1. */
-typedef struct response {
-    twofold g, G1, G2;
-} response;
-
-#define TERMS 17 /* powers 3 to 19 of the step */
-#define TERMS_IN_TWOFOLD                                                                                     \
-    9 /* powers 3 to 11; a double holds the rest, 2^-53 of the sum and less                        \
-       */
-
-/* 1/n!, n = 2 to 19 */
-static const twofold inverse_factorial[18] = {
-    {0x1p-1, 0},
-    {0x1.5555555555555p-3, 0x1.5555555555555p-57},
-    {0x1.5555555555555p-5, 0x1.5555555555555p-59},
-    {0x1.1111111111111p-7, 0x1.1111111111111p-63},
-    {0x1.6c16c16c16c17p-10, -0x1.f49f49f49f49fp-65},
-    {0x1.a01a01a01a01ap-13, 0x1.a01a01a01a01ap-73},
-    {0x1.a01a01a01a01ap-16, 0x1.a01a01a01a01ap-76},
-    {0x1.71de3a556c734p-19, -0x1.c154f8ddc6cp-73},
-    {0x1.27e4fb7789f5cp-22, 0x1.cbbc05b4fa99ap-76},
-    {0x1.ae64567f544e4p-26, -0x1.c062e06d1f209p-80},
-    {0x1.1eed8eff8d898p-29, -0x1.2aec959e14c06p-83},
-    {0x1.6124613a86d09p-33, 0x1.f28e0cc748ebep-87},
-    {0x1.93974a8c07c9dp-37, 0x1.05d6f8a2efd1fp-92},
-    {0x1.ae7f3e733b81fp-41, 0x1.1d8656b0ee8cbp-97},
-    {0x1.ae7f3e733b81fp-45, 0x1.1d8656b0ee8cbp-101},
-    {0x1.952c77030ad4ap-49, 0x1.ac981465ddc6cp-103},
-    {0x1.6827863b97d97p-53, 0x1.eec01221a8b0bp-107},
-    {0x1.2f49b46814157p-57, 0x1.2650f61dbdcb4p-112},
-};
-
-/* Taylor series, |S| <= 1/16, |K| <= 1/256. The unit-ramp response y'' + S y' + K y = t from rest
-   has the coefficients d[n]/n! with d[2] = 0, d[3] = 1, d[n] = -S d[n-1] - K d[n-2], |d[n]| <=
-   0.102^(n-3); G2 is y at t = 1 and G1 is y'. Nineteen powers leave less than 2^-104 of either. */
-static response short_step(twofold K, twofold S)
+static void describe(rampwise_coeffs *c, const rampwise_system *sys)
 {
-    twofold before = {0, 0}, d = {1, 0};
-    twofold G1 = inverse_factorial[0], G2 = inverse_factorial[1];
-    for (int i = 1; i < TERMS_IN_TWOFOLD; ++i) {
-        const twofold next =
-            twofold_negative(twofold_add(twofold_multiply(S, d), twofold_multiply(K, before)));
-        before = d;
-        d = next;
-        G1 = twofold_add(G1, twofold_multiply(d, inverse_factorial[i]));
-        G2 = twofold_add(G2, twofold_multiply(d, inverse_factorial[i + 1]));
-    }
-    double e_before = before.hi, e = d.hi, G1_rest = 0, G2_rest = 0;
-    for (int i = TERMS_IN_TWOFOLD; i < TERMS; ++i) {
-        const double next = -(S.hi * e + K.hi * e_before);
-        e_before = e;
-        e = next;
-        G1_rest += e * inverse_factorial[i].hi;
-        G2_rest += e * inverse_factorial[i + 1].hi;
-    }
-    G1 = twofold_add(G1, (twofold){G1_rest, 0});
-    G2 = twofold_add(G2, (twofold){G2_rest, 0});
-    const twofold lost = twofold_add(twofold_multiply(S, G1), twofold_multiply(K, G2));
-    return (response){twofold_subtract((twofold){1, 0}, lost), G1, G2};
+    c->system = *sys;
 }
+#endif
 
-/* A response that has died away counts as zero, before its digits reach the end of the range. */
-static twofold unless_spent(twofold a)
+/* factor x, rounded once */
+static real rounded(scaled factor, twofold x)
 {
-    return fabs(a.hi) < 0x1p-300 ? (twofold){0, 0} : a;
-}
-
-/* Two equal steps as one: with A = 1 - K G1, B = g, B' = A - S g of the single step,
-   2 g -> B (A + B'), 4 G1 -> (A + 1) G1 + B^2, 8 G2 -> (A + 1) G2 + (B + 1) G1. */
-static response doubled(response r, twofold K, twofold S)
-{
-    const twofold KG1 = twofold_multiply(K, r.G1), Sg = twofold_multiply(S, r.g);
-    const twofold A_plus_1 = twofold_subtract((twofold){2, 0}, KG1);
-    const twofold trace = twofold_subtract(twofold_subtract(A_plus_1, KG1), Sg);
-    const twofold g_plus_1 = twofold_add(r.g, (twofold){1, 0});
-    const twofold G1 = twofold_add(twofold_multiply(A_plus_1, r.G1), twofold_multiply(r.g, r.g));
-    const twofold G2 = twofold_add(twofold_multiply(A_plus_1, r.G2), twofold_multiply(g_plus_1, r.G1));
-    return (response){unless_spent(twofold_times_power(twofold_multiply(r.g, trace), -1)),
-                      twofold_times_power(G1, -2), twofold_times_power(G2, -3)};
-}
-
-/* The largest size that may be squared, and that may be answered. */
-static int grown_beyond(const response *r, twofold K, twofold S, double limit)
-{
-    const double size = fmax(1.0, fmax(fabs(K.hi), fabs(S.hi)));
-    return !(fabs(r->g.hi) * size < limit && fabs(r->G1.hi) * size < limit && fabs(r->G2.hi) * size < limit);
-}
-
-/* Numbers are limited to 2^450 where they are multiplied, and to 2^900 in the result, whatever the
-   exact products are made of. */
-static int step_response(response *r, const step *s)
-{
-    const int for_K = (s->K.exponent + 9) / 2, for_S = s->S.exponent + 4;
-    int halvings = for_K > for_S ? for_K : for_S;
-    if (halvings < 0)
-        halvings = 0;
-    scaled K = s->K, S = s->S;
-    K.exponent -= 2 * halvings;
-    S.exponent -= halvings;
-    *r = short_step(beside_one(K), beside_one(S));
-    for (; halvings > 0; --halvings) {
-        const twofold K_now = beside_one(K), S_now = beside_one(S);
-        if (grown_beyond(r, K_now, S_now, 0x1p450))
-            return RAMPWISE_ERROR_COEFFICIENT;
-        *r = doubled(*r, K_now, S_now);
-        K.exponent += 2;
-        S.exponent += 1;
-    }
-    return grown_beyond(r, beside_one(K), beside_one(S), 0x1p900) ? RAMPWISE_ERROR_COEFFICIENT : RAMPWISE_OK;
-}
-
-/* factor x, rounded once; + 0.0 makes -0 plain. */
-static double rounded(scaled factor, twofold x)
-{
-    return ldexp(twofold_multiply(factor.value, x).hi, factor.exponent) + 0.0;
+    return rounded_power(twofold_multiply(factor.value, x), factor.exponent);
 }
 
 /* (K x + S y) unit, rounded once. */
-static double rounded_pair(const step *s, twofold x, twofold y, scaled unit)
+static real rounded_pair(const step *s, twofold x, twofold y, scaled unit)
 {
     const int exponent = s->K.exponent > s->S.exponent ? s->K.exponent : s->S.exponent;
     const scaled K = {s->K.value, s->K.exponent - exponent};
@@ -185,21 +83,21 @@ static double rounded_pair(const step *s, twofold x, twofold y, scaled unit)
 static const scaled unity = {{0.5, 0}, 1};
 
 /* A to B', and both increments: the same for every input. */
-static void free_motion(rampwise_coeffs *c, const step *s, const response *r)
+static void free_motion(real_coeffs *c, const step *s, const response *r)
 {
     const twofold one = {1, 0};
     const twofold A = twofold_subtract(one, twofold_multiply(beside_one(s->K), r->G1));
     const twofold Sg = twofold_multiply(beside_one(s->S), r->g);
-    c->A = A.hi;
+    c->A = rounded_power(A, 0);
     c->B = rounded(s->h, r->g);
-    c->Ap = -rounded(s->stiffness_h_over_m, r->g) + 0.0;
-    c->Bp = twofold_subtract(A, Sg).hi;
-    c->A_minus_1 = -rounded(s->K, r->G1) + 0.0;
-    c->Bp_minus_1 = -rounded_pair(s, r->G1, r->g, unity) + 0.0;
+    c->Ap = -rounded(s->stiffness_h_over_m, r->g) + 0;
+    c->Bp = rounded_power(twofold_subtract(A, Sg), 0);
+    c->A_minus_1 = -rounded(s->K, r->G1) + 0;
+    c->Bp_minus_1 = -rounded_pair(s, r->G1, r->g, unity) + 0;
 }
 
 /* C, D, C', D' where the input acts as a force, unit times the one of the oscillator without units. */
-static void load_on_mass(rampwise_coeffs *c, const response *r, scaled for_u, scaled for_v)
+static void load_on_mass(real_coeffs *c, const response *r, scaled for_u, scaled for_v)
 {
     if (c->between == RAMPWISE_HOLD) {
         c->C = rounded(for_u, r->G1);
@@ -213,7 +111,7 @@ static void load_on_mass(rampwise_coeffs *c, const response *r, scaled for_u, sc
 }
 
 /* A ramp of base velocity is the constant force m (v0 - v1)/h on the relative motion. */
-static void base_velocity(rampwise_coeffs *c, const step *s, const response *r)
+static void base_velocity(real_coeffs *c, const step *s, const response *r)
 {
     c->C = rounded(s->h, r->G1);
     c->D = -c->C;
@@ -223,7 +121,7 @@ static void base_velocity(rampwise_coeffs *c, const step *s, const response *r)
 
 /* A ramp of base displacement is the ramp of force k x_g and the constant force c x_g' on the
    absolute motion: C = g - A, D = 1 - g, C' = (B' - 1)/h - A', D' = -(B' - 1)/h. */
-static void base_displacement(rampwise_coeffs *c, const step *s, const response *r)
+static void base_displacement(real_coeffs *c, const step *s, const response *r)
 {
     const scaled per_h = scaled_divide(unity, s->h);
     if (c->between == RAMPWISE_HOLD) {
@@ -236,7 +134,7 @@ static void base_displacement(rampwise_coeffs *c, const step *s, const response 
     c->Dp = rounded_pair(s, r->G1, r->g, per_h);
 }
 
-static void input_terms(rampwise_coeffs *c, const step *s, const response *r)
+static void input_terms(real_coeffs *c, const step *s, const response *r)
 {
     const scaled minus_h = {twofold_negative(s->h.value), s->h.exponent};
     switch (c->input) {
@@ -256,21 +154,21 @@ static void input_terms(rampwise_coeffs *c, const step *s, const response *r)
 
 /* u'' = -(k/m) u - (c/m) v + what the input adds; the fourth entry meets the input's change over
    the last step. */
-static void acceleration_rows(rampwise_coeffs *c, const step *s)
+static void acceleration_rows(real_coeffs *c, const step *s, const rampwise_system *sys)
 {
-    const double stiffness = c->system.stiffness / c->system.mass;
+    const real stiffness = quotient(sys->stiffness, sys->mass);
     const twofold one = {1, 0};
-    c->acceleration[0] = c->total[0] = -stiffness + 0.0;
-    c->acceleration[1] = c->total[1] = -(c->system.damper / c->system.mass) + 0.0;
+    c->acceleration[0] = c->total[0] = -stiffness + 0;
+    c->acceleration[1] = c->total[1] = -quotient(sys->damper, sys->mass) + 0;
     switch (c->input) {
     case RAMPWISE_FORCE:
-        c->acceleration[2] = c->total[2] = 1 / c->system.mass;
+        c->acceleration[2] = c->total[2] = quotient(1, sys->mass);
         break;
     case RAMPWISE_BASE_ACCELERATION:
         c->acceleration[2] = -1;
         break;
     case RAMPWISE_BASE_VELOCITY:
-        c->acceleration[3] = -1 / c->dt;
+        c->acceleration[3] = quotient(-1, c->dt);
         break;
     default:
         c->acceleration[2] = c->total[2] = stiffness;
@@ -278,64 +176,34 @@ static void acceleration_rows(rampwise_coeffs *c, const step *s)
     }
 }
 
-static int all_finite(const rampwise_coeffs *c)
+static int all_finite(const real_coeffs *c)
 {
-    double values[offsetof(rampwise_coeffs, system) / sizeof(double)];
+    real values[COMPUTED];
     memcpy(values, c, sizeof values);
-    for (size_t i = 0; i < sizeof values / sizeof *values; ++i)
+    for (size_t i = 0; i < COMPUTED; ++i)
         if (!isfinite(values[i]))
             return 0;
     return 1;
 }
 
-static int refused(const rampwise_system *sys, double dt, int input, int between)
+int PUBLIC(coeffs_make)(real_coeffs *c, const rampwise_system *sys, double dt, int input, int between)
 {
-    if (!isfinite(sys->mass) || sys->mass <= 0)
-        return RAMPWISE_ERROR_MASS;
-    if (!isfinite(sys->damper))
-        return RAMPWISE_ERROR_DAMPER;
-    if (!isfinite(sys->stiffness))
-        return RAMPWISE_ERROR_STIFFNESS;
-    if (!isfinite(dt) || dt <= 0)
-        return RAMPWISE_ERROR_INTERVAL;
-    if (input < RAMPWISE_FORCE || input > RAMPWISE_BASE_DISPLACEMENT)
-        return RAMPWISE_ERROR_INPUT;
-    if (between != RAMPWISE_RAMP && between != RAMPWISE_HOLD)
-        return RAMPWISE_ERROR_BETWEEN;
-    if (between == RAMPWISE_HOLD &&
-        (input == RAMPWISE_BASE_VELOCITY || (input == RAMPWISE_BASE_DISPLACEMENT && sys->damper != 0)))
-        return RAMPWISE_ERROR_IMPULSES;
-    return RAMPWISE_OK;
-}
-
-int rampwise_coeffs_make(rampwise_coeffs *c, const rampwise_system *sys, double dt, int input, int between)
-{
+    step s;
+    response r;
     if (c == NULL || sys == NULL)
         return RAMPWISE_ERROR_MISSING;
-    int status = refused(sys, dt, input, between);
+    const int status = rampwise_step_response_(&s, &r, sys, dt, input, between);
     if (status != RAMPWISE_OK)
         return status;
-    step s;
-    s.h = scaled_double(dt);
-    s.h_over_m = scaled_divide(s.h, scaled_double(sys->mass));
-    s.stiffness_h_over_m = scaled_multiply(scaled_double(sys->stiffness), s.h_over_m);
-    s.K = scaled_multiply(s.stiffness_h_over_m, s.h);
-    s.S = scaled_multiply(scaled_double(sys->damper), s.h_over_m);
-    if (s.K.exponent > 96 || s.S.exponent > 96)
-        return RAMPWISE_ERROR_STEP_LENGTH;
-    response r;
-    status = step_response(&r, &s);
-    if (status != RAMPWISE_OK)
-        return status;
-    rampwise_coeffs made;
+    real_coeffs made;
     memset(&made, 0, sizeof made);
-    made.system = *sys;
     made.dt = dt;
     made.input = input;
     made.between = between;
+    describe(&made, sys);
     free_motion(&made, &s, &r);
     input_terms(&made, &s, &r);
-    acceleration_rows(&made, &s);
+    acceleration_rows(&made, &s, sys);
     if (!all_finite(&made))
         return RAMPWISE_ERROR_COEFFICIENT;
     *c = made;

@@ -3,15 +3,13 @@
 #define RAMPWISE_ENTRY_H
 
 #include <math.h>
-#include "rampwise/record.h"
 #include "row.h"
 
 /* The state at a sample into entry i of the outputs; 0 and nothing written where it overflows. */
-static inline int put_state(const rampwise_coeffs *c, const rampwise_state *s, const rampwise_history *out,
-                            size_t i)
+static inline int put_state(const real_coeffs *c, const real_state *s, const real_history *out, size_t i)
 {
-    const double a = out->a != NULL ? row_value(c->acceleration, s) : 0;
-    const double total = out->total != NULL ? row_value(c->total, s) : 0;
+    const real a = out->a != NULL ? row_value(c->acceleration, s) : 0;
+    const real total = out->total != NULL ? row_value(c->total, s) : 0;
     if (__builtin_expect(!isfinite(s->u) || !isfinite(s->v) || !isfinite(a) || !isfinite(total), 0))
         return 0;
     if (out->u != NULL)
@@ -26,14 +24,14 @@ static inline int put_state(const rampwise_coeffs *c, const rampwise_state *s, c
 }
 
 /* The outputs that a caller wants, from place `place` of each on; NULL wants nothing. */
-static inline rampwise_history wanted_from(const rampwise_history *out, size_t place)
+static inline real_history wanted_from(const real_history *out, size_t place)
 {
-    const rampwise_history nothing = {NULL, NULL, NULL, NULL};
+    const real_history nothing = {NULL, NULL, NULL, NULL};
     if (out == NULL)
         return nothing;
-    return (rampwise_history){out->u != NULL ? out->u + place : NULL, out->v != NULL ? out->v + place : NULL,
-                              out->a != NULL ? out->a + place : NULL,
-                              out->total != NULL ? out->total + place : NULL};
+    return (real_history){out->u != NULL ? out->u + place : NULL, out->v != NULL ? out->v + place : NULL,
+                          out->a != NULL ? out->a + place : NULL,
+                          out->total != NULL ? out->total + place : NULL};
 }
 
 #endif

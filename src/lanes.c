@@ -3,7 +3,7 @@
 #include <math.h>
 #include <string.h>
 
-void rampwise_lane_set_(lane_block *block, size_t lane, const rampwise_coeffs *c)
+void PRIVATE(lane_set)(lane_block *block, size_t lane, const real_coeffs *c)
 {
     block->A_minus_1[lane] = c->A_minus_1;
     block->B[lane] = c->B;
@@ -15,23 +15,23 @@ void rampwise_lane_set_(lane_block *block, size_t lane, const rampwise_coeffs *c
     block->Dp[lane] = c->Dp;
 }
 
-void rampwise_lane_still_(lane_block *block, size_t lane)
+void PRIVATE(lane_still)(lane_block *block, size_t lane)
 {
-    static const rampwise_coeffs still = {0};
-    rampwise_lane_set_(block, lane, &still);
+    static const real_coeffs still = {0};
+    PRIVATE(lane_set)(block, lane, &still);
 }
 
 /* One group of lanes on its way through a record. */
 typedef struct group {
     const kernels *k;
     size_t count, left; /* left: lanes that have not stopped */
-    const rampwise_coeffs *const *c;
-    rampwise_state *s;
+    const real_coeffs *const *c;
+    real_state *s;
     size_t *reached;
     lane_block block;
-    _Alignas(LANE_ALIGNMENT) double acceleration[4][LANES];
-    double total[4][LANES], p[TILE + 1][LANES], p_before[LANES]; /* before p[0] */
-    lane_tile u, v, a, t;                                        /* t: total */
+    _Alignas(LANE_ALIGNMENT) real acceleration[4][LANES];
+    real total[4][LANES], p[TILE + 1][LANES], p_before[LANES]; /* before p[0] */
+    lane_tile u, v, a, t;                                      /* t: total */
 } group;
 
 static void group_start(group *g, size_t n)
@@ -42,9 +42,8 @@ static void group_start(group *g, size_t n)
     memset(g->p, 0, sizeof g->p);
     g->left = g->count;
     for (size_t j = 0; j < g->count; ++j) {
-        rampwise_lane_set_(&g->block, j, g->c[j]);
-        g->block.u[j] = g->s[j].u;
-        g->block.v[j] = g->s[j].v;
+        PRIVATE(lane_set)(&g->block, j, g->c[j]);
+        lane_put(&g->block, j, &g->s[j]);
         g->p[0][j] = g->s[j].p;
         g->p_before[j] = g->s[j].p_before;
         g->reached[j] = n;
@@ -55,7 +54,7 @@ static void group_start(group *g, size_t n)
     }
 }
 
-static void take_samples(group *g, size_t n, const double *p, layout in)
+static void take_samples(group *g, size_t n, const real *p, layout in)
 {
     if (in.sample == 1 && in.lane != 0) {
         g->k->gather(p, in.lane, g->count, n, g->p + 1);
@@ -71,25 +70,24 @@ static void take_samples(group *g, size_t n, const double *p, layout in)
 }
 
 /* Lane j met an overflow in this tile: taken again by itself, from where the tile began. */
-static void stop_lane(group *g, size_t j, double u, double v, size_t before, size_t n,
-                      const rampwise_history *out)
+static void stop_lane(group *g, size_t j, real_state s, size_t before, size_t n, const real_history *out)
 {
-    const rampwise_history column = {g->u[0] + j, g->v[0] + j, out->a != NULL ? g->a[0] + j : NULL,
-                                     out->total != NULL ? g->t[0] + j : NULL};
-    rampwise_state s = {u, v, g->p[0][j], g->p_before[j]};
+    const real_history column = {g->u[0] + j, g->v[0] + j, out->a != NULL ? g->a[0] + j : NULL,
+                                 out->total != NULL ? g->t[0] + j : NULL};
     const size_t end = n * LANES;
     g->reached[j] = before + g->k->advance(g->c[j], &s, 0, end, LANES, g->p[1] + j, &column) / LANES;
     g->s[j] = s;
-    rampwise_lane_still_(&g->block, j);
-    g->block.u[j] = g->block.v[j] = 0;
+    PRIVATE(lane_still)(&g->block, j);
+    lane_put(&g->block, j, &(const real_state){0});
     --g->left;
 }
 
-static void step_tile(group *g, size_t before, size_t n, const rampwise_history *out)
+static void step_tile(group *g, size_t before, size_t n, const real_history *out)
 {
-    double u[LANES], v[LANES], a_finite[LANES] = {0}, total_finite[LANES] = {0};
-    memcpy(u, g->block.u, sizeof u);
-    memcpy(v, g->block.v, sizeof v);
+    real a_finite[LANES] = {0}, total_finite[LANES] = {0};
+    real_state at[LANES];
+    for (size_t j = 0; j < g->count; ++j)
+        at[j] = lane_state(&g->block, j, g->p[0][j], g->p_before[j]);
     int lost = g->k->under_own_inputs(&g->block, g->count, n, g->p, g->u, g->v);
     if (out->a != NULL)
         lost |= g->k->rows(g->acceleration, g->count, n, g->p, g->u, g->v, g->a, a_finite);
@@ -99,11 +97,11 @@ static void step_tile(group *g, size_t before, size_t n, const rampwise_history 
         const int finite =
             isfinite(g->block.u[j]) && isfinite(g->block.v[j]) && a_finite[j] == 0 && total_finite[j] == 0;
         if (!finite && g->reached[j] > before)
-            stop_lane(g, j, u[j], v[j], before, n, out);
+            stop_lane(g, j, at[j], before, n, out);
     }
 }
 
-static void put_tile(const group *g, size_t before, size_t n, double *to, layout at, lane_tile tile)
+static void put_tile(const group *g, size_t before, size_t n, real *to, layout at, lane_tile tile)
 {
     if (at.sample == 1 && g->left == g->count) {
         g->k->scatter(to, at.lane, g->count, n, tile);
@@ -119,7 +117,7 @@ static void put_tile(const group *g, size_t before, size_t n, double *to, layout
     }
 }
 
-static void put_outputs(group *g, size_t before, size_t n, const rampwise_history *out, layout to)
+static void put_outputs(group *g, size_t before, size_t n, const real_history *out, layout to)
 {
     const size_t shift = before * to.sample;
     if (out->u != NULL)
@@ -132,9 +130,8 @@ static void put_outputs(group *g, size_t before, size_t n, const rampwise_histor
         put_tile(g, before, n, out->total + shift, to, g->t);
 }
 
-void rampwise_lanes_run_(const kernels *k, size_t count, const rampwise_coeffs *const *c, rampwise_state *s,
-                         size_t n, const double *p, layout in, const rampwise_history *out, layout to,
-                         size_t *reached)
+void PRIVATE(lanes_run)(const kernels *k, size_t count, const real_coeffs *const *c, real_state *s, size_t n,
+                        const real *p, layout in, const real_history *out, layout to, size_t *reached)
 {
     group g;
     g.k = k;
@@ -153,5 +150,5 @@ void rampwise_lanes_run_(const kernels *k, size_t count, const rampwise_coeffs *
     }
     for (size_t j = 0; j < count; ++j)
         if (reached[j] == n)
-            s[j] = (rampwise_state){g.block.u[j], g.block.v[j], g.p[0][j], g.p_before[j]};
+            s[j] = lane_state(&g.block, j, g.p[0][j], g.p_before[j]);
 }

@@ -24,15 +24,35 @@ typedef struct layout {
     size_t lane, sample;
 } layout;
 
+/* The displacement and velocity of one lane, under an input, and back. */
+static inline real_state lane_state(const lane_block *block, size_t lane, real p, real p_before)
+{
+    real_state s = {.u = block->u[lane], .v = block->v[lane], .p = p, .p_before = p_before};
+#ifdef SINGLE_PRECISION
+    s.u_low = block->u_low[lane];
+    s.v_low = block->v_low[lane];
+#endif
+    return s;
+}
+
+static inline void lane_put(lane_block *block, size_t lane, const real_state *s)
+{
+    block->u[lane] = s->u;
+    block->v[lane] = s->v;
+#ifdef SINGLE_PRECISION
+    block->u_low[lane] = s->u_low;
+    block->v_low[lane] = s->v_low;
+#endif
+}
+
 /* The oscillator of one lane of a block, and one that stands still for ever. */
-void rampwise_lane_set_(lane_block *block, size_t lane, const rampwise_coeffs *c);
-void rampwise_lane_still_(lane_block *block, size_t lane);
+void PRIVATE(lane_set)(lane_block *block, size_t lane, const real_coeffs *c);
+void PRIVATE(lane_still)(lane_block *block, size_t lane);
 
 /* The next n samples of `count` lanes, oscillators *c[j] with states s[j]: as rampwise_run on each.
    Lane j stops before sample reached[j] where that overflows, else reached[j] = n. Samples lie in p
    and outputs in out as told; an output may be p itself where the layouts are equal. */
-void rampwise_lanes_run_(const kernels *k, size_t count, const rampwise_coeffs *const *c, rampwise_state *s,
-                         size_t n, const double *p, layout in, const rampwise_history *out, layout to,
-                         size_t *reached);
+void PRIVATE(lanes_run)(const kernels *k, size_t count, const real_coeffs *const *c, real_state *s, size_t n,
+                        const real *p, layout in, const real_history *out, layout to, size_t *reached);
 
 #endif

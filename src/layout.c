@@ -6,6 +6,7 @@
     _Static_assert(offsetof(type, member) == (place), #type "." #member " has moved")
 #define SIZE(type, size) _Static_assert(sizeof(type) == (size), #type " has changed its size")
 
+SIZE(float, 4);
 SIZE(double, 8);
 SIZE(int, 4);
 
@@ -52,6 +53,50 @@ AT(rampwise_bank_wanted, chosen, 3 * sizeof(size_t));
 AT(rampwise_bank_wanted, history, 4 * sizeof(size_t));
 AT(rampwise_bank_wanted, reserve, 8 * sizeof(size_t));
 SIZE(rampwise_bank_wanted, 12 * sizeof(size_t));
+
+AT(rampwise_coeffs_f32, A, 0);
+AT(rampwise_coeffs_f32, B, 4);
+AT(rampwise_coeffs_f32, C, 8);
+AT(rampwise_coeffs_f32, D, 12);
+AT(rampwise_coeffs_f32, Ap, 16);
+AT(rampwise_coeffs_f32, Bp, 20);
+AT(rampwise_coeffs_f32, Cp, 24);
+AT(rampwise_coeffs_f32, Dp, 28);
+AT(rampwise_coeffs_f32, A_minus_1, 32);
+AT(rampwise_coeffs_f32, Bp_minus_1, 36);
+AT(rampwise_coeffs_f32, acceleration, 40);
+AT(rampwise_coeffs_f32, total, 56);
+AT(rampwise_coeffs_f32, mass, 72);
+AT(rampwise_coeffs_f32, damper, 76);
+AT(rampwise_coeffs_f32, stiffness, 80);
+AT(rampwise_coeffs_f32, rate, 84);
+AT(rampwise_coeffs_f32, dt, 88);
+AT(rampwise_coeffs_f32, input, 96);
+AT(rampwise_coeffs_f32, between, 100);
+AT(rampwise_coeffs_f32, reserve, 104);
+SIZE(rampwise_coeffs_f32, 128);
+
+AT(rampwise_state_f32, u, 0);
+AT(rampwise_state_f32, v, 4);
+AT(rampwise_state_f32, p, 8);
+AT(rampwise_state_f32, p_before, 12);
+AT(rampwise_state_f32, u_low, 16);
+AT(rampwise_state_f32, v_low, 20);
+SIZE(rampwise_state_f32, 24);
+
+AT(rampwise_history_f32, u, 0);
+AT(rampwise_history_f32, v, sizeof(float *));
+AT(rampwise_history_f32, a, 2 * sizeof(float *));
+AT(rampwise_history_f32, total, 3 * sizeof(float *));
+SIZE(rampwise_history_f32, 4 * sizeof(float *));
+
+AT(rampwise_bank_wanted_f32, size, 0);
+AT(rampwise_bank_wanted_f32, largest, sizeof(size_t));
+AT(rampwise_bank_wanted_f32, chosen_count, 2 * sizeof(size_t));
+AT(rampwise_bank_wanted_f32, chosen, 3 * sizeof(size_t));
+AT(rampwise_bank_wanted_f32, history, 4 * sizeof(size_t));
+AT(rampwise_bank_wanted_f32, reserve, 8 * sizeof(size_t));
+SIZE(rampwise_bank_wanted_f32, 12 * sizeof(size_t));
 
 AT(rampwise_instant, value, 0);
 AT(rampwise_instant, sample, 8);

@@ -2,34 +2,34 @@
 
 #include "row.h"
 
-double rampwise_acceleration(const rampwise_coeffs *c, const rampwise_state *s)
+real PUBLIC(acceleration)(const real_coeffs *c, const real_state *s)
 {
     return row_value(c->acceleration, s);
 }
 
-double rampwise_total_acceleration(const rampwise_coeffs *c, const rampwise_state *s)
+real PUBLIC(total_acceleration)(const real_coeffs *c, const real_state *s)
 {
     return row_value(c->total, s);
 }
 
-double rampwise_relative_displacement(const rampwise_coeffs *c, const rampwise_state *s)
+real PUBLIC(relative_displacement)(const real_coeffs *c, const real_state *s)
 {
     return c->input == RAMPWISE_BASE_DISPLACEMENT ? s->u - s->p : s->u;
 }
 
-double rampwise_relative_velocity(const rampwise_coeffs *c, const rampwise_state *s)
+real PUBLIC(relative_velocity)(const real_coeffs *c, const real_state *s)
 {
     if (c->input == RAMPWISE_BASE_DISPLACEMENT && c->between == RAMPWISE_RAMP)
-        return s->v - (s->p - s->p_before) / c->dt;
+        return s->v - over_dt(c, s->p - s->p_before);
     return s->v;
 }
 
-double rampwise_spring_force(const rampwise_coeffs *c, const rampwise_state *s)
+real PUBLIC(spring_force)(const real_coeffs *c, const real_state *s)
 {
-    return c->system.stiffness * rampwise_relative_displacement(c, s);
+    return stiffness_of(c) * PUBLIC(relative_displacement)(c, s);
 }
 
-double rampwise_damper_force(const rampwise_coeffs *c, const rampwise_state *s)
+real PUBLIC(damper_force)(const real_coeffs *c, const real_state *s)
 {
-    return c->system.damper * rampwise_relative_velocity(c, s);
+    return damper_of(c) * PUBLIC(relative_velocity)(c, s);
 }

@@ -58,7 +58,7 @@ const char *rampwise_status_text(int status)
     case RAMPWISE_ERROR_TIME:
         return "A time is not finite, or not later than the one before";
     case RAMPWISE_ERROR_OVERFLOW:
-        return "The response is too large for a double";
+        return "The response is too large for its precision";
     case RAMPWISE_ERROR_FUSED:
         return "The fused multiply-add of this platform is not correctly rounded";
     case RAMPWISE_ERROR_ARITHMETIC:

@@ -5,13 +5,13 @@
 #include "valid.h"
 
 /* Static equilibrium, without a check of its size. */
-static double rest_position(const rampwise_coeffs *c, double p0)
+static real rest_position(const real_coeffs *c, real p0)
 {
     switch (c->input) {
     case RAMPWISE_FORCE:
-        return p0 / c->system.stiffness;
+        return p0 / stiffness_of(c);
     case RAMPWISE_BASE_ACCELERATION:
-        return -p0 / (c->system.stiffness / c->system.mass);
+        return p0 / c->acceleration[0]; /* -k/m */
     case RAMPWISE_BASE_VELOCITY:
         return 0;
     default:
@@ -19,7 +19,7 @@ static double rest_position(const rampwise_coeffs *c, double p0)
     }
 }
 
-int rampwise_start_settled(const rampwise_coeffs *c, rampwise_state *s, double p0)
+int PUBLIC(start_settled)(const real_coeffs *c, real_state *s, real p0)
 {
     if (c == NULL || s == NULL)
         return RAMPWISE_ERROR_MISSING;
@@ -28,55 +28,11 @@ int rampwise_start_settled(const rampwise_coeffs *c, rampwise_state *s, double p
     if (!isfinite(p0))
         return RAMPWISE_ERROR_SAMPLE;
     const int loaded = p0 != 0 && (c->input == RAMPWISE_FORCE || c->input == RAMPWISE_BASE_ACCELERATION);
-    if (loaded && c->system.stiffness == 0)
+    if (loaded && stiffness_of(c) == 0)
         return RAMPWISE_ERROR_NO_REST;
-    const double u = p0 != 0 ? rest_position(c, p0) : 0;
+    const real u = p0 != 0 ? rest_position(c, p0) : 0;
     if (!isfinite(u))
         return RAMPWISE_ERROR_OVERFLOW;
-    rampwise_start(s, u, 0, p0);
-    return RAMPWISE_OK;
-}
-
-/* The state after a part of the step, for 0 < fraction < 1. */
-static int part_of_step(const rampwise_coeffs *c, rampwise_state *s, double p_next, double fraction)
-{
-    rampwise_coeffs part;
-    const int ramp = c->between == RAMPWISE_RAMP;
-    const double change = ramp ? p_next - s->p : 0;
-    const double p_before = s->p_before;
-    const int status = rampwise_coeffs_make(&part, &c->system, fraction * c->dt, c->input, c->between);
-    if (status != RAMPWISE_OK)
-        return status;
-    rampwise_step(&part, s, RAMPWISE_FMA(fraction, change, s->p));
-    s->p_before = ramp ? s->p - change : p_before;
-    return RAMPWISE_OK;
-}
-
-int rampwise_inside(const rampwise_coeffs *c, const rampwise_state *s, double p_next, double fraction,
-                    rampwise_state *at)
-{
-    if (c == NULL || s == NULL || at == NULL)
-        return RAMPWISE_ERROR_MISSING;
-    if (!coeffs_are_made(c))
-        return RAMPWISE_ERROR_NOT_MADE;
-    if (!(fraction >= 0 && fraction <= 1))
-        return RAMPWISE_ERROR_FRACTION;
-    if (!state_is_finite(s))
-        return RAMPWISE_ERROR_STATE;
-    if (!isfinite(p_next))
-        return RAMPWISE_ERROR_SAMPLE;
-    rampwise_state inside = *s;
-    int status = RAMPWISE_OK;
-    if (fraction == 1)
-        rampwise_step(c, &inside, p_next);
-    else if (fraction > 0)
-        status = part_of_step(c, &inside, p_next, fraction);
-    else if (c->between == RAMPWISE_RAMP)
-        inside.p_before = s->p - (p_next - s->p);
-    if (status != RAMPWISE_OK)
-        return status;
-    if (!state_is_finite(&inside))
-        return RAMPWISE_ERROR_OVERFLOW;
-    *at = inside;
+    PUBLIC(start)(s, u, 0, p0);
     return RAMPWISE_OK;
 }

@@ -3,22 +3,27 @@
 #define RAMPWISE_VALID_H
 
 #include <math.h>
+#include <string.h>
 #include "kernels/kernels.h"
+#include "precision.h"
 #include "rampwise/status.h"
-#include "rampwise/step.h"
 
-static inline int coeffs_are_made(const rampwise_coeffs *c)
+static inline int coeffs_are_made(const real_coeffs *c)
 {
     return c->input >= RAMPWISE_FORCE && c->input <= RAMPWISE_BASE_DISPLACEMENT &&
-           (c->between == RAMPWISE_RAMP || c->between == RAMPWISE_HOLD) && c->dt > 0;
+           (c->between == RAMPWISE_RAMP || c->between == RAMPWISE_HOLD);
 }
 
-static inline int state_is_finite(const rampwise_state *s)
+static inline int state_is_finite(const real_state *s)
 {
-    return isfinite(s->u) && isfinite(s->v) && isfinite(s->p) && isfinite(s->p_before);
+    return isfinite(s->u) && isfinite(s->v) && isfinite(s->p) && isfinite(s->p_before)
+#ifdef SINGLE_PRECISION
+           && isfinite(s->u_low) && isfinite(s->v_low)
+#endif
+        ;
 }
 
-static inline int check_pair(const rampwise_coeffs *c, const rampwise_state *s)
+static inline int check_pair(const real_coeffs *c, const real_state *s)
 {
     if (!coeffs_are_made(c))
         return RAMPWISE_ERROR_NOT_MADE;
@@ -33,9 +38,9 @@ static inline int blame(int status, size_t index, size_t *bad)
     return status;
 }
 
-static inline int check_samples(size_t n, const double *p, size_t *bad)
+static inline int check_samples(size_t n, const real *p, size_t *bad)
 {
-    const size_t wrong = rampwise_kernels_(RAMPWISE_FASTEST)->first_not_finite(n, p);
+    const size_t wrong = PRIVATE(kernels)(RAMPWISE_FASTEST)->first_not_finite(n, p);
     return wrong < n ? blame(RAMPWISE_ERROR_SAMPLE, wrong, bad) : RAMPWISE_OK;
 }
 
@@ -48,20 +53,26 @@ static inline int check_estimable(int input, int between)
     return input != RAMPWISE_BASE_DISPLACEMENT ? RAMPWISE_OK : RAMPWISE_ERROR_INPUT;
 }
 
+/* By the bits: single precision keeps clear of double arithmetic. */
+static inline int same_dt(const real_coeffs *a, const real_coeffs *b)
+{
+    return memcmp(&a->dt, &b->dt, sizeof a->dt) == 0;
+}
+
 /* Coefficients of oscillators that share one input. */
-static inline int check_alike(size_t n, const rampwise_coeffs *c)
+static inline int check_alike(size_t n, const real_coeffs *c)
 {
     for (size_t i = 0; i < n; ++i) {
         if (!coeffs_are_made(&c[i]))
             return RAMPWISE_ERROR_NOT_MADE;
-        if (c[i].dt != c[0].dt || c[i].input != c[0].input || c[i].between != c[0].between)
+        if (!same_dt(&c[i], &c[0]) || c[i].input != c[0].input || c[i].between != c[0].between)
             return RAMPWISE_ERROR_DIFFERENT;
     }
     return RAMPWISE_OK;
 }
 
 /* Their states. */
-static inline int check_shared_input(size_t n, const rampwise_state *s)
+static inline int check_shared_input(size_t n, const real_state *s)
 {
     for (size_t i = 0; i < n; ++i) {
         if (!state_is_finite(&s[i]))

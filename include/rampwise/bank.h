@@ -1,5 +1,7 @@
 /* rampwise/bank.h: many oscillators under one input.
 
+   Functions in _f32 are the same in single precision.
+
    N oscillators, any mix of systems, with one dt, input and between, one a lane of the processor's
    vectors. Every result has the bits of N separate rampwise_run calls, whatever the instruction set
    and however a record is cut into calls. Oscillators are numbered 0 to N - 1 in the order given.
@@ -93,6 +95,38 @@ RAMPWISE_API size_t rampwise_bank_stopped(const rampwise_bank *bank, size_t *fir
 /* u, v, u'' and the acceleration against a fixed frame of all at the present sample: arrays of N
    where wanted. Accelerations of a stopped oscillator are NaN. RAMPWISE_ERROR_MISSING. */
 RAMPWISE_API int rampwise_bank_read(const rampwise_bank *bank, const rampwise_history *now);
+
+/* All of it in single precision: twice the lanes, a little more work a step (step_f32), about 200 bytes an
+   oscillator. What is said above holds with float for double. */
+typedef struct rampwise_bank_f32 rampwise_bank_f32;
+
+typedef struct rampwise_bank_wanted_f32 {
+    size_t size; /* of this struct */
+    float *largest;
+    size_t chosen_count;
+    const size_t *chosen;
+    rampwise_history_f32 history;
+    size_t reserve[4];
+} rampwise_bank_wanted_f32;
+
+RAMPWISE_API void rampwise_bank_wanted_init_f32(rampwise_bank_wanted_f32 *wanted);
+RAMPWISE_API size_t rampwise_bank_size_f32(size_t n);
+RAMPWISE_API size_t rampwise_bank_alignment_f32(void);
+RAMPWISE_API int rampwise_bank_init_f32(void *memory, size_t bytes, size_t n, const rampwise_coeffs_f32 *c,
+                                        int instructions, rampwise_bank_f32 **bank);
+RAMPWISE_API int rampwise_bank_create_f32(size_t n, const rampwise_coeffs_f32 *c, int instructions,
+                                          rampwise_bank_f32 **bank);
+RAMPWISE_API void rampwise_bank_free_f32(rampwise_bank_f32 *bank);
+RAMPWISE_API size_t rampwise_bank_count_f32(const rampwise_bank_f32 *bank);
+RAMPWISE_API int rampwise_bank_instructions_f32(const rampwise_bank_f32 *bank);
+RAMPWISE_API int rampwise_bank_start_f32(rampwise_bank_f32 *bank, float p0);
+RAMPWISE_API int rampwise_bank_set_f32(rampwise_bank_f32 *bank, const rampwise_state_f32 *s);
+RAMPWISE_API int rampwise_bank_get_f32(const rampwise_bank_f32 *bank, rampwise_state_f32 *s);
+RAMPWISE_API int rampwise_bank_retune_f32(rampwise_bank_f32 *bank, size_t i, const rampwise_coeffs_f32 *c);
+RAMPWISE_API int rampwise_bank_run_f32(rampwise_bank_f32 *bank, size_t n, const float *p,
+                                       const rampwise_bank_wanted_f32 *wanted, size_t *bad);
+RAMPWISE_API size_t rampwise_bank_stopped_f32(const rampwise_bank_f32 *bank, size_t *first);
+RAMPWISE_API int rampwise_bank_read_f32(const rampwise_bank_f32 *bank, const rampwise_history_f32 *now);
 
 RAMPWISE_END
 

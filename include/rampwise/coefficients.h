@@ -64,6 +64,21 @@ typedef struct rampwise_coeffs {
     double reserve[9]; /* zero */
 } rampwise_coeffs;
 
+/* The same for steps in single precision. Public, of frozen layout, to be read; only rampwise_coeffs_make_f32
+   writes it, here or on a host that prints it as a constant. dt is kept as it was given: nothing in single
+   precision computes with it. */
+typedef struct rampwise_coeffs_f32 {
+    float A, B, C, D;
+    float Ap, Bp, Cp, Dp;
+    float A_minus_1, Bp_minus_1;
+    float acceleration[4];
+    float total[4];
+    float mass, damper, stiffness, rate; /* rate: 1/dt */
+    double dt;
+    int32_t input, between;
+    float reserve[6]; /* zero */
+} rampwise_coeffs_f32;
+
 RAMPWISE_BEGIN
 
 /* Fills *c for one oscillator and one length of step.
@@ -86,6 +101,14 @@ RAMPWISE_BEGIN
    About 0.4 to 1.3 microseconds, growing with log2(w dt); no allocation. Since 0.1. */
 RAMPWISE_API int rampwise_coeffs_make(rampwise_coeffs *c, const rampwise_system *sys, double dt, int input,
                                       int between);
+
+/* The same for single precision. Every member is the float nearest to the exact value for sys and dt as they
+   are given, rounded once (subnormal floats included); only where a free motion has decayed within the step may
+   it be off, by 2^-100 of its largest value over steps of length 0 to h. RAMPWISE_ERROR_COEFFICIENT also where
+   a member is larger than a float can hold. This is double arithmetic; where that is dear, let a host make
+   constants (tools/coefficients_as_source). Since 0.1. */
+RAMPWISE_API int rampwise_coeffs_make_f32(rampwise_coeffs_f32 *c, const rampwise_system *sys, double dt,
+                                          int input, int between);
 
 RAMPWISE_END
 

@@ -7,7 +7,8 @@
    - else glibc's fma, which is correctly rounded: three to four times the cost of a step with the
      hardware behind it, about a hundred times without,
    - elsewhere the library's own below: small C libraries compute fma as a product and a sum.
-   All three give the same bits. RAMPWISE_OWN_FMA, defined before the header, chooses the last. */
+   All three give the same bits. RAMPWISE_OWN_FMA, defined before the header, chooses the last.
+   The same holds for single precision, which microcontrollers may have in hardware alone. */
 #ifndef RAMPWISE_FUSED_H
 #define RAMPWISE_FUSED_H
 
@@ -26,7 +27,7 @@ RAMPWISE_API float rampwise_fmaf(float x, float y, float z);
 
 RAMPWISE_END
 
-/* The fastest correct one here. */
+/* The fastest correct one here, in double and in single precision (x, y, z of type float). */
 #if defined(RAMPWISE_OWN_FMA) || !defined(__GNUC__)
 #define RAMPWISE_FMA(x, y, z) rampwise_fma((x), (y), (z))
 #elif defined(__FP_FAST_FMA) || (defined(__FMA__) && defined(__SSE2__)) ||                                   \
@@ -37,6 +38,16 @@ RAMPWISE_END
 #define RAMPWISE_FMA(x, y, z) __builtin_fma((x), (y), (z))
 #else
 #define RAMPWISE_FMA(x, y, z) rampwise_fma((x), (y), (z))
+#endif
+
+#if defined(RAMPWISE_OWN_FMA) || !defined(__GNUC__)
+#define RAMPWISE_FMAF(x, y, z) rampwise_fmaf((x), (y), (z))
+#elif defined(__FP_FAST_FMAF) || (defined(__FMA__) && defined(__SSE2__)) ||                                  \
+    (defined(__ARM_FEATURE_FMA) && (defined(__aarch64__) || (defined(__ARM_FP) && (__ARM_FP & 4)))) ||       \
+    defined(__GLIBC__)
+#define RAMPWISE_FMAF(x, y, z) __builtin_fmaf((x), (y), (z))
+#else
+#define RAMPWISE_FMAF(x, y, z) rampwise_fmaf((x), (y), (z))
 #endif
 
 #endif

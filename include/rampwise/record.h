@@ -1,6 +1,8 @@
 /* rampwise/record.h: many samples at a time.
 
-   Arrays need the alignment of a double only. Outputs are arrays as long as p; an output may be p
+   Functions in _f32 are the same in single precision.
+
+   Arrays need the alignment of a double, or float, only. Outputs are arrays as long as p; an output may be p
    itself (the same first element, in place), otherwise nothing may overlap. n = 0 does nothing.
 
    All samples, times and states are checked before the first step: RAMPWISE_ERROR_SAMPLE, _STATE or
@@ -25,18 +27,26 @@ typedef struct rampwise_history {
     double *u, *v, *a, *total;
 } rampwise_history;
 
+typedef struct rampwise_history_f32 {
+    float *u, *v, *a, *total;
+} rampwise_history_f32;
+
 RAMPWISE_BEGIN
 
 /* The next n samples, p[0] to p[n-1], each dt after the one before: one step each. out may be NULL.
    The bits do not depend on how a record is cut into calls. Since 0.1. */
 RAMPWISE_API int rampwise_run(const rampwise_coeffs *c, rampwise_state *s, size_t n, const double *p,
                               const rampwise_history *out, size_t *bad);
+RAMPWISE_API int rampwise_run_f32(const rampwise_coeffs_f32 *c, rampwise_state_f32 *s, size_t n,
+                                  const float *p, const rampwise_history_f32 *out, size_t *bad);
 
 /* A whole record of n samples, n - 1 steps, from displacement u0 and velocity v0: entry 0 of each
    output is the initial state under p[0] (the start "at once" of step.h). The same bits as
    rampwise_start with p[0] and rampwise_run over the others. Since 0.1. */
 RAMPWISE_API int rampwise_solve(const rampwise_coeffs *c, double u0, double v0, size_t n, const double *p,
                                 const rampwise_history *out, size_t *bad);
+RAMPWISE_API int rampwise_solve_f32(const rampwise_coeffs_f32 *c, float u0, float v0, size_t n,
+                                    const float *p, const rampwise_history_f32 *out, size_t *bad);
 
 /* The next n samples at the times t[0] < t[1] < ..., the state being at *t_last < t[0]; exact for any gaps.
    *t_last becomes the time of the state. c tells system, input and between; its own dt may be any, such as

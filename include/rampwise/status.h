@@ -45,7 +45,7 @@ enum {
     RAMPWISE_ERROR_TIME = -64,   /* a time is NaN, infinite, or not later than the one before */
 
     /* The results are. */
-    RAMPWISE_ERROR_OVERFLOW = -80, /* the response is larger than a double can hold */
+    RAMPWISE_ERROR_OVERFLOW = -80, /* the response is larger than its precision can hold */
 
     /* The platform is. */
     RAMPWISE_ERROR_FUSED = -90,     /* the fused multiply-add is not one */

@@ -1,4 +1,4 @@
-/* Four lanes a vector: x86-64 with AVX2 and fused multiply-add. */
+/* Four lanes a vector, eight in single precision: x86-64 with AVX2 and fused multiply-add. */
 #include "sets.h"
 
 #ifdef RAMPWISE_BUILD_X86
@@ -8,6 +8,7 @@
 #include <math.h>
 #include <stdint.h>
 #include <string.h>
+#include "../precision.h"
 
 #ifdef __clang__
 #pragma clang attribute push(__attribute__((target("avx2,fma"))), apply_to = function)
@@ -16,114 +17,121 @@
 #pragma GCC target("avx2,fma")
 #endif
 
+#ifdef SINGLE_PRECISION
+#define WIDTH 8
+#define VECTOR __m256
+#define REAL_OF(name) name##_ps
+#else
 #define WIDTH 4
 #define VECTOR __m256d
-#define MASK __m256d
-#define KERNELS rampwise_kernels_avx2_
+#define REAL_OF(name) name##_pd
+#endif
+#define MASK VECTOR
+#define KERNELS PRIVATE(kernels_avx2)
 #define KERNELS_NAME RAMPWISE_AVX2
 
-static inline __m256d vector_load(const double *x)
+static inline VECTOR vector_load(const real *x)
 {
-    return _mm256_loadu_pd(x);
+    return REAL_OF(_mm256_loadu)(x);
 }
 
-static inline void vector_store(double *x, __m256d a)
+static inline void vector_store(real *x, VECTOR a)
 {
-    _mm256_storeu_pd(x, a);
+    REAL_OF(_mm256_storeu)(x, a);
 }
 
-static inline __m256d vector_all(double a)
+static inline VECTOR vector_all(real a)
 {
-    return _mm256_set1_pd(a);
+    return REAL_OF(_mm256_set1)(a);
 }
 
-static inline __m256d vector_fma(__m256d a, __m256d b, __m256d c)
+static inline VECTOR vector_fma(VECTOR a, VECTOR b, VECTOR c)
 {
-    return _mm256_fmadd_pd(a, b, c);
+    return REAL_OF(_mm256_fmadd)(a, b, c);
 }
 
-static inline __m256d vector_product(__m256d a, __m256d b)
+static inline VECTOR vector_product(VECTOR a, VECTOR b)
 {
-    return _mm256_mul_pd(a, b);
+    return REAL_OF(_mm256_mul)(a, b);
 }
 
-static inline __m256d vector_sum(__m256d a, __m256d b)
+static inline VECTOR vector_sum(VECTOR a, VECTOR b)
 {
-    return _mm256_add_pd(a, b);
+    return REAL_OF(_mm256_add)(a, b);
 }
 
-static inline __m256d vector_difference(__m256d a, __m256d b)
+static inline VECTOR vector_difference(VECTOR a, VECTOR b)
 {
-    return _mm256_sub_pd(a, b);
+    return REAL_OF(_mm256_sub)(a, b);
 }
 
-static inline __m256d vector_product_unless_zero(__m256d a, __m256d b)
+static inline VECTOR vector_product_unless_zero(VECTOR a, VECTOR b)
 {
-    const __m256d asked = _mm256_cmp_pd(a, _mm256_setzero_pd(), _CMP_NEQ_UQ);
-    return _mm256_and_pd(asked, _mm256_mul_pd(a, b));
+    const VECTOR asked = REAL_OF(_mm256_cmp)(a, REAL_OF(_mm256_setzero)(), _CMP_NEQ_UQ);
+    return REAL_OF(_mm256_and)(asked, REAL_OF(_mm256_mul)(a, b));
 }
 
-static inline __m256d vector_size(__m256d a)
+static inline VECTOR vector_size(VECTOR a)
 {
-    return _mm256_andnot_pd(_mm256_set1_pd(-0.0), a);
+    return REAL_OF(_mm256_andnot)(REAL_OF(_mm256_set1)(-0.0), a);
 }
 
-static inline __m256d vector_larger(__m256d a, __m256d b)
+static inline VECTOR vector_larger(VECTOR a, VECTOR b)
 {
-    return _mm256_max_pd(a, b);
+    return REAL_OF(_mm256_max)(a, b);
 }
 
 /* The larger of |a| and top, which is not negative */
-static inline __m256d vector_larger_size(__m256d a, __m256d top)
+static inline VECTOR vector_larger_size(VECTOR a, VECTOR top)
 {
     return vector_larger(vector_size(a), top);
 }
 
-static inline __m256d vector_smaller(__m256d a, __m256d b)
+static inline VECTOR vector_smaller(VECTOR a, VECTOR b)
 {
-    return _mm256_min_pd(a, b);
+    return REAL_OF(_mm256_min)(a, b);
 }
 
-static inline __m256d vector_positive(__m256d a)
+static inline MASK vector_positive(VECTOR a)
 {
-    return _mm256_cmp_pd(a, _mm256_setzero_pd(), _CMP_GT_OQ);
+    return REAL_OF(_mm256_cmp)(a, REAL_OF(_mm256_setzero)(), _CMP_GT_OQ);
 }
 
 /* A bit a lane, the first lane lowest */
-static inline unsigned mask_bits(__m256d a)
+static inline unsigned mask_bits(MASK a)
 {
-    return (unsigned)_mm256_movemask_pd(a);
+    return (unsigned)REAL_OF(_mm256_movemask)(a);
 }
 
-static inline __m256d mask_below(__m256d a, double limit)
+static inline MASK mask_below(VECTOR a, real limit)
 {
-    return _mm256_cmp_pd(vector_size(a), _mm256_set1_pd(limit), _CMP_LT_OQ);
+    return REAL_OF(_mm256_cmp)(vector_size(a), REAL_OF(_mm256_set1)(limit), _CMP_LT_OQ);
 }
 
-static inline __m256d mask_all(void)
+static inline MASK mask_all(void)
 {
-    return _mm256_cmp_pd(_mm256_setzero_pd(), _mm256_setzero_pd(), _CMP_EQ_OQ);
+    return REAL_OF(_mm256_cmp)(REAL_OF(_mm256_setzero)(), REAL_OF(_mm256_setzero)(), _CMP_EQ_OQ);
 }
 
-static inline __m256d mask_both(__m256d a, __m256d b)
+static inline MASK mask_both(MASK a, MASK b)
 {
-    return _mm256_and_pd(a, b);
+    return REAL_OF(_mm256_and)(a, b);
 }
 
-static inline int mask_any(__m256d a)
+static inline int mask_any(MASK a)
 {
-    return _mm256_movemask_pd(a);
+    return REAL_OF(_mm256_movemask)(a);
 }
 
-static inline int vector_any_nan(__m256d a)
+static inline int vector_any_nan(VECTOR a)
 {
-    return mask_any(_mm256_cmp_pd(a, a, _CMP_UNORD_Q));
+    return mask_any(REAL_OF(_mm256_cmp)(a, a, _CMP_UNORD_Q));
 }
 
-/* a, or +0 where the mask is set and |a| < limit */
-static inline __m256d vector_unless_below(__m256d a, double limit, __m256d mask)
+/* a, or +0 where the mask is set */
+static inline VECTOR vector_unless(VECTOR a, MASK mask)
 {
-    return _mm256_andnot_pd(_mm256_and_pd(mask, mask_below(a, limit)), a);
+    return REAL_OF(_mm256_andnot)(mask, a);
 }
 
 #include "x86_transpose.h"

@@ -1,4 +1,4 @@
-/* Eight lanes a vector: x86-64 with AVX-512F, VL and DQ. */
+/* Eight lanes a vector, sixteen in single precision: x86-64 with AVX-512F, VL and DQ. */
 #include "sets.h"
 
 #ifdef RAMPWISE_BUILD_X86
@@ -8,6 +8,7 @@
 #include <math.h>
 #include <stdint.h>
 #include <string.h>
+#include "../precision.h"
 
 #ifdef __clang__
 #pragma clang attribute push(__attribute__((target("avx512f,avx512vl,avx512dq,avx2,fma"))),                  \
@@ -17,115 +18,124 @@
 #pragma GCC target("avx512f,avx512vl,avx512dq,avx2,fma")
 #endif
 
+#ifdef SINGLE_PRECISION
+#define WIDTH 16
+#define VECTOR __m512
+#define MASK __mmask16
+#define REAL_OF(name) name##_ps
+#define MASK_OF(name) name##_ps_mask
+#else
 #define WIDTH 8
 #define VECTOR __m512d
 #define MASK __mmask8
-#define KERNELS rampwise_kernels_avx512_
+#define REAL_OF(name) name##_pd
+#define MASK_OF(name) name##_pd_mask
+#endif
+#define KERNELS PRIVATE(kernels_avx512)
 #define KERNELS_NAME RAMPWISE_AVX512
 
-static inline __m512d vector_load(const double *x)
+static inline VECTOR vector_load(const real *x)
 {
-    return _mm512_loadu_pd(x);
+    return REAL_OF(_mm512_loadu)(x);
 }
 
-static inline void vector_store(double *x, __m512d a)
+static inline void vector_store(real *x, VECTOR a)
 {
-    _mm512_storeu_pd(x, a);
+    REAL_OF(_mm512_storeu)(x, a);
 }
 
-static inline __m512d vector_all(double a)
+static inline VECTOR vector_all(real a)
 {
-    return _mm512_set1_pd(a);
+    return REAL_OF(_mm512_set1)(a);
 }
 
-static inline __m512d vector_fma(__m512d a, __m512d b, __m512d c)
+static inline VECTOR vector_fma(VECTOR a, VECTOR b, VECTOR c)
 {
-    return _mm512_fmadd_pd(a, b, c);
+    return REAL_OF(_mm512_fmadd)(a, b, c);
 }
 
-static inline __m512d vector_product(__m512d a, __m512d b)
+static inline VECTOR vector_product(VECTOR a, VECTOR b)
 {
-    return _mm512_mul_pd(a, b);
+    return REAL_OF(_mm512_mul)(a, b);
 }
 
-static inline __m512d vector_sum(__m512d a, __m512d b)
+static inline VECTOR vector_sum(VECTOR a, VECTOR b)
 {
-    return _mm512_add_pd(a, b);
+    return REAL_OF(_mm512_add)(a, b);
 }
 
-static inline __m512d vector_difference(__m512d a, __m512d b)
+static inline VECTOR vector_difference(VECTOR a, VECTOR b)
 {
-    return _mm512_sub_pd(a, b);
+    return REAL_OF(_mm512_sub)(a, b);
 }
 
-static inline __m512d vector_product_unless_zero(__m512d a, __m512d b)
+static inline VECTOR vector_product_unless_zero(VECTOR a, VECTOR b)
 {
-    const __mmask8 asked = _mm512_cmp_pd_mask(a, _mm512_setzero_pd(), _CMP_NEQ_UQ);
-    return _mm512_maskz_mul_pd(asked, a, b);
+    const MASK asked = MASK_OF(_mm512_cmp)(a, REAL_OF(_mm512_setzero)(), _CMP_NEQ_UQ);
+    return REAL_OF(_mm512_maskz_mul)(asked, a, b);
 }
 
-static inline __m512d vector_size(__m512d a)
+static inline VECTOR vector_size(VECTOR a)
 {
-    return _mm512_abs_pd(a);
+    return REAL_OF(_mm512_abs)(a);
 }
 
-static inline __m512d vector_larger(__m512d a, __m512d b)
+static inline VECTOR vector_larger(VECTOR a, VECTOR b)
 {
-    return _mm512_max_pd(a, b);
+    return REAL_OF(_mm512_max)(a, b);
 }
 
 /* The larger of |a| and top, which is not negative: the larger in size, its sign cleared, in one operation */
-static inline __m512d vector_larger_size(__m512d a, __m512d top)
+static inline VECTOR vector_larger_size(VECTOR a, VECTOR top)
 {
-    return _mm512_range_pd(a, top, 0x0b);
+    return REAL_OF(_mm512_range)(a, top, 0x0b);
 }
 
-static inline __m512d vector_smaller(__m512d a, __m512d b)
+static inline VECTOR vector_smaller(VECTOR a, VECTOR b)
 {
-    return _mm512_min_pd(a, b);
+    return REAL_OF(_mm512_min)(a, b);
 }
 
-static inline __mmask8 vector_positive(__m512d a)
+static inline MASK vector_positive(VECTOR a)
 {
-    return _mm512_cmp_pd_mask(a, _mm512_setzero_pd(), _CMP_GT_OQ);
+    return MASK_OF(_mm512_cmp)(a, REAL_OF(_mm512_setzero)(), _CMP_GT_OQ);
 }
 
 /* A bit a lane, the first lane lowest */
-static inline unsigned mask_bits(__mmask8 a)
+static inline unsigned mask_bits(MASK a)
 {
     return a;
 }
 
-static inline __mmask8 mask_below(__m512d a, double limit)
+static inline MASK mask_below(VECTOR a, real limit)
 {
-    return _mm512_cmp_pd_mask(vector_size(a), _mm512_set1_pd(limit), _CMP_LT_OQ);
+    return MASK_OF(_mm512_cmp)(vector_size(a), REAL_OF(_mm512_set1)(limit), _CMP_LT_OQ);
 }
 
-static inline __mmask8 mask_all(void)
+static inline MASK mask_all(void)
 {
-    return 0xff;
+    return (MASK)-1;
 }
 
-static inline __mmask8 mask_both(__mmask8 a, __mmask8 b)
+static inline MASK mask_both(MASK a, MASK b)
 {
     return a & b;
 }
 
-static inline int mask_any(__mmask8 a)
+static inline int mask_any(MASK a)
 {
     return a;
 }
 
-static inline int vector_any_nan(__m512d a)
+static inline int vector_any_nan(VECTOR a)
 {
-    return _mm512_cmp_pd_mask(a, a, _CMP_UNORD_Q) != 0;
+    return MASK_OF(_mm512_cmp)(a, a, _CMP_UNORD_Q) != 0;
 }
 
-/* a, or +0 where the mask is set and |a| < limit */
-static inline __m512d vector_unless_below(__m512d a, double limit, __mmask8 mask)
+/* a, or +0 where the mask is set */
+static inline VECTOR vector_unless(VECTOR a, MASK mask)
 {
-    const __mmask8 zeroed = mask & mask_below(a, limit);
-    return _mm512_mask_mov_pd(a, zeroed, _mm512_setzero_pd());
+    return REAL_OF(_mm512_mask_mov)(a, mask, REAL_OF(_mm512_setzero)());
 }
 
 #include "x86_transpose.h"

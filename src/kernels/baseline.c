@@ -1,76 +1,76 @@
 /* One lane at a time, for every processor. */
 #include <math.h>
 #include <stddef.h>
-#include "rampwise/fused.h"
+#include "../precision.h"
 
 #define WIDTH 1
-#define VECTOR double
+#define VECTOR real
 #define MASK int
-#define KERNELS rampwise_kernels_baseline_
+#define KERNELS PRIVATE(kernels_baseline)
 #define KERNELS_NAME RAMPWISE_BASELINE
 
-static inline double vector_load(const double *x)
+static inline real vector_load(const real *x)
 {
     return *x;
 }
 
-static inline void vector_store(double *x, double a)
+static inline void vector_store(real *x, real a)
 {
     *x = a;
 }
 
-static inline double vector_all(double a)
+static inline real vector_all(real a)
 {
     return a;
 }
 
-static inline double vector_fma(double a, double b, double c)
+static inline real vector_fma(real a, real b, real c)
 {
-    return RAMPWISE_FMA(a, b, c);
+    return REAL_FMA(a, b, c);
 }
 
-static inline double vector_product(double a, double b)
+static inline real vector_product(real a, real b)
 {
     return a * b;
 }
 
-static inline double vector_sum(double a, double b)
+static inline real vector_sum(real a, real b)
 {
     return a + b;
 }
 
-static inline double vector_difference(double a, double b)
+static inline real vector_difference(real a, real b)
 {
     return a - b;
 }
 
-static inline double vector_product_unless_zero(double a, double b)
+static inline real vector_product_unless_zero(real a, real b)
 {
     return a != 0 ? a * b : 0;
 }
 
-static inline double vector_size(double a)
+static inline real vector_size(real a)
 {
-    return fabs(a);
+    return REAL_SIZE(a);
 }
 
-static inline double vector_larger(double a, double b)
+static inline real vector_larger(real a, real b)
 {
     return a > b ? a : b;
 }
 
 /* The larger of |a| and top, which is not negative */
-static inline double vector_larger_size(double a, double top)
+static inline real vector_larger_size(real a, real top)
 {
     return vector_larger(vector_size(a), top);
 }
 
-static inline double vector_smaller(double a, double b)
+static inline real vector_smaller(real a, real b)
 {
     return a < b ? a : b;
 }
 
-static inline int vector_positive(double a)
+static inline int vector_positive(real a)
 {
     return a > 0;
 }
@@ -86,9 +86,9 @@ static inline int mask_all(void)
     return 1;
 }
 
-static inline int mask_below(double a, double limit)
+static inline int mask_below(real a, real limit)
 {
-    return fabs(a) < limit;
+    return REAL_SIZE(a) < limit;
 }
 
 static inline int mask_both(int a, int b)
@@ -101,19 +101,19 @@ static inline int mask_any(int a)
     return a;
 }
 
-static inline int vector_any_nan(double a)
+static inline int vector_any_nan(real a)
 {
     return isnan(a);
 }
 
-/* a, or +0 where the mask is set and |a| < limit */
-static inline double vector_unless_below(double a, double limit, int mask)
+/* a, or +0 where the mask is set */
+static inline real vector_unless(real a, int mask)
 {
-    return mask && fabs(a) < limit ? 0 : a;
+    return mask ? 0 : a;
 }
 
 /* to[j][i] = from[i][j] */
-static inline void transpose_4_by_4(const double *from, size_t from_stride, double *to, size_t to_stride)
+static inline void transpose_4_by_4(const real *from, size_t from_stride, real *to, size_t to_stride)
 {
     for (size_t i = 0; i < 4; ++i)
         for (size_t j = 0; j < 4; ++j)

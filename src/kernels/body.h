@@ -1,41 +1,126 @@
 /* The one body of all kernels. The including file has defined a thin layer over its vectors:
    VECTOR, MASK, WIDTH and the functions vector_*, mask_*; and KERNELS, the table's name, and
-   KERNELS_NAME. The arithmetic is that of step.h, operation by operation. */
+   KERNELS_NAME; all in one precision (../precision.h). The arithmetic is that of step.h, operation by operation. */
 
 #include <stdint.h>
 #include <string.h>
 #include "../entry.h"
 #include "kernels.h"
 
-#define SILENT 1.1830521861667747e-271 /* 2^-900 */
-#define SPENT 1.0261342003245941e-289  /* 2^-960 */
+#ifdef SINGLE_PRECISION
+#define SILENT 0x1p-90f
+#define SPENT 0x1p-100f
+#else
+#define SILENT 0x1p-900
+#define SPENT 0x1p-960
+#endif
 
-/* Vectors in flight: enough to hide the latency of a step, few enough for the registers. */
-enum { FLIGHT = 4 };
+/* Vectors in flight: enough to hide the latency of a step, few enough for the registers, which single precision
+   needs for the low words too. */
+enum { MOST_IN_FLIGHT = 4, FLIGHT = sizeof(real) == sizeof(float) ? 2 : 4 };
 
-static inline VECTOR next_u(const lane_block *b, size_t at, VECTOR u, VECTOR v, VECTOR p, VECTOR p1)
+/* Oscillators on their way, one a lane. */
+typedef struct moving {
+    VECTOR u, v;
+#ifdef SINGLE_PRECISION
+    VECTOR u_low, v_low;
+#endif
+} moving;
+
+static inline VECTOR change_of_u(const lane_block *b, size_t at, VECTOR u, VECTOR v, VECTOR p, VECTOR p1)
 {
     const VECTOR loaded = vector_fma(vector_load(b->C + at), p, vector_product(vector_load(b->D + at), p1));
     const VECTOR gain = vector_fma(vector_load(b->B + at), v, loaded);
-    return vector_sum(u, vector_fma(vector_load(b->A_minus_1 + at), u, gain));
+    return vector_fma(vector_load(b->A_minus_1 + at), u, gain);
 }
 
-static inline VECTOR next_v(const lane_block *b, size_t at, VECTOR u, VECTOR v, VECTOR p, VECTOR p1)
+static inline VECTOR change_of_v(const lane_block *b, size_t at, VECTOR u, VECTOR v, VECTOR p, VECTOR p1)
 {
     const VECTOR loaded = vector_fma(vector_load(b->Cp + at), p, vector_product(vector_load(b->Dp + at), p1));
     const VECTOR gain = vector_fma(vector_load(b->Bp_minus_1 + at), v, loaded);
-    return vector_sum(v, vector_fma(vector_load(b->Ap + at), u, gain));
+    return vector_fma(vector_load(b->Ap + at), u, gain);
 }
 
-/* |p| < 2^-900 by its bits, away from the vector units */
-static inline int is_silent(double p)
+static inline moving load_moving(const lane_block *b, size_t at)
 {
+    moving m;
+    m.u = vector_load(b->u + at);
+    m.v = vector_load(b->v + at);
+#ifdef SINGLE_PRECISION
+    m.u_low = vector_load(b->u_low + at);
+    m.v_low = vector_load(b->v_low + at);
+#endif
+    return m;
+}
+
+static inline void store_moving(lane_block *b, size_t at, const moving *m)
+{
+    vector_store(b->u + at, m->u);
+    vector_store(b->v + at, m->v);
+#ifdef SINGLE_PRECISION
+    vector_store(b->u_low + at, m->u_low);
+    vector_store(b->v_low + at, m->v_low);
+#endif
+}
+
+#ifdef SINGLE_PRECISION
+static inline void carry(VECTOR *x, VECTOR *x_low, VECTOR change)
+{
+    const VECTOR sum = vector_sum(*x, change);
+    *x_low = vector_difference(change, vector_difference(sum, *x));
+    *x = sum;
+}
+#endif
+
+static inline void step_moving(const lane_block *b, size_t at, moving *m, VECTOR p, VECTOR p1)
+{
+    const VECTOR du = change_of_u(b, at, m->u, m->v, p, p1), dv = change_of_v(b, at, m->u, m->v, p, p1);
+#ifdef SINGLE_PRECISION
+    carry(&m->u, &m->u_low, vector_sum(du, m->u_low));
+    carry(&m->v, &m->v_low, vector_sum(dv, m->v_low));
+#else
+    m->u = vector_sum(m->u, du);
+    m->v = vector_sum(m->v, dv);
+#endif
+}
+
+/* The rule of silence for lanes under a silent input. */
+static inline void still_moving(moving *m, MASK silent)
+{
+#ifdef SINGLE_PRECISION
+    const MASK u_spent = mask_both(silent, mask_below(m->u, SPENT));
+    const MASK v_spent = mask_both(silent, mask_below(m->v, SPENT));
+    m->u = vector_unless(m->u, u_spent);
+    m->v = vector_unless(m->v, v_spent);
+    m->u_low = vector_unless(m->u_low, u_spent);
+    m->v_low = vector_unless(m->v_low, v_spent);
+#else
+    m->u = vector_unless(m->u, mask_both(silent, mask_below(m->u, SPENT)));
+    m->v = vector_unless(m->v, mask_both(silent, mask_below(m->v, SPENT)));
+#endif
+}
+
+/* zero, or NaN where the motion is not finite */
+static inline VECTOR zero_if_finite(const moving *m, VECTOR zero)
+{
+    return vector_fma(m->u, vector_all(0), vector_fma(m->v, vector_all(0), zero));
+}
+
+/* |p| < SILENT by its bits, away from the vector units */
+static inline int is_silent(real p)
+{
+#ifdef SINGLE_PRECISION
+    uint32_t bits;
+    memcpy(&bits, &p, sizeof bits);
+    return bits << 1 < (uint32_t)(127 - 90) << 24;
+#else
     uint64_t bits;
     memcpy(&bits, &p, sizeof bits);
     return bits << 1 < (uint64_t)(1023 - 900) << 53;
+#endif
 }
 
-static size_t first_not_finite(size_t n, const double *x)
+static size_t first_not_finite(size_t n, const real *x)
 {
     size_t i = 0;
     for (; i + FLIGHT * WIDTH <= n; i += FLIGHT * WIDTH) {
@@ -57,61 +142,59 @@ static size_t first_not_finite(size_t n, const double *x)
 #pragma GCC optimize("no-tree-slp-vectorize", "no-tree-loop-im", "no-move-loop-invariants")
 #endif
 
-/* The step from u, v under `before` to `now`, and its entry in the outputs; 0 where it overflows. */
-static inline __attribute__((always_inline)) int take(const rampwise_coeffs *c, const rampwise_history *out,
-                                                      size_t i, double u, double v, double before, double now,
-                                                      double *u_next, double *v_next)
+/* The step from *s to the sample `now`, and its entry in the outputs; 0 where it overflows. */
+static inline __attribute__((always_inline)) int take(const real_coeffs *c, const real_history *out, size_t i,
+                                                      const real_state *s, real now, real_state *next)
 {
-    double u1 = rampwise_next_u_(c, u, v, before, now);
-    double v1 = rampwise_next_v_(c, u, v, before, now);
-    if (__builtin_expect(is_silent(before) & is_silent(now), 0)) {
-        u1 = rampwise_unless_spent_(u1);
-        v1 = rampwise_unless_spent_(v1);
+    const int silent = is_silent(s->p) & is_silent(now);
+#ifdef SINGLE_PRECISION
+    *next = *s;
+    rampwise_next_f32_(c, next, now);
+    if (__builtin_expect(silent, 0))
+        rampwise_unless_spent_f32_(next, 1);
+#else
+    real u = rampwise_next_u_(c, s->u, s->v, s->p, now);
+    real v = rampwise_next_v_(c, s->u, s->v, s->p, now);
+    if (__builtin_expect(silent, 0)) {
+        u = rampwise_unless_spent_(u);
+        v = rampwise_unless_spent_(v);
     }
-    *u_next = u1;
-    *v_next = v1;
-    const rampwise_state next = {u1, v1, now, before};
-    return put_state(c, &next, out, i);
+    *next = (real_state){u, v, now, s->p};
+#endif
+    return put_state(c, next, out, i);
 }
 
 /* Coefficients and outputs are copied, so that none can be taken for another, and two samples go by in a
    turn, so that no state has to be moved to make room for the next: a step waits for nothing but the one
    before. `accelerations` is a constant where this is inlined. */
-static inline __attribute__((always_inline)) size_t
-advance_with(int accelerations, const rampwise_coeffs *coeffs, rampwise_state *s, size_t first, size_t end,
-             size_t stride, const double *p, const rampwise_history *outputs)
+static inline __attribute__((always_inline)) size_t advance_with(int accelerations, const real_coeffs *coeffs,
+                                                                 real_state *s, size_t first, size_t end,
+                                                                 size_t stride, const real *p,
+                                                                 const real_history *outputs)
 {
-    const rampwise_coeffs c = *coeffs;
-    const rampwise_history out = {outputs->u, outputs->v, accelerations ? outputs->a : NULL,
-                                  accelerations ? outputs->total : NULL};
-    double u = s->u, v = s->v, before = s->p, p_before = s->p_before;
+    const real_coeffs c = *coeffs;
+    const real_history out = {outputs->u, outputs->v, accelerations ? outputs->a : NULL,
+                              accelerations ? outputs->total : NULL};
+    real_state at = *s;
     size_t i = first;
     while (i < end) {
-        double u1, v1, u2, v2;
-        const double now = p[i];
-        if (!take(&c, &out, i, u, v, before, now, &u1, &v1))
+        real_state next, after;
+        if (!take(&c, &out, i, &at, p[i], &next))
             break;
         i += stride;
-        const double next = i < end ? p[i] : 0;
-        if (i >= end || !take(&c, &out, i, u1, v1, now, next, &u2, &v2)) {
-            u = u1;
-            v = v1;
-            p_before = before;
-            before = now;
+        if (i >= end || !take(&c, &out, i, &next, p[i], &after)) {
+            at = next;
             break;
         }
         i += stride;
-        u = u2;
-        v = v2;
-        p_before = now;
-        before = next;
+        at = after;
     }
-    *s = (rampwise_state){u, v, before, p_before};
+    *s = at;
     return i < end ? i : end;
 }
 
-static size_t advance(const rampwise_coeffs *c, rampwise_state *s, size_t first, size_t end, size_t stride,
-                      const double *p, const rampwise_history *out)
+static size_t advance(const real_coeffs *c, real_state *s, size_t first, size_t end, size_t stride,
+                      const real *p, const real_history *out)
 {
     if (out->a != NULL || out->total != NULL)
         return advance_with(1, c, s, first, end, stride, p, out);
@@ -120,32 +203,26 @@ static size_t advance(const rampwise_coeffs *c, rampwise_state *s, size_t first,
 
 /* `flight` vectors from lane `at` on over one step of their one input. */
 static inline __attribute__((always_inline)) void step_together(const lane_block *block, size_t at,
-                                                                int flight, VECTOR *u, VECTOR *v,
-                                                                VECTOR before, VECTOR now, int silent)
+                                                                int flight, moving *m, VECTOR before,
+                                                                VECTOR now, int silent)
 {
-    for (int j = 0; j < flight; ++j) {
-        const size_t lane = at + (size_t)j * WIDTH;
-        const VECTOR old = u[j];
-        u[j] = next_u(block, lane, old, v[j], before, now);
-        v[j] = next_v(block, lane, old, v[j], before, now);
-    }
+    for (int j = 0; j < flight; ++j)
+        step_moving(block, at + (size_t)j * WIDTH, &m[j], before, now);
     if (__builtin_expect(silent, 0))
-        for (int j = 0; j < flight; ++j) {
-            u[j] = vector_unless_below(u[j], SPENT, mask_all());
-            v[j] = vector_unless_below(v[j], SPENT, mask_all());
-        }
+        for (int j = 0; j < flight; ++j)
+            still_moving(&m[j], mask_all());
 }
 
 /* Answers whether one of the vectors is not finite any more. flight and gathering are constants where this is
    inlined. */
 static inline __attribute__((always_inline)) int one_input(lane_block *block, size_t at, int flight,
-                                                           int gathering, double p_last, size_t n,
-                                                           const double *p, double *largest)
+                                                           int gathering, real p_last, size_t n,
+                                                           const real *p, real *largest)
 {
-    VECTOR u[FLIGHT], v[FLIGHT], top[FLIGHT];
+    moving m[MOST_IN_FLIGHT];
+    VECTOR top[MOST_IN_FLIGHT];
     for (int j = 0; j < flight; ++j) {
-        u[j] = vector_load(block->u + at + (size_t)j * WIDTH);
-        v[j] = vector_load(block->v + at + (size_t)j * WIDTH);
+        m[j] = load_moving(block, at + (size_t)j * WIDTH);
         if (gathering)
             top[j] = vector_load(largest + at + (size_t)j * WIDTH);
     }
@@ -154,27 +231,26 @@ static inline __attribute__((always_inline)) int one_input(lane_block *block, si
     for (size_t i = 0; i < n; ++i) {
         const VECTOR now = vector_all(p[i]);
         const int silent = is_silent(p[i]);
-        step_together(block, at, flight, u, v, before, now, silent & was_silent);
+        step_together(block, at, flight, m, before, now, silent & was_silent);
         if (gathering)
             for (int j = 0; j < flight; ++j)
-                top[j] = vector_larger_size(u[j], top[j]);
+                top[j] = vector_larger_size(m[j].u, top[j]);
         was_silent = silent;
         before = now;
     }
     VECTOR zero = vector_all(0);
     for (int j = 0; j < flight; ++j) {
-        vector_store(block->u + at + (size_t)j * WIDTH, u[j]);
-        vector_store(block->v + at + (size_t)j * WIDTH, v[j]);
+        store_moving(block, at + (size_t)j * WIDTH, &m[j]);
         if (gathering)
             vector_store(largest + at + (size_t)j * WIDTH, top[j]);
-        zero = vector_fma(u[j], vector_all(0), vector_fma(v[j], vector_all(0), zero));
+        zero = zero_if_finite(&m[j], zero);
     }
     return vector_any_nan(zero);
 }
 
 /* As many vectors in flight as there are left, each number with code of its own. */
-static int under_one_input(lane_block *block, size_t lanes, double p_last, size_t n, const double *p,
-                           double *largest)
+static int under_one_input(lane_block *block, size_t lanes, real p_last, size_t n, const real *p,
+                           real *largest)
 {
 #define FLY(flight)                                                                                          \
     (largest != NULL ? one_input(block, at, flight, 1, p_last, n, p, largest)                                \
@@ -182,14 +258,16 @@ static int under_one_input(lane_block *block, size_t lanes, double p_last, size_
     int lost = 0;
     for (size_t at = 0; at < lanes; at += FLIGHT * WIDTH) {
         const size_t left = (lanes - at + WIDTH - 1) / WIDTH;
-        lost |= left == 1 ? FLY(1) : left == 2 ? FLY(2) : left == 3 ? FLY(3) : FLY(4);
+        lost |= left == 1 ? FLY(1) : left == 2 || FLIGHT == 2 ? FLY(2) : left == 3 ? FLY(3) : FLY(4);
     }
 #undef FLY
     return lost;
 }
 
+#ifndef SINGLE_PRECISION
+
 /* Quantity q of stretch(): u, v, or the row over {u, v, p}. */
-static inline VECTOR looked_at(int q, double (*row)[LANES], size_t lane, VECTOR u, VECTOR v, VECTOR p)
+static inline VECTOR looked_at(int q, real (*row)[LANES], size_t lane, VECTOR u, VECTOR v, VECTOR p)
 {
     if (q < 2)
         return q == 0 ? u : v;
@@ -199,27 +277,26 @@ static inline VECTOR looked_at(int q, double (*row)[LANES], size_t lane, VECTOR 
 }
 
 static inline __attribute__((always_inline)) int one_stretch(lane_block *block, size_t at, int flight,
-                                                             unsigned looked, double (*row)[LANES],
-                                                             double p_last, size_t n, const double *p,
-                                                             double (*high)[LANES], double (*low)[LANES])
+                                                             unsigned looked, real (*row)[LANES], real p_last,
+                                                             size_t n, const real *p, real (*high)[LANES],
+                                                             real (*low)[LANES])
 {
-    VECTOR u[FLIGHT], v[FLIGHT], top[3][FLIGHT], bottom[3][FLIGHT];
-    for (int j = 0; j < flight; ++j) {
-        u[j] = vector_load(block->u + at + (size_t)j * WIDTH);
-        v[j] = vector_load(block->v + at + (size_t)j * WIDTH);
-    }
+    moving m[FLIGHT];
+    VECTOR top[3][FLIGHT], bottom[3][FLIGHT];
+    for (int j = 0; j < flight; ++j)
+        m[j] = load_moving(block, at + (size_t)j * WIDTH);
     int was_silent = is_silent(p_last);
     VECTOR before = vector_all(p_last);
     for (int q = 0; q < 3; ++q)
         for (int j = 0; (looked >> q & 1) && j < flight; ++j)
-            top[q][j] = bottom[q][j] = looked_at(q, row, at + (size_t)j * WIDTH, u[j], v[j], before);
+            top[q][j] = bottom[q][j] = looked_at(q, row, at + (size_t)j * WIDTH, m[j].u, m[j].v, before);
     for (size_t i = 0; i < n; ++i) {
         const VECTOR now = vector_all(p[i]);
         const int silent = is_silent(p[i]);
-        step_together(block, at, flight, u, v, before, now, silent & was_silent);
+        step_together(block, at, flight, m, before, now, silent & was_silent);
         for (int q = 0; q < 3; ++q)
             for (int j = 0; (looked >> q & 1) && j < flight; ++j) {
-                const VECTOR z = looked_at(q, row, at + (size_t)j * WIDTH, u[j], v[j], now);
+                const VECTOR z = looked_at(q, row, at + (size_t)j * WIDTH, m[j].u, m[j].v, now);
                 top[q][j] = vector_larger(z, top[q][j]);
                 bottom[q][j] = vector_smaller(z, bottom[q][j]);
             }
@@ -229,9 +306,8 @@ static inline __attribute__((always_inline)) int one_stretch(lane_block *block, 
     VECTOR zero = vector_all(0);
     for (int j = 0; j < flight; ++j) {
         const size_t lane = at + (size_t)j * WIDTH;
-        vector_store(block->u + lane, u[j]);
-        vector_store(block->v + lane, v[j]);
-        zero = vector_fma(u[j], vector_all(0), vector_fma(v[j], vector_all(0), zero));
+        store_moving(block, lane, &m[j]);
+        zero = zero_if_finite(&m[j], zero);
         for (int q = 0; q < 3; ++q)
             if (looked >> q & 1) {
                 vector_store(high[q] + lane, top[q][j]);
@@ -242,8 +318,8 @@ static inline __attribute__((always_inline)) int one_stretch(lane_block *block, 
 }
 
 /* Each choice of quantities has code of its own. */
-static int stretch(lane_block *block, size_t lanes, unsigned looked, double (*row)[LANES], double p_last,
-                   size_t n, const double *p, double (*high)[LANES], double (*low)[LANES])
+static int stretch(lane_block *block, size_t lanes, unsigned looked, real (*row)[LANES], real p_last,
+                   size_t n, const real *p, real (*high)[LANES], real (*low)[LANES])
 {
 #define LOOK(which)                                                                                          \
     case which:                                                                                              \
@@ -264,12 +340,16 @@ static int stretch(lane_block *block, size_t lanes, unsigned looked, double (*ro
     return lost;
 }
 
+#endif
+
 #if defined(__GNUC__) && !defined(__clang__)
 #pragma GCC pop_options
 #endif
 
+#ifndef SINGLE_PRECISION
+
 /* The largest of `count` values, or of their negatives, that are `stride` apart. */
-static inline VECTOR largest_of(size_t count, const double *x, size_t stride, VECTOR sign)
+static inline VECTOR largest_of(size_t count, const real *x, size_t stride, VECTOR sign)
 {
     VECTOR largest = vector_product(vector_load(x), sign);
     for (size_t i = 1; i < count; ++i)
@@ -277,9 +357,9 @@ static inline VECTOR largest_of(size_t count, const double *x, size_t stride, VE
     return largest;
 }
 
-static void may_exceed(size_t lanes, size_t count, const double *high, const double *low, size_t stride,
-                       const double *floor_high, const double *floor_low, double (*excess)[LANES],
-                       const double *largest_p, const double *largest_change, uint32_t *flags)
+static void may_exceed(size_t lanes, size_t count, const real *high, const real *low, size_t stride,
+                       const real *floor_high, const real *floor_low, real (*excess)[LANES],
+                       const real *largest_p, const real *largest_change, uint32_t *flags)
 {
     const VECTOR plus = vector_all(1), minus = vector_all(-1);
     for (size_t i = 0; i < 2 * count; ++i)
@@ -314,46 +394,43 @@ static void may_exceed(size_t lanes, size_t count, const double *high, const dou
     }
 }
 
+#endif
+
 static inline __attribute__((always_inline)) int own_inputs(lane_block *block, size_t at, int flight,
-                                                            size_t n, double (*p)[LANES], lane_tile u_out,
+                                                            size_t n, real (*p)[LANES], lane_tile u_out,
                                                             lane_tile v_out)
 {
-    VECTOR u[FLIGHT], v[FLIGHT], before[FLIGHT];
+    moving m[FLIGHT];
+    VECTOR before[FLIGHT];
     MASK was_silent[FLIGHT];
     for (int j = 0; j < flight; ++j) {
         const size_t lane = at + (size_t)j * WIDTH;
-        u[j] = vector_load(block->u + lane);
-        v[j] = vector_load(block->v + lane);
+        m[j] = load_moving(block, lane);
         before[j] = vector_load(p[0] + lane);
         was_silent[j] = mask_below(before[j], SILENT);
     }
     for (size_t i = 0; i < n; ++i)
         for (int j = 0; j < flight; ++j) {
             const size_t lane = at + (size_t)j * WIDTH;
-            const VECTOR old = u[j], now = vector_load(p[i + 1] + lane);
+            const VECTOR now = vector_load(p[i + 1] + lane);
             const MASK silent = mask_below(now, SILENT), flush = mask_both(silent, was_silent[j]);
-            u[j] = next_u(block, lane, old, v[j], before[j], now);
-            v[j] = next_v(block, lane, old, v[j], before[j], now);
-            if (mask_any(flush)) {
-                u[j] = vector_unless_below(u[j], SPENT, flush);
-                v[j] = vector_unless_below(v[j], SPENT, flush);
-            }
-            vector_store(u_out[i] + lane, u[j]);
-            vector_store(v_out[i] + lane, v[j]);
+            step_moving(block, lane, &m[j], before[j], now);
+            if (mask_any(flush))
+                still_moving(&m[j], flush);
+            vector_store(u_out[i] + lane, m[j].u);
+            vector_store(v_out[i] + lane, m[j].v);
             before[j] = now;
             was_silent[j] = silent;
         }
     VECTOR zero = vector_all(0);
     for (int j = 0; j < flight; ++j) {
-        const size_t lane = at + (size_t)j * WIDTH;
-        vector_store(block->u + lane, u[j]);
-        vector_store(block->v + lane, v[j]);
-        zero = vector_fma(u[j], vector_all(0), vector_fma(v[j], vector_all(0), zero));
+        store_moving(block, at + (size_t)j * WIDTH, &m[j]);
+        zero = zero_if_finite(&m[j], zero);
     }
     return vector_any_nan(zero);
 }
 
-static int under_own_inputs(lane_block *block, size_t lanes, size_t n, double (*p)[LANES], lane_tile u,
+static int under_own_inputs(lane_block *block, size_t lanes, size_t n, real (*p)[LANES], lane_tile u,
                             lane_tile v)
 {
     int lost = 0;
@@ -364,8 +441,8 @@ static int under_own_inputs(lane_block *block, size_t lanes, size_t n, double (*
 
 /* fma(row[0], u, fma(row[1], v, fma(row[2], p, row[3] (p - p_before)))), as row_value of row.h:
    where a lane's last entry is zero, its change is not asked. */
-static int rows(double (*row)[LANES], size_t lanes, size_t n, double (*p)[LANES], lane_tile u, lane_tile v,
-                lane_tile out, double *finite)
+static int rows(real (*row)[LANES], size_t lanes, size_t n, real (*p)[LANES], lane_tile u, lane_tile v,
+                lane_tile out, real *finite)
 {
     int lost = 0;
     for (size_t lane = 0; lane < lanes; lane += WIDTH) {
@@ -388,7 +465,7 @@ static int rows(double (*row)[LANES], size_t lanes, size_t n, double (*p)[LANES]
     return lost;
 }
 
-static void gather(const double *from, size_t stride, size_t count, size_t n, double (*tile)[LANES])
+static void gather(const real *from, size_t stride, size_t count, size_t n, real (*tile)[LANES])
 {
     size_t j = 0;
     for (; j + 4 <= count; j += 4) {
@@ -404,7 +481,7 @@ static void gather(const double *from, size_t stride, size_t count, size_t n, do
             tile[i][j] = from[j * stride + i];
 }
 
-static void scatter(double *to, size_t stride, size_t count, size_t n, double (*tile)[LANES])
+static void scatter(real *to, size_t stride, size_t count, size_t n, real (*tile)[LANES])
 {
     size_t j = 0;
     for (; j + 4 <= count; j += 4) {
@@ -420,6 +497,18 @@ static void scatter(double *to, size_t stride, size_t count, size_t n, double (*
             to[j * stride + i] = tile[i][j];
 }
 
+#ifdef SINGLE_PRECISION
+#define FOR_PEAKS
+#else
+#define FOR_PEAKS .stretch = stretch, .may_exceed = may_exceed,
+#endif
+
 extern const kernels KERNELS;
-const kernels KERNELS = {KERNELS_NAME, first_not_finite, advance, under_one_input, stretch,
-                         may_exceed,   under_own_inputs, rows,    gather,          scatter};
+const kernels KERNELS = {.name = KERNELS_NAME,
+                         .first_not_finite = first_not_finite,
+                         .advance = advance,
+                         .under_one_input = under_one_input,
+                         FOR_PEAKS.under_own_inputs = under_own_inputs,
+                         .rows = rows,
+                         .gather = gather,
+                         .scatter = scatter};

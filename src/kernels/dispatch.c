@@ -1,10 +1,9 @@
 /* The one place that knows processors. */
 #include "kernels.h"
-#include "rampwise/status.h"
 #include "sets.h"
 
-extern const kernels rampwise_kernels_baseline_, rampwise_kernels_avx2_, rampwise_kernels_avx512_,
-    rampwise_kernels_neon_;
+extern const kernels PRIVATE(kernels_baseline), PRIVATE(kernels_avx2), PRIVATE(kernels_avx512),
+    PRIVATE(kernels_neon);
 
 #ifdef RAMPWISE_BUILD_X86
 static int runs_avx2(void)
@@ -19,25 +18,19 @@ static int runs_avx512(void)
 }
 #endif
 
-const kernels *rampwise_kernels_(int name)
+const kernels *PRIVATE(kernels)(int name)
 {
 #ifdef RAMPWISE_BUILD_X86
     if ((name == RAMPWISE_AVX512 || name == RAMPWISE_FASTEST) && runs_avx512())
-        return &rampwise_kernels_avx512_;
+        return &PRIVATE(kernels_avx512);
     if ((name == RAMPWISE_AVX2 || name == RAMPWISE_FASTEST) && runs_avx2())
-        return &rampwise_kernels_avx2_;
+        return &PRIVATE(kernels_avx2);
 #endif
 #ifdef RAMPWISE_BUILD_NEON
     if (name == RAMPWISE_NEON || name == RAMPWISE_FASTEST)
-        return &rampwise_kernels_neon_;
+        return &PRIVATE(kernels_neon);
 #endif
     if (name == RAMPWISE_BASELINE || name == RAMPWISE_FASTEST)
-        return &rampwise_kernels_baseline_;
+        return &PRIVATE(kernels_baseline);
     return NULL;
-}
-
-int rampwise_instructions(int instructions)
-{
-    const kernels *const chosen = rampwise_kernels_(instructions);
-    return chosen != NULL ? chosen->name : RAMPWISE_ERROR_INSTRUCTIONS;
 }

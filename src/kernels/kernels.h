@@ -9,66 +9,71 @@
 #include <stddef.h>
 #include <stdint.h>
 #include "rampwise/instructions.h"
-#include "rampwise/record.h"
+#include "../precision.h"
 
 enum { LANES = 32, TILE = 16, LANE_ALIGNMENT = 64 };
 
 typedef struct lane_block {
-    _Alignas(LANE_ALIGNMENT) double u[LANES];
-    double v[LANES];
-    double A_minus_1[LANES], B[LANES], C[LANES], D[LANES];
-    double Ap[LANES], Bp_minus_1[LANES], Cp[LANES], Dp[LANES];
+    _Alignas(LANE_ALIGNMENT) real u[LANES];
+    real v[LANES];
+#ifdef SINGLE_PRECISION
+    real u_low[LANES], v_low[LANES];
+#endif
+    real A_minus_1[LANES], B[LANES], C[LANES], D[LANES];
+    real Ap[LANES], Bp_minus_1[LANES], Cp[LANES], Dp[LANES];
 } lane_block;
 
 /* Consecutive samples of LANES lanes. */
-typedef double lane_tile[TILE][LANES];
+typedef real lane_tile[TILE][LANES];
 
 typedef struct kernels {
     int name; /* RAMPWISE_BASELINE and so on */
 
     /* The first of n values that is not finite, or n. */
-    size_t (*first_not_finite)(size_t n, const double *x);
+    size_t (*first_not_finite)(size_t n, const real *x);
 
     /* One oscillator: entries first, first + stride, ... below end, into the outputs; stops before
        the entry that overflows and returns it, or end. */
-    size_t (*advance)(const rampwise_coeffs *c, rampwise_state *s, size_t first, size_t end, size_t stride,
-                      const double *p, const rampwise_history *out);
+    size_t (*advance)(const real_coeffs *c, real_state *s, size_t first, size_t end, size_t stride,
+                      const real *p, const real_history *out);
 
     /* The first `lanes` lanes under one input, from p_last through p[0] to p[n - 1]. Where largest
        is not NULL it gathers the largest |u| of each. Answers whether a lane is not finite any
        more. */
-    int (*under_one_input)(lane_block *block, size_t lanes, double p_last, size_t n, const double *p,
-                           double *largest);
+    int (*under_one_input)(lane_block *block, size_t lanes, real p_last, size_t n, const real *p,
+                           real *largest);
 
+#ifndef SINGLE_PRECISION /* for peaks between the samples, which single precision has not */
     /* As under_one_input, gathering for each quantity that is looked at (bit 0 u, 1 v, 2 the row over
        {u, v, p}) the greatest and least of the stretch's samples, the one it begins with among them. */
-    int (*stretch)(lane_block *block, size_t lanes, unsigned looked, double (*row)[LANES], double p_last,
-                   size_t n, const double *p, double (*high)[LANES], double (*low)[LANES]);
+    int (*stretch)(lane_block *block, size_t lanes, unsigned looked, real (*row)[LANES], real p_last,
+                   size_t n, const real *p, real (*high)[LANES], real (*low)[LANES]);
 
     /* Which lanes of which of `count` stretches may exceed a floor at or between their samples, with the excess
        of extremes.h, and what the samples of the other stretches reach: flags[2 i] has a bit a lane for the high side of stretch i, flags[2 i + 1] for the low one.
        high and low of stretch i are at i stride. */
-    void (*may_exceed)(size_t lanes, size_t count, const double *high, const double *low, size_t stride,
-                       const double *floor_high, const double *floor_low, double (*excess)[LANES],
-                       const double *largest_p, const double *largest_change, uint32_t *flags);
+    void (*may_exceed)(size_t lanes, size_t count, const real *high, const real *low, size_t stride,
+                       const real *floor_high, const real *floor_low, real (*excess)[LANES],
+                       const real *largest_p, const real *largest_change, uint32_t *flags);
+#endif
 
     /* Each lane under its own input, p[1] to p[n], n <= TILE; p[0] is the sample before. The states
        after each sample go to u and v. Answers whether a lane is not finite any more. */
-    int (*under_own_inputs)(lane_block *block, size_t lanes, size_t n, double (*p)[LANES], lane_tile u,
+    int (*under_own_inputs)(lane_block *block, size_t lanes, size_t n, real (*p)[LANES], lane_tile u,
                             lane_tile v);
 
     /* Each lane's row of the coefficients (row.h) over such a tile. `finite` becomes 0 in lanes
        whose values are all finite, NaN in others, and it answers whether there are others. */
-    int (*rows)(double (*row)[LANES], size_t lanes, size_t n, double (*p)[LANES], lane_tile u, lane_tile v,
-                lane_tile out, double *finite);
+    int (*rows)(real (*row)[LANES], size_t lanes, size_t n, real (*p)[LANES], lane_tile u, lane_tile v,
+                lane_tile out, real *finite);
 
     /* `count` arrays of n <= TILE values, `stride` apart, into the columns of a tile, and back. */
-    void (*gather)(const double *from, size_t stride, size_t count, size_t n, double (*tile)[LANES]);
-    void (*scatter)(double *to, size_t stride, size_t count, size_t n, double (*tile)[LANES]);
+    void (*gather)(const real *from, size_t stride, size_t count, size_t n, real (*tile)[LANES]);
+    void (*scatter)(real *to, size_t stride, size_t count, size_t n, real (*tile)[LANES]);
 } kernels;
 
 /* Those that are asked for, or with RAMPWISE_FASTEST the best this processor has; NULL where it
    cannot run them or they were not built. */
-const kernels *rampwise_kernels_(int name);
+const kernels *PRIVATE(kernels)(int name);
 
 #endif

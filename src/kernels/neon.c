@@ -1,136 +1,163 @@
-/* Two lanes a vector: AArch64. */
+/* Two lanes a vector, four in single precision: AArch64. */
 #include "sets.h"
 
 #ifdef RAMPWISE_BUILD_NEON
 
 #include <arm_neon.h>
+#include <math.h>
 #include <stddef.h>
+#include "../precision.h"
 
+#ifdef SINGLE_PRECISION
+#define WIDTH 4
+#define VECTOR float32x4_t
+#define MASK uint32x4_t
+#define REAL_OF(name) name##_f32
+#define MASK_OF(name) name##_u32
+#define BITS_OF_REAL vreinterpretq_u32_f32
+#define REAL_OF_BITS vreinterpretq_f32_u32
+#else
 #define WIDTH 2
 #define VECTOR float64x2_t
 #define MASK uint64x2_t
-#define KERNELS rampwise_kernels_neon_
+#define REAL_OF(name) name##_f64
+#define MASK_OF(name) name##_u64
+#define BITS_OF_REAL vreinterpretq_u64_f64
+#define REAL_OF_BITS vreinterpretq_f64_u64
+#endif
+#define KERNELS PRIVATE(kernels_neon)
 #define KERNELS_NAME RAMPWISE_NEON
 
-static inline float64x2_t vector_load(const double *x)
+static inline VECTOR vector_load(const real *x)
 {
-    return vld1q_f64(x);
+    return REAL_OF(vld1q)(x);
 }
 
-static inline void vector_store(double *x, float64x2_t a)
+static inline void vector_store(real *x, VECTOR a)
 {
-    vst1q_f64(x, a);
+    REAL_OF(vst1q)(x, a);
 }
 
-static inline float64x2_t vector_all(double a)
+static inline VECTOR vector_all(real a)
 {
-    return vdupq_n_f64(a);
+    return REAL_OF(vdupq_n)(a);
 }
 
-static inline float64x2_t vector_fma(float64x2_t a, float64x2_t b, float64x2_t c)
+static inline VECTOR vector_fma(VECTOR a, VECTOR b, VECTOR c)
 {
-    return vfmaq_f64(c, a, b);
+    return REAL_OF(vfmaq)(c, a, b);
 }
 
-static inline float64x2_t vector_product(float64x2_t a, float64x2_t b)
+static inline VECTOR vector_product(VECTOR a, VECTOR b)
 {
-    return vmulq_f64(a, b);
+    return REAL_OF(vmulq)(a, b);
 }
 
-static inline float64x2_t vector_sum(float64x2_t a, float64x2_t b)
+static inline VECTOR vector_sum(VECTOR a, VECTOR b)
 {
-    return vaddq_f64(a, b);
+    return REAL_OF(vaddq)(a, b);
 }
 
-static inline float64x2_t vector_difference(float64x2_t a, float64x2_t b)
+static inline VECTOR vector_difference(VECTOR a, VECTOR b)
 {
-    return vsubq_f64(a, b);
+    return REAL_OF(vsubq)(a, b);
 }
 
-static inline float64x2_t vector_masked(float64x2_t a, uint64x2_t cleared)
+/* a, or +0 where the mask is set */
+static inline VECTOR vector_unless(VECTOR a, MASK mask)
 {
-    return vreinterpretq_f64_u64(vbicq_u64(vreinterpretq_u64_f64(a), cleared));
+    return REAL_OF_BITS(MASK_OF(vbicq)(BITS_OF_REAL(a), mask));
 }
 
-static inline float64x2_t vector_product_unless_zero(float64x2_t a, float64x2_t b)
+static inline VECTOR vector_product_unless_zero(VECTOR a, VECTOR b)
 {
-    return vector_masked(vmulq_f64(a, b), vceqzq_f64(a));
+    return vector_unless(REAL_OF(vmulq)(a, b), REAL_OF(vceqzq)(a));
 }
 
-static inline float64x2_t vector_size(float64x2_t a)
+static inline VECTOR vector_size(VECTOR a)
 {
-    return vabsq_f64(a);
+    return REAL_OF(vabsq)(a);
 }
 
-static inline float64x2_t vector_larger(float64x2_t a, float64x2_t b)
+static inline VECTOR vector_larger(VECTOR a, VECTOR b)
 {
-    return vmaxq_f64(a, b);
+    return REAL_OF(vmaxq)(a, b);
 }
 
 /* The larger of |a| and top, which is not negative */
-static inline float64x2_t vector_larger_size(float64x2_t a, float64x2_t top)
+static inline VECTOR vector_larger_size(VECTOR a, VECTOR top)
 {
     return vector_larger(vector_size(a), top);
 }
 
-static inline float64x2_t vector_smaller(float64x2_t a, float64x2_t b)
+static inline VECTOR vector_smaller(VECTOR a, VECTOR b)
 {
-    return vminq_f64(a, b);
+    return REAL_OF(vminq)(a, b);
 }
 
-static inline uint64x2_t vector_positive(float64x2_t a)
+static inline MASK vector_positive(VECTOR a)
 {
-    return vcgtzq_f64(a);
+    return REAL_OF(vcgtzq)(a);
 }
 
+#ifndef SINGLE_PRECISION
 /* A bit a lane, the first lane lowest */
-static inline unsigned mask_bits(uint64x2_t a)
+static inline unsigned mask_bits(MASK a)
 {
     return (unsigned)(vgetq_lane_u64(a, 0) & 1) | (unsigned)(vgetq_lane_u64(a, 1) & 2);
 }
+#endif
 
-static inline uint64x2_t mask_below(float64x2_t a, double limit)
+static inline MASK mask_below(VECTOR a, real limit)
 {
-    return vcltq_f64(vabsq_f64(a), vdupq_n_f64(limit));
+    return REAL_OF(vcltq)(REAL_OF(vabsq)(a), REAL_OF(vdupq_n)(limit));
 }
 
-static inline uint64x2_t mask_all(void)
+static inline MASK mask_all(void)
 {
-    return vdupq_n_u64(UINT64_MAX);
+    return REAL_OF(vceqq)(vector_all(0), vector_all(0));
 }
 
-static inline uint64x2_t mask_both(uint64x2_t a, uint64x2_t b)
+static inline MASK mask_both(MASK a, MASK b)
 {
-    return vandq_u64(a, b);
+    return MASK_OF(vandq)(a, b);
 }
 
-static inline int mask_any(uint64x2_t a)
+static inline int mask_any(MASK a)
 {
-    return (vgetq_lane_u64(a, 0) | vgetq_lane_u64(a, 1)) != 0;
+    return vmaxvq_u32((uint32x4_t)a) != 0;
 }
 
-static inline int vector_any_nan(float64x2_t a)
+static inline int vector_any_nan(VECTOR a)
 {
-    return vaddvq_f64(a) != vaddvq_f64(a);
+    return REAL_OF(vaddvq)(a) != REAL_OF(vaddvq)(a);
 }
 
-/* a, or +0 where the mask is set and |a| < limit */
-static inline float64x2_t vector_unless_below(float64x2_t a, double limit, uint64x2_t mask)
+#ifdef SINGLE_PRECISION
+/* to[j][i] = from[i][j] */
+static inline void transpose_4_by_4(const float *from, size_t from_stride, float *to, size_t to_stride)
 {
-    return vector_masked(a, vandq_u64(mask, mask_below(a, limit)));
+    const float32x4x2_t ab = vtrnq_f32(vld1q_f32(from), vld1q_f32(from + from_stride));
+    const float32x4x2_t cd = vtrnq_f32(vld1q_f32(from + 2 * from_stride), vld1q_f32(from + 3 * from_stride));
+    vst1q_f32(to, vcombine_f32(vget_low_f32(ab.val[0]), vget_low_f32(cd.val[0])));
+    vst1q_f32(to + to_stride, vcombine_f32(vget_low_f32(ab.val[1]), vget_low_f32(cd.val[1])));
+    vst1q_f32(to + 2 * to_stride, vcombine_f32(vget_high_f32(ab.val[0]), vget_high_f32(cd.val[0])));
+    vst1q_f32(to + 3 * to_stride, vcombine_f32(vget_high_f32(ab.val[1]), vget_high_f32(cd.val[1])));
 }
-
+#else
 /* to[j][i] = from[i][j], in two by two parts */
-static inline void transpose_4_by_4(const double *from, size_t from_stride, double *to, size_t to_stride)
+static inline void transpose_4_by_4(const real *from, size_t from_stride, real *to, size_t to_stride)
 {
     for (size_t i = 0; i < 4; i += 2)
         for (size_t j = 0; j < 4; j += 2) {
-            const float64x2_t a = vld1q_f64(from + i * from_stride + j);
-            const float64x2_t b = vld1q_f64(from + (i + 1) * from_stride + j);
-            vst1q_f64(to + j * to_stride + i, vzip1q_f64(a, b));
-            vst1q_f64(to + (j + 1) * to_stride + i, vzip2q_f64(a, b));
+            const VECTOR a = REAL_OF(vld1q)(from + i * from_stride + j);
+            const VECTOR b = REAL_OF(vld1q)(from + (i + 1) * from_stride + j);
+            REAL_OF(vst1q)(to + j * to_stride + i, REAL_OF(vzip1q)(a, b));
+            REAL_OF(vst1q)(to + (j + 1) * to_stride + i, REAL_OF(vzip2q)(a, b));
         }
 }
+
+#endif
 
 #include "body.h"
 

@@ -26,6 +26,10 @@ START_TEST(struct_sizes)
     ck_assert_uint_eq(rampwise_struct_size("rampwise_coeffs"), 256);
     ck_assert_uint_eq(rampwise_struct_size("rampwise_state"), 32);
     ck_assert_uint_eq(rampwise_struct_size("rampwise_history"), 4 * sizeof(double *));
+    ck_assert_uint_eq(rampwise_struct_size("rampwise_coeffs_f32"), 128);
+    ck_assert_uint_eq(rampwise_struct_size("rampwise_state_f32"), 24);
+    ck_assert_uint_eq(rampwise_struct_size("rampwise_history_f32"), 4 * sizeof(float *));
+    ck_assert_uint_eq(rampwise_struct_size("rampwise_bank_wanted_f32"), 12 * sizeof(size_t));
     ck_assert_uint_eq(rampwise_struct_size("rampwise_nothing"), 0);
     ck_assert_uint_eq(rampwise_struct_size(NULL), 0);
 }

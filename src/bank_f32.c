@@ -1,0 +1,3 @@
+/* bank.h in single precision. */
+#define SINGLE_PRECISION
+#include "bank.c"

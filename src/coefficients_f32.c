@@ -1,0 +1,3 @@
+/* coefficients.h in single precision. */
+#define SINGLE_PRECISION
+#include "coefficients.c"

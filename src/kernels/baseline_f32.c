@@ -1,0 +1,3 @@
+/* The baseline in single precision. */
+#define SINGLE_PRECISION
+#include "baseline.c"

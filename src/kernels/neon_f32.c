@@ -1,0 +1,3 @@
+/* NEON in single precision. */
+#define SINGLE_PRECISION
+#include "neon.c"

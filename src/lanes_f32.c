@@ -1,0 +1,3 @@
+/* The lanes in single precision. */
+#define SINGLE_PRECISION
+#include "lanes.c"

@@ -1,0 +1,3 @@
+/* motion.h in single precision. */
+#define SINGLE_PRECISION
+#include "motion.c"

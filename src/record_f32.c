@@ -1,0 +1,3 @@
+/* record.h in single precision. */
+#define SINGLE_PRECISION
+#include "record.c"
