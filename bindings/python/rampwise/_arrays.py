@@ -13,7 +13,13 @@ Doubles = NDArray[np.float64]
 
 
 def doubles(values: ArrayLike, name: str) -> Doubles:
-    """Real numbers of any kind as doubles, in any layout; the same array where they are that already."""
+    """Real numbers of any kind as doubles."""
+    array: Doubles = reals(values, name, np.dtype(np.float64))
+    return array
+
+
+def reals(values: ArrayLike, name: str, real: "np.dtype[Any]") -> NDArray[Any]:
+    """Real numbers of any kind as those of one type, in any layout; the same array where they are that already."""
     if isinstance(values, np.ma.MaskedArray) and np.any(values.mask):
         raise ValueError(f"{name}: values are masked; fill or cut them first")
     try:
@@ -22,7 +28,8 @@ def doubles(values: ArrayLike, name: str) -> Doubles:
         raise TypeError(f"{name}: not an array of numbers: {error}") from None
     if array.dtype.kind not in "biuf":
         raise TypeError(f"{name}: real numbers are needed, not {array.dtype}")
-    return array.astype(np.float64, copy=False)
+    with np.errstate(over="ignore"):  # infinite samples are refused where they enter
+        return array.astype(real, copy=False)
 
 
 def double(value: Any, name: str) -> float:
@@ -33,9 +40,9 @@ def double(value: Any, name: str) -> float:
     return float(array)
 
 
-def records(values: ArrayLike, name: str) -> Doubles:
+def records(values: ArrayLike, name: str, real: "np.dtype[Any]" = np.dtype(np.float64)) -> NDArray[Any]:
     """Records along the last axis, each without gaps in memory; other axes as they are."""
-    array = doubles(values, name)
+    array = reals(values, name, real)
     if array.ndim == 0:
         raise TypeError(f"{name}: an array of samples is needed, not one number")
     if array.shape[-1] == 0:

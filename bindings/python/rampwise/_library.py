@@ -29,8 +29,16 @@ COEFFS = np.dtype(
     + [("acceleration", "f8", 4), ("total", "f8", 4), ("system", SYSTEM), ("dt", "f8")]
     + [("input", "i4"), ("between", "i4"), ("reserve", "f8", 9)]
 )
+COEFFS_F32 = np.dtype(
+    [(name, "f4") for name in ("A", "B", "C", "D", "Ap", "Bp", "Cp", "Dp", "A_minus_1", "Bp_minus_1")]
+    + [("acceleration", "f4", 4), ("total", "f4", 4)]
+    + [(name, "f4") for name in ("mass", "damper", "stiffness", "rate")]
+    + [("dt", "f8"), ("input", "i4"), ("between", "i4"), ("reserve", "f4", 6)]
+)
+STATE_F32 = np.dtype([(name, "f4") for name in ("u", "v", "p", "p_before", "u_low", "v_low")])
 INSTANT = np.dtype([("value", "f8"), ("sample", "u8"), ("fraction", "f8")])
 PEAK = np.dtype([("high", INSTANT), ("low", INSTANT)])
+EVIDENCE = np.dtype([("error_high", "f8"), ("error_low", "f8"), ("abrupt", "u4"), ("reserve", "u4")])
 HISTORY = np.dtype([(name, np.uintp) for name in ("u", "v", "a", "total")])
 BANK_WANTED = np.dtype(
     [("size", np.uintp), ("largest", np.uintp), ("chosen_count", np.uintp), ("chosen", np.uintp)]
@@ -40,6 +48,11 @@ _STRUCTS = {
     "rampwise_system": SYSTEM,
     "rampwise_state": STATE,
     "rampwise_coeffs": COEFFS,
+    "rampwise_coeffs_f32": COEFFS_F32,
+    "rampwise_state_f32": STATE_F32,
+    "rampwise_history_f32": HISTORY,
+    "rampwise_bank_wanted_f32": BANK_WANTED,
+    "rampwise_evidence": EVIDENCE,
     "rampwise_instant": INSTANT,
     "rampwise_peak": PEAK,
     "rampwise_history": HISTORY,
@@ -53,18 +66,15 @@ _PROTOTYPES: Dict[str, Any] = {  # the result first
     "rampwise_system_period": _SYSTEM_MAKER,
     "rampwise_coeffs_make": (_INT, _POINTER, _POINTER, _DOUBLE, _INT, _INT),
     "rampwise_start_settled": (_INT, _POINTER, _POINTER, _DOUBLE),
-    "rampwise_inside": (_INT, _POINTER, _POINTER, _DOUBLE, _DOUBLE, _POINTER),
     "rampwise_acceleration": (_DOUBLE, _POINTER, _POINTER),
     "rampwise_total_acceleration": (_DOUBLE, _POINTER, _POINTER),
     "rampwise_run": (_INT, _POINTER, _POINTER, _SIZE, _POINTER, _POINTER, _POINTER),
     "rampwise_solve": (_INT, _POINTER, _DOUBLE, _DOUBLE, _SIZE, _POINTER, _POINTER, _POINTER),
     "rampwise_run_at": (_INT, _POINTER, _POINTER, _POINTER, _SIZE, _POINTER, _POINTER, _POINTER, _POINTER),
     "rampwise_run_frames": (_INT, _SIZE, _POINTER, _POINTER, _SIZE, _POINTER, _POINTER, _POINTER),
-    "rampwise_instructions": (_INT, _INT),
     "rampwise_bank_size": (_SIZE, _SIZE),
     "rampwise_bank_alignment": (_SIZE,),
     "rampwise_bank_init": (_INT, _POINTER, _SIZE, _SIZE, _POINTER, _INT, _POINTER),
-    "rampwise_bank_instructions": (_INT, _POINTER),
     "rampwise_bank_start": (_INT, _POINTER, _DOUBLE),
     "rampwise_bank_set": (_INT, _POINTER, _POINTER),
     "rampwise_bank_get": (_INT, _POINTER, _POINTER),
@@ -80,9 +90,26 @@ _PROTOTYPES: Dict[str, Any] = {  # the result first
     "rampwise_spectrum": (
         _INT, _SIZE, _DOUBLE, _POINTER, _INT, _SIZE, _POINTER, _POINTER, _INT, ctypes.c_uint, _POINTER, _POINTER,
     ),
+    "rampwise_peaks_evidence": (_INT, _POINTER, _INT, ctypes.c_uint, _POINTER),
+    "rampwise_spectrum_evidence": (
+        _INT, _SIZE, _DOUBLE, _POINTER, _INT, _SIZE, _POINTER, _POINTER, _INT, ctypes.c_uint, _POINTER, _POINTER,
+        _POINTER,
+    ),
     "rampwise_list_log": (_INT, _SIZE, _DOUBLE, _DOUBLE, _POINTER),
     "rampwise_list_octaves": (_INT, _DOUBLE, _DOUBLE, _SIZE, _SIZE, _POINTER, _POINTER),
 }  # fmt: skip
+_IN_SINGLE = (
+    "coeffs_make", "start_settled", "acceleration", "total_acceleration", "run", "solve", "bank_size",
+    "bank_alignment", "bank_init", "bank_start", "bank_set", "bank_get", "bank_retune", "bank_run", "bank_stopped",
+    "bank_read",
+)  # fmt: skip
+_MAKERS = ("coeffs_make",)  # numbers that go in stay double
+_PROTOTYPES.update({
+    f"rampwise_{name}_f32": tuple(
+        ctypes.c_float if kind is _DOUBLE and name not in _MAKERS else kind for kind in _PROTOTYPES["rampwise_" + name]
+    )
+    for name in _IN_SINGLE
+})  # fmt: skip
 
 # Which argument a status speaks of, unless the caller knows better.
 _ARGUMENTS = {

@@ -8,9 +8,11 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from . import _arrays, _library
-from ._arrays import Doubles
+from ._precision import Precision, arithmetic
 from ._provenance import provenance
 from .system import Between, Input, System, choice, coefficients
+
+Reals = NDArray[Any]  # of the bank's precision
 
 _INSTRUCTIONS = ("fastest", "baseline", "avx2", "avx512", "neon")
 
@@ -18,10 +20,10 @@ _INSTRUCTIONS = ("fastest", "baseline", "avx2", "avx512", "neon")
 class Histories(NamedTuple):
     """One value an oscillator, or one a sample and chosen oscillator, shape (k, n)."""
 
-    displacement: Doubles
-    velocity: Doubles
-    acceleration: Doubles
-    total_acceleration: Doubles
+    displacement: Reals
+    velocity: Reals
+    acceleration: Reals
+    total_acceleration: Reals
 
 
 class Bank:
@@ -42,6 +44,8 @@ class Bank:
         What the input does between samples.
     instructions : {'fastest', 'baseline', 'avx2', 'avx512', 'neon'}
         Set of instructions; the bits are the same.
+    precision : {'double', 'single'}
+        Single takes twice as many oscillators at a time.
 
     Notes
     -----
@@ -60,27 +64,36 @@ class Bank:
     """
 
     def __init__(
-        self, system: System, dt: float, *, input: Input, between: Between = "ramp", instructions: str = "fastest"
+        self,
+        system: System,
+        dt: float,
+        *,
+        input: Input,
+        between: Between = "ramp",
+        instructions: str = "fastest",
+        precision: Precision = "double",
     ) -> None:
-        made = coefficients(system, dt, input=input, between=between)
+        made = coefficients(system, dt, input=input, between=between, precision=precision)
         if made.size == 0:
             raise ValueError("system: at least one oscillator is needed")
-        options = {"dt": float(dt), "input": input, "between": between, "instructions": instructions}
+        options = {"dt": float(dt), "input": input, "between": between, "instructions": instructions,
+                   "precision": precision}  # fmt: skip
         self._make(made, choice(instructions, _INSTRUCTIONS, "instructions"), options)
 
     def _make(self, made: NDArray[np.void], instructions: int, options: Dict[str, Any]) -> None:
         self.shape: Tuple[int, ...] = made.shape
         self._coeffs = made.reshape(-1)
         self._options = options
+        self._numbers = arithmetic(options["precision"])
         self._chosen_instructions = instructions
-        size = _library.call("bank_size", self.count)
-        self._memory = _arrays.aligned(size, _library.call("bank_alignment"))
+        size = self._numbers.call("bank_size", self.count)
+        self._memory = _arrays.aligned(size, self._numbers.call("bank_alignment"))
         place = np.zeros(1, np.uintp)
-        status = _library.call("bank_init", _library.address(self._memory), size, self.count,
+        status = self._numbers.call("bank_init", _library.address(self._memory), size, self.count,
                                _library.address(self._coeffs), instructions, _library.address(place))  # fmt: skip
         _library.check(status)
         self._place = int(place[0])
-        self._largest = np.zeros(self.count)
+        self._largest = np.zeros(self.count, self._numbers.real)
 
     @property
     def count(self) -> int:
@@ -88,31 +101,31 @@ class Bank:
         return self._coeffs.size
 
     @property
-    def largest(self) -> Doubles:
+    def largest(self) -> Reals:
         """The largest \\|u\\| of each oscillator at the samples since the start."""
         return self._largest.reshape(self.shape).copy()
 
     @property
     def stopped(self) -> int:
         """How many oscillators have overflowed."""
-        return int(_library.call("bank_stopped", self._place, None))
+        return int(self._numbers.call("bank_stopped", self._place, None))
 
     @property
     def state(self) -> NDArray[np.void]:
-        """States at the present sample: fields u, v, p and p_before.
+        """States at the present sample: fields u, v, p and p_before, and in single precision u_low and v_low.
 
         All have the same p and p_before. Setting states starts stopped oscillators anew.
         """
-        states = np.zeros(self.count, _library.STATE)
-        _library.check(_library.call("bank_get", self._place, _library.address(states)))
+        states = np.zeros(self.count, self._numbers.state)
+        _library.check(self._numbers.call("bank_get", self._place, _library.address(states)))
         return states.reshape(self.shape)
 
     @state.setter
     def state(self, states: NDArray[np.void]) -> None:
-        if getattr(states, "dtype", None) != _library.STATE or states.shape != self.shape:
+        if getattr(states, "dtype", None) != self._numbers.state or states.shape != self.shape:
             raise TypeError(f"state: an array of the bank's own type and shape {self.shape} is needed")
         plain = np.ascontiguousarray(states)
-        status = _library.call("bank_set", self._place, _library.address(plain))
+        status = self._numbers.call("bank_set", self._place, _library.address(plain))
         _library.check(status, different="state")
 
     @property
@@ -122,7 +135,7 @@ class Bank:
 
     def start(self, sample: float = 0.0) -> None:
         """Starts all at rest under an input that is `sample` from now on."""
-        status = _library.call("bank_start", self._place, _arrays.double(sample, "sample"))
+        status = self._numbers.call("bank_start", self._place, _arrays.double(sample, "sample"))
         _library.check(status, sample="sample")
         self._largest[:] = 0
 
@@ -141,7 +154,8 @@ class Bank:
         Histories or None
             Of shape (k, n) for k chosen oscillators; NaN from where one overflows.
         """
-        block = _arrays.records(np.atleast_1d(_arrays.doubles(samples, "samples")), "samples")
+        block = _arrays.records(np.atleast_1d(_arrays.reals(samples, "samples", self._numbers.real)), "samples",
+                                self._numbers.real)  # fmt: skip
         if block.ndim != 1:
             raise ValueError(f"samples: shape {block.shape}, where one axis is needed")
         largest = self._largest.copy()
@@ -149,14 +163,14 @@ class Bank:
         wanted["size"] = wanted.itemsize
         wanted["largest"] = _library.address(largest)
         chosen = self._chosen(histories)
-        kept = Histories(*(np.full((chosen.size, block.size), np.nan) for _ in Histories._fields))
+        kept = Histories(*(np.full((chosen.size, block.size), np.nan, self._numbers.real) for _ in Histories._fields))
         if chosen.size > 0:
             wanted["chosen_count"] = chosen.size
             wanted["chosen"] = _library.address(chosen)
             for field, history in zip(("u", "v", "a", "total"), kept):
                 wanted["history"][field] = _library.address(history)
         bad = np.zeros(1, np.uintp)
-        status = _library.call("bank_run", self._place, block.size, _library.address(block), _library.address(wanted),
+        status = self._numbers.call("bank_run", self._place, block.size, _library.address(block), _library.address(wanted),
                                _library.address(bad))  # fmt: skip
         if status != _library.OVERFLOW:
             _library.check(status, f"at sample {bad[0]}", sample="samples")
@@ -173,20 +187,20 @@ class Bank:
 
     def read(self) -> Histories:
         """All at the present sample, each of the bank's shape; accelerations of stopped oscillators are NaN."""
-        now = Histories(*(np.zeros(self.count) for _ in Histories._fields))
+        now = Histories(*(np.zeros(self.count, self._numbers.real) for _ in Histories._fields))
         out = np.zeros(1, _library.HISTORY)
         for field, values in zip(("u", "v", "a", "total"), now):
             out[field] = _library.address(values)
-        _library.check(_library.call("bank_read", self._place, _library.address(out)))
+        _library.check(self._numbers.call("bank_read", self._place, _library.address(out)))
         return Histories(*(values.reshape(self.shape) for values in now))
 
     def retune(self, number: int, system: System) -> None:
         """Gives an oscillator another system; its displacement and velocity stay."""
-        options = {key: self._options[key] for key in ("input", "between")}
+        options = {key: self._options[key] for key in ("input", "between", "precision")}
         made = coefficients(system, self._options["dt"], **options)
         if made.size != 1 or not 0 <= number < self.count:
             raise ValueError(f"number: one system and a number from 0 to {self.count - 1} are needed")
-        _library.check(_library.call("bank_retune", self._place, int(number), _library.address(made)))
+        _library.check(self._numbers.call("bank_retune", self._place, int(number), _library.address(made)))
         self._coeffs[number] = made.reshape(-1)[0]
 
     def __getstate__(self) -> Dict[str, Any]:

@@ -5,9 +5,7 @@ from __future__ import annotations
 from typing import Any, Dict, List, Literal, Optional, Sequence, Tuple
 
 import numpy as np
-from numpy.typing import ArrayLike
 
-from . import _arrays
 from ._arrays import Doubles
 from .response import Response
 from .spectrum import Spectrum
@@ -35,6 +33,13 @@ _HISTORIES = {  # axis label, and unit by length, time and force
     "relative_velocity": ("relative velocity", "{length}/{time}"),
     "spring_force": ("spring force", "{force}"),
     "damper_force": ("damper force", "{force}"),
+}
+_PEAKS = {
+    "SD": "displacement",
+    "PSV": "displacement",
+    "PSA": "displacement",
+    "SV": "velocity",
+    "SA": "total_acceleration",
 }
 _SPECTRA = {
     "SD": ("relative displacement SD", "{length}"),
@@ -147,12 +152,13 @@ def spectra(
     quantity: str = "PSA",
     *,
     paper: Paper = "linear",
-    error: Optional[ArrayLike] = None,
     names: Optional[Sequence[str]] = None,
     units: Optional[Dict[str, str]] = None,
     axes: Optional[Any] = None,
 ) -> Any:
     """A spectrum over the period, one curve for each damping ratio and record.
+
+    Where the spectrum was made with ``evidence=True``, a band about each curve shows the estimated sampling error.
 
     Parameters
     ----------
@@ -163,8 +169,6 @@ def spectra(
     paper : {'linear', 'log', 'four-way'}
         Linear, or both axes logarithmic, or that with lines of equal displacement and of equal pseudo-acceleration:
         on it a point shows SD, PSV and PSA at once, since PSV = omega SD and PSA = omega PSV.
-    error : array_like, optional
-        Sampling error of each value, as a fraction of it: drawn as a band. Broadcast with the values.
     names : sequence of str, optional
         Names of the curves; otherwise the damping ratios.
     units : dict, optional
@@ -182,13 +186,13 @@ def spectra(
         quantity = "PSV"
     if quantity not in _SPECTRA:
         raise ValueError(f"quantity: {quantity!r} is none of {', '.join(map(repr, _SPECTRA))}")
-    period, curves, bands, labels = _curves(spectrum, quantity, error, names, logarithmic=paper != "linear")
+    period, curves, bands, labels = _curves(spectrum, quantity, names, logarithmic=paper != "linear")
     if axes is None:
         _, axes = _pyplot().subplots(figsize=(7, 6.4 if paper == "four-way" else 4.4), layout="constrained")
     for i, (curve, label) in enumerate(zip(curves, labels)):
         colour = _COLOURS[i % len(_COLOURS)]
         if bands is not None:
-            axes.fill_between(period, curve * (1 - bands[i]), curve * (1 + bands[i]), color=colour, alpha=0.22,
+            axes.fill_between(period, curve * np.maximum(1 - bands[i], 0), curve * (1 + bands[i]), color=colour, alpha=0.22,
                               linewidth=0, label="sampling error" if i == 0 else None)  # fmt: skip
         axes.plot(period, curve, color=colour, linewidth=1.4, label=label, zorder=3)
     axes.set_xlabel(_label(("natural period", "{time}"), units))
@@ -209,14 +213,14 @@ def spectra(
 
 
 def _curves(
-    spectrum: Spectrum, quantity: str, error: Optional[ArrayLike], names: Optional[Sequence[str]], logarithmic: bool
+    spectrum: Spectrum, quantity: str, names: Optional[Sequence[str]], logarithmic: bool
 ) -> Tuple[Doubles, Doubles, Optional[Doubles], List[Optional[str]]]:
-    """Periods in rising order, and a row for each curve."""
+    """Periods in rising order, a row for each curve, and the share of each value that is sampling error."""
     if spectrum.period.ndim != 1 or spectrum.period.size < 2:
         raise ValueError("spectrum: two periods or more on one axis are needed for a picture")
     period = spectrum.period
     values = getattr(spectrum, quantity)
-    bands = None if error is None else np.broadcast_to(_arrays.doubles(error, "error"), values.shape)
+    bands = getattr(spectrum, _PEAKS[quantity]).share
     drawn = np.isfinite(period) & ((period > 0) | (not logarithmic))
     order = np.flatnonzero(drawn)[np.argsort(period[drawn])]
     curves = values.reshape(-1, period.size)[:, order]

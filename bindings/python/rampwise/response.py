@@ -10,11 +10,14 @@ from numpy.typing import ArrayLike, NDArray
 
 from . import _arrays, _library
 from ._arrays import Doubles
+from ._precision import Arithmetic, Precision, arithmetic
 from ._provenance import plain, provenance
 from ._work import spread
 from .system import Between, Input, System, coefficients
 
 Start = Literal["at once", "ramp", "settled"]
+
+Reals = NDArray[Any]  # of the precision of the call
 
 _STARTS = ("at once", "ramp", "settled")
 _HISTORIES = ("displacement", "velocity", "acceleration", "total_acceleration")
@@ -52,42 +55,52 @@ class Response:
     """
 
     time: Doubles
-    record: Doubles
-    displacement: Doubles
-    velocity: Doubles
-    acceleration: Doubles
-    total_acceleration: Doubles
+    record: Reals
+    displacement: Reals
+    velocity: Reals
+    acceleration: Reals
+    total_acceleration: Reals
     system: System
     input: str
     between: str
     provenance: Dict[str, Any]
 
     @property
-    def relative_displacement(self) -> Doubles:
+    def relative_displacement(self) -> Reals:
         """Displacement of the mass against its base (or, under a force, the fixed frame)."""
         return self.displacement - self.record if self.input == "base displacement" else self.displacement
 
     @property
-    def relative_velocity(self) -> Doubles:
+    def relative_velocity(self) -> Reals:
         """Velocity of the mass against its base; that of the base ends with the line before each sample."""
         if self.input != "base displacement" or self.between != "ramp":
             return self.velocity
-        steps = self.provenance["options"]["dt"]
-        base = np.zeros(self.record.shape)
-        base[..., 1:] = np.diff(self.record) / (np.diff(self.time) if steps is None else steps)
+        step = self.provenance["options"]["dt"]
+        change = np.zeros_like(self.record)
+        change[..., 1:] = np.diff(self.record)
         if self.provenance["options"]["start"] == "ramp":
-            base[..., 0] = self.record[..., 0] / steps
-        return self.velocity - base
+            change[..., 0] = self.record[..., 0]
+        if step is None:
+            change[..., 1:] /= np.diff(self.time)
+        elif self.record.dtype == np.float32:
+            change *= np.float32(1 / step)
+        else:
+            change /= step
+        return self.velocity - change
 
     @property
-    def spring_force(self) -> Doubles:
+    def spring_force(self) -> Reals:
         """Stiffness times relative displacement; positive when stretched along +u."""
-        return np.asarray(self.system.stiffness[..., np.newaxis] * self.relative_displacement)
+        return self._times(self.system.stiffness, self.relative_displacement)
 
     @property
-    def damper_force(self) -> Doubles:
+    def damper_force(self) -> Reals:
         """Damper times relative velocity; positive when pulled apart along +u."""
-        return np.asarray(self.system.damper[..., np.newaxis] * self.relative_velocity)
+        return self._times(self.system.damper, self.relative_velocity)
+
+    @staticmethod
+    def _times(values: Doubles, history: Reals) -> Reals:
+        return np.asarray(values[..., np.newaxis].astype(history.dtype) * history)
 
     def to_dict(self) -> Dict[str, Any]:
         """Everything as plain dictionaries, lists, numbers and texts, as ``json.dumps`` takes them."""
@@ -126,6 +139,7 @@ def respond(
     start: Start = "at once",
     displacement: ArrayLike = 0.0,
     velocity: ArrayLike = 0.0,
+    precision: Optional[Precision] = None,
     allow_strong_damping: bool = False,
     threads: int = 1,
     progress: bool = False,
@@ -160,6 +174,9 @@ def respond(
         'settled': static equilibrium under the first sample.
     displacement, velocity : array_like
         Initial values for 'at once', broadcast with the result's shape without its last axis.
+    precision : {'double', 'single'}, optional
+        Precision of the steps and of the result; otherwise single for float32 arrays at equal intervals, and double
+        for all others.
     allow_strong_damping : bool
         Takes damping ratios above 2.
     threads : int
@@ -204,19 +221,20 @@ def respond(
         raise TypeError("exactly one of dt and time is needed")
     stamps = None if time is None else _times(time, start)
     step = _arrays.double(dt, "dt") if stamps is None else _usual_interval(stamps)
-    made = coefficients(systems, step, input=input, between=between)
-    given = _arrays.doubles(record, "record")
-    frames = stamps is None and _are_frames(given, made)
-    samples = given if frames else _arrays.records(record, "record")
+    numbers = _numbers(precision, record, stamps)
+    made = coefficients(systems, step, input=input, between=between, precision=numbers.name)
+    given = _arrays.reals(record, "record", numbers.real)
+    frames = stamps is None and numbers.name == "double" and _are_frames(given, made)
+    samples = given if frames else _arrays.records(record, "record", numbers.real)
     n = samples.shape[-1]
     if stamps is not None and stamps.shape != (n,):
         raise ValueError(f"time: shape {stamps.shape} for records of {n} samples")
     shape = _arrays.broadcast(made.shape, samples.shape[:-1], "record and system")
-    states = _states(made, samples, shape, start, displacement, velocity)
+    states = _states(numbers, made, samples, shape, start, displacement, velocity)
     if frames:
         histories = _run_frames(samples, _arrays.to_shape(made, shape), states, start)
     else:
-        histories = _Rows(samples, stamps, made, states, start).run(threads, progress)
+        histories = _Rows(numbers, samples, stamps, made, states, start).run(threads, progress)
     return Response(
         stamps if stamps is not None else np.arange(n) * step,
         samples,
@@ -227,8 +245,16 @@ def respond(
         systems,
         input,
         between,
-        provenance(dt=step if stamps is None else None, start=start, threads=threads),
+        provenance(dt=step if stamps is None else None, start=start, precision=numbers.name, threads=threads),
     )
+
+
+def _numbers(precision: Optional[str], record: Any, stamps: Optional[Doubles]) -> Arithmetic:
+    if stamps is None:
+        return arithmetic(precision, record)
+    if precision == "single":
+        raise ValueError("precision: given times need 'double'")
+    return arithmetic(precision)
 
 
 def _times(time: ArrayLike, start: str) -> Doubles:
@@ -250,7 +276,7 @@ def _usual_interval(stamps: Doubles) -> float:
     return float(np.median(np.diff(stamps))) if stamps.size > 1 else 1.0
 
 
-def _are_frames(record: Doubles, made: NDArray[np.void]) -> bool:
+def _are_frames(record: Reals, made: NDArray[np.void]) -> bool:
     """Whether samples lie frame by frame in memory, all channels of an instant side by side."""
     return (
         record.ndim == 2
@@ -263,15 +289,16 @@ def _are_frames(record: Doubles, made: NDArray[np.void]) -> bool:
 
 
 def _states(
+    numbers: Arithmetic,
     made: NDArray[np.void],
-    samples: Doubles,
+    samples: Reals,
     shape: Tuple[int, ...],
     start: str,
     displacement: ArrayLike,
     velocity: ArrayLike,
 ) -> NDArray[np.void]:
     """States at the first sample, or before it for a ramp."""
-    states = np.zeros(shape, _library.STATE)
+    states = np.zeros(shape, numbers.state)
     for field, values, name in (("u", displacement, "displacement"), ("v", velocity, "velocity")):
         array = _arrays.doubles(values, name)
         if start != "at once" and array.any():
@@ -288,7 +315,7 @@ def _states(
     if start == "settled":
         rows = zip(np.ndindex(shape), _library.addresses(_arrays.to_shape(made, shape)), _library.addresses(states), states["p"].flat)
         for index, coeffs, state, sample in rows:
-            status = _library.call("start_settled", int(coeffs), int(state), sample)
+            status = numbers.call("start_settled", int(coeffs), int(state), sample)
             _library.check(status, f"at sample 0{_which(index)}")
     return states
 
@@ -297,8 +324,8 @@ def _which(index: Tuple[int, ...]) -> str:
     return f" of response {list(index)}" if index else ""
 
 
-def _empty(shape: Tuple[int, ...]) -> Tuple[Doubles, ...]:
-    return tuple(np.empty(shape) for _ in _HISTORIES)
+def _empty(shape: Tuple[int, ...], real: "np.dtype[Any]") -> Tuple[Reals, ...]:
+    return tuple(np.empty(shape, real) for _ in _HISTORIES)
 
 
 class _Rows:
@@ -306,12 +333,14 @@ class _Rows:
 
     def __init__(
         self,
-        samples: Doubles,
+        numbers: Arithmetic,
+        samples: Reals,
         stamps: Optional[Doubles],
         made: NDArray[np.void],
         states: NDArray[np.void],
         start: str,
     ) -> None:
+        self.numbers = numbers
         self.n = samples.shape[-1]
         self.shape = states.shape
         self.states = states.reshape(-1)
@@ -320,9 +349,9 @@ class _Rows:
         self.kept = (samples, made)  # alive while their addresses are used
         self.coeffs_at = _library.addresses(_arrays.to_shape(made, self.shape))
         self.samples_at = _library.addresses(_arrays.to_shape(samples[..., 0], self.shape))
-        self.histories = _empty(self.shape + (self.n,))
+        self.histories = _empty(self.shape + (self.n,), numbers.real)
 
-    def run(self, threads: int, progress: bool) -> Tuple[Doubles, ...]:
+    def run(self, threads: int, progress: bool) -> Tuple[Reals, ...]:
         rows = self.states.size
         a_task = max(1, _SAMPLES_A_TASK // self.n)
         tasks = [range(first, min(rows, first + a_task)) for first in range(0, rows, a_task)]
@@ -345,11 +374,11 @@ class _Rows:
         status: int
         if self.ramps:
             at = _library.address(self.states[row : row + 1])
-            status = _library.call("run", coeffs, at, self.n, p, _library.address(out), _library.address(bad))
+            status = self.numbers.call("run", coeffs, at, self.n, p, _library.address(out), _library.address(bad))
         else:
             first = self.n if self.stamps is None else 1
-            status = _library.call("solve", coeffs, state["u"], state["v"], first, p, _library.address(out),
-                                   _library.address(bad))  # fmt: skip
+            status = self.numbers.call("solve", coeffs, float(state["u"]), float(state["v"]), first, p,
+                                       _library.address(out), _library.address(bad))  # fmt: skip
         if status == 0 and self.stamps is not None:
             status = self._run_stamped(coeffs, row, p, out, bad)
         return status
@@ -374,7 +403,7 @@ def _run_frames(
     """All channels side by side, frame by frame as they lie in memory."""
     channels, n = samples.shape
     coeffs = np.ascontiguousarray(made)
-    histories = _empty((n, channels))
+    histories = _empty((n, channels), samples.dtype)
     first = 0
     if start != "ramp":
         _put_states(coeffs, states, histories)

@@ -23,6 +23,8 @@ _PARTS: Dict[str, int] = {
 }
 _QUANTITIES = tuple(_library.constant(name) for name in ("DISPLACEMENT", "VELOCITY", "TOTAL_ACCELERATION"))
 _AT_SAMPLES = _library.constant("AT_SAMPLES")
+_EVIDENCE = _library.constant("EVIDENCE")
+_ABRUPT_START, _ABRUPT_END = _library.constant("ABRUPT_START"), _library.constant("ABRUPT_END")
 _FASTEST = _library.constant("FASTEST")
 _A_TASK = 64  # oscillators: two blocks of lanes, 170 KB
 
@@ -39,21 +41,28 @@ class Peaks:
     high_time, low_time : ndarray
         Their instants, counted from the first sample, in the unit of time of `dt`; infinite for a value that is never
         reached.
+    high_error, low_error : ndarray or None
+        Where evidence was asked for: estimates of what the sampling of the record has cost each. ``high - high_error``
+        is closer to the response to the smooth load.
     """
 
     high: Doubles
     high_time: Doubles
     low: Doubles
     low_time: Doubles
+    high_error: Optional[Doubles] = None
+    low_error: Optional[Doubles] = None
 
     @classmethod
-    def _read(cls, peaks: NDArray[np.void], dt: float) -> "Peaks":
-        values = []
+    def _read(cls, peaks: NDArray[np.void], dt: float, evidence: Optional[NDArray[np.void]]) -> "Peaks":
+        values: List[Doubles] = []
         for side in ("high", "low"):
             instant = peaks[side]
             sample = instant["sample"]
             never = sample == np.iinfo(np.uint64).max
             values += [instant["value"].copy(), np.where(never, np.inf, (sample + instant["fraction"]) * dt)]
+        if evidence is not None:
+            values += [evidence["error_high"].copy(), evidence["error_low"].copy()]
         return cls(*values)
 
     @property
@@ -81,6 +90,23 @@ class Peaks:
         """Instant of the larger one."""
         return np.where(self._high_is_larger, self.high_time, self.low_time)
 
+    @property
+    def error(self) -> Optional[Doubles]:
+        """Estimated sampling error of the larger one; None where no evidence was asked for."""
+        if self.high_error is None or self.low_error is None:
+            return None
+        return np.where(self._high_is_larger, self.high_error, self.low_error)
+
+    @property
+    def share(self) -> Optional[Doubles]:
+        """Size of the error over that of the value; 0 where both are 0."""
+        error = self.error
+        if error is None:
+            return None
+        size = np.where(error == 0, 1.0, self.size)
+        with np.errstate(divide="ignore", invalid="ignore"):
+            return np.asarray(np.abs(error) / size)
+
 
 @dataclasses.dataclass(frozen=True, eq=False)
 class Spectrum:
@@ -95,6 +121,9 @@ class Spectrum:
     displacement, velocity, total_acceleration : Peaks
         Values, instants and signs, of shape ``records + damping.shape + period.shape``. Displacement and velocity are
         relative to the base.
+    abrupt_start, abrupt_end : ndarray of bool or None
+        Where evidence was asked for, of each record: it starts or stops abruptly. At the start that makes all estimates
+        of sampling errors worthless, at the end those of the last samples and of residuals.
     provenance : dict
         Version, edition of the arithmetic, options.
     """
@@ -106,7 +135,34 @@ class Spectrum:
     displacement: Peaks
     velocity: Peaks
     total_acceleration: Peaks
+    abrupt_start: Optional[NDArray[np.bool_]]
+    abrupt_end: Optional[NDArray[np.bool_]]
     provenance: Dict[str, Any]
+
+    def shortest_period(self, share: float, quantity: str = "total_acceleration") -> Doubles:
+        """The shortest period from which on upwards no sampling error is estimated above a share of the value.
+
+        Parameters
+        ----------
+        share : float
+            0.01 is one per cent.
+        quantity : {'displacement', 'velocity', 'total_acceleration'}
+            Of which peak.
+
+        Returns
+        -------
+        ndarray
+            One for each record and damping ratio; infinite where the longest period has more. Worth nothing where
+            `abrupt_start` is true.
+        """
+        if quantity not in ("displacement", "velocity", "total_acceleration"):
+            raise ValueError(f"quantity: {quantity!r} is none of 'displacement', 'velocity', 'total_acceleration'")
+        shares = getattr(self, quantity).share
+        if shares is None:
+            raise ValueError("share: the spectrum was made without evidence=True")
+        axes = tuple(range(shares.ndim - self.period.ndim, shares.ndim))
+        exceeding = np.max(np.where(shares <= share, -1.0, self.period), axis=axes, keepdims=True, initial=-1.0)
+        return np.asarray(np.min(np.where(self.period > exceeding, self.period, np.inf), axis=axes, initial=np.inf))
 
     @property
     def SD(self) -> Doubles:
@@ -183,6 +239,7 @@ def response_spectrum(
     between: Between = "ramp",
     part: Part = "primary",
     at_samples: bool = False,
+    evidence: bool = False,
     allow_strong_damping: bool = False,
     threads: int = 1,
     progress: bool = False,
@@ -210,6 +267,9 @@ def response_spectrum(
         When peaks are looked for: from the first to the last sample, in the free motion after it, or both.
     at_samples : bool
         Looks at the samples only, as many programs do.
+    evidence : bool
+        Estimates what the sampling of a smooth load has cost each peak too, for half as much work again. Not for base
+        displacement, and for 'ramp' only.
     allow_strong_damping : bool
         Takes damping ratios above 2.
     threads : int
@@ -231,8 +291,8 @@ def response_spectrum(
     Notes
     -----
     Inside a step the response is a line plus a free vibration; its extremes are found exactly, so the values do not
-    depend on where the samples happen to lie. What the sampling of the record itself has lost is another matter: ten
-    samples in the shortest period that matters is common practice. float32 records are converted to double.
+    depend on where the samples happen to lie. What the sampling of the record itself has lost is another matter, of
+    which `evidence` is an estimate; ten samples in the shortest period that matters is common practice. float32 records are converted to double.
 
     Examples
     --------
@@ -250,10 +310,15 @@ def response_spectrum(
     if part not in _PARTS:
         raise ValueError(f"part: {part!r} is none of {', '.join(map(repr, _PARTS))}")
     samples = _arrays.records(record, "record")
-    rows = _Records(samples, _arrays.double(dt, "dt"), input, between, part, at_samples)
+    rows = _Records(samples, _arrays.double(dt, "dt"), input, between, part, at_samples, evidence)
     oscillators = _Oscillators.make(name, given, ratio)
     shape = samples.shape[:-1] + ratio.shape + given.shape
-    peaks = [Peaks._read(found.reshape(shape), rows.dt) for found in rows.peaks(oscillators, threads, progress)]
+    found, errors = rows.peaks(oscillators, threads, progress)
+    peaks = [
+        Peaks._read(found[i].reshape(shape), rows.dt, errors[i].reshape(shape) if evidence else None)
+        for i in range(len(_QUANTITIES))
+    ]
+    abrupt = errors[0]["abrupt"][:, 0].reshape(samples.shape[:-1]) if evidence and given.size and ratio.size else None
     circular = oscillators.omega[: given.size].reshape(given.shape)
     with np.errstate(divide="ignore"):
         return Spectrum(
@@ -264,16 +329,38 @@ def response_spectrum(
             peaks[0],
             peaks[1],
             peaks[2],
+            None if abrupt is None else (abrupt & _ABRUPT_START) != 0,
+            None if abrupt is None else (abrupt & _ABRUPT_END) != 0,
             provenance(dt=rows.dt, input=input, between=between, part=part, at_samples=bool(at_samples),
-                       threads=threads),
+                       evidence=bool(evidence), threads=threads),
         )  # fmt: skip
+
+
+class _Found(NamedTuple):
+    """Structs of the library for each quantity."""
+
+    peaks: List[NDArray[np.void]]
+    evidence: List[NDArray[np.void]]
+
+
+def _nothing(shape: Tuple[int, ...]) -> _Found:
+    return _Found(
+        [np.zeros(shape, _library.PEAK) for _ in _QUANTITIES], [np.zeros(shape, _library.EVIDENCE) for _ in _QUANTITIES]
+    )
 
 
 class _Records:
     """The records of a call, and how they are looked at."""
 
     def __init__(
-        self, samples: Doubles, dt: float, input: Input, between: Between, part: str, at_samples: bool
+        self,
+        samples: Doubles,
+        dt: float,
+        input: Input,
+        between: Between,
+        part: str,
+        at_samples: bool,
+        evidence: bool,
     ) -> None:
         self.samples = samples
         self.dt = dt
@@ -281,17 +368,18 @@ class _Records:
         self.between: Between = between
         self.part = _PARTS[part]
         self.flags = _AT_SAMPLES if at_samples else 0
+        self.evidence = evidence
         self.n = samples.shape[-1]
         self.at = _library.addresses(samples[..., 0])
 
-    def peaks(self, oscillators: _Oscillators, threads: int, progress: bool) -> List[NDArray[np.void]]:
+    def peaks(self, oscillators: _Oscillators, threads: int, progress: bool) -> _Found:
         """[records, oscillators] for each quantity."""
         rigid = oscillators.rigid
         moving = np.flatnonzero(~rigid)
         natural: Dict[str, Any] = {oscillators.name: oscillators.given[moving]}
         systems = System.natural(damping=oscillators.damping[moving], allow_strong_damping=True, **natural)
         made = coefficients(systems, self.dt, input=self.input, between=self.between)
-        result = [np.zeros((self.at.size, rigid.size), _library.PEAK) for _ in _QUANTITIES]
+        result = _nothing((self.at.size, rigid.size))
         tasks = [
             (row, slice(first, first + _A_TASK))
             for row in range(self.at.size)
@@ -300,14 +388,15 @@ class _Records:
 
         def work(task: Tuple[int, slice]) -> None:
             row, block = task
-            for quantity, found in zip(result, self._block(row, made[block])):
-                quantity[row, moving[block]] = found
+            found = self._block(row, made[block])
+            for whole, part in zip(result.peaks + result.evidence, found.peaks + found.evidence):
+                whole[row, moving[block]] = part
 
         spread(work, tasks, threads, progress)
         self._follow_base(result, np.flatnonzero(rigid), oscillators.damping)
         return result
 
-    def _block(self, row: int, made: NDArray[np.void]) -> List[NDArray[np.void]]:
+    def _block(self, row: int, made: NDArray[np.void]) -> _Found:
         """The peaks of some oscillators under one record."""
         size = _library.call("peaks_size", made.size)
         memory = _arrays.aligned(size, _library.call("peaks_alignment"))
@@ -315,21 +404,25 @@ class _Records:
         made = np.ascontiguousarray(made)
         place, bad = np.zeros(1, np.uintp), np.zeros(1, np.uintp)
         status = _library.call("peaks_init", _library.address(memory), size, made.size, _library.address(made),
-                               quantities.size, _library.address(quantities), self.flags, _FASTEST,
+                               quantities.size, _library.address(quantities),
+                               self.flags | (_EVIDENCE if self.evidence else 0), _FASTEST,
                                _library.address(place))  # fmt: skip
         _library.check(status)
         status = _library.call("peaks_run", int(place[0]), self.n, int(self.at[row]), _library.address(bad))
         self._check(status, row, bad)
-        found = [np.zeros(made.size, _library.PEAK) for _ in _QUANTITIES]
-        for quantity, peaks in zip(_QUANTITIES, found):
+        found = _nothing((made.size,))
+        for quantity, peaks, errors in zip(_QUANTITIES, *found):
             _library.check(_library.call("peaks_get", int(place[0]), quantity, self.part, _library.address(peaks)))
+            if self.evidence:
+                status = _library.call("peaks_evidence", int(place[0]), quantity, self.part, _library.address(errors))
+                _library.check(status)
         return found
 
     def _check(self, status: int, row: int, bad: NDArray[np.uintp]) -> None:
         index = [int(i) for i in np.unravel_index(row, self.samples.shape[:-1])]
         _library.check(status, f"at sample {bad[0]}" + (f" of record {index}" if index else ""))
 
-    def _follow_base(self, result: List[NDArray[np.void]], rigid: NDArray[np.intp], damping: Doubles) -> None:
+    def _follow_base(self, result: _Found, rigid: NDArray[np.intp], damping: Doubles) -> None:
         """Rigid oscillators have no coefficients."""
         if rigid.size == 0:
             return
@@ -338,14 +431,17 @@ class _Records:
         input_number, _ = kinds(self.input, self.between)
         omega, ratio = np.full(rigid.size, np.inf), damping[rigid]
         for row in range(self.at.size):
-            for number, quantity in zip(_QUANTITIES, result):
-                found, bad = np.zeros(rigid.size, _library.PEAK), np.zeros(1, np.uintp)
-                status = _library.call("spectrum", self.n, self.dt, int(self.at[row]), input_number, rigid.size,
-                                       _library.address(omega), _library.address(ratio), number,
-                                       self.flags | self.part, _library.address(found),
+            for number, peaks, errors in zip(_QUANTITIES, *result):
+                found, cost = np.zeros(rigid.size, _library.PEAK), np.zeros(rigid.size, _library.EVIDENCE)
+                bad = np.zeros(1, np.uintp)
+                places = [_library.address(found)] + ([_library.address(cost)] if self.evidence else [])
+                status = _library.call("spectrum_evidence" if self.evidence else "spectrum", self.n, self.dt,
+                                       int(self.at[row]), input_number, rigid.size, _library.address(omega),
+                                       _library.address(ratio), number, self.flags | self.part, *places,
                                        _library.address(bad))  # fmt: skip
                 self._check(status, row, bad)
-                quantity[row, rigid] = found
+                peaks[row, rigid] = found
+                errors[row, rigid] = cost
 
 
 def equal_ratios(count: int, first: float, last: float) -> Doubles:

@@ -10,6 +10,7 @@ from numpy.typing import ArrayLike, NDArray
 
 from . import _arrays, _library
 from ._arrays import Doubles
+from ._precision import Precision, arithmetic
 
 Input = Literal["force", "base acceleration", "base velocity", "base displacement"]
 Between = Literal["ramp", "hold"]
@@ -168,7 +169,9 @@ class System:
             return np.asarray(self.damper / (2 * np.sqrt(self.stiffness * self.mass)))
 
 
-def coefficients(system: System, dt: float, *, input: Input, between: Between = "ramp") -> NDArray[np.void]:
+def coefficients(
+    system: System, dt: float, *, input: Input, between: Between = "ramp", precision: Precision = "double"
+) -> NDArray[np.void]:
     """Everything a step of length dt needs.
 
     Between two samples the input is a straight line or stays where it was, and the response is known in closed
@@ -187,6 +190,8 @@ def coefficients(system: System, dt: float, *, input: Input, between: Between = 
         What the samples are. Base acceleration is given as itself, never as -m a.
     between : {'ramp', 'hold'}
         What the input does between samples: a straight line, or constant until the next.
+    precision : {'double', 'single'}
+        Of the coefficients.
 
     Returns
     -------
@@ -194,6 +199,7 @@ def coefficients(system: System, dt: float, *, input: Input, between: Between = 
         Structured, of the system's shape, with the fields A, B, C, D, Ap, Bp, Cp, Dp, A_minus_1, Bp_minus_1
         (the increments keep digits that A and Bp have no room for), acceleration and total (rows over u, v, p and the
         input's last change), system, dt. Each coefficient is within 0.6 ulp of its largest value inside the step.
+        In single precision each is rounded once, and mass, damper, stiffness and rate stand for system.
 
     Examples
     --------
@@ -209,10 +215,11 @@ def coefficients(system: System, dt: float, *, input: Input, between: Between = 
     systems = np.empty(system.shape, _library.SYSTEM)
     for field in ("mass", "damper", "stiffness"):
         systems[field] = getattr(system, field)
-    made = np.zeros(system.shape, _library.COEFFS)
+    numbers = arithmetic(precision)
+    made = np.zeros(system.shape, numbers.coeffs)
     first, first_system = _library.address(made), _library.address(systems)
     for i in range(made.size):
-        status = _library.call("coeffs_make", first + i * made.itemsize, first_system + i * systems.itemsize, step,
+        status = numbers.call("coeffs_make", first + i * made.itemsize, first_system + i * systems.itemsize, step,
                                input_number, between_number)  # fmt: skip
         _library.check(status, f"entry {i} of system" if made.size > 1 else "")
     return made

@@ -19,8 +19,10 @@ DTYPES = ["f8", ">f8", "f4", "f2", "g", "i1", "u2", ">i4", "i8", "?"]
 def test_any_real_type(dtype):
     given_record = RECORD.astype(dtype)
     expected = rampwise.respond(given_record.astype(float), 0.01, **OSCILLATOR)
-    same_response(rampwise.respond(given_record, 0.01, **OSCILLATOR), expected)
+    same_response(rampwise.respond(given_record, 0.01, precision="double", **OSCILLATOR), expected)
     same_response(rampwise.respond(given_record.tolist(), 0.01, **OSCILLATOR), expected)
+    taken = rampwise.respond(given_record, 0.01, **OSCILLATOR)
+    assert taken.displacement.dtype == (np.float32 if dtype == "f4" else np.float64)
 
 
 def layouts(plain):

@@ -53,6 +53,8 @@ RESPOND = [
     (ValueError, "displacement: shape \\(2,\\) for results", {"displacement": [1, 2]}),
     (ValueError, "velocity: an initial value goes with", {"velocity": 1.0, "start": "settled"}),
     (ValueError, "displacement: A state is not finite", {"displacement": NAN}),
+    (ValueError, "precision: 'half' is none of", {"precision": "half"}),
+    (ValueError, "precision: given times need", {"precision": "single", "dt": None, "time": [0, 1, 2]}),
     (TypeError, "system: a System is needed", {"system": 3.0, "period": None, "damping": None}),
     (TypeError, "system: period is given besides it", {"system": rampwise.System(1, 0, 1), "damping": None}),
     (ValueError, "threads: at least 1", {"threads": 0}),
@@ -96,7 +98,7 @@ def test_strong_damping_is_taken_when_meant():
 
 def test_overflow_names_the_sample():
     falling = rampwise.System(1, 0, -1)
-    with pytest.raises(ValueError, match=r"^record: The response is too large for a double \(at sample \d+\)"):
+    with pytest.raises(ValueError, match=r"^record: The response is too large for its precision \(at sample \d+\)"):
         rampwise.respond(np.ones(1000), 1.0, input="force", system=falling)
     spectrum = rampwise.response_spectrum(np.ones(2000), 1.0, omega=1.0, damping=-0.9, input="force")
     assert np.isinf(spectrum.SD)

@@ -8,7 +8,8 @@ import rampwise
 from rampwise import plot
 
 RECORD = np.random.default_rng(17).uniform(-1, 1, 400)
-SPECTRUM = rampwise.response_spectrum(RECORD, 0.01, period=rampwise.equal_ratios(50, 0.05, 5), damping=[0.02, 0.1])
+SPECTRUM = rampwise.response_spectrum(RECORD, 0.01, period=rampwise.equal_ratios(50, 0.05, 5), damping=[0.02, 0.1],
+                                      evidence=True)  # fmt: skip
 UNITS = {"length": "m", "time": "s"}
 
 
@@ -30,8 +31,7 @@ def test_histories():
 
 @pytest.mark.parametrize("paper", ["linear", "log", "four-way"])
 def test_spectra(paper):
-    error = np.full(50, 0.25)
-    axes = plot.spectra(SPECTRUM, paper=paper, error=error, units=UNITS)
+    axes = plot.spectra(SPECTRUM, paper=paper, units=UNITS)
     axes.figure.canvas.draw()
     values = SPECTRUM.PSV if paper == "four-way" else SPECTRUM.PSA
     curves = [line for line in axes.lines if str(line.get_label()).endswith("damping")]
@@ -39,7 +39,7 @@ def test_spectra(paper):
     for line, expected in zip(curves, values):
         np.testing.assert_array_equal(line.get_ydata(), expected)
     corners = axes.collections[1].get_paths()[0].vertices
-    assert np.isclose(corners[:, 1].max(), 1.25 * values[1].max())
+    assert np.isclose(corners[:, 1].max(), (values[1] * (1 + SPECTRUM.displacement.share[1])).max())
     (low, high), (left, right) = axes.get_ylim(), axes.get_xlim()
     assert low <= values.min() and values.max() <= high and right == 5 and left <= 0.05
 
