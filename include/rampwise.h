@@ -3,6 +3,7 @@
    The headers are the reference manual, in the order in which data goes through them:
 
        system -> coefficients -> step -> record, channels, bank -> peaks, spectrum
+                                       -> output, watch, stream (live data)
 
    A record in a few lines:
 
@@ -31,6 +32,9 @@
 #include "rampwise/evidence.h"
 #include "rampwise/peaks.h"
 #include "rampwise/spectrum.h"
+#include "rampwise/output.h"
+#include "rampwise/watch.h"
+#include "rampwise/stream.h"
 #include "rampwise/foreign.h"
 
 #endif

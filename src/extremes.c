@@ -5,6 +5,7 @@
 #include <stdint.h>
 #include "rampwise/motion.h"
 #include "rampwise/status.h"
+#include "series.h"
 
 /* Relative motion at one instant: y'' + damping y' + stiffness y = f, f with the slope f_slope; and what
    rounding may have done to y and w. */
@@ -18,16 +19,6 @@ typedef struct derivatives {
 } derivatives;
 
 #define ROUNDING (16 * DBL_EPSILON)
-
-/* z over a piece of length 1: z + sum of e[n] x^n, n = 1 to count. Above the second power the terms follow
-   z'''' + S z''' + K z'' = 0; they end where two in a row have fallen below 2^-60 of the first two. With |S| and
-   |K| up to 1 that is before 24. */
-enum { TERMS = 24 };
-
-typedef struct series {
-    double z, e[TERMS + 1];
-    int count;
-} series;
 
 /* Where a piece lies: begin and length in steps of the oscillator, counted from sample. */
 typedef struct place {
@@ -55,102 +46,10 @@ static derivatives derivatives_of(const extremes *x, relative r)
         -x->damping * r.w - x->stiffness * r.y, -x->damping * a2 - x->stiffness * r.w, a4, a5, n3, n4};
 }
 
-/* clang-format off */
-static const double inverse_factorial[TERMS + 1] = {
-    1.0, 1.0, 0.5, 0.16666666666666666, 0.041666666666666664,
-    0.008333333333333333, 0.001388888888888889, 0.0001984126984126984, 2.48015873015873e-05, 2.7557319223985893e-06,
-    2.755731922398589e-07, 2.505210838544172e-08, 2.08767569878681e-09, 1.6059043836821613e-10, 1.1470745597729725e-11,
-    7.647163731819816e-13, 4.779477332387385e-14, 2.8114572543455206e-15, 1.5619206968586225e-16, 8.22063524662433e-18,
-    4.110317623312165e-19, 1.9572941063391263e-20, 8.896791392450574e-22, 3.8681701706306835e-23, 1.6117375710961184e-24,
-};
-/* clang-format on */
-
-static void series_make(series *s, const extremes *x, relative r, double length)
+static void piece_series(series *s, const extremes *x, relative r, double length)
 {
     const derivatives d = derivatives_of(x, r);
-    const double S = x->damping * length, K = x->stiffness * length * length;
-    double before = d.z2 * length * length, last = d.z3 * length * length * length;
-    s->z = d.z;
-    s->e[1] = d.z1 * length;
-    s->e[2] = before / 2;
-    s->e[3] = last * inverse_factorial[3];
-    const double small = 0x1p-60 * (fabs(s->e[1]) + fabs(s->e[2]));
-    int n = 3;
-    while (n < TERMS && fabs(s->e[n]) + fabs(s->e[n - 1]) > small) {
-        const double next = -S * last - K * before;
-        before = last;
-        last = next;
-        ++n;
-        s->e[n] = last * inverse_factorial[n];
-    }
-    s->count = n;
-}
-
-static double series_value(const series *s, double x)
-{
-    double sum = 0;
-    for (int n = s->count; n >= 1; --n)
-        sum = (sum + s->e[n]) * x;
-    return s->z + sum;
-}
-
-/* The first derivative and the second. */
-static double series_slope(const series *s, double x, double *second)
-{
-    double first = 0, next = 0;
-    for (int n = s->count; n >= 1; --n) {
-        next = next * x + first;
-        first = first * x + n * s->e[n];
-    }
-    *second = next;
-    return first;
-}
-
-static int opposite(double a, double b)
-{
-    return (a < 0 && b > 0) || (a > 0 && b < 0);
-}
-
-/* The zero of the slope between low and high, where it has opposite signs: Newton's steps, halving where one
-   leaves the bracket. */
-static double slope_zero(const series *s, double low, double high, double at_low, double at_high)
-{
-    const int rising = at_low < 0;
-    double x = low + (high - low) * (at_low / (at_low - at_high)), second;
-    for (int i = 0; i < 100; ++i) {
-        const double slope = series_slope(s, x, &second);
-        if (slope == 0)
-            return x;
-        if ((slope < 0) == rising)
-            low = x;
-        else
-            high = x;
-        double next = x - slope / second;
-        if (!(next > low && next < high))
-            next = 0.5 * (low + high);
-        if (fabs(next - x) <= 0x1p-54)
-            return next;
-        x = next;
-    }
-    return x;
-}
-
-/* Where the slope turns: the zero of the second derivative, by halving. It need not be sharp: beside it the
-   slope is flat. */
-static double turning_point(const series *s)
-{
-    double low = 0, high = 1, second;
-    (void)series_slope(s, 0, &second);
-    const int rising = second < 0;
-    for (int i = 0; i < 54; ++i) {
-        const double middle = 0.5 * (low + high);
-        (void)series_slope(s, middle, &second);
-        if ((second < 0) == rising)
-            low = middle;
-        else
-            high = middle;
-    }
-    return 0.5 * (low + high);
+    series_make(s, d.z, d.z1, d.z2, d.z3, x->damping, x->stiffness, length);
 }
 
 static void note_at(rampwise_peak *peak, double value, const place *where, double x)
@@ -174,7 +73,7 @@ static void in_piece(const extremes *x, relative r, double length, const place *
 {
     series s;
     double begin, end;
-    series_make(&s, x, r, length);
+    piece_series(&s, x, r, length);
     (void)series_slope(&s, 0, &begin);
     (void)series_slope(&s, 1, &end);
     if (opposite(begin, end)) {

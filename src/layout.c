@@ -1,5 +1,6 @@
 /* The layout of every public struct, pinned: callers in other languages and older builds rely on it. */
 #include <stddef.h>
+#include <stdint.h>
 #include "rampwise.h"
 
 #define AT(type, member, place)                                                                              \
@@ -112,3 +113,100 @@ AT(rampwise_evidence, error_low, 8);
 AT(rampwise_evidence, abrupt, 16);
 AT(rampwise_evidence, reserve, 20);
 SIZE(rampwise_evidence, 24);
+
+AT(rampwise_output, row, 0);
+AT(rampwise_output, quantity, 32);
+SIZE(rampwise_output, 40);
+
+AT(rampwise_event, sample, 0);
+AT(rampwise_event, fraction, 8);
+AT(rampwise_event, value, 16);
+AT(rampwise_event, kind, 24);
+AT(rampwise_event, direction, 28);
+AT(rampwise_event, output, 32);
+AT(rampwise_event, level, 36);
+AT(rampwise_event, flags, 40);
+SIZE(rampwise_event, 48);
+
+AT(rampwise_level, value, 0);
+AT(rampwise_level, hysteresis, 8);
+AT(rampwise_level, direction, 16);
+AT(rampwise_level, latch, 20);
+SIZE(rampwise_level, 24);
+
+AT(rampwise_level_report, beyond, 0);
+AT(rampwise_level_report, tripped, 4);
+AT(rampwise_level_report, passed, 8);
+AT(rampwise_level_report, cycles, 16);
+SIZE(rampwise_level_report, 24);
+
+AT(rampwise_watched, at, 0);
+AT(rampwise_watched, begin, 24);
+SIZE(rampwise_watched, 32);
+
+AT(rampwise_instant_f32, sample, 0);
+AT(rampwise_instant_f32, value, 8);
+AT(rampwise_instant_f32, fraction, 12);
+SIZE(rampwise_instant_f32, 16);
+
+AT(rampwise_peak_f32, high, 0);
+AT(rampwise_peak_f32, low, 16);
+SIZE(rampwise_peak_f32, 32);
+
+AT(rampwise_watched_f32, at, 0);
+AT(rampwise_watched_f32, begin, 16);
+SIZE(rampwise_watched_f32, 24);
+
+AT(rampwise_interval_f32, ticks, 0);
+AT(rampwise_interval_f32, c, 8);
+SIZE(rampwise_interval_f32, 136);
+
+AT(rampwise_interval, ticks, 0);
+AT(rampwise_interval, c, 8);
+SIZE(rampwise_interval, 264);
+
+AT(rampwise_stream_counts, next, 0);
+AT(rampwise_stream_counts, good, 8);
+AT(rampwise_stream_counts, missing, 16);
+AT(rampwise_stream_counts, clipped, 24);
+AT(rampwise_stream_counts, bridges, 32);
+AT(rampwise_stream_counts, starts, 40);
+AT(rampwise_stream_counts, longest, 48);
+AT(rampwise_stream_counts, last_missing, 56);
+AT(rampwise_stream_counts, last_clipped, 64);
+SIZE(rampwise_stream_counts, 72);
+
+#if UINTPTR_MAX == UINT64_MAX
+AT(rampwise_watch_options, output, 8);
+AT(rampwise_watch_options, level, 48);
+AT(rampwise_watch_options, level_count, 144);
+AT(rampwise_watch_options, number, 148);
+AT(rampwise_watch_options, window, 152);
+AT(rampwise_watch_options, window_steps, 160);
+AT(rampwise_watch_options, events, 168);
+AT(rampwise_watch_options, event_capacity, 176);
+AT(rampwise_watch_options, reserve, 184);
+SIZE(rampwise_watch_options, 216);
+
+AT(rampwise_stream_options, start, 8);
+AT(rampwise_stream_options, missing, 12);
+AT(rampwise_stream_options, beyond, 16);
+AT(rampwise_stream_options, missing_raw, 20);
+AT(rampwise_stream_options, longest, 24);
+AT(rampwise_stream_options, ticks, 32);
+AT(rampwise_stream_options, scale, 40);
+AT(rampwise_stream_options, offset, 48);
+AT(rampwise_stream_options, rail_low, 56);
+AT(rampwise_stream_options, rail_high, 64);
+AT(rampwise_stream_options, output_count, 72);
+AT(rampwise_stream_options, output, 80);
+AT(rampwise_stream_options, intervals, 400);
+AT(rampwise_stream_options, interval_count, 408);
+AT(rampwise_stream_options, reserve, 416);
+SIZE(rampwise_stream_options, 448);
+
+SIZE(rampwise_stream, 1368);
+SIZE(rampwise_watch, 872);
+SIZE(rampwise_stream_f32, 960);
+SIZE(rampwise_watch_f32, 640);
+#endif

@@ -34,6 +34,12 @@ static inline float damper_of(const rampwise_coeffs_f32 *c)
     return c->damper;
 }
 
+/* The oscillator, as far as single precision kept it */
+static inline rampwise_system system_of(const rampwise_coeffs_f32 *c)
+{
+    return (rampwise_system){(double)c->mass, (double)c->damper, (double)c->stiffness};
+}
+
 /* A change over one step, by the time it took */
 static inline float over_dt(const rampwise_coeffs_f32 *c, float change)
 {
@@ -48,6 +54,11 @@ static inline double stiffness_of(const rampwise_coeffs *c)
 static inline double damper_of(const rampwise_coeffs *c)
 {
     return c->system.damper;
+}
+
+static inline rampwise_system system_of(const rampwise_coeffs *c)
+{
+    return c->system;
 }
 
 static inline double over_dt(const rampwise_coeffs *c, double change)

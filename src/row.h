@@ -5,10 +5,15 @@
 #include "precision.h"
 
 /* The last entry is asked first: where the change does not count, it may overflow. */
+static inline real row_over(const real row[4], real u, real v, real p, real change)
+{
+    const real last = row[3] != 0 ? row[3] * change : 0;
+    return REAL_FMA(row[0], u, REAL_FMA(row[1], v, REAL_FMA(row[2], p, last)));
+}
+
 static inline real row_value(const real row[4], const real_state *s)
 {
-    const real change = row[3] != 0 ? row[3] * (s->p - s->p_before) : 0;
-    return REAL_FMA(row[0], s->u, REAL_FMA(row[1], s->v, REAL_FMA(row[2], s->p, change)));
+    return row_over(row, s->u, s->v, s->p, s->p - s->p_before);
 }
 
 #endif

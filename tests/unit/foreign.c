@@ -26,6 +26,8 @@ START_TEST(struct_sizes)
     ck_assert_uint_eq(rampwise_struct_size("rampwise_coeffs"), 256);
     ck_assert_uint_eq(rampwise_struct_size("rampwise_state"), 32);
     ck_assert_uint_eq(rampwise_struct_size("rampwise_history"), 4 * sizeof(double *));
+    ck_assert_uint_eq(rampwise_struct_size("rampwise_event"), 48);
+    ck_assert_uint_eq(rampwise_struct_size("rampwise_stream"), sizeof(rampwise_stream));
     ck_assert_uint_eq(rampwise_struct_size("rampwise_coeffs_f32"), 128);
     ck_assert_uint_eq(rampwise_struct_size("rampwise_state_f32"), 24);
     ck_assert_uint_eq(rampwise_struct_size("rampwise_history_f32"), 4 * sizeof(float *));
@@ -38,8 +40,9 @@ END_TEST
 /* Each of the pinned numbers has a text of its own, and no other number has one. */
 START_TEST(status_texts)
 {
-    static const int statuses[] = {0,   -10, -12, -14, -16, -18, -20, -22, -24, -26, -27, -28, -29, -30,
-                                   -32, -34, -36, -38, -40, -42, -44, -46, -60, -62, -64, -80, -90, -92};
+    static const int statuses[] = {0,   -10, -12, -14, -16, -18, -20, -22, -24, -26, -27,
+                                   -28, -29, -30, -32, -34, -36, -38, -40, -42, -44, -46,
+                                   -60, -62, -64, -66, -70, -72, -74, -80, -90, -92};
     const size_t count = sizeof statuses / sizeof *statuses;
     const char *const none = rampwise_status_text(1);
     size_t known = 0;

@@ -1,0 +1,3 @@
+/* output.h in single precision. */
+#define SINGLE_PRECISION
+#include "output.c"

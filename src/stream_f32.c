@@ -1,0 +1,3 @@
+/* stream.h in single precision. */
+#define SINGLE_PRECISION
+#include "stream.c"

@@ -1,0 +1,3 @@
+/* watch.h in single precision. */
+#define SINGLE_PRECISION
+#include "watch.c"
