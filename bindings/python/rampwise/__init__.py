@@ -12,6 +12,7 @@ Three lines::
 `response_spectrum`                   SD, SV, SA, PSV, PSA with instants and signs
 `for_each`                            many records of unequal length; a bad one does not stop the rest
 `Bank`                                many oscillators under one input, fed in blocks
+`Stream`, `Level`                     one oscillator on live data, with gaps, rails, watches that trip
 `coefficients`                        the coefficients of a step
 `equal_ratios`, `octaves`             periods or frequencies of a spectrum
 `rampwise.plot`                       pictures; needs matplotlib
@@ -27,16 +28,26 @@ from ._version import __version__
 from .bank import Bank
 from .records import Outcomes, for_each
 from .response import Response, respond
+from .stream import BRIDGED, CLIPPED, STARTED, WAITING, Event, Level, LevelReport, Stream, Watch
 from .spectrum import Peaks, Spectrum, equal_ratios, octaves, response_spectrum
 from .system import System, coefficients
 
 __all__ = [
+    "BRIDGED",
     "Bank",
+    "CLIPPED",
+    "Event",
+    "Level",
+    "LevelReport",
     "Outcomes",
     "Peaks",
     "Response",
+    "STARTED",
     "Spectrum",
+    "Stream",
     "System",
+    "WAITING",
+    "Watch",
     "__version__",
     "arithmetic_edition",
     "coefficients",

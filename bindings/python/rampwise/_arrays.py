@@ -40,6 +40,26 @@ def double(value: Any, name: str) -> float:
     return float(array)
 
 
+def integers(array: NDArray[Any], name: str, kind: Any) -> NDArray[Any]:
+    """Whole numbers as those of one type."""
+    if array.dtype.kind not in "iu":
+        raise TypeError(f"{name}: whole numbers are needed, not {array.dtype}")
+    limits = np.iinfo(kind)
+    if array.size > 0 and (array.min() < limits.min or array.max() > limits.max):
+        raise ValueError(f"{name}: a number is beyond {limits.min} to {limits.max}")
+    return np.ascontiguousarray(array, dtype=kind)
+
+
+def whole(value: Any, name: str, least: int) -> int:
+    """One whole number."""
+    if isinstance(value, (bool, np.bool_)) or not hasattr(value, "__index__"):
+        raise TypeError(f"{name}: a whole number is needed, not {value!r}")
+    number = int(value.__index__())
+    if not least <= number < 2**64:
+        raise ValueError(f"{name}: at least {least} is needed, not {number}" if number < least else f"{name}: too large")
+    return number
+
+
 def records(values: ArrayLike, name: str, real: "np.dtype[Any]" = np.dtype(np.float64)) -> NDArray[Any]:
     """Records along the last axis, each without gaps in memory; other axes as they are."""
     array = reals(values, name, real)

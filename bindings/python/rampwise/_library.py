@@ -44,6 +44,37 @@ BANK_WANTED = np.dtype(
     [("size", np.uintp), ("largest", np.uintp), ("chosen_count", np.uintp), ("chosen", np.uintp)]
     + [("history", HISTORY), ("reserve", np.uintp, 4)]
 )
+OUTPUT = np.dtype([("row", "f8", 4), ("quantity", "i4"), ("reserve", "i4")])
+LEVEL = np.dtype([("value", "f8"), ("hysteresis", "f8"), ("direction", "i4"), ("latch", "i4")])
+LEVEL_REPORT = np.dtype([("beyond", "i4"), ("tripped", "i4"), ("passed", "u8"), ("cycles", "u8")])
+EVENT = np.dtype(
+    [("sample", "u8"), ("fraction", "f8"), ("value", "f8")]
+    + [(name, "i4") for name in ("kind", "direction", "output", "level")]
+    + [("flags", "u4"), ("reserve", "i4")]
+)
+WATCHED = np.dtype([("at", INSTANT), ("begin", "u8")])
+WATCHED_F32 = np.dtype([("sample", "u8"), ("value", "f4"), ("fraction", "f4"), ("begin", "u8")])
+WATCH_OPTIONS = np.dtype(
+    [("size", np.uintp), ("output", OUTPUT), ("level", LEVEL, 4), ("level_count", "i4"), ("number", "i4")]
+    + [(name, np.uintp) for name in ("window", "window_steps", "events", "event_capacity")]
+    + [("reserve", np.uintp, 4)]
+)
+STREAM_OPTIONS = np.dtype(
+    [("size", np.uintp)]
+    + [(name, "i4") for name in ("start", "missing", "beyond", "missing_raw")]
+    + [("longest", "u8"), ("ticks", "u8")]
+    + [(name, "f8") for name in ("scale", "offset", "rail_low", "rail_high")]
+    + [("output_count", "i4"), ("reserve_count", "i4"), ("output", OUTPUT, 8)]
+    + [("intervals", np.uintp), ("interval_count", np.uintp), ("reserve", np.uintp, 4)]
+)
+STREAM_COUNTS = np.dtype(
+    [
+        (name, "u8")
+        for name in (
+            "next", "good", "missing", "clipped", "bridges", "starts", "longest", "last_missing", "last_clipped",
+        )
+    ]
+)  # fmt: skip
 _STRUCTS = {
     "rampwise_system": SYSTEM,
     "rampwise_state": STATE,
@@ -53,12 +84,23 @@ _STRUCTS = {
     "rampwise_history_f32": HISTORY,
     "rampwise_bank_wanted_f32": BANK_WANTED,
     "rampwise_evidence": EVIDENCE,
+    "rampwise_output": OUTPUT,
+    "rampwise_level": LEVEL,
+    "rampwise_level_report": LEVEL_REPORT,
+    "rampwise_event": EVENT,
+    "rampwise_watched": WATCHED,
+    "rampwise_watched_f32": WATCHED_F32,
+    "rampwise_watch_options": WATCH_OPTIONS,
+    "rampwise_stream_options": STREAM_OPTIONS,
+    "rampwise_stream_counts": STREAM_COUNTS,
     "rampwise_instant": INSTANT,
     "rampwise_peak": PEAK,
     "rampwise_history": HISTORY,
     "rampwise_bank_wanted": BANK_WANTED,
 }
 
+_COUNT = ctypes.c_uint64
+_PUT = (_INT, _POINTER, _SIZE, _POINTER, _POINTER, _POINTER, _POINTER)
 _SYSTEM_MAKER = (_INT, _POINTER, _DOUBLE, _DOUBLE)
 _PROTOTYPES: Dict[str, Any] = {  # the result first
     "rampwise_system_natural": _SYSTEM_MAKER,
@@ -95,13 +137,43 @@ _PROTOTYPES: Dict[str, Any] = {  # the result first
         _INT, _SIZE, _DOUBLE, _POINTER, _INT, _SIZE, _POINTER, _POINTER, _INT, ctypes.c_uint, _POINTER, _POINTER,
         _POINTER,
     ),
+    "rampwise_stream_options_init": (None, _POINTER),
+    "rampwise_stream_init": (_INT, _POINTER, _POINTER, _POINTER),
+    "rampwise_stream_start": (_INT, _POINTER, _POINTER, _COUNT),
+    "rampwise_stream_put": _PUT,
+    "rampwise_stream_put_raw": _PUT,
+    "rampwise_stream_put_at": _PUT + (_POINTER,),
+    "rampwise_stream_put_raw_at": _PUT + (_POINTER,),
+    "rampwise_stream_skip_to": (_INT, _POINTER, _COUNT),
+    "rampwise_stream_read": (_INT, _POINTER, _POINTER, _POINTER),
+    "rampwise_stream_state": (_INT, _POINTER, _POINTER, _POINTER),
+    "rampwise_stream_count": (_INT, _POINTER, _POINTER),
+    "rampwise_stream_retune": (_INT, _POINTER, _POINTER, _POINTER, _SIZE),
+    "rampwise_stream_attach": (_INT, _POINTER, _POINTER),
+    "rampwise_stream_saved_size": (_SIZE, _POINTER),
+    "rampwise_stream_save": (_INT, _POINTER, _POINTER, _SIZE),
+    "rampwise_stream_resume": (_INT, _POINTER, _POINTER, _SIZE),
+    "rampwise_watch_options_init": (None, _POINTER),
+    "rampwise_watch_init": (_INT, _POINTER, _POINTER, _POINTER),
+    "rampwise_watch_peak": (_INT, _POINTER, _INT, _POINTER),
+    "rampwise_watch_reset": (_INT, _POINTER),
+    "rampwise_watch_level": (_INT, _POINTER, _SIZE, _POINTER),
+    "rampwise_watch_release": (_INT, _POINTER, _SIZE),
+    "rampwise_watch_events": (_SIZE, _POINTER, _SIZE, _POINTER),
+    "rampwise_watch_counts": (_INT, _POINTER, _POINTER, _POINTER),
+    "rampwise_watch_saved_size": (_SIZE, _POINTER),
+    "rampwise_watch_save": (_INT, _POINTER, _POINTER, _SIZE),
+    "rampwise_watch_resume": (_INT, _POINTER, _POINTER, _SIZE),
     "rampwise_list_log": (_INT, _SIZE, _DOUBLE, _DOUBLE, _POINTER),
     "rampwise_list_octaves": (_INT, _DOUBLE, _DOUBLE, _SIZE, _SIZE, _POINTER, _POINTER),
 }  # fmt: skip
 _IN_SINGLE = (
     "coeffs_make", "start_settled", "acceleration", "total_acceleration", "run", "solve", "bank_size",
     "bank_alignment", "bank_init", "bank_start", "bank_set", "bank_get", "bank_retune", "bank_run", "bank_stopped",
-    "bank_read",
+    "bank_read", "stream_init", "stream_start", "stream_put", "stream_put_raw", "stream_put_at", "stream_put_raw_at",
+    "stream_skip_to", "stream_read", "stream_state", "stream_count", "stream_retune", "stream_attach",
+    "stream_saved_size", "stream_save", "stream_resume", "watch_init", "watch_peak", "watch_reset", "watch_level",
+    "watch_release", "watch_events", "watch_counts", "watch_saved_size", "watch_save", "watch_resume",
 )  # fmt: skip
 _MAKERS = ("coeffs_make",)  # numbers that go in stay double
 _PROTOTYPES.update({
@@ -133,6 +205,10 @@ _ARGUMENTS = {
     "STATE": "state",
     "TIME": "time",
     "OVERFLOW": "record",
+    "GAP": "samples",
+    "DAMAGED": "saved",
+    "KIND": "saved",
+    "EDITION": "saved",
 }
 
 
@@ -190,7 +266,8 @@ try:
     _constant = _function(_loaded, "rampwise_constant", _INT, ctypes.c_char_p, ctypes.POINTER(_INT))
     _status_text = _function(_loaded, "rampwise_status_text", ctypes.c_char_p, _INT)
     _check_version(_version().decode())
-    _check_sizes(_function(_loaded, "rampwise_struct_size", _SIZE, ctypes.c_char_p))
+    _size_of = _function(_loaded, "rampwise_struct_size", _SIZE, ctypes.c_char_p)
+    _check_sizes(_size_of)
     _functions = {name: _function(_loaded, name, *types) for name, types in _PROTOTYPES.items()}
 except AttributeError as error:
     raise ImportError(f"The shared library is not rampwise {__version__}: {error}") from error
@@ -209,6 +286,11 @@ def constant(name: str) -> int:
 
 _STATUS = {constant(f"ERROR_{kind}"): kind for kind in [*_ARGUMENTS, "MEMORY", "MISSING", "NOT_MADE"]}
 OVERFLOW = constant("ERROR_OVERFLOW")
+
+
+def struct_size(name: str) -> int:
+    """Bytes of a struct whose members are private."""
+    return int(_size_of(name.encode()))
 
 
 def status_text(status: int) -> str:

@@ -3,7 +3,9 @@
 from __future__ import annotations
 
 import concurrent.futures
-from typing import Any, Callable, Iterable, Iterator, List, TypeVar
+from typing import Callable, Iterable, Iterator, List, TypeVar
+
+from ._arrays import whole
 
 Task = TypeVar("Task")
 Result = TypeVar("Result")
@@ -28,7 +30,7 @@ def spread(
 
     The library's calls release the interpreter's lock; results do not depend on the number of threads.
     """
-    count = checked_threads(threads)
+    count = whole(threads, "threads", 1)
     if count == 1 or len(tasks) < 2:
         return [work(task) for task in watched(tasks, len(tasks), progress)]
     with concurrent.futures.ThreadPoolExecutor(count) as pool:
@@ -39,11 +41,3 @@ def spread(
             pool.shutdown(wait=True, cancel_futures=True)
             raise
 
-
-def checked_threads(threads: Any) -> int:
-    if isinstance(threads, bool) or not hasattr(threads, "__index__"):
-        raise TypeError(f"threads: a whole number is needed, not {threads!r}")
-    count = int(threads.__index__())
-    if count < 1:
-        raise ValueError("threads: at least 1 is needed")
-    return count

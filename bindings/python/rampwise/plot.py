@@ -15,6 +15,7 @@ Paper = Literal["linear", "log", "four-way"]
 _PAPERS = ("linear", "log", "four-way")
 _COLOURS = ("#1f4e79", "#b3541e", "#4b7f3a", "#7a3b73", "#8a6d1d", "#3f7f86")
 _GRID = "#d5d5d5"
+_NOTED = 4  # with more curves numbers would hide them
 _RISING: Dict[str, Any] = {
     "line": "#a8b8c8",
     "text": {"color": "#44607a", "fontsize": "x-small", "rotation": 45, "rotation_mode": "anchor"},
@@ -115,20 +116,22 @@ def histories(
     for place, name in zip(axes, quantities):
         rows = np.atleast_2d(getattr(response, name))
         rows = rows.reshape(-1, rows.shape[-1])
-        labels = _names(names, len(rows)) if name != "record" else [None] * len(rows)
+        is_first = name == next((other for other in quantities if other != "record"), None)
+        labels = _names(names, len(rows)) if is_first else [None] * len(rows)
         for i, row in enumerate(rows):
             colour = "#555555" if name == "record" else _COLOURS[i % len(_COLOURS)]
             place.plot(response.time, row, color=colour, linewidth=1.1, label=labels[i])
             if name != "record":
                 peak = int(np.argmax(np.abs(row)))
                 place.plot(response.time[peak], row[peak], "o", color=colour, markersize=4)
-                _note_peak(place, response.time[peak], row[peak], colour)
+                if len(rows) <= _NOTED:
+                    _note_peak(place, response.time[peak], row[peak], colour)
         place.axhline(0, color="#888888", linewidth=0.6)
         place.set_ylabel(_label(_HISTORIES[name], units))
         place.margins(x=0, y=0.18)
         _sized(place)
-        if names is not None and name != "record":
-            place.legend(frameon=False, loc="upper right", ncols=len(rows))
+        if names is not None and is_first:
+            place.legend(frameon=False, loc="lower left", bbox_to_anchor=(0, 0.98), ncols=_NOTED, borderaxespad=0)
     axes[-1].set_xlabel(_label(("time", "{time}"), units))
     return list(axes)
 

@@ -453,11 +453,7 @@ def equal_ratios(count: int, first: float, last: float) -> Doubles:
     >>> rampwise.equal_ratios(4, 0.1, 100.0).round(12)
     array([  0.1,   1. ,  10. , 100. ])
     """
-    if isinstance(count, bool) or not hasattr(count, "__index__"):
-        raise TypeError(f"count: a whole number is needed, not {count!r}")
-    if count < 1:
-        raise ValueError("count: at least 1 is needed")
-    values = np.zeros(int(count))
+    values = np.zeros(_arrays.whole(count, "count", 1))
     ends = _arrays.double(first, "first"), _arrays.double(last, "last")
     _library.check(_library.call("list_log", values.size, *ends, _library.address(values)), frequency="first and last")
     return values
@@ -472,15 +468,12 @@ def octaves(first: float, last: float, per_octave: int) -> Doubles:
     >>> rampwise.octaves(1.0, 8.0, 1)
     array([1., 2., 4., 8.])
     """
-    if isinstance(per_octave, bool) or not hasattr(per_octave, "__index__"):
-        raise TypeError(f"per_octave: a whole number is needed, not {per_octave!r}")
-    if per_octave < 1:
-        raise ValueError("per_octave: at least 1 is needed")
+    steps = _arrays.whole(per_octave, "per_octave", 1)
     ends = _arrays.double(first, "first"), _arrays.double(last, "last")
     count = np.zeros(1, np.uintp)
     for capacity in range(2):  # how many, then the values
         values = np.zeros(int(count[0]))
-        status = _library.call("list_octaves", *ends, int(per_octave), values.size,
+        status = _library.call("list_octaves", *ends, steps, values.size,
                                _library.address(values) if capacity else None, _library.address(count))  # fmt: skip
         _library.check(status, frequency="first and last", count="per_octave")
     return values
