@@ -101,6 +101,7 @@ static void measure(report *r, const extent *e, const char *python, const char *
     case_make(in, e->stretch);
     ours_single_tasks(&r->tasks, in);
     ours_bank_tasks(&r->tasks, in);
+    ours_f32_tasks(&r->tasks, in);
     ours_channel_tasks(&r->tasks, in);
     ours_spectrum_tasks(&r->tasks, in);
     textbook_tasks(&r->tasks, in);

@@ -9,6 +9,7 @@ void ours_outcomes(const bench_case *in, outcome *run);
 
 void ours_single_tasks(task_list *list, const bench_case *in);
 void ours_bank_tasks(task_list *list, const bench_case *in);
+void ours_f32_tasks(task_list *list, const bench_case *in);
 void ours_channel_tasks(task_list *list, const bench_case *in);
 void ours_spectrum_tasks(task_list *list, const bench_case *in);
 void textbook_tasks(task_list *list, const bench_case *in);
@@ -22,5 +23,9 @@ int scipy_tasks(task_list *list, const bench_case *in, const char *python, const
    gets the displacements. */
 void inline_step_fused(const rampwise_coeffs *c, rampwise_state *s, size_t n, const double *p, double *u);
 void inline_step_plain(const rampwise_coeffs *c, rampwise_state *s, size_t n, const double *p, double *u);
+void inline_step_f32_fused(const rampwise_coeffs_f32 *c, rampwise_state_f32 *s, size_t n, const float *p,
+                           float *u);
+void inline_step_f32_plain(const rampwise_coeffs_f32 *c, rampwise_state_f32 *s, size_t n, const float *p,
+                           float *u);
 
 #endif

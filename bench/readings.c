@@ -87,6 +87,8 @@ static void of_spectra(readings *all)
         "spectrum of 200 periods at samples: rate / limit, %s", machine_best_set());
     add(all, "spectrum_between_of_samples", times(all, "spectrum_between", "spectrum_samples"), AT_MOST, 1.25,
         "the same between samples / at samples");
+    add(all, "spectrum_evidence_of_samples", times(all, "spectrum_evidence", "spectrum_samples"), AT_MOST,
+        2.2, "the same with evidence / at samples");
 }
 
 static void against_others(readings *all)

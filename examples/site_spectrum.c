@@ -31,10 +31,18 @@ typedef struct part {
 
 static void solve_part(part *p, const site_spectrum *spectrum, const site_record *record)
 {
-    p->status = rampwise_spectrum(record->n, record->interval, record->acceleration,
-                                  RAMPWISE_BASE_ACCELERATION, p->count, spectrum->omega + p->first,
-                                  spectrum->zeta + p->first, looks[p->look].quantity, looks[p->look].flags,
-                                  spectrum->peak[p->look] + p->first, &p->bad);
+    const double *const omega = spectrum->omega + p->first, *const zeta = spectrum->zeta + p->first;
+    rampwise_peak *const peak = spectrum->peak[p->look] + p->first;
+    const int quantity = looks[p->look].quantity;
+    const unsigned flags = looks[p->look].flags;
+    if (p->look < LOOKS_WITH_EVIDENCE)
+        p->status = rampwise_spectrum_evidence(record->n, record->interval, record->acceleration,
+                                               RAMPWISE_BASE_ACCELERATION, p->count, omega, zeta, quantity,
+                                               flags, peak, spectrum->evidence[p->look] + p->first, &p->bad);
+    else
+        p->status =
+            rampwise_spectrum(record->n, record->interval, record->acceleration, RAMPWISE_BASE_ACCELERATION,
+                              p->count, omega, zeta, quantity, flags, peak, &p->bad);
 }
 
 /* No part writes where another one reads or writes, so threads need not wait for each other, and
@@ -98,6 +106,10 @@ static int allocate(site_spectrum *spectrum)
         spectrum->peak[look] = calloc(n, sizeof *spectrum->peak[look]);
         complete = complete && spectrum->peak[look] != NULL;
     }
+    for (int look = 0; look < LOOKS_WITH_EVIDENCE; ++look) {
+        spectrum->evidence[look] = calloc(n, sizeof *spectrum->evidence[look]);
+        complete = complete && spectrum->evidence[look] != NULL;
+    }
     return complete;
 }
 
@@ -137,6 +149,8 @@ void site_spectrum_free(site_spectrum *spectrum)
 {
     for (int look = 0; look < LOOKS; ++look)
         free(spectrum->peak[look]);
+    for (int look = 0; look < LOOKS_WITH_EVIDENCE; ++look)
+        free(spectrum->evidence[look]);
     free(spectrum->period);
     free(spectrum->omega);
     free(spectrum->zeta);
@@ -145,4 +159,13 @@ void site_spectrum_free(site_spectrum *spectrum)
 double site_spectrum_size(const site_spectrum *spectrum, int look, size_t d, size_t i)
 {
     return fabs(rampwise_peak_larger(&spectrum->peak[look][d * spectrum->n_periods + i])->value);
+}
+
+double site_spectrum_corrected(const site_spectrum *spectrum, int look, size_t d, size_t i)
+{
+    const size_t j = d * spectrum->n_periods + i;
+    const rampwise_peak *const peak = &spectrum->peak[look][j];
+    const rampwise_evidence *const evidence = &spectrum->evidence[look][j];
+    const rampwise_instant *const larger = rampwise_peak_larger(peak);
+    return fabs(larger->value - (larger == &peak->high ? evidence->error_high : evidence->error_low));
 }

@@ -33,6 +33,7 @@
 #include "rampwise/peaks.h"
 #include "rampwise/spectrum.h"
 #include "rampwise/output.h"
+#include "rampwise/frequency.h"
 #include "rampwise/watch.h"
 #include "rampwise/stream.h"
 #include "rampwise/foreign.h"

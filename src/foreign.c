@@ -109,6 +109,7 @@ static const struct {
     {"rampwise_peak", sizeof(rampwise_peak)},
     {"rampwise_evidence", sizeof(rampwise_evidence)},
     {"rampwise_output", sizeof(rampwise_output)},
+    {"rampwise_response", sizeof(rampwise_response)},
     {"rampwise_event", sizeof(rampwise_event)},
     {"rampwise_level", sizeof(rampwise_level)},
     {"rampwise_level_report", sizeof(rampwise_level_report)},

@@ -113,10 +113,13 @@ AT(rampwise_evidence, error_low, 8);
 AT(rampwise_evidence, abrupt, 16);
 AT(rampwise_evidence, reserve, 20);
 SIZE(rampwise_evidence, 24);
-
 AT(rampwise_output, row, 0);
 AT(rampwise_output, quantity, 32);
 SIZE(rampwise_output, 40);
+
+AT(rampwise_response, gain, 0);
+AT(rampwise_response, phase, 8);
+SIZE(rampwise_response, 16);
 
 AT(rampwise_event, sample, 0);
 AT(rampwise_event, fraction, 8);

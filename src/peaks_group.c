@@ -84,27 +84,48 @@ void rampwise_group_start_(peaks_group *g, const rampwise_state *s, double p0)
     }
 }
 
+static double larger(double a, double b)
+{
+    return a > b ? a : b;
+}
+
+static double smaller(double a, double b)
+{
+    return a < b ? a : b;
+}
+
 /* A change of the input, finite where it is beyond the range: it meets factors of zero. */
 static double in_range(double change)
 {
     return change < DBL_MAX ? change : DBL_MAX;
 }
 
-/* The greatest sizes of each stretch's samples and changes, the sample before it among them. */
+/* The greatest sizes of one stretch's samples and changes, the sample before it among them: in four parts, which
+   do not wait for each other. */
+static void bound_stretch(size_t n, double before, const double *p, double *largest_p, double *largest_change)
+{
+    double size[4] = {fabs(before), 0, 0, 0}, change[4] = {fabs(p[0] - before), 0, 0, 0};
+    size_t i = 1;
+    for (; i + 4 <= n; i += 4)
+        for (size_t k = 0; k < 4; ++k) {
+            size[k] = larger(fabs(p[i + k - 1]), size[k]);
+            change[k] = larger(fabs(p[i + k] - p[i + k - 1]), change[k]);
+        }
+    for (; i < n; ++i) {
+        size[0] = larger(fabs(p[i - 1]), size[0]);
+        change[0] = larger(fabs(p[i] - p[i - 1]), change[0]);
+    }
+    size[0] = larger(fabs(p[n - 1]), size[0]);
+    *largest_p = larger(larger(size[0], size[1]), larger(size[2], size[3]));
+    *largest_change = in_range(larger(larger(change[0], change[1]), larger(change[2], change[3])));
+}
+
 static void bound_stretches(segment *along)
 {
-    double before = along->from.p;
-    for (size_t i = 0; i < along->n; i += STRETCH) {
-        double largest = fabs(before), change = 0;
-        for (size_t j = i; j < along->n && j < i + STRETCH; ++j) {
-            const double size = fabs(along->p[j]), apart = fabs(along->p[j] - before);
-            largest = size > largest ? size : largest;
-            change = apart > change ? apart : change;
-            before = along->p[j];
-        }
-        along->largest_p[i / STRETCH] = largest;
-        along->largest_change[i / STRETCH] = in_range(change);
-    }
+    for (size_t i = 0; i < along->n; i += STRETCH)
+        bound_stretch(along->n - i < STRETCH ? along->n - i : STRETCH,
+                      i > 0 ? along->p[i - 1] : along->from.p, along->p + i, &along->largest_p[i / STRETCH],
+                      &along->largest_change[i / STRETCH]);
 }
 
 void rampwise_segment_make_(segment *along, const input_end *end, size_t n, const double *p, unsigned looks)
@@ -151,18 +172,28 @@ static double sample_before(const segment *along, size_t k, size_t back)
     return k * STRETCH + 1 == back ? along->from.p : along->from.p_before;
 }
 
+/* What samples reach in any case: less than that, wherever it is, is no peak. */
+typedef struct reach {
+    double high, low;
+} reach;
+
+static int may_hold_more(double high, double low, reach sampled, const rampwise_peak *peak)
+{
+    return (high >= sampled.high && !(high <= peak->high.value)) ||
+           (low <= sampled.low && !(low >= peak->low.value));
+}
+
 /* One step: its beginning where the quantity jumps, its inside where that may hold more, its end, and the
    sample there, z_next. */
 static void look_into_step(const extremes *x, int inside, const rampwise_state *s, const rampwise_state *next,
-                           double z, double z_next, uint64_t sample, rampwise_peak *peak)
+                           double z, double z_next, reach sampled, uint64_t sample, rampwise_peak *peak)
 {
-    const double excess = x->constant + x->from_p * fmax(fabs(s->p), fabs(next->p)) +
+    const double excess = x->constant + x->from_p * larger(fabs(s->p), fabs(next->p)) +
                           x->from_change * in_range(fabs(next->p - s->p)) +
-                          x->from_size * fmax(fabs(z), fabs(z_next));
+                          x->from_size * larger(fabs(z), fabs(z_next));
     if (x->jumps)
         note_value(peak, rampwise_extremes_begin_(x, s, next->p), sample, 0);
-    if (inside &&
-        !(fmax(z, z_next) + excess <= peak->high.value && fmin(z, z_next) - excess >= peak->low.value))
+    if (inside && may_hold_more(larger(z, z_next) + excess, smaller(z, z_next) - excess, sampled, peak))
         rampwise_extremes_inside_(x, s, next, sample, peak);
     if (x->jumps)
         note_value(peak, rampwise_extremes_end_(x, next), sample + 1, 0);
@@ -220,20 +251,24 @@ static void look(const kernels *k, const peaks_group *g, const candidate *at, si
                  findings *found)
 {
     extremes x;
-    double u[STRETCH], v[STRETCH], total[STRETCH];
+    double u[STRETCH], v[STRETCH], total[STRETCH], z[STRETCH + 1];
     rampwise_state s = {at->u, at->v, at->p[1], at->p[0]}, end = s;
     const rampwise_peak before = found->peak;
     rampwise_extremes_bound_(&x, &g->c[j], g->quantity[q]);
     const int inside = !g->at_samples && rampwise_extremes_make_(&x, &g->c[j], g->quantity[q]) == RAMPWISE_OK;
     const rampwise_history out = {u, v, NULL, x.quantity == RAMPWISE_TOTAL_ACCELERATION ? total : NULL};
     const size_t n = k->advance(x.c, &end, 0, at->n, 1, at->p + 2, &out);
-    double z = rampwise_extremes_value_(&x, &s);
+    z[0] = rampwise_extremes_value_(&x, &s);
+    reach sampled = {z[0], z[0]};
     for (size_t i = 0; i < n; ++i) {
         const rampwise_state next = {u[i], v[i], at->p[i + 2], at->p[i + 1]};
-        const double z_next = out.total != NULL ? total[i] : rampwise_extremes_value_(&x, &next);
-        look_into_step(&x, inside, &s, &next, z, z_next, at->sample + i, &found->peak);
+        z[i + 1] = out.total != NULL ? total[i] : rampwise_extremes_value_(&x, &next);
+        sampled = (reach){larger(z[i + 1], sampled.high), smaller(z[i + 1], sampled.low)};
+    }
+    for (size_t i = 0; i < n; ++i) {
+        const rampwise_state next = {u[i], v[i], at->p[i + 2], at->p[i + 1]};
+        look_into_step(&x, inside, &s, &next, z[i], z[i + 1], sampled, at->sample + i, &found->peak);
         s = next;
-        z = z_next;
     }
     if (g->with_evidence && moved(&before.high, &found->peak.high))
         found->evidence.error_high = error_at(&x, at, &found->peak.high);
@@ -409,8 +444,9 @@ static void take_held_step(const peaks_group *g, const extremes *x, last_states 
 {
     rampwise_state next = last->s;
     rampwise_step(x->c, &next, last->s.p);
+    const reach nothing = {-INFINITY, INFINITY};
     look_into_step(x, !g->at_samples, &last->s, &next, rampwise_extremes_value_(x, &last->s),
-                   rampwise_extremes_value_(x, &next), last->sample++, peak);
+                   rampwise_extremes_value_(x, &next), nothing, last->sample++, peak);
     last->s = next;
 }
 

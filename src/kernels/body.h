@@ -248,7 +248,14 @@ static inline __attribute__((always_inline)) int one_input(lane_block *block, si
     return vector_any_nan(zero);
 }
 
-/* As many vectors in flight as there are left, each number with code of its own. */
+/* Vectors in flight next, where the lanes from `at` on are left: so that the last ones are not few. */
+static inline size_t next_flight(size_t lanes, size_t at)
+{
+    const size_t left = (lanes - at + WIDTH - 1) / WIDTH, passes = (left + FLIGHT - 1) / FLIGHT;
+    return (left + passes - 1) / passes;
+}
+
+/* Each number of vectors in flight has code of its own. */
 static int under_one_input(lane_block *block, size_t lanes, real p_last, size_t n, const real *p,
                            real *largest)
 {
@@ -256,9 +263,9 @@ static int under_one_input(lane_block *block, size_t lanes, real p_last, size_t 
     (largest != NULL ? one_input(block, at, flight, 1, p_last, n, p, largest)                                \
                      : one_input(block, at, flight, 0, p_last, n, p, NULL))
     int lost = 0;
-    for (size_t at = 0; at < lanes; at += FLIGHT * WIDTH) {
-        const size_t left = (lanes - at + WIDTH - 1) / WIDTH;
-        lost |= left == 1 ? FLY(1) : left == 2 || FLIGHT == 2 ? FLY(2) : left == 3 ? FLY(3) : FLY(4);
+    for (size_t at = 0, flight = 0; at < lanes; at += flight * WIDTH) {
+        flight = next_flight(lanes, at);
+        lost |= flight == 1 ? FLY(1) : flight == 2 || FLIGHT == 2 ? FLY(2) : flight == 3 ? FLY(3) : FLY(4);
     }
 #undef FLY
     return lost;
@@ -276,30 +283,59 @@ static inline VECTOR looked_at(int q, real (*row)[LANES], size_t lane, VECTOR u,
         vector_fma(vector_load(row[1] + lane), v, vector_product(vector_load(row[2] + lane), p)));
 }
 
+/* The greatest and least of what is looked at, so far. A NaN does not count. */
+typedef struct range {
+    VECTOR top[3][FLIGHT], bottom[3][FLIGHT];
+} range;
+
+static inline __attribute__((always_inline)) void widen(range *r, unsigned looked, real (*row)[LANES],
+                                                        size_t lane, int j, const moving *m, VECTOR p)
+{
+    for (int q = 0; q < 3; ++q)
+        if (looked >> q & 1) {
+            const VECTOR z = looked_at(q, row, lane, m->u, m->v, p);
+            r->top[q][j] = vector_larger(z, r->top[q][j]);
+            r->bottom[q][j] = vector_smaller(z, r->bottom[q][j]);
+        }
+}
+
+/* Two steps of one vector after the other, so that its coefficients are fetched once for both. */
 static inline __attribute__((always_inline)) int one_stretch(lane_block *block, size_t at, int flight,
                                                              unsigned looked, real (*row)[LANES], real p_last,
                                                              size_t n, const real *p, real (*high)[LANES],
                                                              real (*low)[LANES])
 {
     moving m[FLIGHT];
-    VECTOR top[3][FLIGHT], bottom[3][FLIGHT];
+    range r;
     for (int j = 0; j < flight; ++j)
         m[j] = load_moving(block, at + (size_t)j * WIDTH);
     int was_silent = is_silent(p_last);
     VECTOR before = vector_all(p_last);
     for (int q = 0; q < 3; ++q)
         for (int j = 0; (looked >> q & 1) && j < flight; ++j)
-            top[q][j] = bottom[q][j] = looked_at(q, row, at + (size_t)j * WIDTH, m[j].u, m[j].v, before);
-    for (size_t i = 0; i < n; ++i) {
+            r.top[q][j] = r.bottom[q][j] = looked_at(q, row, at + (size_t)j * WIDTH, m[j].u, m[j].v, before);
+    size_t i = 0;
+    for (; i + 2 <= n; i += 2) {
+        const VECTOR now = vector_all(p[i]), next = vector_all(p[i + 1]);
+        const int silent = is_silent(p[i]), silent_next = is_silent(p[i + 1]);
+        if (__builtin_expect(silent & (was_silent | silent_next), 0))
+            break;
+        for (int j = 0; j < flight; ++j) {
+            const size_t lane = at + (size_t)j * WIDTH;
+            step_moving(block, lane, &m[j], before, now);
+            widen(&r, looked, row, lane, j, &m[j], now);
+            step_moving(block, lane, &m[j], now, next);
+            widen(&r, looked, row, lane, j, &m[j], next);
+        }
+        was_silent = silent_next;
+        before = next;
+    }
+    for (; i < n; ++i) {
         const VECTOR now = vector_all(p[i]);
         const int silent = is_silent(p[i]);
         step_together(block, at, flight, m, before, now, silent & was_silent);
-        for (int q = 0; q < 3; ++q)
-            for (int j = 0; (looked >> q & 1) && j < flight; ++j) {
-                const VECTOR z = looked_at(q, row, at + (size_t)j * WIDTH, m[j].u, m[j].v, now);
-                top[q][j] = vector_larger(z, top[q][j]);
-                bottom[q][j] = vector_smaller(z, bottom[q][j]);
-            }
+        for (int j = 0; j < flight; ++j)
+            widen(&r, looked, row, at + (size_t)j * WIDTH, j, &m[j], now);
         was_silent = silent;
         before = now;
     }
@@ -310,33 +346,46 @@ static inline __attribute__((always_inline)) int one_stretch(lane_block *block, 
         zero = zero_if_finite(&m[j], zero);
         for (int q = 0; q < 3; ++q)
             if (looked >> q & 1) {
-                vector_store(high[q] + lane, top[q][j]);
-                vector_store(low[q] + lane, bottom[q][j]);
+                vector_store(high[q] + lane, r.top[q][j]);
+                vector_store(low[q] + lane, r.bottom[q][j]);
             }
     }
     return vector_any_nan(zero);
 }
 
-/* Each choice of quantities has code of its own. */
+/* Each choice of quantities has code of its own, and for a single one each number of vectors in flight. */
 static int stretch(lane_block *block, size_t lanes, unsigned looked, real (*row)[LANES], real p_last,
                    size_t n, const real *p, real (*high)[LANES], real (*low)[LANES])
 {
+#define FLY(which, flight) one_stretch(block, at, flight, which, row, p_last, n, p, high, low)
 #define LOOK(which)                                                                                          \
     case which:                                                                                              \
-        lost |= one_stretch(block, at, FLIGHT, which, row, p_last, n, p, high, low);                         \
+        lost |= flight == 1   ? FLY(which, 1)                                                                \
+                : flight == 2 ? FLY(which, 2)                                                                \
+                : flight == 3 ? FLY(which, 3)                                                                \
+                              : FLY(which, 4);                                                               \
+        break
+#define LOOK_AT_MORE(which)                                                                                  \
+    case which:                                                                                              \
+        lost |= FLY(which, FLIGHT);                                                                          \
+        flight = FLIGHT;                                                                                     \
         break
     int lost = 0;
-    for (size_t at = 0; at < lanes; at += FLIGHT * WIDTH)
+    for (size_t at = 0, flight = 0; at < lanes; at += flight * WIDTH) {
+        flight = next_flight(lanes, at);
         switch (looked) {
             LOOK(1);
             LOOK(2);
-            LOOK(3);
             LOOK(4);
-            LOOK(5);
-            LOOK(6);
-            LOOK(7);
+            LOOK_AT_MORE(3);
+            LOOK_AT_MORE(5);
+            LOOK_AT_MORE(6);
+            LOOK_AT_MORE(7);
         }
+    }
+#undef LOOK_AT_MORE
 #undef LOOK
+#undef FLY
     return lost;
 }
 

@@ -301,6 +301,109 @@ static void irregular(void)
     printf("irregular %016" PRIx64 "\n", hash);
 }
 
+typedef struct single_answers {
+    float u[N], v[N], a[N], total[N];
+    rampwise_state_f32 end;
+} single_answers;
+
+static rampwise_history_f32 single_into(single_answers *o, int from)
+{
+    return (rampwise_history_f32){o->u + from, o->v + from, o->a + from, o->total + from};
+}
+
+static rampwise_state_f32 single_first(float p0)
+{
+    rampwise_state_f32 s;
+    rampwise_start_f32(&s, 0.25f, -0.5f, p0);
+    return s;
+}
+
+static void single_inline(const rampwise_coeffs_f32 *c, const float *p, single_answers *o)
+{
+    rampwise_state_f32 s = single_first(p[0]);
+    for (int i = 1; i < N; ++i) {
+        rampwise_step_f32(c, &s, p[i]);
+        o->u[i] = s.u;
+        o->v[i] = s.v;
+        o->a[i] = rampwise_acceleration_f32(c, &s);
+        o->total[i] = rampwise_total_acceleration_f32(c, &s);
+    }
+    o->end = s;
+}
+
+static void single_run(const rampwise_coeffs_f32 *c, const float *p, single_answers *o)
+{
+    const rampwise_history_f32 out = single_into(o, 1);
+    o->end = single_first(p[0]);
+    if (rampwise_run_f32(c, &o->end, N - 1, p + 1, &out, NULL) != RAMPWISE_OK)
+        exit(EXIT_FAILURE);
+}
+
+/* The oscillator as number 2 of a bank of 3, its history and its state. */
+static void single_bank(int set, const rampwise_coeffs_f32 *c, const float *p, single_answers *o)
+{
+    const rampwise_coeffs_f32 all[3] = {*c, *c, *c};
+    const size_t chosen = 2;
+    rampwise_state_f32 s[3] = {single_first(p[0]), single_first(p[0]), single_first(p[0])};
+    rampwise_bank_wanted_f32 wanted;
+    rampwise_bank_f32 *bank;
+    s[0].u = 3;
+    s[1].v = 4;
+    rampwise_bank_wanted_init_f32(&wanted);
+    wanted.chosen_count = 1;
+    wanted.chosen = &chosen;
+    wanted.history = single_into(o, 1);
+    if (rampwise_bank_create_f32(3, all, set, &bank) != RAMPWISE_OK ||
+        rampwise_bank_set_f32(bank, s) != RAMPWISE_OK ||
+        rampwise_bank_run_f32(bank, N - 1, p + 1, &wanted, NULL) != RAMPWISE_OK ||
+        rampwise_bank_get_f32(bank, s) != RAMPWISE_OK)
+        exit(EXIT_FAILURE);
+    o->end = s[2];
+    rampwise_bank_free_f32(bank);
+}
+
+static void singles(const char *name,
+                    void (*by)(const rampwise_coeffs_f32 *, const float *, single_answers *))
+{
+    static double p[N];
+    static float single_p[N];
+    static single_answers o;
+    uint64_t hash = empty;
+    state = 78;
+    for (int i = 0; i < OSCILLATORS; ++i) {
+        const int kind = i % KINDS;
+        rampwise_system sys = random_system(kind);
+        rampwise_coeffs_f32 c;
+        sys.stiffness = sys.stiffness < 0 ? -sys.stiffness : sys.stiffness;
+        sys.damper = sys.damper < 0 ? -sys.damper : sys.damper;
+        record(p, N);
+        for (int j = 0; j < N; ++j)
+            single_p[j] = (float)p[j];
+        single_p[N / 2 + 1] = (float)signed_number(-95);
+        if (rampwise_coeffs_make_f32(&c, &sys, 0x1p-7, kinds[kind][0], kinds[kind][1]) != RAMPWISE_OK)
+            exit(EXIT_FAILURE);
+        hash = hashed(hash, &c, sizeof c);
+        memset(&o, 0, sizeof o);
+        by(&c, single_p, &o);
+        hash = hashed(hash, &o, sizeof o);
+    }
+    printf("singles.%s %016" PRIx64 "\n", name, hash);
+}
+
+/* Every set that runs here, each with the answers of the first. */
+static void single_sets(const rampwise_coeffs_f32 *c, const float *p, single_answers *o)
+{
+    static single_answers other;
+    single_bank(RAMPWISE_BASELINE, c, p, o);
+    for (int set = RAMPWISE_BASELINE + 1; set <= RAMPWISE_NEON; ++set)
+        if (rampwise_instructions(set) == set) {
+            memset(&other, 0, sizeof other);
+            single_bank(set, c, p, &other);
+            if (memcmp(o, &other, sizeof other) != 0)
+                printf("instructions %d differ in single precision\n", set);
+        }
+}
+
 int main(void)
 {
     const int status = rampwise_self_test();
@@ -317,5 +420,8 @@ int main(void)
     histories("times", by_times);
     histories("records", by_records);
     histories("banks", by_banks);
+    singles("inline", single_inline);
+    singles("run", single_run);
+    singles("banks", single_sets);
     return EXIT_SUCCESS;
 }
