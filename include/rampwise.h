@@ -2,7 +2,7 @@
 
    The headers are the reference manual, in the order in which data goes through them:
 
-       system -> coefficients -> step -> record, channels, bank -> peaks, spectrum
+       system -> coefficients -> step -> record, channels, bank -> peaks, evidence, spectrum, energy
                                        -> output, watch, stream (live data)
 
    A record in a few lines:
@@ -36,6 +36,7 @@
 #include "rampwise/frequency.h"
 #include "rampwise/watch.h"
 #include "rampwise/stream.h"
+#include "rampwise/energy.h"
 #include "rampwise/foreign.h"
 
 #endif

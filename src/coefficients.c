@@ -4,9 +4,9 @@
 #include <stddef.h>
 #include <stdint.h>
 #include <string.h>
+#include "one_step.h"
 #include "precision.h"
 #include "rampwise/status.h"
-#include "step_response.h"
 
 #ifdef SINGLE_PRECISION
 enum { COMPUTED = offsetof(rampwise_coeffs_f32, dt) / sizeof(float) }; /* members that can overflow */
@@ -38,6 +38,17 @@ static float quotient(double x, double y)
     return rounded_power(q.value, q.exponent);
 }
 
+/* factor x, rounded once */
+static float real_product(scaled factor, twofold x)
+{
+    return rounded_power(twofold_multiply(factor.value, x), factor.exponent);
+}
+
+static float real_value(twofold x)
+{
+    return rounded_power(x, 0);
+}
+
 static void describe(rampwise_coeffs_f32 *c, const rampwise_system *sys)
 {
     c->mass = (float)sys->mass;
@@ -48,14 +59,19 @@ static void describe(rampwise_coeffs_f32 *c, const rampwise_system *sys)
 #else
 enum { COMPUTED = offsetof(rampwise_coeffs, system) / sizeof(double) };
 
-static double rounded_power(twofold x, int exponent)
-{
-    return ldexp(x.hi, exponent) + 0.0;
-}
-
 static double quotient(double x, double y)
 {
     return x / y;
+}
+
+static double real_product(scaled factor, twofold x)
+{
+    return rounded(factor, x);
+}
+
+static double real_value(twofold x)
+{
+    return x.hi + 0.0;
 }
 
 static void describe(rampwise_coeffs *c, const rampwise_system *sys)
@@ -64,23 +80,12 @@ static void describe(rampwise_coeffs *c, const rampwise_system *sys)
 }
 #endif
 
-/* factor x, rounded once */
-static real rounded(scaled factor, twofold x)
-{
-    return rounded_power(twofold_multiply(factor.value, x), factor.exponent);
-}
-
 /* (K x + S y) unit, rounded once. */
-static real rounded_pair(const step *s, twofold x, twofold y, scaled unit)
+static real real_pair(const step *s, twofold x, twofold y, scaled unit)
 {
-    const int exponent = s->K.exponent > s->S.exponent ? s->K.exponent : s->S.exponent;
-    const scaled K = {s->K.value, s->K.exponent - exponent};
-    const scaled S = {s->S.value, s->S.exponent - exponent};
-    const twofold sum = twofold_add(twofold_multiply(beside_one(K), x), twofold_multiply(beside_one(S), y));
-    return rounded((scaled){unit.value, unit.exponent + exponent}, sum);
+    const twofold sum = weighted_pair(s, x, y, &unit);
+    return real_product(unit, sum);
 }
-
-static const scaled unity = {{0.5, 0}, 1};
 
 /* A to B', and both increments: the same for every input. */
 static void free_motion(real_coeffs *c, const step *s, const response *r)
@@ -88,34 +93,34 @@ static void free_motion(real_coeffs *c, const step *s, const response *r)
     const twofold one = {1, 0};
     const twofold A = twofold_subtract(one, twofold_multiply(beside_one(s->K), r->G1));
     const twofold Sg = twofold_multiply(beside_one(s->S), r->g);
-    c->A = rounded_power(A, 0);
-    c->B = rounded(s->h, r->g);
-    c->Ap = -rounded(s->stiffness_h_over_m, r->g) + 0;
-    c->Bp = rounded_power(twofold_subtract(A, Sg), 0);
-    c->A_minus_1 = -rounded(s->K, r->G1) + 0;
-    c->Bp_minus_1 = -rounded_pair(s, r->G1, r->g, unity) + 0;
+    c->A = real_value(A);
+    c->B = real_product(s->h, r->g);
+    c->Ap = -real_product(s->stiffness_h_over_m, r->g) + 0;
+    c->Bp = real_value(twofold_subtract(A, Sg));
+    c->A_minus_1 = -real_product(s->K, r->G1) + 0;
+    c->Bp_minus_1 = -real_pair(s, r->G1, r->g, unity) + 0;
 }
 
 /* C, D, C', D' where the input acts as a force, unit times the one of the oscillator without units. */
 static void load_on_mass(real_coeffs *c, const response *r, scaled for_u, scaled for_v)
 {
     if (c->between == RAMPWISE_HOLD) {
-        c->C = rounded(for_u, r->G1);
-        c->Cp = rounded(for_v, r->g);
+        c->C = real_product(for_u, r->G1);
+        c->Cp = real_product(for_v, r->g);
         return;
     }
-    c->C = rounded(for_u, twofold_subtract(r->G1, r->G2));
-    c->D = rounded(for_u, r->G2);
-    c->Cp = rounded(for_v, twofold_subtract(r->g, r->G1));
-    c->Dp = rounded(for_v, r->G1);
+    c->C = real_product(for_u, twofold_subtract(r->G1, r->G2));
+    c->D = real_product(for_u, r->G2);
+    c->Cp = real_product(for_v, twofold_subtract(r->g, r->G1));
+    c->Dp = real_product(for_v, r->G1);
 }
 
 /* A ramp of base velocity is the constant force m (v0 - v1)/h on the relative motion. */
 static void base_velocity(real_coeffs *c, const step *s, const response *r)
 {
-    c->C = rounded(s->h, r->G1);
+    c->C = real_product(s->h, r->G1);
     c->D = -c->C;
-    c->Cp = rounded(unity, r->g);
+    c->Cp = real_product(unity, r->g);
     c->Dp = -c->Cp;
 }
 
@@ -128,10 +133,10 @@ static void base_displacement(real_coeffs *c, const step *s, const response *r)
         load_on_mass(c, r, s->K, s->stiffness_h_over_m);
         return;
     }
-    c->C = rounded_pair(s, twofold_subtract(r->G1, r->G2), twofold_negative(r->G1), unity);
-    c->D = rounded_pair(s, r->G2, r->G1, unity);
-    c->Cp = rounded_pair(s, twofold_subtract(r->g, r->G1), twofold_negative(r->g), per_h);
-    c->Dp = rounded_pair(s, r->G1, r->g, per_h);
+    c->C = real_pair(s, twofold_subtract(r->G1, r->G2), twofold_negative(r->G1), unity);
+    c->D = real_pair(s, r->G2, r->G1, unity);
+    c->Cp = real_pair(s, twofold_subtract(r->g, r->G1), twofold_negative(r->g), per_h);
+    c->Dp = real_pair(s, r->G1, r->g, per_h);
 }
 
 static void input_terms(real_coeffs *c, const step *s, const response *r)
@@ -172,7 +177,8 @@ static void acceleration_rows(real_coeffs *c, const step *s, const rampwise_syst
         break;
     default:
         c->acceleration[2] = c->total[2] = stiffness;
-        c->acceleration[3] = c->total[3] = rounded(scaled_divide(s->S, scaled_multiply(s->h, s->h)), one);
+        c->acceleration[3] = c->total[3] =
+            real_product(scaled_divide(s->S, scaled_multiply(s->h, s->h)), one);
     }
 }
 
@@ -192,7 +198,11 @@ int PUBLIC(coeffs_make)(real_coeffs *c, const rampwise_system *sys, double dt, i
     response r;
     if (c == NULL || sys == NULL)
         return RAMPWISE_ERROR_MISSING;
-    const int status = rampwise_step_response_(&s, &r, sys, dt, input, between);
+    int status = rampwise_step_refused_(sys, dt, input, between);
+    if (status == RAMPWISE_OK)
+        status = rampwise_step_scale_(&s, sys, dt);
+    if (status == RAMPWISE_OK)
+        status = rampwise_step_response_(&r, NULL, &s);
     if (status != RAMPWISE_OK)
         return status;
     real_coeffs made;

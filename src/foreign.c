@@ -21,6 +21,7 @@ static const struct {
     CONSTANT(RAMPWISE_ERROR_INPUT),
     CONSTANT(RAMPWISE_ERROR_BETWEEN),
     CONSTANT(RAMPWISE_ERROR_IMPULSES),
+    CONSTANT(RAMPWISE_ERROR_FRAME),
     CONSTANT(RAMPWISE_ERROR_NOT_MADE),
     CONSTANT(RAMPWISE_ERROR_DIFFERENT),
     CONSTANT(RAMPWISE_ERROR_NAME),
@@ -90,6 +91,8 @@ static const struct {
     CONSTANT(RAMPWISE_GAP_HOLD),
     CONSTANT(RAMPWISE_GAP_REFUSE),
     CONSTANT(RAMPWISE_GAP_RESTART),
+    CONSTANT(RAMPWISE_RELATIVE),
+    CONSTANT(RAMPWISE_ABSOLUTE),
 };
 
 static const struct {
@@ -126,6 +129,8 @@ static const struct {
     {"rampwise_watch_f32", sizeof(rampwise_watch_f32)},
     {"rampwise_interval_f32", sizeof(rampwise_interval_f32)},
     {"rampwise_stream_f32", sizeof(rampwise_stream_f32)},
+    {"rampwise_energy", sizeof(rampwise_energy)},
+    {"rampwise_meter", sizeof(rampwise_meter)},
 };
 
 int rampwise_constant(const char *name, int *value)

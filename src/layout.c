@@ -213,3 +213,21 @@ SIZE(rampwise_watch, 872);
 SIZE(rampwise_stream_f32, 960);
 SIZE(rampwise_watch_f32, 640);
 #endif
+AT(rampwise_energy, input, 0);
+AT(rampwise_energy, kinetic, 8);
+AT(rampwise_energy, strain, 16);
+AT(rampwise_energy, dissipated, 24);
+SIZE(rampwise_energy, 32);
+
+AT(rampwise_meter, coeffs, 0);
+AT(rampwise_meter, work, 256);
+AT(rampwise_meter, into_velocity, 328);
+AT(rampwise_meter, into_force, 344);
+AT(rampwise_meter, squares, 352);
+AT(rampwise_meter, input, 376);
+AT(rampwise_meter, dissipated, 392);
+AT(rampwise_meter, base_velocity, 408);
+AT(rampwise_meter, frame, 424);
+AT(rampwise_meter, zero, 428);
+AT(rampwise_meter, reserve, 432);
+SIZE(rampwise_meter, 512);

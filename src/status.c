@@ -13,8 +13,10 @@ const char *rampwise_status_text(int status)
     case RAMPWISE_ERROR_BETWEEN:
         return "The input between samples is neither ramp nor hold";
     case RAMPWISE_ERROR_IMPULSES:
-        return "Held base velocity, and held base displacement with a damper, are trains of "
-               "impulses";
+        return "Held base velocity, held base displacement with a damper, and the relative energies of a "
+               "base displacement, would be trains of impulses";
+    case RAMPWISE_ERROR_FRAME:
+        return "The frame of the energies is neither relative nor absolute";
     case RAMPWISE_ERROR_NOT_MADE:
         return "The coefficients have not been made";
     case RAMPWISE_ERROR_DIFFERENT:

@@ -404,6 +404,29 @@ static void single_sets(const rampwise_coeffs_f32 *c, const float *p, single_ans
         }
 }
 
+/* Every system for which there is a meter, in both frames, and the refusals of the others. */
+static void energies(void)
+{
+    static double p[N];
+    static rampwise_energy e[N];
+    uint64_t hash = empty;
+    record(p, N);
+    for (int i = 0; i < 2 * OSCILLATORS; ++i) {
+        const int kind = i % KINDS, frame = i < OSCILLATORS ? RAMPWISE_RELATIVE : RAMPWISE_ABSOLUTE;
+        const rampwise_system sys = random_system(kind);
+        rampwise_coeffs c;
+        size_t bad = 0;
+        if (rampwise_coeffs_make(&c, &sys, 0x1p-7, kinds[kind][0], kinds[kind][1]) != RAMPWISE_OK)
+            exit(EXIT_FAILURE);
+        memset(e, 0, sizeof e);
+        const int status = rampwise_energy_solve(&c, frame, 0.25, -0.5, N, p, e, &bad);
+        hash = hashed(hash, &status, sizeof status);
+        hash = hashed(hash, &bad, sizeof bad);
+        hash = hashed(hash, e, sizeof e);
+    }
+    printf("energies %016" PRIx64 "\n", hash);
+}
+
 int main(void)
 {
     const int status = rampwise_self_test();
@@ -413,6 +436,7 @@ int main(void)
     }
     coefficients();
     irregular();
+    energies();
     histories("inline", by_inline_steps);
     histories("run", by_one_call);
     histories("chunks", by_chunks);

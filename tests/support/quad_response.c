@@ -206,3 +206,105 @@ quad quad_value(const rampwise_coeffs *c, double u0, double v0, size_t n, const 
 {
     return go(c, u0, v0, n, p, quantity, time, NULL);
 }
+
+enum { FACTORS = 26 }; /* of a quarter radian: the rest is below 1e-40 */
+
+/* Integral over x from 0 to 1 of the product of two polynomials */
+static quad integral_of_product(const quad *a, int a_count, const quad *b, int b_count)
+{
+    quad sum = 0;
+    for (int i = 0; i < a_count; ++i)
+        for (int j = 0; j < b_count; ++j)
+            sum += a[i] * b[j] / (i + j + 1);
+    return sum;
+}
+
+/* The frame's base velocity, where it has one */
+typedef struct frame_motion {
+    int absolute;
+    quad velocity;
+} frame_motion;
+
+/* Over one piece of a step: work of the frame's force and what the damper takes. */
+static void add_piece(const rampwise_coeffs *c, frame_motion *frame, const motion *m, quad length, quad slope,
+                      quad_energy *energy)
+{
+    const quad h = length * (quad)c->dt, load[2] = {m->f, m->f_slope * h};
+    series s;
+    quad w[FACTORS], a[FACTORS];
+    series_of(c, RAMPWISE_DISPLACEMENT, m, h, &s);
+    for (int n = 0; n < FACTORS; ++n) {
+        w[n] = (n + 1) * s.y[n + 1] / h;
+        a[n] = (n + 1) * (n + 2) * s.y[n + 2] / (h * h) - (n < 2 ? load[n] : 0);
+    }
+    energy->dissipated += (quad)c->system.damper * h * integral_of_product(w, FACTORS, w, FACTORS);
+    if (!frame->absolute || c->input == RAMPWISE_FORCE) {
+        energy->input += (quad)c->system.mass * h * integral_of_product(load, 2, w, FACTORS);
+        return;
+    }
+    if (c->input == RAMPWISE_BASE_DISPLACEMENT)
+        frame->velocity = slope;
+    const quad base[3] = {frame->velocity, -load[0] * h, -load[1] * h / 2};
+    energy->input += (quad)c->system.mass * h * integral_of_product(a, FACTORS, base, 3);
+    frame->velocity = base[0] + base[1] + base[2];
+}
+
+static void take_changes(const quad_energy *before, const quad_energy *now, quad moved[4], quad *largest)
+{
+    moved[0] += size_of(now->input - before->input);
+    moved[1] += size_of(now->kinetic - before->kinetic);
+    moved[2] += size_of(now->strain - before->strain);
+    moved[3] += size_of(now->dissipated - before->dissipated);
+    *largest = 0;
+    for (int i = 0; i < 4; ++i)
+        *largest = moved[i] > *largest ? moved[i] : *largest;
+}
+
+/* Those of the motion that is reached. */
+static void note_motion(const rampwise_coeffs *c, const frame_motion *frame, const motion *m, quad slope,
+                        quad_energy *energy)
+{
+    const quad base = c->input == RAMPWISE_BASE_DISPLACEMENT ? slope : frame->absolute ? frame->velocity : 0;
+    energy->kinetic = (quad)c->system.mass * (m->w + base) * (m->w + base) / 2;
+    energy->strain = (quad)c->system.stiffness * m->y * m->y / 2;
+}
+
+/* Steps are cut into four pieces or more, so that what comes and goes inside them is seen. */
+void quad_energies(const rampwise_coeffs *c, int frame_kind, double u0, double v0, size_t n, const double *p,
+                   quad_energy *energy)
+{
+    const int pieces = pieces_for(c) < 4 ? 4 : pieces_for(c);
+    const quad length = (quad)1 / pieces, h = length * (quad)c->dt;
+    const quad_energy nothing = {0, 0, 0, 0, 0, 0};
+    motion m = at_start(c, u0, v0, p[0]);
+    frame_motion frame = {frame_kind == RAMPWISE_ABSOLUTE, c->input == RAMPWISE_BASE_VELOCITY ? p[0] : 0};
+    quad slope = 0, moved[4] = {0, 0, 0, 0}, moved_inside[4] = {0, 0, 0, 0};
+    energy[0] = nothing;
+    note_motion(c, &frame, &m, slope, &energy[0]);
+    take_changes(&nothing, &energy[0], moved, &energy[0].moved);
+    take_changes(&nothing, &energy[0], moved_inside, &energy[0].moved_inside);
+    for (size_t i = 0; i + 1 < n; ++i) {
+        quad_energy now = energy[i];
+        series s;
+        enter_step(c, &m, p[i], p[i + 1], &slope);
+        for (int k = 0; k < pieces; ++k) {
+            const quad_energy before = now;
+            add_piece(c, &frame, &m, length, slope, &now);
+            series_of(c, RAMPWISE_DISPLACEMENT, &m, h, &s);
+            m.y = derivative_at(s.y, 0, 1);
+            m.w = derivative_at(s.y, 1, 1) / h;
+            m.f += m.f_slope * h;
+            note_motion(c, &frame, &m, slope, &now);
+            take_changes(&before, &now, moved_inside, &now.moved_inside);
+        }
+        if (c->input == RAMPWISE_BASE_DISPLACEMENT && c->between == RAMPWISE_HOLD) {
+            const quad_energy before = now;
+            m.y -= (quad)p[i + 1] - (quad)p[i];
+            note_motion(c, &frame, &m, slope, &now);
+            now.input += now.strain - before.strain;
+            take_changes(&before, &now, moved_inside, &now.moved_inside);
+        }
+        take_changes(&energy[i], &now, moved, &now.moved);
+        energy[i + 1] = now;
+    }
+}

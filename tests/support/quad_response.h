@@ -27,4 +27,14 @@ void quad_response(const rampwise_coeffs *c, double u0, double v0, size_t n, con
 quad quad_value(const rampwise_coeffs *c, double u0, double v0, size_t n, const double *p, int quantity,
                 quad time);
 
+/* Energies of the same response at the samples, by their definitions: the products under the integrals are
+   multiplied out. moved is the largest, over the four, of the sums of the sizes of all changes so far, the energy
+   at the start being the first; moved_inside also counts what comes and goes inside the steps. frame is one of energy.h. */
+typedef struct quad_energy {
+    quad input, kinetic, strain, dissipated, moved, moved_inside;
+} quad_energy;
+
+void quad_energies(const rampwise_coeffs *c, int frame, double u0, double v0, size_t n, const double *p,
+                   quad_energy *energy);
+
 #endif

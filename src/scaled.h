@@ -1,10 +1,8 @@
-/* The response of one oscillator over one step, in twofold arithmetic: what the coefficients of both precisions
-   are rounded from. */
-#ifndef RAMPWISE_STEP_RESPONSE_H
-#define RAMPWISE_STEP_RESPONSE_H
+/* Twofold numbers with an exponent of their own, for what is on the way to a coefficient. */
+#ifndef RAMPWISE_SCALED_H
+#define RAMPWISE_SCALED_H
 
 #include <math.h>
-#include "rampwise/system.h"
 #include "twofold.h"
 
 /* A twofold number times a power of two, so that the range of doubles does not limit what is on the
@@ -50,19 +48,12 @@ static inline twofold beside_one(scaled a)
     return a.exponent < -120 ? (twofold){0, 0} : twofold_times_power(a.value, a.exponent);
 }
 
-/* One oscillator and one step, without units: K = k h^2/m, S = c h/m. */
-typedef struct step {
-    scaled K, S, h, h_over_m, stiffness_h_over_m;
-} step;
+static const scaled unity = {{0.5, 0}, 1};
 
-/* Displacements after the step, from rest, for a unit of initial velocity, of constant load and of
-   a ramp from zero to one, in units of h, h^2/m and h^3/m. They satisfy g + S G1 + K G2 = 1. */
-typedef struct response {
-    twofold g, G1, G2;
-} response;
-
-/* Of sys over dt for an input and between: RAMPWISE_OK, or what rampwise_coeffs_make answers. */
-int rampwise_step_response_(step *s, response *r, const rampwise_system *sys, double dt, int input,
-                            int between);
+/* factor x, rounded once; + 0.0 makes -0 plain. */
+static inline double rounded(scaled factor, twofold x)
+{
+    return ldexp(twofold_multiply(factor.value, x).hi, factor.exponent) + 0.0;
+}
 
 #endif
