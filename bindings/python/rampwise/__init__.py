@@ -10,6 +10,7 @@ Three lines::
 `System`, `System.natural`            systems by mass, damper, stiffness, or by period, frequency, omega
 `respond`                             whole records, at regular or irregular times
 `response_spectrum`                   SD, SV, SA, PSV, PSA with instants and signs
+`energies`, `energy_spectrum`         where the energy goes
 `for_each`                            many records of unequal length; a bad one does not stop the rest
 `Bank`                                many oscillators under one input, fed in blocks
 `Stream`, `Level`                     one oscillator on live data, with gaps, rails, watches that trip
@@ -26,6 +27,7 @@ governing code and a licensed engineer's judgement.
 from ._library import arithmetic_edition, library_version
 from ._version import __version__
 from .bank import Bank
+from .energy import Energies, EnergyHistory, EnergySpectrum, energies, energy_spectrum
 from .records import Outcomes, for_each
 from .response import Response, respond
 from .stream import BRIDGED, CLIPPED, STARTED, WAITING, Event, Level, LevelReport, Stream, Watch
@@ -36,6 +38,9 @@ __all__ = [
     "BRIDGED",
     "Bank",
     "CLIPPED",
+    "Energies",
+    "EnergyHistory",
+    "EnergySpectrum",
     "Event",
     "Level",
     "LevelReport",
@@ -51,6 +56,8 @@ __all__ = [
     "__version__",
     "arithmetic_edition",
     "coefficients",
+    "energies",
+    "energy_spectrum",
     "equal_ratios",
     "for_each",
     "library_version",

@@ -39,6 +39,7 @@ STATE_F32 = np.dtype([(name, "f4") for name in ("u", "v", "p", "p_before", "u_lo
 INSTANT = np.dtype([("value", "f8"), ("sample", "u8"), ("fraction", "f8")])
 PEAK = np.dtype([("high", INSTANT), ("low", INSTANT)])
 EVIDENCE = np.dtype([("error_high", "f8"), ("error_low", "f8"), ("abrupt", "u4"), ("reserve", "u4")])
+ENERGY = np.dtype([(name, "f8") for name in ("input", "kinetic", "strain", "dissipated")])
 HISTORY = np.dtype([(name, np.uintp) for name in ("u", "v", "a", "total")])
 BANK_WANTED = np.dtype(
     [("size", np.uintp), ("largest", np.uintp), ("chosen_count", np.uintp), ("chosen", np.uintp)]
@@ -84,6 +85,7 @@ _STRUCTS = {
     "rampwise_history_f32": HISTORY,
     "rampwise_bank_wanted_f32": BANK_WANTED,
     "rampwise_evidence": EVIDENCE,
+    "rampwise_energy": ENERGY,
     "rampwise_output": OUTPUT,
     "rampwise_level": LEVEL,
     "rampwise_level_report": LEVEL_REPORT,
@@ -164,6 +166,12 @@ _PROTOTYPES: Dict[str, Any] = {  # the result first
     "rampwise_watch_saved_size": (_SIZE, _POINTER),
     "rampwise_watch_save": (_INT, _POINTER, _POINTER, _SIZE),
     "rampwise_watch_resume": (_INT, _POINTER, _POINTER, _SIZE),
+    "rampwise_energy_solve": (
+        _INT, _POINTER, _INT, _DOUBLE, _DOUBLE, _SIZE, _POINTER, _POINTER, _POINTER,
+    ),
+    "rampwise_energy_spectrum": (
+        _INT, _SIZE, _DOUBLE, _POINTER, _INT, _INT, _SIZE, _POINTER, _POINTER, _POINTER, _POINTER, _POINTER,
+    ),
     "rampwise_list_log": (_INT, _SIZE, _DOUBLE, _DOUBLE, _POINTER),
     "rampwise_list_octaves": (_INT, _DOUBLE, _DOUBLE, _SIZE, _SIZE, _POINTER, _POINTER),
 }  # fmt: skip
@@ -205,6 +213,7 @@ _ARGUMENTS = {
     "STATE": "state",
     "TIME": "time",
     "OVERFLOW": "record",
+    "FRAME": "frame",
     "GAP": "samples",
     "DAMAGED": "saved",
     "KIND": "saved",

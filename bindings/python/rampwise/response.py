@@ -108,9 +108,10 @@ class Response:
         return result
 
 
-def _chosen_system(
+def chosen_system(
     system: Optional[System], damping: Optional[ArrayLike], mass: ArrayLike, **natural: Any
 ) -> System:
+    """The one that is given, or one by its natural vibration."""
     if system is None:
         if damping is None:
             raise TypeError("damping: the ratio to critical damping is needed where no system is given")
@@ -213,7 +214,7 @@ def respond(
     >>> round(float(response.displacement[-1]), 12)
     4.0
     """
-    systems = _chosen_system(system, damping, mass, period=period, frequency=frequency, omega=omega,
+    systems = chosen_system(system, damping, mass, period=period, frequency=frequency, omega=omega,
                              allow_strong_damping=allow_strong_damping)  # fmt: skip
     if start not in _STARTS:
         raise ValueError(f"start: {start!r} is none of {', '.join(map(repr, _STARTS))}")

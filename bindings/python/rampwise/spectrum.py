@@ -205,22 +205,27 @@ class Spectrum:
         return result
 
 
-class _Oscillators(NamedTuple):
-    """The grid, flat: damping by damping, and in it period by period."""
+class Oscillators(NamedTuple):
+    """The grid of a spectrum, flat: damping by damping, and in it period by period."""
 
     name: str
     given: Doubles
     omega: Doubles
     damping: Doubles
+    lists: Tuple[Doubles, Doubles, Doubles]  # period, frequency, omega, as they were shaped
+    shape: Tuple[int, ...]
 
     @classmethod
-    def make(cls, name: str, given: Doubles, ratio: Doubles) -> "_Oscillators":
-        omega = {"omega": given, "frequency": 2 * np.pi * given}.get(name)
-        if omega is None:
-            with np.errstate(divide="ignore"):
-                omega = np.asarray(2 * np.pi / given)
-        flat = [np.tile(array.reshape(-1), ratio.size) for array in (given, omega)]
-        return cls(name, flat[0], flat[1], np.repeat(ratio.reshape(-1), given.size))
+    def make(cls, name: str, given: Doubles, ratio: Doubles) -> "Oscillators":
+        with np.errstate(divide="ignore"):
+            omega = given if name == "omega" else 2 * np.pi * given if name == "frequency" else 2 * np.pi / given
+            lists = (
+                given if name == "period" else np.asarray(2 * np.pi / omega),
+                given if name == "frequency" else np.asarray(omega / (2 * np.pi)),
+                np.asarray(omega),
+            )
+        flat = [np.tile(array.reshape(-1), ratio.size) for array in (given, lists[2])]
+        return cls(name, flat[0], flat[1], np.repeat(ratio.reshape(-1), given.size), lists, ratio.shape + given.shape)
 
     @property
     def rigid(self) -> NDArray[np.bool_]:
@@ -311,29 +316,25 @@ def response_spectrum(
         raise ValueError(f"part: {part!r} is none of {', '.join(map(repr, _PARTS))}")
     samples = _arrays.records(record, "record")
     rows = _Records(samples, _arrays.double(dt, "dt"), input, between, part, at_samples, evidence)
-    oscillators = _Oscillators.make(name, given, ratio)
-    shape = samples.shape[:-1] + ratio.shape + given.shape
+    oscillators = Oscillators.make(name, given, ratio)
+    shape = samples.shape[:-1] + oscillators.shape
     found, errors = rows.peaks(oscillators, threads, progress)
     peaks = [
         Peaks._read(found[i].reshape(shape), rows.dt, errors[i].reshape(shape) if evidence else None)
         for i in range(len(_QUANTITIES))
     ]
     abrupt = errors[0]["abrupt"][:, 0].reshape(samples.shape[:-1]) if evidence and given.size and ratio.size else None
-    circular = oscillators.omega[: given.size].reshape(given.shape)
-    with np.errstate(divide="ignore"):
-        return Spectrum(
-            given if name == "period" else 2 * np.pi / circular,
-            given if name == "frequency" else circular / (2 * np.pi),
-            circular,
-            ratio,
-            peaks[0],
-            peaks[1],
-            peaks[2],
-            None if abrupt is None else (abrupt & _ABRUPT_START) != 0,
-            None if abrupt is None else (abrupt & _ABRUPT_END) != 0,
-            provenance(dt=rows.dt, input=input, between=between, part=part, at_samples=bool(at_samples),
-                       evidence=bool(evidence), threads=threads),
-        )  # fmt: skip
+    return Spectrum(
+        *oscillators.lists,
+        ratio,
+        peaks[0],
+        peaks[1],
+        peaks[2],
+        None if abrupt is None else (abrupt & _ABRUPT_START) != 0,
+        None if abrupt is None else (abrupt & _ABRUPT_END) != 0,
+        provenance(dt=rows.dt, input=input, between=between, part=part, at_samples=bool(at_samples),
+                   evidence=bool(evidence), threads=threads),
+    )  # fmt: skip
 
 
 class _Found(NamedTuple):
@@ -372,7 +373,7 @@ class _Records:
         self.n = samples.shape[-1]
         self.at = _library.addresses(samples[..., 0])
 
-    def peaks(self, oscillators: _Oscillators, threads: int, progress: bool) -> _Found:
+    def peaks(self, oscillators: Oscillators, threads: int, progress: bool) -> _Found:
         """[records, oscillators] for each quantity."""
         rigid = oscillators.rigid
         moving = np.flatnonzero(~rigid)
