@@ -30,13 +30,14 @@ from .bank import Bank
 from .energy import Energies, EnergyHistory, EnergySpectrum, energies, energy_spectrum
 from .records import Outcomes, for_each
 from .response import Response, respond
-from .stream import BRIDGED, CLIPPED, STARTED, WAITING, Event, Level, LevelReport, Stream, Watch
 from .spectrum import Peaks, Spectrum, equal_ratios, octaves, response_spectrum
+from .stream import BRIDGED, CLIPPED, STARTED, WAITING, Block, Event, Level, LevelReport, Stream, Watch
 from .system import System, coefficients
 
 __all__ = [
     "BRIDGED",
     "Bank",
+    "Block",
     "CLIPPED",
     "Energies",
     "EnergyHistory",

@@ -47,7 +47,7 @@ def integers(array: NDArray[Any], name: str, kind: Any) -> NDArray[Any]:
     limits = np.iinfo(kind)
     if array.size > 0 and (array.min() < limits.min or array.max() > limits.max):
         raise ValueError(f"{name}: a number is beyond {limits.min} to {limits.max}")
-    return np.ascontiguousarray(array, dtype=kind)
+    return in_order(array.astype(kind, copy=False))
 
 
 def whole(value: Any, name: str, least: int) -> int:
@@ -56,7 +56,7 @@ def whole(value: Any, name: str, least: int) -> int:
         raise TypeError(f"{name}: a whole number is needed, not {value!r}")
     number = int(value.__index__())
     if not least <= number < 2**64:
-        raise ValueError(f"{name}: at least {least} is needed, not {number}" if number < least else f"{name}: too large")
+        raise ValueError(f"{name}: {number} is not from {least} to 2^64 - 1")
     return number
 
 
@@ -68,9 +68,12 @@ def records(values: ArrayLike, name: str, real: "np.dtype[Any]" = np.dtype(np.fl
     if array.shape[-1] == 0:
         raise ValueError(f"{name}: there are no samples")
     plain = array.strides[-1] == array.itemsize or array.shape[-1] == 1
-    if not plain or not array.flags.aligned:
-        array = np.ascontiguousarray(array)
-    return array
+    return array if plain and array.flags.aligned else in_order(array)
+
+
+def in_order(array: NDArray[Any]) -> NDArray[Any]:
+    """Without gaps and at natural alignment: the same array where it is."""
+    return np.require(array, None, ["C", "A"])
 
 
 def broadcast(first: Tuple[int, ...], second: Tuple[int, ...], name: str) -> Tuple[int, ...]:

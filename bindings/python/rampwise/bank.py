@@ -154,8 +154,8 @@ class Bank:
         Histories or None
             Of shape (k, n) for k chosen oscillators; NaN from where one overflows.
         """
-        block = _arrays.records(np.atleast_1d(_arrays.reals(samples, "samples", self._numbers.real)), "samples",
-                                self._numbers.real)  # fmt: skip
+        real = self._numbers.real
+        block = _arrays.records(np.atleast_1d(_arrays.reals(samples, "samples", real)), "samples", real)
         if block.ndim != 1:
             raise ValueError(f"samples: shape {block.shape}, where one axis is needed")
         largest = self._largest.copy()

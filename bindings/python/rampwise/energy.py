@@ -119,7 +119,7 @@ def energies(
     frequency: Optional[ArrayLike] = None,
     omega: Optional[ArrayLike] = None,
     damping: Optional[ArrayLike] = None,
-    mass: ArrayLike = 1.0,
+    mass: Optional[ArrayLike] = None,
     between: Between = "ramp",
     displacement: float = 0.0,
     velocity: float = 0.0,

@@ -291,12 +291,12 @@ def _line(axes: Any, span: Doubles, ends: Doubles, value: float, style: Dict[str
     axes.plot(span, ends, color=style["line"], linewidth=0.8 if is_decade else 0.4, zorder=1)
     if not is_decade:
         return
-    (left, right), (bottom, top) = np.log10(axes.get_xlim()), np.log10(axes.get_ylim())
+    left, (bottom, top) = np.log10(axes.get_xlim()[0]), np.log10(axes.get_ylim())
     first, last = np.log10(ends)
     y = min(max(last, bottom), top)
     x = left + abs(y - first)
     if y > bottom:  # inside for falling lines: the axis has its own numbers below
-        axes.annotate(_plain_number(value), (10.0**x, 10.0**y), xytext=(4, 4 if y == top or style is _RISING else -4),
+        axes.annotate(_plain_number(value), (10.0**x, 10.0**y), xytext=(4, 4 if style is _RISING else -4),
                       textcoords="offset points", annotation_clip=False, ha="left",
                       va="bottom" if style is _RISING else "top", **style["text"])  # fmt: skip
     else:

@@ -109,18 +109,19 @@ class Response:
 
 
 def chosen_system(
-    system: Optional[System], damping: Optional[ArrayLike], mass: ArrayLike, **natural: Any
+    system: Optional[System], damping: Optional[ArrayLike], mass: Optional[ArrayLike], **natural: Any
 ) -> System:
     """The one that is given, or one by its natural vibration."""
     if system is None:
         if damping is None:
             raise TypeError("damping: the ratio to critical damping is needed where no system is given")
-        return System.natural(damping=damping, mass=mass, **natural)
+        return System.natural(damping=damping, mass=1.0 if mass is None else mass, **natural)
     if not isinstance(system, System):
         raise TypeError(f"system: a System is needed, not {type(system).__name__}")
-    named = [name for name in ("period", "frequency", "omega") if natural[name] is not None]
-    if named or damping is not None:
-        raise TypeError(f"system: {' and '.join(named) or 'damping'} is given besides it")
+    besides = [name for name, value in {**natural, "damping": damping, "mass": mass}.items()
+               if name != "allow_strong_damping" and value is not None]  # fmt: skip
+    if besides:
+        raise TypeError(f"system: {' and '.join(besides)} given besides it")
     return system
 
 
@@ -134,7 +135,7 @@ def respond(
     frequency: Optional[ArrayLike] = None,
     omega: Optional[ArrayLike] = None,
     damping: Optional[ArrayLike] = None,
-    mass: ArrayLike = 1.0,
+    mass: Optional[ArrayLike] = None,
     time: Optional[ArrayLike] = None,
     between: Between = "ramp",
     start: Start = "at once",
@@ -164,7 +165,7 @@ def respond(
     damping : array_like, optional
         Ratio to critical damping.
     mass : array_like
-        Mass, with period, frequency or omega. It matters for forces only.
+        Mass, with period, frequency or omega; otherwise 1. It matters for forces only.
     time : array_like, shape (n,), optional
         Times of the samples, rising, at any distances.
     between : {'ramp', 'hold'}
@@ -215,7 +216,7 @@ def respond(
     4.0
     """
     systems = chosen_system(system, damping, mass, period=period, frequency=frequency, omega=omega,
-                             allow_strong_damping=allow_strong_damping)  # fmt: skip
+                            allow_strong_damping=allow_strong_damping)  # fmt: skip
     if start not in _STARTS:
         raise ValueError(f"start: {start!r} is none of {', '.join(map(repr, _STARTS))}")
     if (dt is None) == (time is None):
@@ -259,7 +260,7 @@ def _numbers(precision: Optional[str], record: Any, stamps: Optional[Doubles]) -
 
 
 def _times(time: ArrayLike, start: str) -> Doubles:
-    stamps = np.ascontiguousarray(_arrays.doubles(time, "time"))
+    stamps = _arrays.in_order(_arrays.doubles(time, "time"))
     if stamps.ndim != 1:
         raise ValueError(f"time: shape {stamps.shape}, where one axis is needed")
     if start == "ramp":
@@ -314,8 +315,8 @@ def _states(
         return states
     states["p"] = states["p_before"] = samples[..., 0]
     if start == "settled":
-        rows = zip(np.ndindex(shape), _library.addresses(_arrays.to_shape(made, shape)), _library.addresses(states), states["p"].flat)
-        for index, coeffs, state, sample in rows:
+        coeffs_at, states_at = _library.addresses(_arrays.to_shape(made, shape)), _library.addresses(states)
+        for index, coeffs, state, sample in zip(np.ndindex(shape), coeffs_at, states_at, states["p"].flat):
             status = numbers.call("start_settled", int(coeffs), int(state), sample)
             _library.check(status, f"at sample 0{_which(index)}")
     return states
@@ -399,8 +400,8 @@ class _Rows:
 
 
 def _run_frames(
-    samples: Doubles, made: NDArray[np.void], states: NDArray[np.void], start: str
-) -> Tuple[Doubles, ...]:
+    samples: Reals, made: NDArray[np.void], states: NDArray[np.void], start: str
+) -> Tuple[Reals, ...]:
     """All channels side by side, frame by frame as they lie in memory."""
     channels, n = samples.shape
     coeffs = np.ascontiguousarray(made)
@@ -421,7 +422,7 @@ def _run_frames(
     return tuple(history.T for history in histories)
 
 
-def _put_states(coeffs: NDArray[np.void], states: NDArray[np.void], histories: Tuple[Doubles, ...]) -> None:
+def _put_states(coeffs: NDArray[np.void], states: NDArray[np.void], histories: Tuple[Reals, ...]) -> None:
     """The first frame: the initial states."""
     if not np.all(np.isfinite(states["p"])):
         wrong = int(np.flatnonzero(~np.isfinite(states["p"]))[0])
@@ -432,3 +433,5 @@ def _put_states(coeffs: NDArray[np.void], states: NDArray[np.void], histories: T
         c, s = _library.address(coeffs[i : i + 1]), _library.address(states[i : i + 1])
         histories[2][0, i] = _library.call("acceleration", c, s)
         histories[3][0, i] = _library.call("total_acceleration", c, s)
+        if not all(np.isfinite(history[0, i]) for history in histories):
+            _library.check(_library.OVERFLOW, f"at sample 0{_which((i,))}")

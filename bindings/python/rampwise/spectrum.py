@@ -297,7 +297,8 @@ def response_spectrum(
     -----
     Inside a step the response is a line plus a free vibration; its extremes are found exactly, so the values do not
     depend on where the samples happen to lie. What the sampling of the record itself has lost is another matter, of
-    which `evidence` is an estimate; ten samples in the shortest period that matters is common practice. float32 records are converted to double.
+    which `evidence` is an estimate; ten samples in the shortest period that matters is common practice. float32
+    records are converted to double.
 
     Examples
     --------

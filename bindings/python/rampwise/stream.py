@@ -266,8 +266,11 @@ class Stream:
 
     @property
     def counts(self) -> Dict[str, int]:
-        """Numbers of samples so far: next (the number expected), good, missing, clipped, bridges, starts, longest run of
-        missing ones, last_missing and last_clipped (2**64 - 1 for none)."""
+        """Numbers of samples so far.
+
+        next (the number expected), good, missing, clipped, bridges, starts, longest (run of missing ones), last_missing
+        and last_clipped (2**64 - 1 for none).
+        """
         counts = np.zeros((), _library.STREAM_COUNTS)
         _library.check(self._numbers.call("stream_count", self._at, _library.address(counts)))
         return {name: int(counts[name]) for name in _library.STREAM_COUNTS.names or ()}
@@ -317,7 +320,7 @@ class Stream:
             A sample is missing and `missing` is 'refuse', more than `longest` were and `beyond` is, a stamp does not
             rise, or the response overflows: then the samples before it were taken.
         """
-        block = np.ascontiguousarray(np.atleast_1d(_arrays.reals(samples, "samples", self._numbers.real)))
+        block = _arrays.in_order(np.atleast_1d(_arrays.reals(samples, "samples", self._numbers.real)))
         return self._put("stream_put", block, times)
 
     def put_raw(self, samples: ArrayLike, times: Optional[ArrayLike] = None) -> Block:

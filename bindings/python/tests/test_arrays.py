@@ -43,6 +43,7 @@ def test_any_layout(record):
     assert expected.displacement.shape == record.shape
     for name, other in layouts(record).items():
         np.testing.assert_array_equal(other, record, name)
+        assert rampwise.respond(other, 0.01, **OSCILLATOR).record.flags.aligned
         same_response(rampwise.respond(other, 0.01, **OSCILLATOR), expected)
 
 

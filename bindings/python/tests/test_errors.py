@@ -56,8 +56,10 @@ RESPOND = [
     (ValueError, "precision: 'half' is none of", {"precision": "half"}),
     (ValueError, "precision: given times need", {"precision": "single", "dt": None, "time": [0, 1, 2]}),
     (TypeError, "system: a System is needed", {"system": 3.0, "period": None, "damping": None}),
-    (TypeError, "system: period is given besides it", {"system": rampwise.System(1, 0, 1), "damping": None}),
-    (ValueError, "threads: at least 1", {"threads": 0}),
+    (TypeError, "system: period given besides it", {"system": rampwise.System(1, 0, 1), "damping": None}),
+    (TypeError, "system: mass given besides it",
+     {"system": rampwise.System(1, 0, 1), "damping": None, "period": None, "mass": 2.0}),
+    (ValueError, "threads: 0 is not from 1", {"threads": 0}),
     (TypeError, "threads: a whole number", {"threads": 1.5}),
 ]  # fmt: skip
 

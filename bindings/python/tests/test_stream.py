@@ -164,7 +164,7 @@ REFUSALS = [
     (ValueError, "outputs: four weights", {"outputs": [[1, 2]]}),
     (ValueError, "missing: 'drop' is none of 'bridge'", {"missing": "drop"}),
     (ValueError, "start: ", {"start": "late"}),
-    (ValueError, "ticks: at least 1", {"ticks": 0}),
+    (ValueError, "ticks: 0 is not from 1", {"ticks": 0}),
     (TypeError, "longest: a whole number", {"longest": 1.5}),
     (ValueError, "scale, offset or rails: ", {"scale": float("nan")}),
 ]
