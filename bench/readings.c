@@ -89,6 +89,8 @@ static void of_spectra(readings *all)
         "the same between samples / at samples");
     add(all, "spectrum_evidence_of_samples", times(all, "spectrum_evidence", "spectrum_samples"), AT_MOST,
         2.2, "the same with evidence / at samples");
+    add(all, "directions_of_spectrum", times(all, "directions_samples", "spectrum_samples"), AT_MOST, 4,
+        "percentiles of two components / peaks of one, at samples");
 }
 
 static void against_others(readings *all)

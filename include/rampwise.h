@@ -2,7 +2,8 @@
 
    The headers are the reference manual, in the order in which data goes through them:
 
-       system -> coefficients -> step -> record, channels, bank -> peaks, evidence, spectrum, energy
+       system -> coefficients -> step -> record, channels, bank -> peaks, evidence, spectrum,
+                                          directions, energy
                                        -> output, watch, stream (live data)
 
    A record in a few lines:
@@ -37,6 +38,7 @@
 #include "rampwise/watch.h"
 #include "rampwise/stream.h"
 #include "rampwise/energy.h"
+#include "rampwise/directions.h"
 #include "rampwise/foreign.h"
 
 #endif

@@ -264,9 +264,8 @@ static size_t stop_lane(real_bank *bank, block *b, size_t j, real_state s, size_
 static size_t step_block(real_bank *bank, block *b, size_t lanes, size_t n, const real *p, real *largest)
 {
     real top[LANES] = {0}, *const gathered = largest != NULL ? top : NULL;
-    real_state at[LANES];
-    for (size_t j = 0; j < lanes; ++j)
-        at[j] = lane_state(&b->lanes, j, bank->p, bank->p_before);
+    lane_block before;
+    lanes_copy_motion(&before, &b->lanes);
     if (largest != NULL)
         memcpy(top, largest, lanes * sizeof *top);
     const int lost = bank->k->under_one_input(&b->lanes, lanes, bank->p, n, p, gathered);
@@ -276,7 +275,8 @@ static size_t step_block(real_bank *bank, block *b, size_t lanes, size_t n, cons
             continue;
         if (largest != NULL)
             top[j] = largest[j];
-        const size_t i = stop_lane(bank, b, j, at[j], n, p, largest != NULL ? &top[j] : NULL);
+        const real_state s = lane_state(&before, j, bank->p, bank->p_before);
+        const size_t i = stop_lane(bank, b, j, s, n, p, largest != NULL ? &top[j] : NULL);
         earliest = i < earliest ? i : earliest;
     }
     if (largest != NULL)

@@ -23,12 +23,13 @@ typedef struct known_fusedf {
 } known_fusedf;
 
 /* coefficients: the first ten members of rampwise_coeffs. u, v and the total acceleration after all
-   samples from u = 1/2, v = -1/4. */
+   samples from u = 1/2, v = -1/4. single: u, v and their low words after the same in single precision. */
 typedef struct known_response {
     rampwise_system system;
     double dt;
     int input, between;
     double coefficients[10], u, v, total;
+    float single[4];
 } known_response;
 
 /* A product's tail that decides a tie, up and down; cancellation that leaves the tail alone; ties
@@ -82,7 +83,8 @@ static const known_response known_responses[] = {
       -0x1.d6eeb7cbdb69ep-10, -0x1.bc663247afab9p-8},
      -0x1.45774738655d8p-2,
      -0x1.c9cb276fad469p+0,
-     0x1.3ec2e2966cddap+3},
+     0x1.3ec2e2966cddap+3,
+     {-0x1.457746p-2f, -0x1.c9cb28p+0f, -0x1p-27f, -0x1.cp-25f}},
     {{0x1.4p+1, 0x1p-3, 0x1.0624dd2f1a9fcp-10},
      0x1.0624dd2f1a9fcp-10,
      RAMPWISE_FORCE,
@@ -91,7 +93,8 @@ static const known_response known_responses[] = {
       0x1.fff972504a2a7p-1, 0x1.a36b7f825e6c2p-12, 0x0p+0, -0x1.b7cc1d3c7b33cp-33, -0x1.a36bed7565bb4p-15},
      0x1.f60c41be4a61p-2,
      -0x1.fb06e9e512379p-3,
-     -0x1.e0299e5179b85p-1},
+     -0x1.e0299e5179b85p-1,
+     {0x1.f60c42p-2f, -0x1.fb06eap-3f, -0x1.e4p-29f, 0x1.4p-31f}},
     {{0x1p+0, 0x1.8p+3, 0x1.2p+5},
      0x1p-2,
      RAMPWISE_BASE_ACCELERATION,
@@ -101,7 +104,8 @@ static const known_response known_responses[] = {
       -0x1.c4c96b121ccdbp-2, -0x1.1c8f87724b5c2p+0},
      0x1.33284ab19ba36p-6,
      0x1.b05f0ebc6e54cp-5,
-     -0x1.4eea4f8a90ebbp+0},
+     -0x1.4eea4f8a90ebbp+0,
+     {0x1.332848p-6f, 0x1.b05f1p-5f, 0x1p-30f, 0x0p+0f}},
     {{0x1.8p+1, 0x0p+0, 0x1.f4p+9},
      0x1p-1,
      RAMPWISE_BASE_ACCELERATION,
@@ -110,7 +114,8 @@ static const known_response known_responses[] = {
       -0x1.e9b92c928c40bp-1, -0x1.05d2f676493f2p-6, 0x0p+0, -0x1.f4dc964946206p+0, -0x1.f4dc964946206p+0},
      -0x1.a8e47856f4f12p-3,
      0x1.b92480d5cdffcp+2,
-     0x1.149f69034777ap+6},
+     0x1.149f69034777ap+6,
+     {-0x1.a8e45p-3f, 0x1.b92474p+2f, 0x0p+0f, 0x0p+0f}},
     {{0x1.8p-1, 0x1.4p+5, 0x1.2p+5},
      0x1p-3,
      RAMPWISE_BASE_VELOCITY,
@@ -120,7 +125,8 @@ static const known_response known_responses[] = {
       -0x1.7a2a057d0220cp-4, -0x1.03b00b0ca8cdcp+0},
      0x1.44c1047ed14aap-5,
      0x1.fc02600d19d2ep-2,
-     -0x1.c5c96876ce797p+4},
+     -0x1.c5c96876ce797p+4,
+     {0x1.44c104p-5f, 0x1.fc026p-2f, 0x0p+0f, 0x0p+0f}},
     {{0x1.f4p+9, 0x1.9p+6, 0x1.e848p+17},
      0x1.0624dd2f1a9fcp-8,
      RAMPWISE_BASE_DISPLACEMENT,
@@ -130,7 +136,8 @@ static const known_response known_responses[] = {
       -0x1.06058dd1febb2p-9, -0x1.3a67b2d21f21cp-9},
      0x1.adf8b0112fed8p-5,
      -0x1.25cdc96766e5dp+2,
-     -0x1.5af4d0ade1a83p+9},
+     -0x1.5af4d0ade1a83p+9,
+     {0x1.adf8b8p-5f, -0x1.25cdc8p+2f, -0x1p-30f, -0x1p-23f}},
     {{0x1p+0, 0x0p+0, 0x1.2p+3},
      0x1.999999999999ap-4,
      RAMPWISE_BASE_DISPLACEMENT,
@@ -139,7 +146,8 @@ static const known_response known_responses[] = {
       0x1.e921dd42f09bap-1, 0x1.c5eb46098174ep-1, 0x0p+0, -0x1.6de22bd0f645bp-5, -0x1.6de22bd0f645bp-5},
      0x1.e9e62229958c6p+0,
      -0x1.b914db3d3ef04p+1,
-     -0x1.34c8b99bb20f8p+5},
+     -0x1.34c8b99bb20f8p+5,
+     {0x1.e9e62p+0f, -0x1.b914dp+1f, 0x1p-24f, -0x1p-23f}},
     {{0x1p+1, 0x0p+0, 0x0p+0},
      0x1.999999999999ap-5,
      RAMPWISE_FORCE,
@@ -148,7 +156,8 @@ static const known_response known_responses[] = {
       0x1.999999999999ap-7, 0x1.999999999999ap-7, 0x0p+0, 0x0p+0},
      0x1.7392c5f92c5f5p-3,
      -0x1.b999999999998p-4,
-     -0x1.3p+0},
+     -0x1.3p+0,
+     {0x1.7392c8p-3f, -0x1.b99998p-4f, -0x1.2p-28f, 0x1.8p-29f}},
     {{0x1p+0, 0x1p-2, -0x1p+2},
      0x1.999999999999ap-4,
      RAMPWISE_FORCE,
@@ -158,7 +167,8 @@ static const known_response known_responses[] = {
       0x1.460c965447bedp-6, -0x1.44b3a1102b3acp-8},
      0x1.0a5a9b3c4b33ap+8,
      0x1.f45792fadda56p+8,
-     0x1.d4fa44193ab29p+9},
+     0x1.d4fa44193ab29p+9,
+     {0x1.0a5a98p+8f, 0x1.f4578ep+8f, 0x1p-16f, 0x1p-17f}},
     {{0x1p+0, 0x1p-4, 0x1.0c6f7a0b5ed8dp-20},
      0x1.0624dd2f1a9fcp-10,
      RAMPWISE_BASE_ACCELERATION,
@@ -168,7 +178,8 @@ static const known_response known_responses[] = {
       -0x1.197817c5c57a9p-41, -0x1.0622c476325bp-14},
      0x1.f5e3cd01470e3p-2,
      -0x1.05312fc5c95bcp-2,
-     0x1.052f2180c1b3bp-6},
+     0x1.052f2180c1b3bp-6,
+     {0x1.f5e3cep-2f, -0x1.05313p-2f, -0x1.fbp-27f, 0x1.2cp-28f}},
 };
 
 #endif

@@ -85,9 +85,8 @@ static void stop_lane(group *g, size_t j, real_state s, size_t before, size_t n,
 static void step_tile(group *g, size_t before, size_t n, const real_history *out)
 {
     real a_finite[LANES] = {0}, total_finite[LANES] = {0};
-    real_state at[LANES];
-    for (size_t j = 0; j < g->count; ++j)
-        at[j] = lane_state(&g->block, j, g->p[0][j], g->p_before[j]);
+    lane_block at;
+    lanes_copy_motion(&at, &g->block);
     int lost = g->k->under_own_inputs(&g->block, g->count, n, g->p, g->u, g->v);
     if (out->a != NULL)
         lost |= g->k->rows(g->acceleration, g->count, n, g->p, g->u, g->v, g->a, a_finite);
@@ -97,7 +96,7 @@ static void step_tile(group *g, size_t before, size_t n, const real_history *out
         const int finite =
             isfinite(g->block.u[j]) && isfinite(g->block.v[j]) && a_finite[j] == 0 && total_finite[j] == 0;
         if (!finite && g->reached[j] > before)
-            stop_lane(g, j, at[j], before, n, out);
+            stop_lane(g, j, lane_state(&at, j, g->p[0][j], g->p_before[j]), before, n, out);
     }
 }
 

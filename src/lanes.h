@@ -3,6 +3,7 @@
 #ifndef RAMPWISE_LANES_H
 #define RAMPWISE_LANES_H
 
+#include <string.h>
 #include "kernels/kernels.h"
 
 /* Objects of many oscillators are a header and groups of LANES after it. */
@@ -43,6 +44,12 @@ static inline void lane_put(lane_block *block, size_t lane, const real_state *s)
     block->u_low[lane] = s->u_low;
     block->v_low[lane] = s->v_low;
 #endif
+}
+
+/* The displacements and velocities of all lanes, and nothing else, from another block. */
+static inline void lanes_copy_motion(lane_block *to, const lane_block *from)
+{
+    memcpy(to, from, offsetof(lane_block, A_minus_1));
 }
 
 /* The oscillator of one lane of a block, and one that stands still for ever. */

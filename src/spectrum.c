@@ -6,13 +6,12 @@
 #include "lanes.h"
 #include "peaks_group.h"
 #include "rampwise/status.h"
+#include "spectrum_list.h"
 #include "valid.h"
 
 typedef struct record {
-    size_t n;
-    double dt;
+    record_kind kind;
     const double *p;
-    int input, quantity;
     unsigned looks, when; /* flags of rampwise_peaks_init and of rampwise_peaks_get */
     uint32_t abrupt;
 } record;
@@ -26,90 +25,47 @@ static int has_evidence(const record *r)
 static void respond(const record *r, peaks_group *g, input_end *end)
 {
     const kernels *const k = rampwise_kernels_(RAMPWISE_FASTEST);
-    const size_t behind = has_evidence(r) && r->n > 1;
+    const size_t behind = has_evidence(r) && r->kind.n > 1;
     *end = (input_end){.p = r->p[0], .p_before = r->p[0]};
     rampwise_group_start_(g, NULL, r->p[0]);
-    for (size_t done = 1, part = 0; done + behind < r->n; done += part) {
+    for (size_t done = 1, part = 0; done + behind < r->kind.n; done += part) {
         segment along;
-        part = r->n - behind - done < SEGMENT ? r->n - behind - done : SEGMENT;
+        part = r->kind.n - behind - done < SEGMENT ? r->kind.n - behind - done : SEGMENT;
         rampwise_segment_make_(&along, end, part, r->p + done, r->looks);
         rampwise_group_run_(k, g, &along);
         rampwise_segment_end_(&along, end);
     }
     end->is_behind = behind > 0;
-    end->next = r->p[r->n - 1];
+    end->next = r->p[r->kind.n - 1];
 }
 
 /* A stiff oscillator without limit: no relative motion, and the mass goes with its base, from rest and to rest. The
    base's velocity alone does not tell its acceleration's error. */
 static findings follow_base(const record *r)
 {
-    const int moves = r->quantity == RAMPWISE_TOTAL_ACCELERATION && r->when != RAMPWISE_RESIDUAL;
-    const rampwise_instant nothing = {0, r->when == RAMPWISE_RESIDUAL ? r->n - 1 : 0, 0};
-    const double error = moves && r->input == RAMPWISE_BASE_VELOCITY ? NAN : 0;
+    const int moves = r->kind.quantity == RAMPWISE_TOTAL_ACCELERATION && r->when != RAMPWISE_RESIDUAL;
+    const rampwise_instant nothing = {0, r->when == RAMPWISE_RESIDUAL ? r->kind.n - 1 : 0, 0};
+    const double error = moves && r->kind.input == RAMPWISE_BASE_VELOCITY ? NAN : 0;
     findings found = {{nothing, nothing}, {error, error, 0, 0}};
-    for (size_t i = 0; moves && i < r->n; ++i) {
-        if (r->input == RAMPWISE_BASE_ACCELERATION)
+    for (size_t i = 0; moves && i < r->kind.n; ++i) {
+        if (r->kind.input == RAMPWISE_BASE_ACCELERATION)
             note_value(&found.peak, r->p[i], i, 0);
-        else if (r->input == RAMPWISE_BASE_VELOCITY && i > 0)
-            note_value(&found.peak, (r->p[i] - r->p[i - 1]) / r->dt, i - 1, 0);
+        else if (r->kind.input == RAMPWISE_BASE_VELOCITY && i > 0)
+            note_value(&found.peak, (r->p[i] - r->p[i - 1]) / r->kind.dt, i - 1, 0);
     }
     return found;
 }
 
 static int check_record(const record *r, size_t *bad)
 {
-    if (r->n == 0)
-        return RAMPWISE_ERROR_COUNT;
-    if (!isfinite(r->dt) || r->dt <= 0)
-        return RAMPWISE_ERROR_INTERVAL;
-    if (r->input < RAMPWISE_FORCE || r->input > RAMPWISE_BASE_DISPLACEMENT)
-        return RAMPWISE_ERROR_INPUT;
-    if (r->quantity < RAMPWISE_DISPLACEMENT || r->quantity > RAMPWISE_TOTAL_ACCELERATION)
-        return RAMPWISE_ERROR_QUANTITY;
+    const int status = rampwise_record_kind_check_(&r->kind);
+    if (status != RAMPWISE_OK)
+        return status;
     if (r->when != 0 && r->when != RAMPWISE_RESIDUAL && r->when != RAMPWISE_MAXIMAX)
         return RAMPWISE_ERROR_FLAGS;
-    if (has_evidence(r) && check_estimable(r->input, RAMPWISE_RAMP) != RAMPWISE_OK)
-        return check_estimable(r->input, RAMPWISE_RAMP);
-    return check_samples(r->n, r->p, bad);
-}
-
-/* A stiff oscillator without limit, where the input allows one. */
-static int is_stiff(const record *r, double omega)
-{
-    return isinf(omega) && omega > 0 && r->input != RAMPWISE_BASE_DISPLACEMENT;
-}
-
-static int make_oscillator(const record *r, double omega, double zeta, rampwise_coeffs *c)
-{
-    rampwise_system system;
-    const int status = rampwise_system_natural(&system, omega, zeta);
-    return status == RAMPWISE_OK ? rampwise_coeffs_make(c, &system, r->dt, r->input, RAMPWISE_RAMP) : status;
-}
-
-/* What no maker of coefficients refuses: steps and frequencies far from the ends of the range. */
-static int is_everyday(const record *r, double omega, double zeta)
-{
-    return omega > 1e-60 && omega < 1e60 && r->dt > 1e-60 && r->dt < 1e60 && omega * r->dt < 1e6 &&
-           zeta >= 0 && zeta <= 100;
-}
-
-/* Before anything is written: stiff oscillators need a damping ratio too. */
-static int check_oscillators(const record *r, size_t n_osc, const double *omega, const double *zeta,
-                             size_t *bad)
-{
-    for (size_t i = 0; i < n_osc; ++i) {
-        rampwise_coeffs c;
-        if (is_everyday(r, omega[i], zeta[i]))
-            continue;
-        const int stiff = is_stiff(r, omega[i]);
-        const int status = !stiff              ? make_oscillator(r, omega[i], zeta[i], &c)
-                           : isfinite(zeta[i]) ? RAMPWISE_OK
-                                               : RAMPWISE_ERROR_DAMPER;
-        if (status != RAMPWISE_OK)
-            return blame(status, i, bad);
-    }
-    return RAMPWISE_OK;
+    if (has_evidence(r) && check_estimable(r->kind.input, RAMPWISE_RAMP) != RAMPWISE_OK)
+        return check_estimable(r->kind.input, RAMPWISE_RAMP);
+    return check_samples(r->kind.n, r->p, bad);
 }
 
 /* Oscillators of the next group, so that the last ones are not few. */
@@ -127,16 +83,16 @@ static size_t respond_next(const record *r, size_t left, const double *omega, co
     size_t which[LANES], count = 0, taken = 0;
     const size_t share = group_share(left);
     for (; taken < left && taken < LANES && count < share; ++taken) {
-        if (is_stiff(r, omega[taken])) {
+        if (rampwise_record_is_stiff_(&r->kind, omega[taken])) {
             found[taken] = follow_base(r);
             continue;
         }
-        (void)make_oscillator(r, omega[taken], zeta[taken], &c[count]);
+        (void)rampwise_record_oscillator_(&r->kind, omega[taken], zeta[taken], &c[count]);
         which[count++] = taken;
     }
     peaks_group g;
     input_end end;
-    rampwise_group_make_(&g, count, c, 1, &r->quantity, r->looks);
+    rampwise_group_make_(&g, count, c, 1, &r->kind.quantity, r->looks);
     respond(r, &g, &end);
     for (size_t j = 0; j < count; ++j)
         found[which[j]] =
@@ -147,7 +103,7 @@ static size_t respond_next(const record *r, size_t left, const double *omega, co
 static void find_abrupt_ends(record *r)
 {
     record_ends ends = {0};
-    for (size_t i = 1; i + 1 < r->n; ++i) {
+    for (size_t i = 1; i + 1 < r->kind.n; ++i) {
         const double d = second_difference(r->p[i - 1], r->p[i], r->p[i + 1]);
         rampwise_ends_take_(&ends, 1, &d);
     }
@@ -162,7 +118,7 @@ static int solve(record *r, size_t n_osc, const double *omega, const double *zet
         return RAMPWISE_ERROR_MISSING;
     int status = check_record(r, bad);
     if (status == RAMPWISE_OK)
-        status = check_oscillators(r, n_osc, omega, zeta, bad);
+        status = rampwise_record_list_check_(&r->kind, n_osc, omega, zeta, bad);
     if (status != RAMPWISE_OK)
         return status;
     if (has_evidence(r))
@@ -184,7 +140,7 @@ int rampwise_spectrum(size_t n, double dt, const double *p, int input, size_t n_
                       const double *zeta, int quantity, unsigned flags, rampwise_peak *peak, size_t *bad)
 {
     const unsigned looks = flags & (unsigned)RAMPWISE_AT_SAMPLES;
-    record r = {n, dt, p, input, quantity, looks, flags - looks, 0};
+    record r = {{n, dt, input, quantity}, p, looks, flags - looks, 0};
     return solve(&r, n_osc, omega, zeta, peak, NULL, bad);
 }
 
@@ -193,7 +149,7 @@ int rampwise_spectrum_evidence(size_t n, double dt, const double *p, int input, 
                                rampwise_peak *peak, rampwise_evidence *evidence, size_t *bad)
 {
     const unsigned looks = flags & (unsigned)RAMPWISE_AT_SAMPLES;
-    record r = {n, dt, p, input, quantity, looks | RAMPWISE_EVIDENCE, flags - looks, 0};
+    record r = {{n, dt, input, quantity}, p, looks | RAMPWISE_EVIDENCE, flags - looks, 0};
     if (n_osc > 0 && evidence == NULL)
         return RAMPWISE_ERROR_MISSING;
     return solve(&r, n_osc, omega, zeta, peak, evidence, bad);

@@ -51,6 +51,8 @@ const char *rampwise_status_text(int status)
         return "A coefficient of the step overflows";
     case RAMPWISE_ERROR_FRACTION:
         return "The fraction of a step is not from zero to one";
+    case RAMPWISE_ERROR_PERCENT:
+        return "A percentile is not from 0 to 100";
     case RAMPWISE_ERROR_NO_REST:
         return "A load on a mass without a spring has no position of rest";
     case RAMPWISE_ERROR_SAMPLE:

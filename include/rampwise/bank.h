@@ -96,8 +96,8 @@ RAMPWISE_API size_t rampwise_bank_stopped(const rampwise_bank *bank, size_t *fir
    where wanted. Accelerations of a stopped oscillator are NaN. RAMPWISE_ERROR_MISSING. */
 RAMPWISE_API int rampwise_bank_read(const rampwise_bank *bank, const rampwise_history *now);
 
-/* All of it in single precision: twice the lanes, a little more work a step (step_f32), about 200 bytes an
-   oscillator. What is said above holds with float for double. */
+/* All of it in single precision: twice the lanes, a little more work a step (step_f32), about 180 bytes an
+   oscillator. What is said above holds with float for double. Since 0.1. */
 typedef struct rampwise_bank_f32 rampwise_bank_f32;
 
 typedef struct rampwise_bank_wanted_f32 {

@@ -38,6 +38,7 @@ enum {
     RAMPWISE_ERROR_STEP_LENGTH = -40, /* the step is too long for the oscillator to keep digits */
     RAMPWISE_ERROR_COEFFICIENT = -42, /* a coefficient overflows */
     RAMPWISE_ERROR_FRACTION = -44,    /* a fraction of a step that is not from 0 to 1 */
+    RAMPWISE_ERROR_PERCENT = -45,     /* a percentile that is not from 0 to 100 */
     RAMPWISE_ERROR_NO_REST = -46,     /* no position of rest: a load on a free mass */
 
     /* The data are wrong. */

@@ -1,6 +1,7 @@
 /* The one body of all kernels. The including file has defined a thin layer over its vectors:
    VECTOR, MASK, WIDTH and the functions vector_*, mask_*; and KERNELS, the table's name, and
-   KERNELS_NAME; all in one precision (../precision.h). The arithmetic is that of step.h, operation by operation. */
+   KERNELS_NAME; all in one precision (../precision.h). The arithmetic is that of step.h, operation by
+   operation. */
 
 #include <stdint.h>
 #include <string.h>
@@ -15,9 +16,8 @@
 #define SPENT 0x1p-960
 #endif
 
-/* Vectors in flight: enough to hide the latency of a step, few enough for the registers, which single precision
-   needs for the low words too. */
-enum { MOST_IN_FLIGHT = 4, FLIGHT = sizeof(real) == sizeof(float) ? 2 : 4 };
+/* Vectors in flight: enough to hide the latency of a step, few enough for the registers; a block may have fewer. */
+enum { MOST_IN_FLIGHT = 4, FLIGHT = LANES / WIDTH < MOST_IN_FLIGHT ? LANES / WIDTH : MOST_IN_FLIGHT };
 
 /* Oscillators on their way, one a lane. */
 typedef struct moving {
@@ -265,7 +265,7 @@ static int under_one_input(lane_block *block, size_t lanes, real p_last, size_t 
     int lost = 0;
     for (size_t at = 0, flight = 0; at < lanes; at += flight * WIDTH) {
         flight = next_flight(lanes, at);
-        lost |= flight == 1 ? FLY(1) : flight == 2 || FLIGHT == 2 ? FLY(2) : flight == 3 ? FLY(3) : FLY(4);
+        lost |= flight == 1 ? FLY(1) : flight == 2 ? FLY(2) : flight == 3 ? FLY(3) : FLY(4);
     }
 #undef FLY
     return lost;
@@ -389,6 +389,83 @@ static int stretch(lane_block *block, size_t lanes, unsigned looked, real (*row)
     return lost;
 }
 
+/* What a corner of a bounding octagon reaches of a side. */
+static inline VECTOR reached(VECTOR a, VECTOR b, VECTOR x, VECTOR y, VECTOR top)
+{
+    return vector_larger_size(vector_fma(a, x, vector_product(b, y)), top);
+}
+
+/* Of the points within |x| <= e[0], |y| <= e[1], |x + y| <= e[2], |x - y| <= e[3], none of which could be less: the
+   largest |a x + b y| of all sides, which is at one of eight corners. */
+static inline VECTOR reached_of_sides(double (*side)[2][LANES], size_t lane, const VECTOR *e)
+{
+    const VECTOR right = vector_difference(e[2], e[0]), above = vector_difference(e[2], e[1]);
+    const VECTOR left = vector_difference(e[3], e[0]), beside = vector_difference(e[1], e[3]);
+    const VECTOR far = vector_difference(vector_all(0), e[0]);
+    VECTOR top = vector_all(0);
+    for (int k = 0; k < SIDES; ++k) {
+        const VECTOR a = vector_load(side[k][0] + lane), b = vector_load(side[k][1] + lane);
+        top = reached(a, b, e[0], right, top);
+        top = reached(a, b, above, e[1], top);
+        top = reached(a, b, beside, e[1], top);
+        top = reached(a, b, far, left, top);
+    }
+    return top;
+}
+
+/* A vector under both inputs hides the latency of its two steps by itself. quantity is a constant where this is
+   inlined. */
+static inline __attribute__((always_inline)) int two_inputs_at(size_t at, int quantity, lane_block *first,
+                                                               lane_block *second, double (*row)[LANES],
+                                                               double (*side)[2][LANES], const double *p_last,
+                                                               size_t n, const double *const *p,
+                                                               double *outside, double (*extent)[LANES])
+{
+    moving m1 = load_moving(first, at), m2 = load_moving(second, at);
+    VECTOR before1 = vector_all(p_last[0]), before2 = vector_all(p_last[1]), e[4];
+    const double *const p1 = p[0], *const p2 = p[1];
+    int silent1 = is_silent(p_last[0]), silent2 = is_silent(p_last[1]);
+    const VECTOR x0 = looked_at(quantity, row, at, m1.u, m1.v, before1),
+                 y0 = looked_at(quantity, row, at, m2.u, m2.v, before2);
+    e[0] = vector_size(x0);
+    e[1] = vector_size(y0);
+    e[2] = vector_size(vector_sum(x0, y0));
+    e[3] = vector_size(vector_difference(x0, y0));
+    for (size_t i = 0; i < n; ++i) {
+        const VECTOR now1 = vector_all(p1[i]), now2 = vector_all(p2[i]);
+        const int next1 = is_silent(p1[i]), next2 = is_silent(p2[i]);
+        step_together(first, at, 1, &m1, before1, now1, silent1 & next1);
+        step_together(first, at, 1, &m2, before2, now2, silent2 & next2);
+        const VECTOR x = looked_at(quantity, row, at, m1.u, m1.v, now1),
+                     y = looked_at(quantity, row, at, m2.u, m2.v, now2);
+        e[0] = vector_larger_size(x, e[0]);
+        e[1] = vector_larger_size(y, e[1]);
+        e[2] = vector_larger_size(vector_sum(x, y), e[2]);
+        e[3] = vector_larger_size(vector_difference(x, y), e[3]);
+        silent1 = next1;
+        silent2 = next2;
+        before1 = now1;
+        before2 = now2;
+    }
+    store_moving(first, at, &m1);
+    store_moving(second, at, &m2);
+    vector_store(outside + at, reached_of_sides(side, at, e));
+    for (int i = 0; i < 4; ++i)
+        vector_store(extent[i] + at, e[i]);
+    return vector_any_nan(zero_if_finite(&m1, zero_if_finite(&m2, vector_all(0))));
+}
+
+static int under_two_inputs(lane_block *first, lane_block *second, size_t lanes, int quantity,
+                            double (*row)[LANES], double (*side)[2][LANES], const double *p_last, size_t n,
+                            const double *const *p, double *outside, double (*extent)[LANES])
+{
+#define UNDER(which) two_inputs_at(at, which, first, second, row, side, p_last, n, p, outside, extent)
+    int lost = 0;
+    for (size_t at = 0; at < lanes; at += WIDTH)
+        lost |= quantity == 0 ? UNDER(0) : quantity == 1 ? UNDER(1) : UNDER(2);
+#undef UNDER
+    return lost;
+}
 #endif
 
 #if defined(__GNUC__) && !defined(__clang__)
@@ -546,18 +623,17 @@ static void scatter(real *to, size_t stride, size_t count, size_t n, real (*tile
             to[j * stride + i] = tile[i][j];
 }
 
-#ifdef SINGLE_PRECISION
-#define FOR_PEAKS
-#else
-#define FOR_PEAKS .stretch = stretch, .may_exceed = may_exceed,
-#endif
-
 extern const kernels KERNELS;
 const kernels KERNELS = {.name = KERNELS_NAME,
                          .first_not_finite = first_not_finite,
                          .advance = advance,
                          .under_one_input = under_one_input,
-                         FOR_PEAKS.under_own_inputs = under_own_inputs,
+#ifndef SINGLE_PRECISION
+                         .stretch = stretch,
+                         .may_exceed = may_exceed,
+                         .under_two_inputs = under_two_inputs,
+#endif
+                         .under_own_inputs = under_own_inputs,
                          .rows = rows,
                          .gather = gather,
                          .scatter = scatter};

@@ -33,6 +33,38 @@ static void expected_steps(known_response *k, double *p, double *p_before)
     k->v = v;
 }
 
+static float sum_f32(float x, float y)
+{
+    return nearest_fmaf(1, x, y);
+}
+
+static void expected_carry(float *x, float *x_low, float change)
+{
+    const float with_low = sum_f32(change, *x_low), sum = sum_f32(*x, with_low);
+    *x_low = sum_f32(with_low, -sum_f32(sum, -*x));
+    *x = sum;
+}
+
+/* The recurrence of single precision. */
+static void expected_single(known_response *k, const exact_step *e)
+{
+    float q[EXACT_COUNT], u = 0.5f, v = -0.25f, u_low = 0, v_low = 0, p = (float)known_sample(0);
+    for (int i = 0; i < EXACT_COUNT; ++i)
+        q[i] = mpfr_get_flt(e->value[i], MPFR_RNDN) + 0.0f;
+    for (int i = 1; i < KNOWN_SAMPLES; ++i) {
+        const float next = (float)known_sample(i);
+        const float for_u = nearest_fmaf(q[2], p, nearest_fmaf(q[3], next, -0.0f));
+        const float for_v = nearest_fmaf(q[6], p, nearest_fmaf(q[7], next, -0.0f));
+        const float du = nearest_fmaf(q[8], u, nearest_fmaf(q[1], v, for_u));
+        const float dv = nearest_fmaf(q[4], u, nearest_fmaf(q[9], v, for_v));
+        expected_carry(&u, &u_low, du);
+        expected_carry(&v, &v_low, dv);
+        p = next;
+    }
+    const float single[4] = {u, v, u_low, v_low};
+    memcpy(k->single, single, sizeof single);
+}
+
 static known_response expected_response(known_response k)
 {
     exact_step e;
@@ -41,6 +73,7 @@ static known_response expected_response(known_response k)
     exact_input(&e, k.input, k.between);
     for (int i = 0; i < EXACT_COUNT; ++i)
         k.coefficients[i] = mpfr_get_d(e.value[i], MPFR_RNDN) + 0.0;
+    expected_single(&k, &e);
     exact_clear(&e);
     double p = 0, p_before = 0, from_p = 0, from_change = 0;
     expected_steps(&k, &p, &p_before);
@@ -81,6 +114,7 @@ START_TEST(responses)
         ck_assert_mem_eq(&expected.u, &known_responses[i].u, sizeof(double));
         ck_assert_mem_eq(&expected.v, &known_responses[i].v, sizeof(double));
         ck_assert_mem_eq(&expected.total, &known_responses[i].total, sizeof(double));
+        ck_assert_mem_eq(expected.single, known_responses[i].single, sizeof expected.single);
     }
 }
 END_TEST
@@ -114,7 +148,9 @@ static void print_tables(void)
                k.between == RAMPWISE_RAMP ? "RAMPWISE_RAMP" : "RAMPWISE_HOLD");
         for (int j = 0; j < EXACT_COUNT; ++j)
             printf("%s%a", j == 0 ? "" : j % 3 == 0 ? ",\n      " : ", ", k.coefficients[j]);
-        printf("},\n     %a,\n     %a,\n     %a},\n", k.u, k.v, k.total);
+        printf("},\n     %a,\n     %a,\n     %a,\n", k.u, k.v, k.total);
+        printf("     {%af, %af, %af, %af}},\n", (double)k.single[0], (double)k.single[1], (double)k.single[2],
+               (double)k.single[3]);
     }
     printf("};\n\n#endif\n");
 }
