@@ -10,6 +10,8 @@ Three lines::
 `System`, `System.natural`            systems by mass, damper, stiffness, or by period, frequency, omega
 `respond`                             whole records, at regular or irregular times
 `response_spectrum`                   SD, SV, SA, PSV, PSA with instants and signs
+`directional_spectrum`,               two components: percentiles over the direction
+`percentiles_over_angle`
 `energies`, `energy_spectrum`         where the energy goes
 `for_each`                            many records of unequal length; a bad one does not stop the rest
 `Bank`                                many oscillators under one input, fed in blocks
@@ -27,6 +29,7 @@ governing code and a licensed engineer's judgement.
 from ._library import arithmetic_edition, library_version
 from ._version import __version__
 from .bank import Bank
+from .directions import DirectionalSpectrum, directional_spectrum, percentiles_over_angle
 from .energy import Energies, EnergyHistory, EnergySpectrum, energies, energy_spectrum
 from .records import Outcomes, for_each
 from .response import Response, respond
@@ -39,6 +42,7 @@ __all__ = [
     "Bank",
     "Block",
     "CLIPPED",
+    "DirectionalSpectrum",
     "Energies",
     "EnergyHistory",
     "EnergySpectrum",
@@ -57,12 +61,14 @@ __all__ = [
     "__version__",
     "arithmetic_edition",
     "coefficients",
+    "directional_spectrum",
     "energies",
     "energy_spectrum",
     "equal_ratios",
     "for_each",
     "library_version",
     "octaves",
+    "percentiles_over_angle",
     "respond",
     "response_spectrum",
 ]

@@ -172,6 +172,11 @@ _PROTOTYPES: Dict[str, Any] = {  # the result first
     "rampwise_energy_spectrum": (
         _INT, _SIZE, _DOUBLE, _POINTER, _INT, _INT, _SIZE, _POINTER, _POINTER, _POINTER, _POINTER, _POINTER,
     ),
+    "rampwise_spectrum_directions": (
+        _INT, _SIZE, _DOUBLE, _POINTER, _POINTER, _INT, _SIZE, _POINTER, _POINTER, _INT, ctypes.c_uint, _SIZE, _POINTER,
+        _POINTER, _POINTER,
+    ),
+    "rampwise_percentiles_over_angle": (_INT, _SIZE, _POINTER, _POINTER, _SIZE, _POINTER, _POINTER, _POINTER),
     "rampwise_list_log": (_INT, _SIZE, _DOUBLE, _DOUBLE, _POINTER),
     "rampwise_list_octaves": (_INT, _DOUBLE, _DOUBLE, _SIZE, _SIZE, _POINTER, _POINTER),
 }  # fmt: skip
@@ -215,6 +220,7 @@ _ARGUMENTS = {
     "OVERFLOW": "record",
     "FRAME": "frame",
     "GAP": "samples",
+    "PERCENT": "percent",
     "DAMAGED": "saved",
     "KIND": "saved",
     "EDITION": "saved",
