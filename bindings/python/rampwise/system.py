@@ -141,12 +141,11 @@ class System:
         ratio = damping_ratio(damping, allow_strong_damping)
         shape = _arrays.broadcast(given.shape, ratio.shape, f"{name} and damping")
         unit = np.zeros(shape, _library.SYSTEM)
-        flat = unit.reshape(-1)
-        pairs = zip(_arrays.to_shape(given, shape).flat, _arrays.to_shape(ratio, shape).flat)
-        for i, (value, zeta) in enumerate(pairs):
-            status = _library.call(_MAKERS[name], _library.address(flat[i : i + 1]), value, zeta)
-            _library.check(status, f"{value:g}" if flat.size == 1 else f"{value:g}, entry {i}", frequency=name,
-                           damper="damping")  # fmt: skip
+        pairs = zip(*(_arrays.to_shape(array, shape).reshape(-1).tolist() for array in (given, ratio)))
+        for place, (value, zeta) in zip(_library.addresses(unit).tolist(), pairs):
+            status = _library.call(_MAKERS[name], place, value, zeta)
+            if status != 0:
+                _library.check(status, f"{value:g}", frequency=name, damper="damping")
         size = _arrays.doubles(mass, "mass")
         _arrays.broadcast(shape, size.shape, "mass")
         return cls(unit["mass"] * size, unit["damper"] * size, unit["stiffness"] * size)
@@ -217,9 +216,9 @@ def coefficients(
         systems[field] = getattr(system, field)
     numbers = arithmetic(precision)
     made = np.zeros(system.shape, numbers.coeffs)
-    first, first_system = _library.address(made), _library.address(systems)
-    for i in range(made.size):
-        status = numbers.call("coeffs_make", first + i * made.itemsize, first_system + i * systems.itemsize, step,
-                               input_number, between_number)  # fmt: skip
-        _library.check(status, f"entry {i} of system" if made.size > 1 else "")
+    places = zip(_library.addresses(made).tolist(), _library.addresses(systems).tolist())
+    for i, (place, system_place) in enumerate(places):
+        status = numbers.call("coeffs_make", place, system_place, step, input_number, between_number)
+        if status != 0:
+            _library.check(status, f"entry {i} of system" if made.size > 1 else "")
     return made

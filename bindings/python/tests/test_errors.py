@@ -77,7 +77,7 @@ SPECTRUM = [
      {"record": [[0, 1, 2], [0, NAN, 0]]}),
     (ValueError, "part: 'all' is none of", {"part": "all"}),
     (ValueError, "between: rigid oscillators", {"between": "hold", "period": [0.0, 1.0]}),
-    (ValueError, "period: The frequency is negative, the period .* \\(-1, entry 1\\)", {"period": [1.0, -1.0]}),
+    (ValueError, "period: The frequency is negative, the period .* \\(-1\\)", {"period": [1.0, -1.0]}),
     (ValueError, "damping: 5 is above 2", {"damping": 5}),
     (ValueError, "dt: The sample interval", {"dt": -0.1}),
 ]  # fmt: skip
