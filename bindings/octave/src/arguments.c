@@ -1,0 +1,118 @@
+#include "gateway.h"
+
+#include <math.h>
+
+void refuse(const char *what)
+{
+    mexErrMsgIdAndTxt("rampwise:gateway", "__rampwise__: %s", what);
+}
+
+/* ---- what comes in ---- */
+
+const mxArray *real_double(const mxArray *a)
+{
+    if (!mxIsDouble(a) || mxIsComplex(a) || mxIsSparse(a) || mxGetNumberOfDimensions(a) != 2)
+        refuse("a number must be a real, full matrix of doubles");
+    return a;
+}
+
+double scalar(const mxArray *a)
+{
+    if (mxGetNumberOfElements(real_double(a)) != 1)
+        refuse("a scalar is needed");
+    return mxGetPr(a)[0];
+}
+
+int integer(const mxArray *a)
+{
+    const double x = scalar(a);
+    if (!(x >= -2147483647 && x <= 2147483647) || x != floor(x))
+        refuse("an integer is needed");
+    return (int)x;
+}
+
+const double *doubles(const mxArray *a, size_t count)
+{
+    if (mxGetNumberOfElements(real_double(a)) != count)
+        refuse("a matrix has the wrong number of elements");
+    return mxGetPr(a);
+}
+
+const char *text(const mxArray *a)
+{
+    if (!mxIsChar(a))
+        refuse("a string is needed");
+    char *const s = mxArrayToString(a);
+    if (s == NULL)
+        refuse("a string is needed");
+    return s;
+}
+
+size_t whole_number(const mxArray *a)
+{
+    const int n = integer(a);
+    if (n < 0)
+        refuse("a number of things is negative");
+    return (size_t)n;
+}
+
+size_t count_systems(const mxArray *a)
+{
+    if (mxGetM(real_double(a)) != 3)
+        refuse("systems are columns of three");
+    return mxGetN(a);
+}
+
+void *memory(size_t bytes, size_t alignment)
+{
+    if (bytes == 0 || bytes > SIZE_MAX - alignment)
+        refuse("too many oscillators");
+    const uintptr_t start = (uintptr_t)mxMalloc(bytes + alignment);
+    return (void *)((start + alignment - 1) / alignment * alignment);
+}
+
+/* ---- what goes out ---- */
+
+/* mwSize is signed here, unsigned there. */
+mxArray *matrix(size_t rows, size_t columns)
+{
+    return mxCreateDoubleMatrix((mwSize)rows, (mwSize)columns, mxREAL);
+}
+
+mxArray *number(double x)
+{
+    return mxCreateDoubleScalar(x);
+}
+
+mxArray *empty(void)
+{
+    return matrix(0, 0);
+}
+
+int answer(mxArray **out, int status, size_t fault)
+{
+    out[0] = number(status);
+    out[1] = number((double)fault);
+    for (int i = 2; i < ANSWERS; ++i)
+        out[i] = empty();
+    return status;
+}
+
+/* ---- both ---- */
+
+#define REAL double
+#define PRECISION(name) name
+#include "coefficients_body.h"
+#undef REAL
+#undef PRECISION
+#define REAL float
+#define PRECISION(name) name##_f32
+#include "coefficients_body.h"
+
+void want_histories(mxArray **out, const mxArray *wanted, mxClassID class, size_t n, size_t columns)
+{
+    const double *const w = doubles(wanted, 4);
+    for (int i = 0; i < 4; ++i)
+        if (w[i] != 0)
+            out[2 + i] = mxCreateNumericMatrix((mwSize)n, (mwSize)columns, class, mxREAL);
+}

@@ -1,0 +1,88 @@
+/* __rampwise__ (COMMAND, ...): the one door from Octave into the library. The commands' arguments and answers stand
+   over their functions, users' explanations in inst. */
+#include <string.h>
+#include "gateway.h"
+
+static void version(mxArray **out, const mxArray **in)
+{
+    (void)in;
+    out[0] = mxCreateString(rampwise_version());
+    out[1] = number(rampwise_arithmetic_edition());
+    out[2] = number(rampwise_instructions(RAMPWISE_FASTEST));
+    out[3] = number(rampwise_self_test());
+}
+
+/* full name -> value, or empty where there is none */
+static void constant(mxArray **out, const mxArray **in)
+{
+    int value;
+    out[0] = rampwise_constant(text(in[0]), &value) == RAMPWISE_OK ? number(value) : empty();
+}
+
+static void status_text(mxArray **out, const mxArray **in)
+{
+    out[0] = mxCreateString(rampwise_status_text(integer(in[0])));
+}
+
+static const struct command {
+    char name[16];
+    int takes, answers;
+    command_call *call;
+} commands[] = {
+    /* clang-format off */
+    {"bank_count", 1, 3, bank_count},
+    {"bank_make", 4, 3, bank_make},
+    {"bank_read", 1, 5, bank_read},
+    {"bank_retune", 6, 2, bank_retune},
+    {"bank_run", 4, 7, bank_run},
+    {"bank_set", 2, 2, bank_set},
+    {"bank_start", 2, 2, bank_start},
+    {"coefficients", 4, 3, coefficients},
+    {"constant", 1, 1, constant},
+    {"list_log", 3, 3, list_log},
+    {"list_octaves", 3, 3, list_octaves},
+    {"object_free", 1, 1, object_free},
+    {"objects", 0, 1, objects},
+    {"peaks", 7, 3, peaks},
+    {"response", 10, 6, response},
+    {"response_f32", 10, 6, response_f32},
+    {"rigid_peaks", 4, 3, rigid_peaks},
+    {"status_text", 1, 1, status_text},
+    {"stream_make", 11, 3, stream_make},
+    {"stream_put", 3, 4, stream_put},
+    {"stream_read", 1, 4, stream_read},
+    {"stream_resume", 2, 2, stream_resume},
+    {"stream_save", 1, 3, stream_save},
+    {"stream_skip", 2, 2, stream_skip},
+    {"stream_start", 3, 2, stream_start},
+    {"stream_watch", 9, 3, stream_watch},
+    {"system", 3, 3, system_from},
+    {"version", 0, 4, version},
+    {"watch_events", 2, 1, watch_events},
+    {"watch_read", 2, 4, watch_read},
+    {"watch_release", 3, 2, watch_release},
+    {"watch_reset", 2, 2, watch_reset},
+    /* clang-format on */
+};
+
+void mexFunction(int nlhs, mxArray *plhs[], int nrhs, const mxArray *prhs[])
+{
+    if (!mexIsLocked()) {
+        mexLock();
+        mexAtExit(objects_clear);
+    }
+    if (nrhs < 1)
+        refuse("a command is needed");
+    const char *const name = text(prhs[0]);
+    for (size_t i = 0; i < sizeof commands / sizeof *commands; ++i)
+        if (strcmp(name, commands[i].name) == 0) {
+            if (nrhs - 1 != commands[i].takes || nlhs > commands[i].answers)
+                refuse("the wrong number of arguments");
+            mxArray *out[ANSWERS] = {NULL};
+            commands[i].call(out, prhs + 1);
+            for (int j = 0; j < (nlhs > 0 ? nlhs : 1); ++j)
+                plhs[j] = out[j];
+            return;
+        }
+    refuse("no such command");
+}

@@ -1,0 +1,78 @@
+/* What the parts of the gateway share.
+
+   Thin: a command is one call of the library, or one for each column, between checked arrays. Commands that can fail
+   answer the library's status first and then the index of what was at fault, from 1, or 0; the other answers are empty
+   then. Wrong arguments of the gateway itself are errors "rampwise:gateway".
+
+   Systems are a matrix of a column {mass; damper; stiffness} each. Samples are columns. Coefficients travel with
+   dt, input and between, and are made where they are used.
+
+   Errors leave by a jump. So memory is mxMalloc's, which Octave frees then, or belongs to the table of objects. */
+#ifndef GATEWAY_H
+#define GATEWAY_H
+
+#include <stddef.h>
+#include <stdint.h>
+#include <mex.h>
+#include <rampwise.h>
+
+enum { ANSWERS = 7 };
+
+/* ---- what comes in; all refuse what is not as they need it (arguments.c) ---- */
+
+void refuse(const char *what);
+const mxArray *real_double(const mxArray *a); /* a matrix */
+double scalar(const mxArray *a);
+int integer(const mxArray *a);
+size_t whole_number(const mxArray *a);                 /* 0 to 2^31 - 1 */
+const double *doubles(const mxArray *a, size_t count); /* a vector or matrix of so many elements */
+const char *text(const mxArray *a);                    /* valid until the call ends */
+size_t count_systems(const mxArray *a);
+
+/* Aligned, and freed when the call ends. */
+void *memory(size_t bytes, size_t alignment);
+
+/* One set a system, from in[0..3]: systems, dt, input, between. NULL, with the answer given, where it fails. */
+rampwise_coeffs *make_coefficients(mxArray **out, const mxArray **in);
+rampwise_coeffs_f32 *make_coefficients_f32(mxArray **out, const mxArray **in);
+
+/* ---- what goes out ---- */
+
+mxArray *matrix(size_t rows, size_t columns); /* of zeros */
+mxArray *number(double x);
+mxArray *empty(void);
+
+/* The status, and where; all other answers empty. Returns the status. */
+int answer(mxArray **out, int status, size_t fault);
+
+/* Room from out[2] on for the histories wanted, u, v, u'' and total; the others stay empty. And column j of them. */
+void want_histories(mxArray **out, const mxArray *wanted, mxClassID class, size_t n, size_t columns);
+rampwise_history histories(mxArray **out, size_t n, size_t j);
+rampwise_history_f32 histories_f32(mxArray **out, size_t n, size_t j);
+
+/* ---- objects that stay (objects.c) ---- */
+
+typedef struct object_kind {
+    const char *name;
+    void (*release)(void *object);
+} object_kind;
+
+/* The table takes the object, which it releases where it cannot. */
+mxArray *object_keep(const object_kind *kind, void *object);
+
+/* Refuses a number that is not, or no more, one of this kind. */
+void *object_find(const mxArray *a, const object_kind *kind);
+
+void objects_clear(void);
+
+/* ---- commands ---- */
+
+typedef void command_call(mxArray **out, const mxArray **in);
+command_call coefficients, system_from, response, response_f32, peaks, rigid_peaks, list_log, list_octaves;
+command_call object_free, objects;
+command_call bank_make, bank_start, bank_run, bank_read, bank_set, bank_retune, bank_count;
+command_call stream_make, stream_put, stream_read, stream_start, stream_skip, stream_watch, stream_save,
+    stream_resume;
+command_call watch_read, watch_events, watch_reset, watch_release;
+
+#endif

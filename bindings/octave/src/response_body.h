@@ -1,0 +1,68 @@
+/* Responses to whole records, included once a precision. */
+
+typedef struct PRECISION(whole) {
+    size_t n, columns, systems;
+    const REAL *p;
+    const double *t; /* NULL for regular samples */
+    const double *u0, *v0;
+    int start;
+    PRECISION(rampwise_coeffs) * c;
+} PRECISION(whole);
+
+/* Entry 0 is the state at the start; but by a ramp it is one step later. */
+static int PRECISION(respond)(const PRECISION(whole) * w, size_t j, PRECISION(rampwise_history) h,
+                              size_t *bad)
+{
+    const PRECISION(rampwise_coeffs) *const c = &w->c[w->systems > 1 ? j : 0];
+    const REAL *const p = w->p + (w->columns > 1 ? j * w->n : 0);
+    PRECISION(rampwise_state) s;
+    *bad = 0;
+    PRECISION(rampwise_start)(&s, (REAL)w->u0[j], (REAL)w->v0[j], w->start == BY_A_RAMP ? 0 : p[0]);
+    if (w->start == BY_A_RAMP)
+        return PRECISION(rampwise_run)(c, &s, w->n, p, &h, bad);
+    int status = w->start == SETTLED ? PRECISION(rampwise_start_settled)(c, &s, p[0]) : RAMPWISE_OK;
+    if (status == RAMPWISE_OK)
+        status = PRECISION(rampwise_solve)(c, s.u, s.v, 1, p, &h, bad);
+    if (status != RAMPWISE_OK)
+        return status;
+    const PRECISION(rampwise_history) after = {h.u ? h.u + 1 : NULL, h.v ? h.v + 1 : NULL,
+                                               h.a ? h.a + 1 : NULL, h.total ? h.total + 1 : NULL};
+    status = PRECISION(run_rest)(c, &s, w->n - 1, w->t, p + 1, &after, bad);
+    *bad += status != RAMPWISE_OK;
+    return status;
+}
+
+void PRECISION(response)(mxArray **out, const mxArray **in)
+{
+    PRECISION(whole)
+    w = {.n = mxGetM(in[7]),
+         .columns = mxGetN(in[7]),
+         .systems = count_systems(in[0]),
+         .start = integer(in[4])};
+    const size_t wide = w.systems > 1 ? w.systems : w.columns;
+    if (mxGetClassID(in[7]) != CLASS || mxIsComplex(in[7]) || mxIsSparse(in[7]) ||
+        mxGetNumberOfDimensions(in[7]) != 2)
+        refuse("samples are a real, full matrix of their class");
+    if (w.n == 0 || w.systems == 0 || (w.columns > 1 ? w.columns : wide) != wide || w.columns == 0)
+        refuse("systems and columns of samples must be as many, or one");
+    w.u0 = doubles(in[5], wide);
+    w.v0 = doubles(in[6], wide);
+    w.p = mxGetData(in[7]);
+    w.t = mxIsEmpty(in[9]) ? NULL : doubles(in[9], w.n);
+    if (w.start < AT_ONCE || w.start > SETTLED ||
+        (w.t != NULL && (w.start == BY_A_RAMP || CLASS != mxDOUBLE_CLASS)))
+        refuse("no such start, or no times with it");
+    w.c = PRECISION(make_coefficients)(out, in);
+    if (w.c == NULL)
+        return;
+    answer(out, RAMPWISE_OK, 0);
+    want_histories(out, in[8], CLASS, w.n, wide);
+    for (size_t j = 0; j < wide; ++j) {
+        size_t bad;
+        const int status = PRECISION(respond)(&w, j, PRECISION(histories)(out, w.n, j), &bad);
+        if (status != RAMPWISE_OK) {
+            answer(out, status, bad + 1 + (w.columns > 1 ? j * w.n : 0));
+            return;
+        }
+    }
+}
