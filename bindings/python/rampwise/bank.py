@@ -170,8 +170,8 @@ class Bank:
             for field, history in zip(("u", "v", "a", "total"), kept):
                 wanted["history"][field] = _library.address(history)
         bad = np.zeros(1, np.uintp)
-        status = self._numbers.call("bank_run", self._place, block.size, _library.address(block), _library.address(wanted),
-                               _library.address(bad))  # fmt: skip
+        places = [_library.address(array) for array in (block, wanted, bad)]
+        status = self._numbers.call("bank_run", self._place, block.size, *places)
         if status != _library.OVERFLOW:
             _library.check(status, f"at sample {bad[0]}", sample="samples")
         self._largest = largest

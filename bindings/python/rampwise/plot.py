@@ -195,8 +195,9 @@ def spectra(
     for i, (curve, label) in enumerate(zip(curves, labels)):
         colour = _COLOURS[i % len(_COLOURS)]
         if bands is not None:
-            axes.fill_between(period, curve * np.maximum(1 - bands[i], 0), curve * (1 + bands[i]), color=colour, alpha=0.22,
-                              linewidth=0, label="sampling error" if i == 0 else None)  # fmt: skip
+            low, high = curve * np.maximum(1 - bands[i], 0), curve * (1 + bands[i])
+            label_once = "sampling error" if i == 0 else None
+            axes.fill_between(period, low, high, color=colour, alpha=0.22, linewidth=0, label=label_once)
         axes.plot(period, curve, color=colour, linewidth=1.4, label=label, zorder=3)
     axes.set_xlabel(_label(("natural period", "{time}"), units))
     axes.set_ylabel(_label(_SPECTRA[quantity], units))
