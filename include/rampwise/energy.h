@@ -50,8 +50,8 @@
 
 /* Against what the motion is measured. */
 enum {
-    RAMPWISE_RELATIVE = 51, /* the base */
-    RAMPWISE_ABSOLUTE = 52  /* a fixed frame */
+    RAMPWISE_RELATIVE = 71, /* the base */
+    RAMPWISE_ABSOLUTE = 72  /* a fixed frame */
 };
 
 typedef struct rampwise_energy {

@@ -4,6 +4,10 @@
 #include <stdlib.h>
 #include <string.h>
 
+#ifndef TEST_VECTORS
+#define TEST_VECTORS "tests/vectors"
+#endif
+
 void vectors_open(vectors *v, const char *name)
 {
     char path[4096];

@@ -10,7 +10,7 @@ typedef struct vectors {
     char line[1 << 16];
 } vectors;
 
-/* Opens file `name` of the directory TEST_VECTORS, or that of the environment's RAMPWISE_VECTORS. */
+/* Opens file `name` of the directory RAMPWISE_VECTORS of the environment, or of TEST_VECTORS. */
 void vectors_open(vectors *v, const char *name);
 
 /* The next object, kept in v->line; 0 at the end, where the file is closed. */

@@ -1,0 +1,74 @@
+"""Exact response of spring-mass-damper systems to sampled loads.
+
+Three lines::
+
+    import rampwise
+    spectrum = rampwise.response_spectrum(ground, dt=0.005, period=rampwise.equal_ratios(200, 0.02, 4.0))
+    print(spectrum.PSA)
+
+====================================  =================================================================
+`System`, `System.natural`            systems by mass, damper, stiffness, or by period, frequency, omega
+`respond`                             whole records, at regular or irregular times
+`response_spectrum`                   SD, SV, SA, PSV, PSA with instants and signs
+`directional_spectrum`,               two components: percentiles over the direction
+`percentiles_over_angle`
+`energies`, `energy_spectrum`         where the energy goes
+`for_each`                            many records of unequal length; a bad one does not stop the rest
+`Bank`                                many oscillators under one input, fed in blocks
+`Stream`, `Level`                     one oscillator on live data, with gaps, rails, watches that trip
+`coefficients`                        the coefficients of a step
+`equal_ratios`, `octaves`             periods or frequencies of a spectrum
+`rampwise.plot`                       pictures; needs matplotlib
+====================================  =================================================================
+
+Arrays may be of any real type, shape and layout, and are not copied where they need not be. Units are the caller's,
+any consistent set; damping is a ratio. All bits are those of the C library. Results support, and never replace, the
+governing code and a licensed engineer's judgement.
+"""
+
+from ._library import arithmetic_edition, library_version
+from ._version import __version__
+from .bank import Bank
+from .directions import DirectionalSpectrum, directional_spectrum, percentiles_over_angle
+from .energy import Energies, EnergyHistory, EnergySpectrum, energies, energy_spectrum
+from .records import Outcomes, for_each
+from .response import Response, respond
+from .spectrum import Peaks, Spectrum, equal_ratios, octaves, response_spectrum
+from .stream import BRIDGED, CLIPPED, STARTED, WAITING, Block, Event, Level, LevelReport, Stream, Watch
+from .system import System, coefficients
+
+__all__ = [
+    "BRIDGED",
+    "Bank",
+    "Block",
+    "CLIPPED",
+    "DirectionalSpectrum",
+    "Energies",
+    "EnergyHistory",
+    "EnergySpectrum",
+    "Event",
+    "Level",
+    "LevelReport",
+    "Outcomes",
+    "Peaks",
+    "Response",
+    "STARTED",
+    "Spectrum",
+    "Stream",
+    "System",
+    "WAITING",
+    "Watch",
+    "__version__",
+    "arithmetic_edition",
+    "coefficients",
+    "directional_spectrum",
+    "energies",
+    "energy_spectrum",
+    "equal_ratios",
+    "for_each",
+    "library_version",
+    "octaves",
+    "percentiles_over_angle",
+    "respond",
+    "response_spectrum",
+]

@@ -1,0 +1,481 @@
+"""Response spectra: the largest responses of many oscillators to records."""
+
+from __future__ import annotations
+
+import dataclasses
+from typing import Any, Dict, List, Literal, NamedTuple, Optional, Tuple
+
+import numpy as np
+from numpy.typing import ArrayLike, NDArray
+
+from . import _arrays, _library
+from ._arrays import Doubles
+from ._provenance import plain, provenance
+from ._work import spread
+from .system import Between, Input, System, coefficients, damping_ratio, kinds, one_of
+
+Part = Literal["primary", "residual", "maximax"]
+
+_PARTS: Dict[str, int] = {
+    "primary": 0,
+    "residual": _library.constant("RESIDUAL"),
+    "maximax": _library.constant("MAXIMAX"),
+}
+_QUANTITIES = tuple(_library.constant(name) for name in ("DISPLACEMENT", "VELOCITY", "TOTAL_ACCELERATION"))
+_AT_SAMPLES = _library.constant("AT_SAMPLES")
+_EVIDENCE = _library.constant("EVIDENCE")
+_ABRUPT_START, _ABRUPT_END = _library.constant("ABRUPT_START"), _library.constant("ABRUPT_END")
+_FASTEST = _library.constant("FASTEST")
+_A_TASK = 64  # oscillators: two blocks of lanes, 170 KB
+
+
+@dataclasses.dataclass(frozen=True, eq=False)
+class Peaks:
+    """Greatest and least values of a response, and when.
+
+    Attributes
+    ----------
+    high, low : ndarray
+        Greatest and least value; from rest ``high >= 0 >= low``. Infinite where a response overflows, or grows
+        without end.
+    high_time, low_time : ndarray
+        Their instants, counted from the first sample, in the unit of time of `dt`; infinite for a value that is never
+        reached.
+    high_error, low_error : ndarray or None
+        Where evidence was asked for: estimates of what the sampling of the record has cost each. ``high - high_error``
+        is closer to the response to the smooth load.
+    """
+
+    high: Doubles
+    high_time: Doubles
+    low: Doubles
+    low_time: Doubles
+    high_error: Optional[Doubles] = None
+    low_error: Optional[Doubles] = None
+
+    @classmethod
+    def _read(cls, peaks: NDArray[np.void], dt: float, evidence: Optional[NDArray[np.void]]) -> "Peaks":
+        values: List[Doubles] = []
+        for side in ("high", "low"):
+            instant = peaks[side]
+            sample = instant["sample"]
+            never = sample == np.iinfo(np.uint64).max
+            values += [instant["value"].copy(), np.where(never, np.inf, (sample + instant["fraction"]) * dt)]
+        if evidence is not None:
+            values += [evidence["error_high"].copy(), evidence["error_low"].copy()]
+        return cls(*values)
+
+    @property
+    def _high_is_larger(self) -> NDArray[np.bool_]:
+        high, low = np.abs(self.high), np.abs(self.low)
+        return np.asarray((high > low) | ((high == low) & (self.high_time <= self.low_time)))
+
+    @property
+    def value(self) -> Doubles:
+        """The larger in size of the two, with its sign; the earlier where they are equal."""
+        return np.where(self._high_is_larger, self.high, self.low)
+
+    @property
+    def size(self) -> Doubles:
+        """Size of the larger one."""
+        return np.abs(self.value)
+
+    @property
+    def sign(self) -> Doubles:
+        """Sign of the larger one: 1, -1, or 0 where nothing moves."""
+        return np.sign(self.value)
+
+    @property
+    def time(self) -> Doubles:
+        """Instant of the larger one."""
+        return np.where(self._high_is_larger, self.high_time, self.low_time)
+
+    @property
+    def error(self) -> Optional[Doubles]:
+        """Estimated sampling error of the larger one; None where no evidence was asked for."""
+        if self.high_error is None or self.low_error is None:
+            return None
+        return np.where(self._high_is_larger, self.high_error, self.low_error)
+
+    @property
+    def share(self) -> Optional[Doubles]:
+        """Size of the error over that of the value; 0 where both are 0."""
+        error = self.error
+        if error is None:
+            return None
+        size = np.where(error == 0, 1.0, self.size)
+        with np.errstate(divide="ignore", invalid="ignore"):
+            return np.asarray(np.abs(error) / size)
+
+
+@dataclasses.dataclass(frozen=True, eq=False)
+class Spectrum:
+    """Response spectra over a grid of damping ratios and periods.
+
+    Attributes
+    ----------
+    period, frequency, omega : ndarray
+        The natural periods of the oscillators, and the same as frequencies and circular frequencies.
+    damping : ndarray
+        Damping ratios.
+    displacement, velocity, total_acceleration : Peaks
+        Values, instants and signs, of shape ``records + damping.shape + period.shape``. Displacement and velocity are
+        relative to the base.
+    abrupt_start, abrupt_end : ndarray of bool or None
+        Where evidence was asked for, of each record: it starts or stops abruptly. At the start that makes all estimates
+        of sampling errors worthless, at the end those of the last samples and of residuals.
+    provenance : dict
+        Version, edition of the arithmetic, options.
+    """
+
+    period: Doubles
+    frequency: Doubles
+    omega: Doubles
+    damping: Doubles
+    displacement: Peaks
+    velocity: Peaks
+    total_acceleration: Peaks
+    abrupt_start: Optional[NDArray[np.bool_]]
+    abrupt_end: Optional[NDArray[np.bool_]]
+    provenance: Dict[str, Any]
+
+    def shortest_period(self, share: float, quantity: str = "total_acceleration") -> Doubles:
+        """The shortest period from which on upwards no sampling error is estimated above a share of the value.
+
+        Parameters
+        ----------
+        share : float
+            0.01 is one per cent.
+        quantity : {'displacement', 'velocity', 'total_acceleration'}
+            Of which peak.
+
+        Returns
+        -------
+        ndarray
+            One for each record and damping ratio; infinite where the longest period has more. Worth nothing where
+            `abrupt_start` is true.
+        """
+        if quantity not in ("displacement", "velocity", "total_acceleration"):
+            raise ValueError(f"quantity: {quantity!r} is none of 'displacement', 'velocity', 'total_acceleration'")
+        shares = getattr(self, quantity).share
+        if shares is None:
+            raise ValueError("share: the spectrum was made without evidence=True")
+        axes = tuple(range(shares.ndim - self.period.ndim, shares.ndim))
+        exceeding = np.max(np.where(shares <= share, -1.0, self.period), axis=axes, keepdims=True, initial=-1.0)
+        return np.asarray(np.min(np.where(self.period > exceeding, self.period, np.inf), axis=axes, initial=np.inf))
+
+    @property
+    def SD(self) -> Doubles:
+        """Spectral displacement: the largest relative displacement, in size."""
+        return self.displacement.size
+
+    @property
+    def SV(self) -> Doubles:
+        """Spectral velocity: the largest relative velocity, in size. Not the pseudo-velocity."""
+        return self.velocity.size
+
+    @property
+    def SA(self) -> Doubles:
+        """Spectral acceleration: the largest total acceleration (against a fixed frame), in size.
+
+        Not the pseudo-acceleration, which many programs call Sa.
+        """
+        return self.total_acceleration.size
+
+    @property
+    def PSV(self) -> Doubles:
+        """Pseudo-velocity, omega SD."""
+        return self._times_omega(self.SD)
+
+    @property
+    def PSA(self) -> Doubles:
+        """Pseudo-acceleration, omega^2 SD: the spring force per mass. Of rigid oscillators, the total acceleration."""
+        pseudo = self._times_omega(self.PSV)
+        return np.where(np.isinf(self.omega), self.SA, pseudo)
+
+    def _times_omega(self, values: Doubles) -> Doubles:
+        finite = np.where(np.isinf(self.omega), 0.0, self.omega)  # rigid oscillators do not move
+        return np.asarray(finite * values)
+
+    def to_dict(self) -> Dict[str, Any]:
+        """Everything as plain dictionaries, lists, numbers and texts, as ``json.dumps`` takes them."""
+        result: Dict[str, Any] = plain(self)
+        for name in ("SD", "SV", "SA", "PSV", "PSA"):
+            result[name] = plain(getattr(self, name))
+        return result
+
+
+class Oscillators(NamedTuple):
+    """The grid of a spectrum, flat: damping by damping, and in it period by period."""
+
+    name: str
+    given: Doubles
+    omega: Doubles
+    damping: Doubles
+    lists: Tuple[Doubles, Doubles, Doubles]  # period, frequency, omega, as they were shaped
+    shape: Tuple[int, ...]
+
+    @classmethod
+    def make(cls, name: str, given: Doubles, ratio: Doubles) -> "Oscillators":
+        with np.errstate(divide="ignore"):
+            omega = given if name == "omega" else 2 * np.pi * given if name == "frequency" else 2 * np.pi / given
+            lists = (
+                given if name == "period" else np.asarray(2 * np.pi / omega),
+                given if name == "frequency" else np.asarray(omega / (2 * np.pi)),
+                np.asarray(omega),
+            )
+        flat = [np.tile(array.reshape(-1), ratio.size) for array in (given, lists[2])]
+        return cls(name, flat[0], flat[1], np.repeat(ratio.reshape(-1), given.size), lists, ratio.shape + given.shape)
+
+    @property
+    def rigid(self) -> NDArray[np.bool_]:
+        return np.asarray(self.given == (0.0 if self.name == "period" else np.inf))
+
+
+def response_spectrum(
+    record: ArrayLike,
+    dt: float,
+    *,
+    period: Optional[ArrayLike] = None,
+    frequency: Optional[ArrayLike] = None,
+    omega: Optional[ArrayLike] = None,
+    damping: ArrayLike = 0.05,
+    input: Input = "base acceleration",
+    between: Between = "ramp",
+    part: Part = "primary",
+    at_samples: bool = False,
+    evidence: bool = False,
+    allow_strong_damping: bool = False,
+    threads: int = 1,
+    progress: bool = False,
+) -> Spectrum:
+    """Response spectra of records, with the true peaks between the samples.
+
+    Parameters
+    ----------
+    record : array_like, shape (..., n)
+        Records along the last axis, straight lines between samples. Every oscillator is at rest under the first
+        sample.
+    dt : float
+        Interval between samples.
+    period, frequency, omega : array_like
+        Exactly one of them: natural periods, frequencies in cycles per unit of time, or circular frequencies of
+        the oscillators. A period of 0 (frequency or omega infinite) is a rigid one, which goes with its base; omega = 0
+        is a free mass.
+    damping : array_like
+        Ratios to critical damping. The result is a grid: every damping ratio with every period.
+    input : {'base acceleration', 'base velocity', 'base displacement', 'force'}
+        What the samples are. For a force the mass is 1.
+    between : {'ramp', 'hold'}
+        What the input does between samples.
+    part : {'primary', 'residual', 'maximax'}
+        When peaks are looked for: from the first to the last sample, in the free motion after it, or both.
+    at_samples : bool
+        Looks at the samples only, as many programs do.
+    evidence : bool
+        Estimates what the sampling of a smooth load has cost each peak too, for half as much work again. Not for base
+        displacement, and for 'ramp' only.
+    allow_strong_damping : bool
+        Takes damping ratios above 2.
+    threads : int
+        Oscillators and records are spread over so many threads; the bits stay the same.
+    progress : bool
+        Shows a bar of progress where tqdm is installed.
+
+    Returns
+    -------
+    Spectrum
+        SD, SV, SA, PSV, PSA and the peaks, of shape ``record.shape[:-1] + damping.shape + period.shape``. SA is the
+        total acceleration; PSA is the pseudo-acceleration.
+
+    Raises
+    ------
+    ValueError, TypeError
+        With the name of the argument.
+
+    Notes
+    -----
+    Inside a step the response is a line plus a free vibration; its extremes are found exactly, so the values do not
+    depend on where the samples happen to lie. What the sampling of the record itself has lost is another matter, of
+    which `evidence` is an estimate; ten samples in the shortest period that matters is common practice. float32
+    records are converted to double.
+
+    Examples
+    --------
+    A base that jumps to a steady 3: an undamped oscillator doubles it.
+
+    >>> import numpy, rampwise
+    >>> spectrum = rampwise.response_spectrum(numpy.full(601, 3.0), dt=0.001, period=[0.5, 1.0], damping=0.0)
+    >>> spectrum.SA.round(9)
+    array([6., 6.])
+    >>> spectrum.total_acceleration.time.round(9)
+    array([0.25, 0.5 ])
+    """
+    name, given = one_of(period=period, frequency=frequency, omega=omega)
+    ratio = damping_ratio(damping, allow_strong_damping)
+    if part not in _PARTS:
+        raise ValueError(f"part: {part!r} is none of {', '.join(map(repr, _PARTS))}")
+    samples = _arrays.records(record, "record")
+    rows = _Records(samples, _arrays.double(dt, "dt"), input, between, part, at_samples, evidence)
+    oscillators = Oscillators.make(name, given, ratio)
+    shape = samples.shape[:-1] + oscillators.shape
+    found, errors = rows.peaks(oscillators, threads, progress)
+    peaks = [
+        Peaks._read(found[i].reshape(shape), rows.dt, errors[i].reshape(shape) if evidence else None)
+        for i in range(len(_QUANTITIES))
+    ]
+    abrupt = errors[0]["abrupt"][:, 0].reshape(samples.shape[:-1]) if evidence and given.size and ratio.size else None
+    return Spectrum(
+        *oscillators.lists,
+        ratio,
+        peaks[0],
+        peaks[1],
+        peaks[2],
+        None if abrupt is None else (abrupt & _ABRUPT_START) != 0,
+        None if abrupt is None else (abrupt & _ABRUPT_END) != 0,
+        provenance(dt=rows.dt, input=input, between=between, part=part, at_samples=bool(at_samples),
+                   evidence=bool(evidence), threads=threads),
+    )  # fmt: skip
+
+
+class _Found(NamedTuple):
+    """Structs of the library for each quantity."""
+
+    peaks: List[NDArray[np.void]]
+    evidence: List[NDArray[np.void]]
+
+
+def _nothing(shape: Tuple[int, ...]) -> _Found:
+    return _Found(
+        [np.zeros(shape, _library.PEAK) for _ in _QUANTITIES], [np.zeros(shape, _library.EVIDENCE) for _ in _QUANTITIES]
+    )
+
+
+class _Records:
+    """The records of a call, and how they are looked at."""
+
+    def __init__(
+        self,
+        samples: Doubles,
+        dt: float,
+        input: Input,
+        between: Between,
+        part: str,
+        at_samples: bool,
+        evidence: bool,
+    ) -> None:
+        self.samples = samples
+        self.dt = dt
+        self.input: Input = input
+        self.between: Between = between
+        self.part = _PARTS[part]
+        self.flags = _AT_SAMPLES if at_samples else 0
+        self.evidence = evidence
+        self.n = samples.shape[-1]
+        self.at = _library.addresses(samples[..., 0])
+
+    def peaks(self, oscillators: Oscillators, threads: int, progress: bool) -> _Found:
+        """[records, oscillators] for each quantity."""
+        rigid = oscillators.rigid
+        moving = np.flatnonzero(~rigid)
+        natural: Dict[str, Any] = {oscillators.name: oscillators.given[moving]}
+        systems = System.natural(damping=oscillators.damping[moving], allow_strong_damping=True, **natural)
+        made = coefficients(systems, self.dt, input=self.input, between=self.between)
+        result = _nothing((self.at.size, rigid.size))
+        tasks = [
+            (row, slice(first, first + _A_TASK))
+            for row in range(self.at.size)
+            for first in range(0, moving.size, _A_TASK)
+        ]
+
+        def work(task: Tuple[int, slice]) -> None:
+            row, block = task
+            found = self._block(row, made[block])
+            for whole, part in zip(result.peaks + result.evidence, found.peaks + found.evidence):
+                whole[row, moving[block]] = part
+
+        spread(work, tasks, threads, progress)
+        self._follow_base(result, np.flatnonzero(rigid), oscillators.damping)
+        return result
+
+    def _block(self, row: int, made: NDArray[np.void]) -> _Found:
+        """The peaks of some oscillators under one record."""
+        size = _library.call("peaks_size", made.size)
+        memory = _arrays.aligned(size, _library.call("peaks_alignment"))
+        quantities = np.array(_QUANTITIES, np.intc)
+        made = np.ascontiguousarray(made)
+        place, bad = np.zeros(1, np.uintp), np.zeros(1, np.uintp)
+        status = _library.call("peaks_init", _library.address(memory), size, made.size, _library.address(made),
+                               quantities.size, _library.address(quantities),
+                               self.flags | (_EVIDENCE if self.evidence else 0), _FASTEST,
+                               _library.address(place))  # fmt: skip
+        _library.check(status)
+        status = _library.call("peaks_run", int(place[0]), self.n, int(self.at[row]), _library.address(bad))
+        self._check(status, row, bad)
+        found = _nothing((made.size,))
+        for quantity, peaks, errors in zip(_QUANTITIES, *found):
+            _library.check(_library.call("peaks_get", int(place[0]), quantity, self.part, _library.address(peaks)))
+            if self.evidence:
+                status = _library.call("peaks_evidence", int(place[0]), quantity, self.part, _library.address(errors))
+                _library.check(status)
+        return found
+
+    def _check(self, status: int, row: int, bad: NDArray[np.uintp]) -> None:
+        index = [int(i) for i in np.unravel_index(row, self.samples.shape[:-1])]
+        _library.check(status, f"at sample {bad[0]}" + (f" of record {index}" if index else ""))
+
+    def _follow_base(self, result: _Found, rigid: NDArray[np.intp], damping: Doubles) -> None:
+        """Rigid oscillators have no coefficients."""
+        if rigid.size == 0:
+            return
+        if self.between != "ramp":
+            raise ValueError("between: rigid oscillators (period 0) need 'ramp'")
+        input_number, _ = kinds(self.input, self.between)
+        omega, ratio = np.full(rigid.size, np.inf), damping[rigid]
+        for row in range(self.at.size):
+            for number, peaks, errors in zip(_QUANTITIES, *result):
+                found, cost = np.zeros(rigid.size, _library.PEAK), np.zeros(rigid.size, _library.EVIDENCE)
+                bad = np.zeros(1, np.uintp)
+                places = [_library.address(found)] + ([_library.address(cost)] if self.evidence else [])
+                status = _library.call("spectrum_evidence" if self.evidence else "spectrum", self.n, self.dt,
+                                       int(self.at[row]), input_number, rigid.size, _library.address(omega),
+                                       _library.address(ratio), number, self.flags | self.part, *places,
+                                       _library.address(bad))  # fmt: skip
+                self._check(status, row, bad)
+                peaks[row, rigid] = found
+                errors[row, rigid] = cost
+
+
+def equal_ratios(count: int, first: float, last: float) -> Doubles:
+    """So many values from first to last at equal ratios: periods or frequencies of a spectrum.
+
+    Examples
+    --------
+    >>> import rampwise
+    >>> rampwise.equal_ratios(4, 0.1, 100.0).round(12)
+    array([  0.1,   1. ,  10. , 100. ])
+    """
+    values = np.zeros(_arrays.whole(count, "count", 1))
+    ends = _arrays.double(first, "first"), _arrays.double(last, "last")
+    _library.check(_library.call("list_log", values.size, *ends, _library.address(values)), frequency="first and last")
+    return values
+
+
+def octaves(first: float, last: float, per_octave: int) -> Doubles:
+    """Values from first upwards, so many to each doubling, up to last.
+
+    Examples
+    --------
+    >>> import rampwise
+    >>> rampwise.octaves(1.0, 8.0, 1)
+    array([1., 2., 4., 8.])
+    """
+    steps = _arrays.whole(per_octave, "per_octave", 1)
+    ends = _arrays.double(first, "first"), _arrays.double(last, "last")
+    count = np.zeros(1, np.uintp)
+    for capacity in range(2):  # how many, then the values
+        values = np.zeros(int(count[0]))
+        status = _library.call("list_octaves", *ends, steps, values.size,
+                               _library.address(values) if capacity else None, _library.address(count))  # fmt: skip
+        _library.check(status, frequency="first and last", count="per_octave")
+    return values
