@@ -57,6 +57,14 @@ const char *rampwise_status_text(int status)
         return "A state is not finite";
     case RAMPWISE_ERROR_TIME:
         return "A time is not finite, or not later than the one before";
+    case RAMPWISE_ERROR_GAP:
+        return "More samples in a row are missing than allowed";
+    case RAMPWISE_ERROR_DAMAGED:
+        return "The bytes are no saved object, not a whole one, or damaged";
+    case RAMPWISE_ERROR_KIND:
+        return "The bytes are a saved object of another kind";
+    case RAMPWISE_ERROR_EDITION:
+        return "The bytes were saved by a version of the library that gives other bits";
     case RAMPWISE_ERROR_OVERFLOW:
         return "The response is too large for a double";
     case RAMPWISE_ERROR_FUSED:

@@ -44,6 +44,13 @@ enum {
     RAMPWISE_ERROR_STATE = -62,  /* a state is NaN or infinite */
     RAMPWISE_ERROR_TIME = -64,   /* a time is NaN, infinite, or not later than the one before */
 
+    RAMPWISE_ERROR_GAP = -66, /* more samples in a row are missing than allowed */
+
+    /* Saved bytes are. */
+    RAMPWISE_ERROR_DAMAGED = -70, /* no saved object, not a whole one, or one with wrong bytes */
+    RAMPWISE_ERROR_KIND = -72,    /* saved of another kind of object */
+    RAMPWISE_ERROR_EDITION = -74, /* saved by another version, whose bits may differ */
+
     /* The results are. */
     RAMPWISE_ERROR_OVERFLOW = -80, /* the response is larger than a double can hold */
 

@@ -1,0 +1,131 @@
+#include "saved.h"
+
+#include <string.h>
+#include "rampwise/status.h"
+#include "rampwise/version.h"
+
+static const unsigned char letters[8] = {'R', 'A', 'M', 'P', 'W', 'I', 'S', 'E'};
+
+enum { HEAD = 32, TAIL = 4 };
+
+static void number(saved *s, uint64_t *x, size_t bytes)
+{
+    uint64_t read = 0;
+    for (size_t i = 0; i < bytes; ++i) {
+        if (s->to != NULL)
+            s->to[s->at + i] = (unsigned char)(*x >> 8 * i);
+        if (s->from != NULL)
+            read |= (uint64_t)s->from[s->at + i] << 8 * i;
+    }
+    if (s->from != NULL)
+        *x = read;
+    s->at += bytes;
+}
+
+void rampwise_saved_uint32_(saved *s, uint32_t *x)
+{
+    uint64_t wide = *x;
+    number(s, &wide, 4);
+    *x = (uint32_t)wide;
+}
+
+void rampwise_saved_uint64_(saved *s, uint64_t *x)
+{
+    number(s, x, 8);
+}
+
+void rampwise_saved_double_(saved *s, double *x)
+{
+    uint64_t bits;
+    memcpy(&bits, x, sizeof bits);
+    number(s, &bits, 8);
+    if (s->from != NULL)
+        memcpy(x, &bits, sizeof bits);
+}
+
+void rampwise_saved_float_(saved *s, float *x)
+{
+    uint32_t bits;
+    memcpy(&bits, x, sizeof bits);
+    rampwise_saved_uint32_(s, &bits);
+    if (s->from != NULL)
+        memcpy(x, &bits, sizeof bits);
+}
+
+/* x^32 + x^26 + x^23 + x^22 + x^16 + x^12 + x^11 + x^10 + x^8 + x^7 + x^5 + x^4 + x^2 + x + 1, the lowest bit
+   first, begun with ones and ended with their complement. */
+uint32_t rampwise_saved_checksum_(const unsigned char *bytes, size_t count)
+{
+    uint32_t rest = 0xffffffffu;
+    for (size_t i = 0; i < count; ++i) {
+        rest ^= bytes[i];
+        for (int bit = 0; bit < 8; ++bit)
+            rest = rest >> 1 ^ (0xedb88320u & (0u - (rest & 1u)));
+    }
+    return ~rest;
+}
+
+static void head(saved *s, uint32_t *kind, uint32_t *version, uint32_t *edition, uint64_t *length)
+{
+    uint32_t zero = 0;
+    if (s->to != NULL)
+        memcpy(s->to, letters, sizeof letters);
+    s->at = sizeof letters;
+    rampwise_saved_uint32_(s, kind);
+    rampwise_saved_uint32_(s, version);
+    rampwise_saved_uint32_(s, edition);
+    rampwise_saved_uint32_(s, &zero);
+    rampwise_saved_uint64_(s, length);
+}
+
+size_t rampwise_saved_size_(const saved_kind *k, const void *object)
+{
+    saved s = {NULL, NULL, HEAD};
+    k->pass(&s, (void *)object);
+    return s.at + TAIL;
+}
+
+int rampwise_saved_write_(const saved_kind *k, const void *object, void *bytes, size_t count)
+{
+    const size_t size = rampwise_saved_size_(k, object);
+    uint32_t kind = k->kind, version = k->version, edition = RAMPWISE_ARITHMETIC_EDITION;
+    uint64_t length = size;
+    if (count < size)
+        return RAMPWISE_ERROR_MEMORY;
+    saved s = {bytes, NULL, 0};
+    head(&s, &kind, &version, &edition, &length);
+    k->pass(&s, (void *)object);
+    uint32_t checksum = rampwise_saved_checksum_(bytes, s.at);
+    rampwise_saved_uint32_(&s, &checksum);
+    return RAMPWISE_OK;
+}
+
+int rampwise_saved_check_(const saved_kind *k, const void *bytes, size_t count)
+{
+    uint32_t kind = 0, version = 0, edition = 0, checksum = 0;
+    uint64_t length = 0;
+    if (count < HEAD + TAIL || memcmp(bytes, letters, sizeof letters) != 0)
+        return RAMPWISE_ERROR_DAMAGED;
+    saved s = {NULL, bytes, 0};
+    head(&s, &kind, &version, &edition, &length);
+    s.at = count - TAIL;
+    rampwise_saved_uint32_(&s, &checksum);
+    if (length != count || checksum != rampwise_saved_checksum_(bytes, count - TAIL))
+        return RAMPWISE_ERROR_DAMAGED;
+    if (kind != k->kind)
+        return RAMPWISE_ERROR_KIND;
+    return version == k->version && edition == RAMPWISE_ARITHMETIC_EDITION ? RAMPWISE_OK
+                                                                           : RAMPWISE_ERROR_EDITION;
+}
+
+int rampwise_saved_read_(const saved_kind *k, void *object, const void *bytes, size_t count)
+{
+    const int status = rampwise_saved_check_(k, bytes, count);
+    if (status != RAMPWISE_OK)
+        return status;
+    if (rampwise_saved_size_(k, object) != count)
+        return RAMPWISE_ERROR_DAMAGED;
+    saved s = {NULL, bytes, HEAD};
+    k->pass(&s, object);
+    return RAMPWISE_OK;
+}

@@ -1,0 +1,106 @@
+/* Objects as bytes: the same on every machine, and refused where they are damaged.
+
+   One function an object goes through its members, whether they are counted, written or read: saved_kind.pass.
+   Bytes: the eight letters RAMPWISE; four numbers of four bytes: kind of object, version of its format,
+   edition of the arithmetic, zero; the length of all in eight bytes; the members; a CRC-32 of everything before
+   it (ISO/IEC/IEEE 8802-3, the check sequence of ISO 3309 and ITU-T V.42). Numbers are little-endian, floating
+   point as the bits of IEEE 754. */
+#ifndef RAMPWISE_SAVED_H
+#define RAMPWISE_SAVED_H
+
+#include <stddef.h>
+#include <stdint.h>
+#include "rampwise/step.h"
+
+/* One way through the members of an object: written where `to` is set, read where `from` is, else counted. */
+typedef struct saved {
+    unsigned char *to;
+    const unsigned char *from;
+    size_t at;
+} saved;
+
+/* Each kind of object has a number of its own here, for ever. */
+enum {
+    SAVED_STREAM = 1,
+    SAVED_STREAM_F32 = 2,
+    SAVED_WATCH = 3,
+    SAVED_WATCH_F32 = 4,
+    SAVED_BANK = 5,
+    SAVED_PEAKS = 6,
+    SAVED_MODES = 7
+};
+
+typedef struct saved_kind {
+    uint32_t kind, version;
+    /* Goes through the members. How many there are must follow from what reading does not change. */
+    void (*pass)(saved *s, void *object);
+} saved_kind;
+
+void rampwise_saved_uint32_(saved *s, uint32_t *x);
+void rampwise_saved_uint64_(saved *s, uint64_t *x);
+void rampwise_saved_double_(saved *s, double *x);
+void rampwise_saved_float_(saved *s, float *x);
+
+/* The length in bytes of the object as it is. */
+size_t rampwise_saved_size_(const saved_kind *k, const void *object);
+
+/* Writes it. RAMPWISE_ERROR_MEMORY where there are fewer bytes than that. */
+int rampwise_saved_write_(const saved_kind *k, const void *object, void *bytes, size_t count);
+
+/* Whether the bytes are one whole object of this kind: RAMPWISE_ERROR_DAMAGED, _KIND, _EDITION. */
+int rampwise_saved_check_(const saved_kind *k, const void *bytes, size_t count);
+
+/* Checks, then reads the members, and answers RAMPWISE_ERROR_DAMAGED where they did not end with the bytes: then
+   *object may be anything. What they may hold is for the caller to check, before they become an object. */
+int rampwise_saved_read_(const saved_kind *k, void *object, const void *bytes, size_t count);
+
+uint32_t rampwise_saved_checksum_(const unsigned char *bytes, size_t count);
+
+static inline void saved_doubles(saved *s, double *x, size_t n)
+{
+    for (size_t i = 0; i < n; ++i)
+        rampwise_saved_double_(s, &x[i]);
+}
+
+static inline void saved_int(saved *s, int32_t *x)
+{
+    uint32_t bits = (uint32_t)*x;
+    rampwise_saved_uint32_(s, &bits);
+    if (s->from != NULL)
+        *x = (int32_t)bits;
+}
+
+static inline void saved_size(saved *s, size_t *x)
+{
+    uint64_t wide = *x;
+    rampwise_saved_uint64_(s, &wide);
+    if (s->from != NULL)
+        *x = (size_t)wide;
+}
+
+static inline void saved_coeffs(saved *s, rampwise_coeffs *c)
+{
+    double *const numbers[] = {&c->A,  &c->B,  &c->C,  &c->D,         &c->Ap,
+                               &c->Bp, &c->Cp, &c->Dp, &c->A_minus_1, &c->Bp_minus_1};
+    for (size_t i = 0; i < sizeof numbers / sizeof *numbers; ++i)
+        rampwise_saved_double_(s, numbers[i]);
+    saved_doubles(s, c->acceleration, 4);
+    saved_doubles(s, c->total, 4);
+    rampwise_saved_double_(s, &c->system.mass);
+    rampwise_saved_double_(s, &c->system.damper);
+    rampwise_saved_double_(s, &c->system.stiffness);
+    rampwise_saved_double_(s, &c->dt);
+    saved_int(s, &c->input);
+    saved_int(s, &c->between);
+    saved_doubles(s, c->reserve, sizeof c->reserve / sizeof *c->reserve);
+}
+
+static inline void saved_state(saved *s, rampwise_state *x)
+{
+    rampwise_saved_double_(s, &x->u);
+    rampwise_saved_double_(s, &x->v);
+    rampwise_saved_double_(s, &x->p);
+    rampwise_saved_double_(s, &x->p_before);
+}
+
+#endif
