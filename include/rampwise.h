@@ -30,6 +30,7 @@
 #include "rampwise/peak.h"
 #include "rampwise/peaks.h"
 #include "rampwise/spectrum.h"
+#include "rampwise/modes.h"
 #include "rampwise/foreign.h"
 
 #endif

@@ -38,6 +38,8 @@ static const struct {
     CONSTANT(RAMPWISE_ERROR_COEFFICIENT),
     CONSTANT(RAMPWISE_ERROR_FRACTION),
     CONSTANT(RAMPWISE_ERROR_NO_REST),
+    CONSTANT(RAMPWISE_ERROR_DEFECTIVE),
+    CONSTANT(RAMPWISE_ERROR_WEIGHT),
     CONSTANT(RAMPWISE_ERROR_SAMPLE),
     CONSTANT(RAMPWISE_ERROR_STATE),
     CONSTANT(RAMPWISE_ERROR_TIME),
@@ -76,6 +78,7 @@ static const struct {
     {"rampwise_state", sizeof(rampwise_state)},
     {"rampwise_history", sizeof(rampwise_history)},
     {"rampwise_bank_wanted", sizeof(rampwise_bank_wanted)},
+    {"rampwise_modes_plan", sizeof(rampwise_modes_plan)},
     {"rampwise_instant", sizeof(rampwise_instant)},
     {"rampwise_peak", sizeof(rampwise_peak)},
 };

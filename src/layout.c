@@ -53,6 +53,21 @@ AT(rampwise_bank_wanted, history, 4 * sizeof(size_t));
 AT(rampwise_bank_wanted, reserve, 8 * sizeof(size_t));
 SIZE(rampwise_bank_wanted, 12 * sizeof(size_t));
 
+AT(rampwise_modes_plan, size, 0);
+AT(rampwise_modes_plan, modes, sizeof(size_t));
+AT(rampwise_modes_plan, inputs, 2 * sizeof(size_t));
+AT(rampwise_modes_plan, outputs, 3 * sizeof(size_t));
+AT(rampwise_modes_plan, c, 4 * sizeof(size_t));
+AT(rampwise_modes_plan, load, 5 * sizeof(size_t));
+AT(rampwise_modes_plan, on_displacement, 6 * sizeof(size_t));
+AT(rampwise_modes_plan, on_velocity, 7 * sizeof(size_t));
+AT(rampwise_modes_plan, on_acceleration, 8 * sizeof(size_t));
+AT(rampwise_modes_plan, on_input, 9 * sizeof(size_t));
+AT(rampwise_modes_plan, peaks, 10 * sizeof(size_t));
+AT(rampwise_modes_plan, instructions, 10 * sizeof(size_t) + 4);
+AT(rampwise_modes_plan, reserve, 10 * sizeof(size_t) + 8);
+SIZE(rampwise_modes_plan, 14 * sizeof(size_t) + 8);
+
 AT(rampwise_instant, value, 0);
 AT(rampwise_instant, sample, 8);
 AT(rampwise_instant, fraction, 16);

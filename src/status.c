@@ -51,6 +51,10 @@ const char *rampwise_status_text(int status)
         return "The fraction of a step is not from zero to one";
     case RAMPWISE_ERROR_NO_REST:
         return "A load on a mass without a spring has no position of rest";
+    case RAMPWISE_ERROR_DEFECTIVE:
+        return "The spectrum is defective: roots coincide, or nearly, without a mode of their own each";
+    case RAMPWISE_ERROR_WEIGHT:
+        return "A load factor or weight is not finite";
     case RAMPWISE_ERROR_SAMPLE:
         return "A sample is not a finite number";
     case RAMPWISE_ERROR_STATE:

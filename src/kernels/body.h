@@ -369,6 +369,46 @@ static int rows(double (*row)[LANES], size_t lanes, size_t n, double (*p)[LANES]
     return lost;
 }
 
+/* `samples` rows of y, `vectors` vectors wide: enough sums in flight to hide their latency, each weight fetched
+   once for all of them. Both are constants where this is inlined. */
+static inline __attribute__((always_inline)) void sums(int samples, int vectors, size_t count, const double *x,
+                                                       size_t stride, const double *weight, size_t width, double *y)
+{
+    VECTOR sum[4][2];
+    for (int i = 0; i < samples; ++i)
+        for (int j = 0; j < vectors; ++j)
+            sum[i][j] = vector_load(y + (size_t)i * width + (size_t)j * WIDTH);
+    for (size_t k = 0; k < count; ++k)
+        for (int j = 0; j < vectors; ++j) {
+            const VECTOR w = vector_load(weight + k * width + (size_t)j * WIDTH);
+            for (int i = 0; i < samples; ++i)
+                sum[i][j] = vector_fma(vector_all(x[(size_t)i * stride + k]), w, sum[i][j]);
+        }
+    for (int i = 0; i < samples; ++i)
+        for (int j = 0; j < vectors; ++j)
+            vector_store(y + (size_t)i * width + (size_t)j * WIDTH, sum[i][j]);
+}
+
+static void accumulate(size_t count, size_t n, const double *x, size_t stride, const double *weight, size_t width,
+                       double *y)
+{
+    for (size_t o = 0; o < width;) {
+        const int two = width - o >= 2 * WIDTH;
+        size_t i = 0;
+        for (; i + 4 <= n; i += 4)
+            if (two)
+                sums(4, 2, count, x + i * stride, stride, weight + o, width, y + i * width + o);
+            else
+                sums(4, 1, count, x + i * stride, stride, weight + o, width, y + i * width + o);
+        for (; i < n; ++i)
+            if (two)
+                sums(1, 2, count, x + i * stride, stride, weight + o, width, y + i * width + o);
+            else
+                sums(1, 1, count, x + i * stride, stride, weight + o, width, y + i * width + o);
+        o += two ? 2 * WIDTH : WIDTH;
+    }
+}
+
 static void gather(const double *from, size_t stride, size_t count, size_t n, double (*tile)[LANES])
 {
     size_t j = 0;
@@ -403,4 +443,4 @@ static void scatter(double *to, size_t stride, size_t count, size_t n, double (*
 
 extern const kernels KERNELS;
 const kernels KERNELS = {KERNELS_NAME, first_not_finite, advance, under_one_input, stretch,
-                         may_exceed,   under_own_inputs, rows,    gather,          scatter};
+                         may_exceed, under_own_inputs, rows, accumulate, gather, scatter};

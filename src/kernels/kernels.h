@@ -62,6 +62,11 @@ typedef struct kernels {
     int (*rows)(double (*row)[LANES], size_t lanes, size_t n, double (*p)[LANES], lane_tile u, lane_tile v,
                 lane_tile out, double *finite);
 
+    /* y[i][o] += sum of x[i][k] weight[k][o] for i < n, k < count, o < width, where rows of x are `stride` apart
+       and rows of y and weight `width`, a multiple of 8: y = fma(x, weight, y), k = 0 first. */
+    void (*accumulate)(size_t count, size_t n, const double *x, size_t stride, const double *weight, size_t width,
+                       double *y);
+
     /* `count` arrays of n <= TILE values, `stride` apart, into the columns of a tile, and back. */
     void (*gather)(const double *from, size_t stride, size_t count, size_t n, double (*tile)[LANES]);
     void (*scatter)(double *to, size_t stride, size_t count, size_t n, double (*tile)[LANES]);
