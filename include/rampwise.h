@@ -31,6 +31,8 @@
 #include "rampwise/peaks.h"
 #include "rampwise/spectrum.h"
 #include "rampwise/modes.h"
+#include "rampwise/structure.h"
+#include "rampwise/combination.h"
 #include "rampwise/foreign.h"
 
 #endif

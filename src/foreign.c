@@ -40,6 +40,7 @@ static const struct {
     CONSTANT(RAMPWISE_ERROR_NO_REST),
     CONSTANT(RAMPWISE_ERROR_DEFECTIVE),
     CONSTANT(RAMPWISE_ERROR_WEIGHT),
+    CONSTANT(RAMPWISE_ERROR_ROOTS),
     CONSTANT(RAMPWISE_ERROR_SAMPLE),
     CONSTANT(RAMPWISE_ERROR_STATE),
     CONSTANT(RAMPWISE_ERROR_TIME),
@@ -79,6 +80,7 @@ static const struct {
     {"rampwise_history", sizeof(rampwise_history)},
     {"rampwise_bank_wanted", sizeof(rampwise_bank_wanted)},
     {"rampwise_modes_plan", sizeof(rampwise_modes_plan)},
+    {"rampwise_roots", sizeof(rampwise_roots)},
     {"rampwise_instant", sizeof(rampwise_instant)},
     {"rampwise_peak", sizeof(rampwise_peak)},
 };

@@ -68,6 +68,20 @@ AT(rampwise_modes_plan, instructions, 10 * sizeof(size_t) + 4);
 AT(rampwise_modes_plan, reserve, 10 * sizeof(size_t) + 8);
 SIZE(rampwise_modes_plan, 14 * sizeof(size_t) + 8);
 
+AT(rampwise_roots, size, 0);
+AT(rampwise_roots, bodies, sizeof(size_t));
+AT(rampwise_roots, inputs, 2 * sizeof(size_t));
+AT(rampwise_roots, outputs, 3 * sizeof(size_t));
+AT(rampwise_roots, mass, 4 * sizeof(size_t));
+AT(rampwise_roots, damper, 5 * sizeof(size_t));
+AT(rampwise_roots, root, 6 * sizeof(size_t));
+AT(rampwise_roots, shape, 7 * sizeof(size_t));
+AT(rampwise_roots, force, 8 * sizeof(size_t));
+AT(rampwise_roots, on_displacement, 9 * sizeof(size_t));
+AT(rampwise_roots, on_velocity, 10 * sizeof(size_t));
+AT(rampwise_roots, reserve, 11 * sizeof(size_t));
+SIZE(rampwise_roots, 15 * sizeof(size_t));
+
 AT(rampwise_instant, value, 0);
 AT(rampwise_instant, sample, 8);
 AT(rampwise_instant, fraction, 16);

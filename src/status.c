@@ -55,6 +55,8 @@ const char *rampwise_status_text(int status)
         return "The spectrum is defective: roots coincide, or nearly, without a mode of their own each";
     case RAMPWISE_ERROR_WEIGHT:
         return "A load factor or weight is not finite";
+    case RAMPWISE_ERROR_ROOTS:
+        return "Complex roots do not come in conjugate pairs, or a root is not finite";
     case RAMPWISE_ERROR_SAMPLE:
         return "A sample is not a finite number";
     case RAMPWISE_ERROR_STATE:
