@@ -33,6 +33,7 @@
 #include "rampwise/modes.h"
 #include "rampwise/structure.h"
 #include "rampwise/combination.h"
+#include "rampwise/equipment.h"
 #include "rampwise/foreign.h"
 
 #endif

@@ -65,8 +65,11 @@ AT(rampwise_modes_plan, on_acceleration, 8 * sizeof(size_t));
 AT(rampwise_modes_plan, on_input, 9 * sizeof(size_t));
 AT(rampwise_modes_plan, peaks, 10 * sizeof(size_t));
 AT(rampwise_modes_plan, instructions, 10 * sizeof(size_t) + 4);
-AT(rampwise_modes_plan, reserve, 10 * sizeof(size_t) + 8);
-SIZE(rampwise_modes_plan, 14 * sizeof(size_t) + 8);
+AT(rampwise_modes_plan, equipment_count, 10 * sizeof(size_t) + 8);
+AT(rampwise_modes_plan, equipment, 11 * sizeof(size_t) + 8);
+AT(rampwise_modes_plan, point, 12 * sizeof(size_t) + 8);
+AT(rampwise_modes_plan, reserve, 13 * sizeof(size_t) + 8);
+SIZE(rampwise_modes_plan, 18 * sizeof(size_t) + 8);
 
 AT(rampwise_roots, size, 0);
 AT(rampwise_roots, bodies, sizeof(size_t));

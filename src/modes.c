@@ -3,6 +3,8 @@
 #include <math.h>
 #include <stdlib.h>
 #include <string.h>
+#include "entry.h"
+#include "rampwise/equipment.h"
 #include "rampwise/status.h"
 #include "saved.h"
 #include "twofold.h"
@@ -51,13 +53,15 @@ void rampwise_modes_take_(rampwise_modes *m, const rampwise_modes_plan *plan, ro
     m->output = rampwise_room_take_(r, times(m->width, SEGMENT + 1), sizeof(double));
     if (plan->peaks)
         rampwise_modes_peaks_take_(m, plan, r);
+    if (plan->equipment_count > 0)
+        rampwise_equipment_take_(m, plan, r);
 }
 
 static int counts_fit(const rampwise_modes_plan *plan)
 {
     const size_t most = SIZE_MAX / 4096;
     return plan->size == sizeof *plan && plan->modes > 0 && plan->inputs > 0 && plan->outputs > 0 &&
-           plan->modes < most && plan->inputs < most && plan->outputs < most;
+           plan->modes < most && plan->inputs < most && plan->outputs < most && plan->equipment_count < most;
 }
 
 static int are_finite(const double *x, size_t rows, size_t columns)
@@ -76,14 +80,19 @@ static int weights_are_finite(const rampwise_modes_plan *plan)
 }
 
 /* Peaks look at pieces of a step, of which there may not be too many. */
+static int is_long(const rampwise_system *sys, double dt)
+{
+    return !(fabs(sys->damper / sys->mass) * dt <= 1024 && fabs(sys->stiffness / sys->mass) * dt * dt <= 0x1p20);
+}
+
 static int steps_are_long(const rampwise_modes_plan *plan)
 {
-    for (size_t j = 0; j < plan->modes; ++j) {
-        const rampwise_coeffs *const c = &plan->c[j];
-        if (!(fabs(c->acceleration[1]) * c->dt <= 1024 && fabs(c->acceleration[0]) * c->dt * c->dt <= 0x1p20))
-            return 1;
-    }
-    return 0;
+    int any = 0;
+    for (size_t j = 0; j < plan->modes; ++j)
+        any |= is_long(&plan->c[j].system, plan->c->dt);
+    for (size_t i = 0; i < plan->equipment_count; ++i)
+        any |= is_long(&plan->equipment[i], plan->c->dt);
+    return any;
 }
 
 int rampwise_modes_check_(const rampwise_modes_plan *plan)
@@ -97,7 +106,9 @@ int rampwise_modes_check_(const rampwise_modes_plan *plan)
     rampwise_modes_take_(&counted, plan, &r);
     if (r.size == SIZE_MAX)
         return RAMPWISE_ERROR_COUNT;
-    const int status = check_alike(plan->modes, plan->c);
+    int status = check_alike(plan->modes, plan->c);
+    if (status == RAMPWISE_OK && plan->equipment_count > 0)
+        status = rampwise_equipment_check_(plan);
     if (status != RAMPWISE_OK)
         return status;
     if (plan->c->input != RAMPWISE_FORCE && plan->c->input != RAMPWISE_BASE_ACCELERATION)
@@ -159,7 +170,7 @@ static uint64_t mixed(uint64_t number, size_t n, const double *x)
     return number;
 }
 
-static uint64_t number_of(const rampwise_modes *m)
+static uint64_t number_of(const rampwise_modes *m, const rampwise_modes_plan *plan)
 {
     const double counts[6] = {(double)m->modes, (double)m->inputs, (double)m->outputs, m->dt, m->between, m->peaks != NULL};
     const size_t lanes = m->groups * LANES;
@@ -169,6 +180,11 @@ static uint64_t number_of(const rampwise_modes *m)
     number = mixed(number, lanes * m->inputs, m->load);
     number = mixed(number, lanes * m->width, m->weight_u);
     number = mixed(number, lanes * m->width, m->weight_v);
+    for (size_t i = 0; i < plan->equipment_count; ++i) {
+        const rampwise_system *const sys = &plan->equipment[i];
+        const double piece[4] = {sys->mass, sys->damper, sys->stiffness, (double)plan->point[i]};
+        number = mixed(number, 4, piece);
+    }
     return mixed(number, m->inputs * m->width, m->direct);
 }
 
@@ -187,8 +203,8 @@ int rampwise_modes_fill_(rampwise_modes *m, const rampwise_modes_plan *plan)
         return RAMPWISE_ERROR_WEIGHT;
     if (m->peaks != NULL)
         rampwise_modes_peaks_fill_(m, plan);
-    m->plan = number_of(m);
-    return RAMPWISE_OK;
+    m->plan = number_of(m, plan);
+    return m->equipment != NULL ? rampwise_equipment_fill_(m, plan) : RAMPWISE_OK;
 }
 
 size_t rampwise_modes_size(const rampwise_modes_plan *plan)
@@ -305,8 +321,12 @@ static int run_segment(rampwise_modes *m, size_t n)
     int lost = 0;
     memset(m->output + m->width, 0, n * m->width * sizeof *m->output);
     m->k->accumulate(m->inputs, n, m->input + m->inputs, m->inputs, m->direct, m->width, m->output + m->width);
+    if (m->equipment != NULL)
+        rampwise_equipment_begin_(m, n);
     for (size_t g = 0; g < m->groups; ++g)
         lost |= run_group(m, g, n);
+    if (m->equipment != NULL)
+        lost |= rampwise_equipment_end_(m, n);
     return lost || m->k->first_not_finite(n * m->width, m->output + m->width) < n * m->width;
 }
 
@@ -316,13 +336,32 @@ static void go_back(rampwise_modes *m)
         memcpy(m->group[g].lanes.u, m->group[g].begin[0], sizeof m->group[g].begin[0]);
         memcpy(m->group[g].lanes.v, m->group[g].begin[1], sizeof m->group[g].begin[1]);
     }
+    if (m->equipment != NULL)
+        rampwise_equipment_go_back_(m);
+}
+
+/* Where a chunk goes: outputs of the structure and histories of the equipment. */
+typedef struct destination {
+    double *output;
+    rampwise_history history;
+} destination;
+
+static destination later(const rampwise_modes *m, const destination *to, size_t n)
+{
+    return (destination){to->output != NULL ? to->output + n * m->outputs : NULL,
+                         wanted_from(&to->history, n * rampwise_equipment_count_(m))};
 }
 
 /* After a segment without a fault: row n becomes the present sample. */
-static void finish_segment(rampwise_modes *m, size_t n, double *output)
+static void finish_segment(rampwise_modes *m, size_t n, const destination *to)
 {
+    double *const output = to->output;
     if (m->peaks != NULL)
         rampwise_modes_peaks_segment_(m, n);
+    if (m->equipment != NULL && m->peaks != NULL)
+        rampwise_equipment_segment_(m, n);
+    if (m->equipment != NULL)
+        rampwise_equipment_put_(m, n, &to->history);
     for (size_t i = 0; output != NULL && i < n; ++i)
         memcpy(output + i * m->outputs, m->output + (i + 1) * m->width, m->outputs * sizeof *output);
     memcpy(m->input, m->input + n * m->inputs, m->inputs * sizeof *m->input);
@@ -331,22 +370,32 @@ static void finish_segment(rampwise_modes *m, size_t n, double *output)
 }
 
 /* Up to SEGMENT samples; how many went by before a fault. */
-static size_t advance(rampwise_modes *m, size_t n, const double *input, double *output)
+static size_t advance(rampwise_modes *m, size_t n, const double *input, const destination *to)
 {
     memcpy(m->input + m->inputs, input, n * m->inputs * sizeof *input);
     if (!run_segment(m, n)) {
-        finish_segment(m, n, output);
+        finish_segment(m, n, to);
         return n;
     }
     go_back(m);
     size_t i = 0;
-    while (n > 1 && i < n && advance(m, 1, input + i * m->inputs, output != NULL ? output + i * m->outputs : NULL))
-        ++i;
+    for (; n > 1 && i < n; ++i) {
+        const destination next = later(m, to, i);
+        if (advance(m, 1, input + i * m->inputs, &next) == 0)
+            break;
+    }
     return i;
 }
 
 int rampwise_modes_run(rampwise_modes *modes, size_t n, const double *input, double *output, size_t *bad)
 {
+    return rampwise_equipment_run(modes, n, input, output, NULL, bad);
+}
+
+int rampwise_equipment_run(rampwise_modes *modes, size_t n, const double *input, double *output,
+                           const rampwise_history *history, size_t *bad)
+{
+    const destination to = {output, wanted_from(history, 0)};
     if (modes == NULL || (input == NULL && n > 0))
         return RAMPWISE_ERROR_MISSING;
     size_t wrong;
@@ -355,8 +404,8 @@ int rampwise_modes_run(rampwise_modes *modes, size_t n, const double *input, dou
         return blame(status, wrong / modes->inputs, bad);
     for (size_t done = 0, part = 0; done < n; done += part) {
         part = n - done < SEGMENT ? n - done : SEGMENT;
-        const size_t went = advance(modes, part, input + done * modes->inputs,
-                                    output != NULL ? output + done * modes->outputs : NULL);
+        const destination next = later(modes, &to, done);
+        const size_t went = advance(modes, part, input + done * modes->inputs, &next);
         if (went < part)
             return blame(RAMPWISE_ERROR_OVERFLOW, done + went, bad);
     }
@@ -405,6 +454,8 @@ static int begin(rampwise_modes *m, const double *u, const double *v, const doub
         take_lanes(m->group[g].lanes.v, m, g, v);
     }
     m->sample = 0;
+    if (m->equipment != NULL)
+        rampwise_equipment_start_(m);
     if (m->peaks != NULL)
         rampwise_modes_peaks_start_(m);
     return RAMPWISE_OK;
@@ -503,6 +554,14 @@ static void pass(saved *s, void *object)
     for (size_t o = 0; peak != NULL && o < m->outputs; ++o) {
         pass_instant(s, way, &peak[o].high);
         pass_instant(s, way, &peak[o].low);
+    }
+    for (size_t i = 0; i < rampwise_equipment_count_(m); ++i) {
+        pass_doubles(s, way, rampwise_equipment_state_(m, i, 0), 1);
+        pass_doubles(s, way, rampwise_equipment_state_(m, i, 1), 1);
+        for (int q = 0; peak != NULL && q < 2; ++q) {
+            pass_instant(s, way, &rampwise_equipment_peak_(m, i, q)->high);
+            pass_instant(s, way, &rampwise_equipment_peak_(m, i, q)->low);
+        }
     }
 }
 

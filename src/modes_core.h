@@ -90,7 +90,32 @@ void rampwise_modes_peaks_group_(rampwise_modes *m, size_t g, size_t tiles);
 void rampwise_modes_peaks_segment_(rampwise_modes *m, size_t n);
 rampwise_peak *rampwise_modes_peak_(const rampwise_modes *m);
 
-/* equipment.c */
+
+/* For equipment, in a segment whose tiles are being looked at: the modes over the n steps of tile t once more; then
+   the power series of output o in the step after k, [pieces]; how much it can exceed the samples in a tile; and the
+   extremes of a series, noted where they exceed the floors and the peak. */
+enum { MODES_POWERS = 24 };
+void rampwise_modes_trace_(rampwise_modes *m, size_t t, size_t n);
+double (*rampwise_modes_series_(rampwise_modes *m, size_t k, size_t o, size_t *pieces))[MODES_POWERS + 1];
+double rampwise_modes_tile_excess_(const rampwise_modes *m, size_t t, size_t o);
+void rampwise_modes_curve_(const double *series, double floor_high, double floor_low, uint64_t sample, size_t piece,
+                           size_t pieces, rampwise_peak *peak);
+
+/* equipment.c: as the functions above; only where there is equipment */
+void rampwise_equipment_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r);
+int rampwise_equipment_check_(const rampwise_modes_plan *plan);
+int rampwise_equipment_fill_(rampwise_modes *m, const rampwise_modes_plan *plan);
+void rampwise_equipment_start_(rampwise_modes *m);
+/* Along a segment of n samples: before its modes, a tile of them, after them (whether something is not finite any
+   more), and back to where it began. */
+void rampwise_equipment_begin_(rampwise_modes *m, size_t n);
 void rampwise_equipment_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, const mode_tile *tile);
+int rampwise_equipment_end_(rampwise_modes *m, size_t n);
+void rampwise_equipment_go_back_(rampwise_modes *m);
+void rampwise_equipment_segment_(rampwise_modes *m, size_t n);
+void rampwise_equipment_put_(const rampwise_modes *m, size_t n, const rampwise_history *out);
+size_t rampwise_equipment_count_(const rampwise_modes *m);
+double *rampwise_equipment_state_(const rampwise_modes *m, size_t i, int velocity);
+rampwise_peak *rampwise_equipment_peak_(const rampwise_modes *m, size_t i, int q);
 
 #endif

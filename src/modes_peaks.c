@@ -5,7 +5,7 @@
 #include "modes_core.h"
 
 /* Powers of a series on a piece with w h and c h/m up to 1: the next are below 2^-60 of the first. */
-enum { POWERS = 24 };
+enum { POWERS = MODES_POWERS };
 
 /* What bounds q'' = z over a step from its beginning. z'' + (c/m) z' + (k/m) z = 0 there, so with K the larger of
    k/m and 1/(4 dt^2) the energy z'^2 + K z^2 grows by no more than e^(1/2) in a step, and not at all where K = k/m:
@@ -28,16 +28,12 @@ struct modes_peaks {
     size_t pieces;
 };
 
-/* Pieces of a step: w h and c h/m of every mode are at most 1 on each. */
-static size_t pieces_for(const rampwise_modes_plan *plan)
+/* At least so many pieces of a step that w h and c h/m are at most 1 on each. */
+static size_t pieces_for(size_t pieces, const rampwise_system *sys, double h)
 {
-    size_t pieces = 1;
-    for (size_t j = 0; j < plan->modes; ++j) {
-        const double h = plan->c[j].dt;
-        const double S = fabs(plan->c[j].acceleration[1]) * h, K = fabs(plan->c[j].acceleration[0]) * h * h;
-        while (pieces < 1024 && (S > (double)pieces || K > (double)pieces * (double)pieces))
-            pieces *= 2;
-    }
+    const double S = fabs(sys->damper / sys->mass) * h, K = fabs(sys->stiffness / sys->mass) * h * h;
+    while (pieces < 1024 && (S > (double)pieces || K > (double)pieces * (double)pieces))
+        pieces *= 2;
     return pieces;
 }
 
@@ -46,7 +42,11 @@ void rampwise_modes_peaks_take_(rampwise_modes *m, const rampwise_modes_plan *pl
     modes_peaks counted;
     modes_peaks *const made = rampwise_room_take_(r, 1, sizeof counted), *const x = made != NULL ? made : &counted;
     m->peaks = made;
-    x->pieces = pieces_for(plan);
+    x->pieces = 1;
+    for (size_t j = 0; j < plan->modes; ++j)
+        x->pieces = pieces_for(x->pieces, &plan->c[j].system, plan->c->dt);
+    for (size_t i = 0; i < plan->equipment_count; ++i)
+        x->pieces = pieces_for(x->pieces, &plan->equipment[i], plan->c->dt);
     x->peak = rampwise_room_take_(r, m->outputs, sizeof *x->peak);
     x->floor_high = rampwise_room_take_(r, m->width, sizeof(double));
     x->floor_low = rampwise_room_take_(r, m->width, sizeof(double));
@@ -253,12 +253,10 @@ static void search(const curve *c, double low, double high, int depth)
     search(c, middle, high, depth - 1);
 }
 
-static void look_at_piece(const rampwise_modes *m, size_t o, uint64_t sample, size_t piece)
+void rampwise_modes_curve_(const double *a, double floor_high, double floor_low, uint64_t sample, size_t piece,
+                           size_t pieces, rampwise_peak *peak)
 {
-    const modes_peaks *const x = m->peaks;
-    const double *const a = x->series[piece];
-    curve c = {a, 0, 0, fabs(a[0]) + fabs(a[1]), x->floor_high[o], x->floor_low[o], sample, piece, x->pieces,
-               &x->peak[o]};
+    curve c = {a, 0, 0, fabs(a[0]) + fabs(a[1]), floor_high, floor_low, sample, piece, pieces, peak};
     for (size_t n = 2; n <= POWERS; ++n) {
         c.noise += fabs(a[n]);
         c.second += (double)(n * (n - 1)) * fabs(a[n]);
@@ -266,8 +264,9 @@ static void look_at_piece(const rampwise_modes *m, size_t o, uint64_t sample, si
     }
     c.noise *= 0x1p-44;
     search(&c, 0, 1, 12);
+    /* An extreme may lie on the end of a piece. */
     double slope, second;
-    if (piece + 1 < x->pieces || m->between == RAMPWISE_HOLD)
+    if (piece + 1 < pieces)
         note_on(&c, value_at(&c, 1, &slope, &second), 1);
 }
 
@@ -286,10 +285,11 @@ static int may_count(const modes_peaks *x, size_t o, double high, double low, do
     return !(high + excess <= x->floor_high[o] && low - excess >= x->floor_low[o]);
 }
 
-/* All modes once more over the n steps of tile t, and the bounds of each step. */
-static void trace_tile(rampwise_modes *m, size_t t, size_t n, const double *input)
+/* And the bounds of each step. */
+void rampwise_modes_trace_(rampwise_modes *m, size_t t, size_t n)
 {
     modes_peaks *const x = m->peaks;
+    const double *const input = m->input + t * TILE * m->inputs;
     memset(x->excess_step, 0, n * m->width * sizeof *x->excess_step);
     for (size_t g = 0; g < m->groups; ++g) {
         lane_block lanes = m->group[g].lanes;
@@ -306,6 +306,14 @@ static void trace_tile(rampwise_modes *m, size_t t, size_t n, const double *inpu
         add_jumps(m, input, i, x->excess_step + i * m->width);
 }
 
+static double sum_of(const double *series)
+{
+    double sum = 0;
+    for (size_t n = POWERS + 1; n-- > 0;)
+        sum += series[n];
+    return sum;
+}
+
 static void look_at_step(rampwise_modes *m, size_t t, size_t i, const double *input)
 {
     modes_peaks *const x = m->peaks;
@@ -315,8 +323,12 @@ static void look_at_step(rampwise_modes *m, size_t t, size_t i, const double *in
                        x->excess_step[i * m->width + o]))
             continue;
         make_series(m, input, i, o);
+        const uint64_t sample = m->sample + t * TILE + i;
         for (size_t piece = 0; piece < x->pieces; ++piece)
-            look_at_piece(m, o, m->sample + t * TILE + i, piece);
+            rampwise_modes_curve_(x->series[piece], x->floor_high[o], x->floor_low[o], sample, piece, x->pieces,
+                                  &x->peak[o]);
+        if (m->between == RAMPWISE_HOLD) /* where it jumps, the value before */
+            note_value(&x->peak[o], sum_of(x->series[x->pieces - 1]), sample + 1, 0);
     }
 }
 
@@ -345,7 +357,7 @@ static void finish_tile(rampwise_modes *m, size_t t, size_t n)
         add_jumps(m, input, i, x->excess_tile + t * m->width);
     const int looking = tile_may_count(m, t, n);
     if (looking)
-        trace_tile(m, t, n, input);
+        rampwise_modes_trace_(m, t, n);
     for (size_t i = 0; i < n; ++i) {
         if (looking)
             look_at_step(m, t, i, input);
@@ -367,4 +379,16 @@ void rampwise_modes_peaks_segment_(rampwise_modes *m, size_t n)
     }
     for (size_t t = 0; t * TILE < n; ++t)
         finish_tile(m, t, n - t * TILE < TILE ? n - t * TILE : TILE);
+}
+
+double (*rampwise_modes_series_(rampwise_modes *m, size_t k, size_t o, size_t *pieces))[POWERS + 1]
+{
+    make_series(m, m->input + k / TILE * TILE * m->inputs, k % TILE, o);
+    *pieces = m->peaks->pieces;
+    return m->peaks->series;
+}
+
+double rampwise_modes_tile_excess_(const rampwise_modes *m, size_t t, size_t o)
+{
+    return m->peaks->excess_tile[t * m->width + o];
 }

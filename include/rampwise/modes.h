@@ -47,7 +47,7 @@
 #include "instructions.h"
 #include "peak.h"
 
-/* What an object is made of; everything is copied. Begin with rampwise_modes_plan_init: zero but for the size. */
+/* What an object is made of; everything is copied. Begin with rampwise_modes_plan_init: zero but for the size and RAMPWISE_FASTEST. */
 typedef struct rampwise_modes_plan {
     size_t size;                   /* of this struct */
     size_t modes, inputs, outputs; /* 1 or more each */
@@ -58,8 +58,12 @@ typedef struct rampwise_modes_plan {
     const double *on_acceleration;
     const double *on_input; /* [inputs][outputs], or NULL */
     int32_t peaks;          /* 1 where peaks are wanted, else 0 */
-    int32_t instructions;   /* of instructions.h; RAMPWISE_FASTEST where left at zero */
-    size_t reserve[4];
+    int32_t instructions;   /* of instructions.h */
+    /* Light equipment (equipment.h): piece e stands on the point whose acceleration is output point[e]. */
+    size_t equipment_count;
+    const rampwise_system *equipment;
+    const size_t *point;
+    size_t reserve[5];
 } rampwise_modes_plan;
 
 typedef struct rampwise_modes rampwise_modes;

@@ -409,6 +409,31 @@ static void accumulate(size_t count, size_t n, const double *x, size_t stride, c
     }
 }
 
+/* As next_u and next_v, with what the load gives made before. A spent state whose gains are silent becomes +0. */
+static void under_gains(size_t width, size_t n, const double *own, double *u, double *v, double *gain)
+{
+    for (size_t lane = 0; lane < width; lane += WIDTH) {
+        const VECTOR A_minus_1 = vector_load(own + lane), B = vector_load(own + width + lane);
+        const VECTOR Ap = vector_load(own + 2 * width + lane), Bp_minus_1 = vector_load(own + 3 * width + lane);
+        VECTOR at = vector_load(u + lane), slope = vector_load(v + lane);
+        for (size_t i = 0; i < n; ++i) {
+            double *const for_u = gain + 2 * i * width + lane, *const for_v = for_u + width;
+            const VECTOR old = at, u_gain = vector_load(for_u), v_gain = vector_load(for_v);
+            const MASK silent = mask_both(mask_below(u_gain, SILENT), mask_below(v_gain, SILENT));
+            at = vector_sum(old, vector_fma(A_minus_1, old, vector_fma(B, slope, u_gain)));
+            slope = vector_sum(slope, vector_fma(Ap, old, vector_fma(Bp_minus_1, slope, v_gain)));
+            if (mask_any(silent)) {
+                at = vector_unless_below(at, SPENT, silent);
+                slope = vector_unless_below(slope, SPENT, silent);
+            }
+            vector_store(for_u, at);
+            vector_store(for_v, slope);
+        }
+        vector_store(u + lane, at);
+        vector_store(v + lane, slope);
+    }
+}
+
 static void gather(const double *from, size_t stride, size_t count, size_t n, double (*tile)[LANES])
 {
     size_t j = 0;
@@ -443,4 +468,4 @@ static void scatter(double *to, size_t stride, size_t count, size_t n, double (*
 
 extern const kernels KERNELS;
 const kernels KERNELS = {KERNELS_NAME, first_not_finite, advance, under_one_input, stretch,
-                         may_exceed, under_own_inputs, rows, accumulate, gather, scatter};
+                         may_exceed, under_own_inputs, rows, accumulate, under_gains, gather, scatter};

@@ -67,6 +67,11 @@ typedef struct kernels {
     void (*accumulate)(size_t count, size_t n, const double *x, size_t stride, const double *weight, size_t width,
                        double *y);
 
+    /* Oscillators of `width` lanes (a multiple of 8) over n samples: gain[2 i] and gain[2 i + 1], rows of `width`, are
+       what each step adds to u and v beside their own motion, own[0] to own[3] of `width` (A - 1, B, A', B' - 1);
+       they become the states after the step. */
+    void (*under_gains)(size_t width, size_t n, const double *own, double *u, double *v, double *gain);
+
     /* `count` arrays of n <= TILE values, `stride` apart, into the columns of a tile, and back. */
     void (*gather)(const double *from, size_t stride, size_t count, size_t n, double (*tile)[LANES]);
     void (*scatter)(double *to, size_t stride, size_t count, size_t n, double (*tile)[LANES]);
