@@ -36,11 +36,12 @@ static coupling short_coupling(const part *mode, const part *light, twofold alph
     b[3] = twofold_divide((twofold){1, 0}, (twofold){6, 0});
     for (int n = 2; n + 2 <= TERMS; ++n) {
         const twofold factor = {(n + 1) * (n + 2), 0};
-        const twofold b_slope = twofold_multiply_by(b[n + 1], n + 1), a_slope = twofold_multiply_by(a[n + 1], n + 1);
+        const twofold b_slope = twofold_multiply_by(b[n + 1], n + 1),
+                      a_slope = twofold_multiply_by(a[n + 1], n + 1);
         b[n + 2] = twofold_divide(twofold_negative(both(mode->S, b_slope, mode->K, b[n])), factor);
-        a[n + 2] = twofold_divide(twofold_subtract(both(alpha, b[n], beta, b_slope),
-                                                   both(light->S, a_slope, light->K, a[n])),
-                                  factor);
+        a[n + 2] = twofold_divide(
+            twofold_subtract(both(alpha, b[n], beta, b_slope), both(light->S, a_slope, light->K, a[n])),
+            factor);
     }
     for (int n = TERMS; n >= 4; --n) {
         x.s = twofold_add(x.s, a[n]);
@@ -86,7 +87,8 @@ static coupling doubled(const coupling *x, const part *mode, const part *light, 
     const twofold u = from_u(x, mode, light, alpha), u_slope = slope_from_u(x, mode, light, alpha);
     const response *const r = &mode->r;
     coupling next;
-    next.s = twofold_add(both(A, x->s, g, x->p), twofold_add(both(u, r->G2, x->v, r->G1), twofold_add(x->p, x->s)));
+    next.s = twofold_add(both(A, x->s, g, x->p),
+                         twofold_add(both(u, r->G2, x->v, r->G1), twofold_add(x->p, x->s)));
     next.p = twofold_add(both(A, x->p, g, x->v), twofold_add(both(u, r->G1, x->v, r->g), x->p));
     next.v = twofold_add(both(A, x->v, g, x->v_slope), both(u, r->g, x->v, Bp_of(mode)));
     next.v_slope = twofold_add(twofold_subtract(twofold_multiply(Bp, x->v_slope), twofold_multiply(Kg, x->v)),
@@ -97,7 +99,8 @@ static coupling doubled(const coupling *x, const part *mode, const part *light, 
 /* Factors are limited to 2^450 (twofold.h). */
 static int grown_beyond(const coupling *x, double limit)
 {
-    return !(fabs(x->s.hi) < limit && fabs(x->p.hi) < limit && fabs(x->v.hi) < limit && fabs(x->v_slope.hi) < limit);
+    return !(fabs(x->s.hi) < limit && fabs(x->p.hi) < limit && fabs(x->v.hi) < limit &&
+             fabs(x->v_slope.hi) < limit);
 }
 
 static int halvings_of(const step *s)
@@ -120,7 +123,8 @@ static int part_of(part *o, const step *whole, int halvings)
 
 static twofold plain(scaled a, int exponent)
 {
-    return a.exponent + exponent < -900 ? (twofold){0, 0} : twofold_times_power(a.value, a.exponent + exponent);
+    return a.exponent + exponent < -900 ? (twofold){0, 0}
+                                        : twofold_times_power(a.value, a.exponent + exponent);
 }
 
 /* alpha and beta over the whole step, divided by 2^exponent, which makes the larger of them about 1. */

@@ -43,7 +43,8 @@ double rampwise_modal_correlation(double omega_1, double zeta_1, double omega_2,
                      4 * (zeta_1 * zeta_1 + zeta_2 * zeta_2) * r * r);
 }
 
-double rampwise_combine_complete_quadratic(size_t n, const double *peak, const double *omega, const double *zeta)
+double rampwise_combine_complete_quadratic(size_t n, const double *peak, const double *omega,
+                                           const double *zeta)
 {
     if (peak == NULL || omega == NULL || zeta == NULL)
         return NAN;

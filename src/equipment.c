@@ -15,14 +15,14 @@ enum { LOOKED_AT = 2 };
 struct equipment_core {
     size_t count, width; /* width: count, to the next multiple of 8 */
     size_t *point;
-    rampwise_coeffs *c; /* under base acceleration */
-    double *own;        /* [4][width]: A - 1, B, A', B' - 1 */
-    double *u, *v, *u_begin, *v_begin;    /* [width]; where the segment began */
-    double *from_u, *from_v;              /* [groups][LANES][2][width] */
-    double *from_before, *from_now;       /* [inputs][2][width]: the inputs at the two ends of a step */
-    double *gain;                         /* [SEGMENT][2][width]; then the states after the steps */
-    twofold *sums;                        /* [inputs][4]: while they are being made */
-    rampwise_peak *peak[LOOKED_AT];       /* [count], where peaks are wanted */
+    rampwise_coeffs *c;                /* under base acceleration */
+    double *own;                       /* [4][width]: A - 1, B, A', B' - 1 */
+    double *u, *v, *u_begin, *v_begin; /* [width]; where the segment began */
+    double *from_u, *from_v;           /* [groups][LANES][2][width] */
+    double *from_before, *from_now;    /* [inputs][2][width]: the inputs at the two ends of a step */
+    double *gain;                      /* [SEGMENT][2][width]; then the states after the steps */
+    twofold *sums;                     /* [inputs][4]: while they are being made */
+    rampwise_peak *peak[LOOKED_AT];    /* [count], where peaks are wanted */
     double *floor_high[LOOKED_AT], *floor_low[LOOKED_AT];
 };
 
@@ -63,8 +63,8 @@ int rampwise_equipment_check_(const rampwise_modes_plan *plan)
         rampwise_coeffs c;
         if (plan->point[i] >= plan->outputs)
             return RAMPWISE_ERROR_COUNT;
-        const int status = rampwise_coeffs_make(&c, &plan->equipment[i], plan->c->dt, RAMPWISE_BASE_ACCELERATION,
-                                                plan->c->between);
+        const int status = rampwise_coeffs_make(&c, &plan->equipment[i], plan->c->dt,
+                                                RAMPWISE_BASE_ACCELERATION, plan->c->between);
         if (status != RAMPWISE_OK)
             return status;
     }
@@ -78,7 +78,8 @@ static void fill_inputs(const rampwise_modes *m, size_t i)
     const equipment_core *const e = m->equipment;
     for (size_t in = 0; in < m->inputs; ++in) {
         const twofold *const sum = e->sums + 4 * in;
-        double *const before = e->from_before + 2 * in * e->width, *const now = e->from_now + 2 * in * e->width;
+        double *const before = e->from_before + 2 * in * e->width, *const now =
+                                                                       e->from_now + 2 * in * e->width;
         before[i] = sum[0].hi;
         before[e->width + i] = sum[1].hi;
         now[i] = sum[2].hi;
@@ -237,7 +238,8 @@ static double excess_of(const rampwise_coeffs *c, int q, const stretch_bound *b)
     const double most = (k * b->u + damping * b->u_rise / h + y) / rest;
     if (q == 0)
         return h * h / 8 * most;
-    const double third = k * (b->u_rise / h + h * most) + damping * most + b->y_rise / h + 8 / h * b->y_excess;
+    const double third =
+        k * (b->u_rise / h + h * most) + damping * most + b->y_rise / h + 8 / h * b->y_excess;
     return h * h / 8 * (damping * third + k * most);
 }
 
@@ -247,8 +249,8 @@ static double looked_at(const rampwise_coeffs *c, int q, double u, double v)
 }
 
 /* One piece over steps `first` to `last` of the segment: its bound, and greatest and least z. */
-static stretch_bound bound_of(const rampwise_modes *m, size_t i, size_t first, size_t last, int q, double *high,
-                              double *low)
+static stretch_bound bound_of(const rampwise_modes *m, size_t i, size_t first, size_t last, int q,
+                              double *high, double *low)
 {
     const equipment_core *const e = m->equipment;
     stretch_bound b = {0, 0, 0, 0, rampwise_modes_tile_excess_(m, first / TILE, e->point[i])};
@@ -290,7 +292,7 @@ static void look_at_step(rampwise_modes *m, size_t i, size_t k, int q)
     equipment_core *const e = m->equipment;
     const rampwise_coeffs *const c = &e->c[i];
     size_t pieces;
-    double (*const series)[MODES_POWERS + 1] = rampwise_modes_series_(m, k, e->point[i], &pieces);
+    double(*const series)[MODES_POWERS + 1] = rampwise_modes_series_(m, k, e->point[i], &pieces);
     const double d = c->dt / (double)pieces, K = -c->total[0] * d * d, S = -c->total[1] * d;
     double u, v;
     state_at(e, i, k, &u, &v);

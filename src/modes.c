@@ -82,7 +82,8 @@ static int weights_are_finite(const rampwise_modes_plan *plan)
 /* Peaks look at pieces of a step, of which there may not be too many. */
 static int is_long(const rampwise_system *sys, double dt)
 {
-    return !(fabs(sys->damper / sys->mass) * dt <= 1024 && fabs(sys->stiffness / sys->mass) * dt * dt <= 0x1p20);
+    return !(fabs(sys->damper / sys->mass) * dt <= 1024 &&
+             fabs(sys->stiffness / sys->mass) * dt * dt <= 0x1p20);
 }
 
 static int steps_are_long(const rampwise_modes_plan *plan)
@@ -172,7 +173,8 @@ static uint64_t mixed(uint64_t number, size_t n, const double *x)
 
 static uint64_t number_of(const rampwise_modes *m, const rampwise_modes_plan *plan)
 {
-    const double counts[6] = {(double)m->modes, (double)m->inputs, (double)m->outputs, m->dt, m->between, m->peaks != NULL};
+    const double counts[6] = {(double)m->modes, (double)m->inputs, (double)m->outputs, m->dt,
+                              m->between,       m->peaks != NULL};
     const size_t lanes = m->groups * LANES;
     uint64_t number = mixed(0xcbf29ce484222325u, 6, counts);
     for (size_t g = 0; g < m->groups; ++g)
@@ -270,7 +272,8 @@ size_t rampwise_modes_count(const rampwise_modes *modes)
     return modes != NULL ? modes->modes : 0;
 }
 
-void rampwise_modes_loads_(const rampwise_modes *m, size_t g, size_t n, const double *input, double (*p)[LANES])
+void rampwise_modes_loads_(const rampwise_modes *m, size_t g, size_t n, const double *input,
+                           double (*p)[LANES])
 {
     memset(p, 0, (n + 1) * sizeof *p);
     m->k->accumulate(m->inputs, n + 1, input, m->inputs, m->load + g * m->inputs * LANES, LANES, p[0]);
@@ -285,8 +288,8 @@ int rampwise_modes_tile_(const rampwise_modes *m, size_t g, lane_block *lanes, s
     return m->k->under_own_inputs(lanes, LANES, n, tile->p, tile->u + 1, tile->v + 1);
 }
 
-void rampwise_modes_outputs_(const rampwise_modes *m, size_t g, size_t n, double (*u)[LANES], double (*v)[LANES],
-                             double *output)
+void rampwise_modes_outputs_(const rampwise_modes *m, size_t g, size_t n, double (*u)[LANES],
+                             double (*v)[LANES], double *output)
 {
     const size_t at = g * LANES * m->width;
     m->k->accumulate(LANES, n, u[0], LANES, m->weight_u + at, m->width, output);
@@ -320,7 +323,8 @@ static int run_segment(rampwise_modes *m, size_t n)
 {
     int lost = 0;
     memset(m->output + m->width, 0, n * m->width * sizeof *m->output);
-    m->k->accumulate(m->inputs, n, m->input + m->inputs, m->inputs, m->direct, m->width, m->output + m->width);
+    m->k->accumulate(m->inputs, n, m->input + m->inputs, m->inputs, m->direct, m->width,
+                     m->output + m->width);
     if (m->equipment != NULL)
         rampwise_equipment_begin_(m, n);
     for (size_t g = 0; g < m->groups; ++g)

@@ -34,12 +34,12 @@ struct rampwise_modes {
     int between;
     uint64_t sample, plan; /* plan: a number made of all that the plan holds */
     mode_group *group;
-    double *load;     /* [groups][inputs][LANES] */
-    double *weight_u; /* [groups][LANES][width] */
-    double *weight_v; /* the same, or NULL where all are zero */
-    double *direct;   /* [inputs][width] */
-    double *input;    /* [SEGMENT + 1][inputs]; row 0 is the present sample */
-    double *output;   /* [SEGMENT + 1][width]; likewise */
+    double *load;              /* [groups][inputs][LANES] */
+    double *weight_u;          /* [groups][LANES][width] */
+    double *weight_v;          /* the same, or NULL where all are zero */
+    double *direct;            /* [inputs][width] */
+    double *input;             /* [SEGMENT + 1][inputs]; row 0 is the present sample */
+    double *output;            /* [SEGMENT + 1][width]; likewise */
     modes_peaks *peaks;        /* NULL where not wanted */
     equipment_core *equipment; /* NULL where there is none */
 };
@@ -68,15 +68,16 @@ void rampwise_modes_take_(rampwise_modes *m, const rampwise_modes_plan *plan, ro
 int rampwise_modes_fill_(rampwise_modes *m, const rampwise_modes_plan *plan);
 
 /* Loads of one group at n + 1 samples. */
-void rampwise_modes_loads_(const rampwise_modes *m, size_t g, size_t n, const double *input, double (*p)[LANES]);
+void rampwise_modes_loads_(const rampwise_modes *m, size_t g, size_t n, const double *input,
+                           double (*p)[LANES]);
 
 /* One group over a tile from its lanes' states on; answers whether one is not finite any more. */
 int rampwise_modes_tile_(const rampwise_modes *m, size_t g, lane_block *lanes, size_t n, const double *input,
                          mode_tile *tile);
 
 /* Adds what is in row 0 on, n rows, to the outputs. */
-void rampwise_modes_outputs_(const rampwise_modes *m, size_t g, size_t n, double (*u)[LANES], double (*v)[LANES],
-                             double *output);
+void rampwise_modes_outputs_(const rampwise_modes *m, size_t g, size_t n, double (*u)[LANES],
+                             double (*v)[LANES], double *output);
 
 /* modes_peaks.c */
 void rampwise_modes_peaks_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r);
@@ -90,7 +91,6 @@ void rampwise_modes_peaks_group_(rampwise_modes *m, size_t g, size_t tiles);
 void rampwise_modes_peaks_segment_(rampwise_modes *m, size_t n);
 rampwise_peak *rampwise_modes_peak_(const rampwise_modes *m);
 
-
 /* For equipment, in a segment whose tiles are being looked at: the modes over the n steps of tile t once more; then
    the power series of output o in the step after k, [pieces]; how much it can exceed the samples in a tile; and the
    extremes of a series, noted where they exceed the floors and the peak. */
@@ -98,8 +98,8 @@ enum { MODES_POWERS = 24 };
 void rampwise_modes_trace_(rampwise_modes *m, size_t t, size_t n);
 double (*rampwise_modes_series_(rampwise_modes *m, size_t k, size_t o, size_t *pieces))[MODES_POWERS + 1];
 double rampwise_modes_tile_excess_(const rampwise_modes *m, size_t t, size_t o);
-void rampwise_modes_curve_(const double *series, double floor_high, double floor_low, uint64_t sample, size_t piece,
-                           size_t pieces, rampwise_peak *peak);
+void rampwise_modes_curve_(const double *series, double floor_high, double floor_low, uint64_t sample,
+                           size_t piece, size_t pieces, rampwise_peak *peak);
 
 /* equipment.c: as the functions above; only where there is equipment */
 void rampwise_equipment_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r);

@@ -16,15 +16,15 @@ typedef struct bound {
 } bound;
 
 struct modes_peaks {
-    rampwise_peak *peak;                     /* [outputs] */
-    double *floor_high, *floor_low;          /* [outputs]: of the peak so far and the segment's samples */
-    bound *bounds;                           /* [groups] */
-    double *excess_weight;                   /* [groups][LANES][width] */
-    double *begin;                           /* [groups][TILES][2][LANES] */
-    double (*largest)[LANES];                /* [TILES]: of the present group */
-    double *excess_tile, *excess_step;       /* [TILES][width], [TILE][width] */
-    mode_tile *trace;                        /* [groups]: of a tile that is looked at */
-    double (*series)[POWERS + 1];            /* [pieces]: of an output in a step */
+    rampwise_peak *peak;               /* [outputs] */
+    double *floor_high, *floor_low;    /* [outputs]: of the peak so far and the segment's samples */
+    bound *bounds;                     /* [groups] */
+    double *excess_weight;             /* [groups][LANES][width] */
+    double *begin;                     /* [groups][TILES][2][LANES] */
+    double (*largest)[LANES];          /* [TILES]: of the present group */
+    double *excess_tile, *excess_step; /* [TILES][width], [TILE][width] */
+    mode_tile *trace;                  /* [groups]: of a tile that is looked at */
+    double (*series)[POWERS + 1];      /* [pieces]: of an output in a step */
     size_t pieces;
 };
 
@@ -40,7 +40,8 @@ static size_t pieces_for(size_t pieces, const rampwise_system *sys, double h)
 void rampwise_modes_peaks_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r)
 {
     modes_peaks counted;
-    modes_peaks *const made = rampwise_room_take_(r, 1, sizeof counted), *const x = made != NULL ? made : &counted;
+    modes_peaks *const made = rampwise_room_take_(r, 1, sizeof counted), *const x =
+                                                                             made != NULL ? made : &counted;
     m->peaks = made;
     x->pieces = 1;
     for (size_t j = 0; j < plan->modes; ++j)
@@ -96,7 +97,7 @@ void rampwise_modes_peaks_start_(rampwise_modes *m)
 static void bound_step(const rampwise_modes *m, size_t g, const mode_tile *tile, size_t i, double *most)
 {
     const bound *const b = &m->peaks->bounds[g];
-    double (*const row)[LANES] = m->group[g].row;
+    double(*const row)[LANES] = m->group[g].row;
     const double per_step = m->between == RAMPWISE_RAMP ? 1 / m->dt : 0;
     for (size_t j = 0; j < LANES; ++j) {
         const double u = tile->u[i][j], v = tile->v[i][j], p = tile->p[i][j];
@@ -243,7 +244,8 @@ static void search(const curve *c, double low, double high, int depth)
         return;
     }
     const double most = width * width / 8 * c->second;
-    if (fmax(first, last) + most <= c->floor_high + c->noise && fmin(first, last) - most >= c->floor_low - c->noise)
+    if (fmax(first, last) + most <= c->floor_high + c->noise &&
+        fmin(first, last) - most >= c->floor_low - c->noise)
         return;
     if (depth == 0) {
         note_on(c, value, middle);
@@ -253,8 +255,8 @@ static void search(const curve *c, double low, double high, int depth)
     search(c, middle, high, depth - 1);
 }
 
-void rampwise_modes_curve_(const double *a, double floor_high, double floor_low, uint64_t sample, size_t piece,
-                           size_t pieces, rampwise_peak *peak)
+void rampwise_modes_curve_(const double *a, double floor_high, double floor_low, uint64_t sample,
+                           size_t piece, size_t pieces, rampwise_peak *peak)
 {
     curve c = {a, 0, 0, fabs(a[0]) + fabs(a[1]), floor_high, floor_low, sample, piece, pieces, peak};
     for (size_t n = 2; n <= POWERS; ++n) {
@@ -325,8 +327,8 @@ static void look_at_step(rampwise_modes *m, size_t t, size_t i, const double *in
         make_series(m, input, i, o);
         const uint64_t sample = m->sample + t * TILE + i;
         for (size_t piece = 0; piece < x->pieces; ++piece)
-            rampwise_modes_curve_(x->series[piece], x->floor_high[o], x->floor_low[o], sample, piece, x->pieces,
-                                  &x->peak[o]);
+            rampwise_modes_curve_(x->series[piece], x->floor_high[o], x->floor_low[o], sample, piece,
+                                  x->pieces, &x->peak[o]);
         if (m->between == RAMPWISE_HOLD) /* where it jumps, the value before */
             note_value(&x->peak[o], sum_of(x->series[x->pieces - 1]), sample + 1, 0);
     }
@@ -362,7 +364,8 @@ static void finish_tile(rampwise_modes *m, size_t t, size_t n)
         if (looking)
             look_at_step(m, t, i, input);
         for (size_t o = 0; o < m->outputs; ++o)
-            note_value(&x->peak[o], m->output[(t * TILE + i + 1) * m->width + o], m->sample + t * TILE + i + 1, 0);
+            note_value(&x->peak[o], m->output[(t * TILE + i + 1) * m->width + o],
+                       m->sample + t * TILE + i + 1, 0);
     }
 }
 

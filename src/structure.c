@@ -28,8 +28,9 @@ int rampwise_static_correction(const rampwise_modes_plan *plan, const double *se
             twofold sum = {settled[i * plan->outputs + o], 0};
             for (size_t j = 0; plan->on_displacement != NULL && j < plan->modes; ++j)
                 if (plan->c[j].system.stiffness != 0)
-                    sum = twofold_subtract(sum, twofold_multiply_by(settled_mode(plan, j, i),
-                                                                    plan->on_displacement[j * plan->outputs + o]));
+                    sum = twofold_subtract(sum,
+                                           twofold_multiply_by(settled_mode(plan, j, i),
+                                                               plan->on_displacement[j * plan->outputs + o]));
             if (!isfinite(sum.hi))
                 return RAMPWISE_ERROR_WEIGHT;
             on_input[i * plan->outputs + o] = sum.hi;
@@ -197,7 +198,8 @@ static size_t next_root(const rampwise_roots *r, const rampwise_system *pairs, s
 {
     size_t next = 2 * r->bodies;
     for (size_t k = 0; k < 2 * r->bodies; ++k)
-        if (!is_taken(pairs, found, k) && (next == 2 * r->bodies || size_of(at(r->root, k)) < size_of(at(r->root, next))))
+        if (!is_taken(pairs, found, k) &&
+            (next == 2 * r->bodies || size_of(at(r->root, k)) < size_of(at(r->root, next))))
             next = k;
     return next;
 }
@@ -292,8 +294,8 @@ size_t rampwise_roots_modes(const rampwise_roots *roots)
     return roots == NULL ? 0 : roots->inputs == 1 ? roots->bodies : 2 * roots->bodies;
 }
 
-int rampwise_roots_to_modes(const rampwise_roots *roots, rampwise_system *sys, double *load, double *on_displacement,
-                            double *on_velocity)
+int rampwise_roots_to_modes(const rampwise_roots *roots, rampwise_system *sys, double *load,
+                            double *on_displacement, double *on_velocity)
 {
     if (roots == NULL || sys == NULL || load == NULL || on_displacement == NULL || on_velocity == NULL)
         return RAMPWISE_ERROR_MISSING;

@@ -78,9 +78,10 @@ RAMPWISE_API size_t rampwise_modes_size(const rampwise_modes_plan *plan);
 RAMPWISE_API size_t rampwise_modes_alignment(void);
 
 /* The object in the caller's memory, at rest under zero input. RAMPWISE_ERROR_MISSING; _COUNT (a number of the plan
-   is 0 or too large, or it was not begun with its init); _NOT_MADE; _DIFFERENT; _INPUT (neither force nor base
+   is 0 or too large, a point is not an output, or it was not begun with its init); _NOT_MADE; _DIFFERENT; _INPUT (neither force nor base
    acceleration); _WEIGHT (a load factor or weight is not finite, or an acceleration's overflows); _INSTRUCTIONS;
-   _MEMORY; _STEP_LENGTH (peaks are wanted, and a mode has w dt or c dt/m above 1024). */
+   _MEMORY; _STEP_LENGTH (peaks are wanted, and a mode or piece of equipment has w dt or c dt/m above 1024);
+   for equipment also what rampwise_coeffs_make refuses. */
 RAMPWISE_API int rampwise_modes_init(void *memory, size_t bytes, const rampwise_modes_plan *plan,
                                      rampwise_modes **modes);
 
@@ -98,7 +99,8 @@ RAMPWISE_API size_t rampwise_modes_count(const rampwise_modes *modes);
 RAMPWISE_API int rampwise_modes_start(rampwise_modes *modes, const double *input);
 
 /* The same from modal displacements u[modes] and velocities v[modes]; _STATE where one is not finite. */
-RAMPWISE_API int rampwise_modes_set(rampwise_modes *modes, const double *u, const double *v, const double *input);
+RAMPWISE_API int rampwise_modes_set(rampwise_modes *modes, const double *u, const double *v,
+                                    const double *input);
 
 /* Displacement and velocity of each mode at the present sample, [modes]; NULL where not wanted. */
 RAMPWISE_API int rampwise_modes_get(const rampwise_modes *modes, double *u, double *v);
@@ -110,7 +112,8 @@ RAMPWISE_API int rampwise_modes_read(const rampwise_modes *modes, double *output
    a live step. RAMPWISE_ERROR_MISSING; _SAMPLE, with its row in bad: nothing has changed. _OVERFLOW: a mode or an
    output is larger than a double can hold at row bad; outputs before it are valid, and the object stands at the
    sample before. bad may be NULL. */
-RAMPWISE_API int rampwise_modes_run(rampwise_modes *modes, size_t n, const double *input, double *output, size_t *bad);
+RAMPWISE_API int rampwise_modes_run(rampwise_modes *modes, size_t n, const double *input, double *output,
+                                    size_t *bad);
 
 /* The peaks of all outputs from sample 0 to the present, peak[outputs]. RAMPWISE_ERROR_MISSING, _QUANTITY (the plan
    did not ask for peaks). */

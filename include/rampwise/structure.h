@@ -22,7 +22,8 @@ RAMPWISE_BEGIN
    twofold arithmetic. This is the residual-mode, or missing-mass, correction of the trade.
    RAMPWISE_ERROR_MISSING; _WEIGHT (a number is not finite, or comes out so); and as rampwise_modes_init refuses the
    plan. */
-RAMPWISE_API int rampwise_static_correction(const rampwise_modes_plan *plan, const double *settled, double *on_input);
+RAMPWISE_API int rampwise_static_correction(const rampwise_modes_plan *plan, const double *settled,
+                                            double *on_input);
 
 /* The share of the mass that the modes of the plan take in every direction, share[inputs]: the sum of the effective
    modal masses over mass[inputs], the whole mass that moves in that direction. load is the participation factor under
@@ -44,7 +45,7 @@ typedef struct rampwise_roots {
     const double *mass, *damper; /* [bodies][bodies] */
     const double *root;          /* [2 bodies][2]; those that are not real come in conjugate pairs */
     const double *shape;         /* [2 bodies][bodies][2], of any scale */
-    const double *force;         /* [inputs][bodies]: forces for a unit of the input; -M r for base acceleration */
+    const double *force; /* [inputs][bodies]: forces for a unit of the input; -M r for base acceleration */
     /* [outputs][bodies]: weights on the displacements and velocities of the bodies; NULL where all are zero. For the
        acceleration of a body, e' u'' = -e' M^-1 C u' - e' M^-1 K u + e' M^-1 force: three rows of weights, the last
        for on_input of the plan. */

@@ -371,8 +371,9 @@ static int rows(double (*row)[LANES], size_t lanes, size_t n, double (*p)[LANES]
 
 /* `samples` rows of y, `vectors` vectors wide: enough sums in flight to hide their latency, each weight fetched
    once for all of them. Both are constants where this is inlined. */
-static inline __attribute__((always_inline)) void sums(int samples, int vectors, size_t count, const double *x,
-                                                       size_t stride, const double *weight, size_t width, double *y)
+static inline __attribute__((always_inline)) void sums(int samples, int vectors, size_t count,
+                                                       const double *x, size_t stride, const double *weight,
+                                                       size_t width, double *y)
 {
     VECTOR sum[4][2];
     for (int i = 0; i < samples; ++i)
@@ -389,8 +390,8 @@ static inline __attribute__((always_inline)) void sums(int samples, int vectors,
             vector_store(y + (size_t)i * width + (size_t)j * WIDTH, sum[i][j]);
 }
 
-static void accumulate(size_t count, size_t n, const double *x, size_t stride, const double *weight, size_t width,
-                       double *y)
+static void accumulate(size_t count, size_t n, const double *x, size_t stride, const double *weight,
+                       size_t width, double *y)
 {
     for (size_t o = 0; o < width;) {
         const int two = width - o >= 2 * WIDTH;
@@ -414,7 +415,8 @@ static void under_gains(size_t width, size_t n, const double *own, double *u, do
 {
     for (size_t lane = 0; lane < width; lane += WIDTH) {
         const VECTOR A_minus_1 = vector_load(own + lane), B = vector_load(own + width + lane);
-        const VECTOR Ap = vector_load(own + 2 * width + lane), Bp_minus_1 = vector_load(own + 3 * width + lane);
+        const VECTOR Ap = vector_load(own + 2 * width + lane),
+                     Bp_minus_1 = vector_load(own + 3 * width + lane);
         VECTOR at = vector_load(u + lane), slope = vector_load(v + lane);
         for (size_t i = 0; i < n; ++i) {
             double *const for_u = gain + 2 * i * width + lane, *const for_v = for_u + width;
@@ -467,5 +469,6 @@ static void scatter(double *to, size_t stride, size_t count, size_t n, double (*
 }
 
 extern const kernels KERNELS;
-const kernels KERNELS = {KERNELS_NAME, first_not_finite, advance, under_one_input, stretch,
-                         may_exceed, under_own_inputs, rows, accumulate, under_gains, gather, scatter};
+const kernels KERNELS = {KERNELS_NAME, first_not_finite, advance,          under_one_input,
+                         stretch,      may_exceed,       under_own_inputs, rows,
+                         accumulate,   under_gains,      gather,           scatter};

@@ -64,8 +64,8 @@ typedef struct kernels {
 
     /* y[i][o] += sum of x[i][k] weight[k][o] for i < n, k < count, o < width, where rows of x are `stride` apart
        and rows of y and weight `width`, a multiple of 8: y = fma(x, weight, y), k = 0 first. */
-    void (*accumulate)(size_t count, size_t n, const double *x, size_t stride, const double *weight, size_t width,
-                       double *y);
+    void (*accumulate)(size_t count, size_t n, const double *x, size_t stride, const double *weight,
+                       size_t width, double *y);
 
     /* Oscillators of `width` lanes (a multiple of 8) over n samples: gain[2 i] and gain[2 i + 1], rows of `width`, are
        what each step adds to u and v beside their own motion, own[0] to own[3] of `width` (A - 1, B, A', B' - 1);

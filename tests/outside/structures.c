@@ -44,7 +44,8 @@ static void chain(frame *f, size_t n, const double *mass, const double *spring, 
 static void undamped_modes(const frame *f, double *square, double *shape)
 {
     const size_t n = f->n;
-    gsl_matrix *const K = gsl_matrix_alloc(n, n), *const M = gsl_matrix_alloc(n, n), *const vectors = gsl_matrix_alloc(n, n);
+    gsl_matrix *const K = gsl_matrix_alloc(n, n), *const M = gsl_matrix_alloc(n, n),
+                      *const vectors = gsl_matrix_alloc(n, n);
     gsl_vector *const values = gsl_vector_alloc(n);
     gsl_eigen_gensymmv_workspace *const work = gsl_eigen_gensymmv_alloc(n);
     memcpy(K->data, f->K, n * n * sizeof *f->K);
@@ -122,7 +123,8 @@ static rampwise_coeffs coeffs_of(rampwise_system sys, double dt, int input)
 }
 
 /* Largest error of output[SAMPLES][3 n] in units of the peak of the same kind of row. */
-static double worst_error(const frame *f, const double *p, const double *u, const double *v, const double *output)
+static double worst_error(const frame *f, const double *p, const double *u, const double *v,
+                          const double *output)
 {
     const size_t n = f->n;
     double peak[3] = {0, 0, 0}, error[3] = {0, 0, 0}, row[ROWS];
@@ -145,8 +147,8 @@ static void run_plan(const rampwise_modes_plan *plan, const double *p, double *o
 }
 
 /* Classical: damping a M + b K. One direction of base acceleration by participation factors, or the same forces. */
-static void run_classical(const frame *f, double a, double b, size_t modes, int input, double dt, const double *p,
-                          double *output)
+static void run_classical(const frame *f, double a, double b, size_t modes, int input, double dt,
+                          const double *p, double *output)
 {
     const size_t n = f->n;
     static double square[MOST], shape[MOST * MOST], weight[3][MOST * ROWS];
@@ -305,8 +307,10 @@ START_TEST(shear_buildings)
             chain(&f, n, mass, spring, none);
             undamped_modes(&f, square, shape);
             for (size_t j = 0; j < n; ++j) {
-                const double angle = free ? (double)j * pi / (2 * (double)n) : (2 * (double)j + 1) * pi / (2 * (2 * (double)n + 1));
-                ck_assert_double_le(fabs(square[j] - top * sin(angle) * sin(angle)), (double)(n * n) * DBL_EPSILON * top);
+                const double angle = free ? (double)j * pi / (2 * (double)n)
+                                          : (2 * (double)j + 1) * pi / (2 * (2 * (double)n + 1));
+                ck_assert_double_le(fabs(square[j] - top * sin(angle) * sin(angle)),
+                                    (double)(n * n) * DBL_EPSILON * top);
             }
         }
 }
@@ -405,7 +409,8 @@ START_TEST(nonclassical_records)
         run_converted(&x, dt, two, output);
         worst = fmax(worst, worst_error(&f, p, u, v, output));
     }
-    printf("nonclassical records: %d real roots, %d complex, largest error %.1e of the peak\n", real, complex, worst);
+    printf("nonclassical records: %d real roots, %d complex, largest error %.1e of the peak\n", real, complex,
+           worst);
     ck_assert_int_gt(real, 40);
     ck_assert_int_gt(complex, 200);
     ck_assert_double_le(worst, 1e-10);
@@ -452,10 +457,13 @@ START_TEST(zero_roots)
     chain(&one, 1, &m, k, none);
     ck_assert_int_eq(convert(&x, &one, 1, one.force), RAMPWISE_OK);
     x.root[1] = 17;
-    ck_assert_int_eq(rampwise_roots_to_modes(&x.roots, x.sys, x.load, x.weight[0], x.weight[1]), RAMPWISE_ERROR_ROOTS);
+    ck_assert_int_eq(rampwise_roots_to_modes(&x.roots, x.sys, x.load, x.weight[0], x.weight[1]),
+                     RAMPWISE_ERROR_ROOTS);
     x.roots.bodies = 0;
-    ck_assert_int_eq(rampwise_roots_to_modes(&x.roots, x.sys, x.load, x.weight[0], x.weight[1]), RAMPWISE_ERROR_COUNT);
-    ck_assert_int_eq(rampwise_roots_to_modes(&x.roots, NULL, x.load, x.weight[0], x.weight[1]), RAMPWISE_ERROR_MISSING);
+    ck_assert_int_eq(rampwise_roots_to_modes(&x.roots, x.sys, x.load, x.weight[0], x.weight[1]),
+                     RAMPWISE_ERROR_COUNT);
+    ck_assert_int_eq(rampwise_roots_to_modes(&x.roots, NULL, x.load, x.weight[0], x.weight[1]),
+                     RAMPWISE_ERROR_MISSING);
     gsl_rng_free(r);
 }
 END_TEST
@@ -509,7 +517,8 @@ START_TEST(adaptive_driver)
     static const size_t sizes[] = {2, 5, 12, MOST};
     static frame f;
     static converted x;
-    static double p[SAMPLES], u[SAMPLES * MOST], v[SAMPLES * MOST], output[SAMPLES * ROWS], square[MOST], shape[MOST * MOST];
+    static double p[SAMPLES], u[SAMPLES * MOST], v[SAMPLES * MOST], output[SAMPLES * ROWS], square[MOST],
+        shape[MOST * MOST];
     double worst = 0;
     for (int i = 0; i < 8; ++i) {
         const int classical = i % 2;
@@ -545,7 +554,8 @@ START_TEST(adaptive_driver)
             memcpy(v + k * n, y + n, n * sizeof *v);
         }
         const double each = 1.1e-13 * smaller * (double)driver->n * SAMPLES;
-        const double bound_u = 2 * each * (1 + 1 / sqrt(square[0])), bound_v = 2 * each * (1 + sqrt(square[n - 1]));
+        const double bound_u = 2 * each * (1 + 1 / sqrt(square[0])),
+                     bound_v = 2 * each * (1 + sqrt(square[n - 1]));
         for (size_t k = 0; k < SAMPLES; ++k)
             for (size_t j = 0; j < n; ++j) {
                 const double error_u = fabs(u[k * n + j] - output[k * 3 * n + j]);
@@ -576,7 +586,8 @@ START_TEST(static_correction)
         random_chain(r, &f, BODIES, 0);
         undamped_modes(&f, square, shape);
         gsl_matrix_view K = gsl_matrix_view_array(f.K, BODIES, BODIES);
-        gsl_vector_view force = gsl_vector_view_array(f.force, BODIES), u = gsl_vector_view_array(settled, BODIES);
+        gsl_vector_view force = gsl_vector_view_array(f.force, BODIES),
+                        u = gsl_vector_view_array(settled, BODIES);
         gsl_matrix *const factor = gsl_matrix_alloc(BODIES, BODIES);
         gsl_matrix_memcpy(factor, &K.matrix);
         gsl_linalg_cholesky_decomp1(factor);
@@ -622,11 +633,14 @@ START_TEST(combination_rules)
 {
     gsl_rng *const r = random_make("combination_rules");
     for (int i = 0; i < 1000; ++i) {
-        const double z = random_log(r, 1e-4, 1), q = random_log(r, 0.01, 100), omega = random_log(r, 1e-3, 1e3);
-        const double expected = 8 * z * z * (1 + q) * pow(q, 1.5) /
-                                (pow(1 - q * q, 2) + 4 * z * z * q * (1 + q) * (1 + q));
-        ck_assert_double_eq_tol(rampwise_modal_correlation(omega, z, omega * q, z), expected, 1e-11 * expected);
-        ck_assert_double_eq_tol(rampwise_modal_correlation(omega * q, z, omega, z), expected, 1e-11 * expected);
+        const double z = random_log(r, 1e-4, 1), q = random_log(r, 0.01, 100),
+                     omega = random_log(r, 1e-3, 1e3);
+        const double expected =
+            8 * z * z * (1 + q) * pow(q, 1.5) / (pow(1 - q * q, 2) + 4 * z * z * q * (1 + q) * (1 + q));
+        ck_assert_double_eq_tol(rampwise_modal_correlation(omega, z, omega * q, z), expected,
+                                1e-11 * expected);
+        ck_assert_double_eq_tol(rampwise_modal_correlation(omega * q, z, omega, z), expected,
+                                1e-11 * expected);
     }
     ck_assert_double_eq_tol(rampwise_modal_correlation(1, 0.05, 0.9, 0.05), 0.473, 5e-4);
     ck_assert(rampwise_modal_correlation(3, 0.05, 3, 0.05) == 1);
@@ -634,7 +648,8 @@ START_TEST(combination_rules)
     ck_assert(rampwise_modal_correlation(3, 0, 4, 0) == 0);
     ck_assert(rampwise_modal_correlation(0, 0.1, 4, 0.1) == 0);
     ck_assert_double_le(rampwise_modal_correlation(1, 0.05, 1e6, 0.05), 1e-10);
-    const double peak[3] = {3, -4, 12}, far[3] = {1, 1e5, 1e10}, same[3] = {2, 2, 2}, zeta[3] = {0.02, 0.02, 0.02};
+    const double peak[3] = {3, -4, 12}, far[3] = {1, 1e5, 1e10}, same[3] = {2, 2, 2},
+                 zeta[3] = {0.02, 0.02, 0.02};
     ck_assert(rampwise_combine_absolute_sum(3, peak) == 19);
     ck_assert_double_eq_tol(rampwise_combine_root_of_squares(3, peak), 13, 1e-14);
     ck_assert_double_eq_tol(rampwise_combine_complete_quadratic(3, peak, far, zeta), 13, 1e-6);
@@ -643,7 +658,8 @@ START_TEST(combination_rules)
     ck_assert_double_eq_tol(rampwise_combine_with_share(2, peak, 0.4), 4 + 0.4 * 3, 1e-14);
     const double huge[2] = {3e300, 4e300}, none[2] = {0, 0};
     ck_assert_double_eq_tol(rampwise_combine_root_of_squares(2, huge) / 5e300, 1, 1e-14);
-    ck_assert(rampwise_combine_root_of_squares(2, none) == 0 && rampwise_combine_root_of_squares(0, peak) == 0);
+    ck_assert(rampwise_combine_root_of_squares(2, none) == 0 &&
+              rampwise_combine_root_of_squares(0, peak) == 0);
     ck_assert(isnan(rampwise_combine_root_of_squares(2, NULL)));
     const double broken[2] = {1, NAN};
     ck_assert(isnan(rampwise_combine_root_of_squares(2, broken)));

@@ -14,6 +14,8 @@ typedef struct structure {
     rampwise_modes_plan plan;
     rampwise_coeffs c[MODES];
     double load[MODES * INPUTS], on_input[INPUTS * OUTPUTS], weight[3][MODES * OUTPUTS];
+    rampwise_system equipment[2];
+    size_t point[2];
 } structure;
 
 static void structure_make(structure *s, gsl_rng *r, int modes, int inputs, int outputs, int kind)
@@ -34,6 +36,12 @@ static void structure_make(structure *s, gsl_rng *r, int modes, int inputs, int 
     s->plan.on_velocity = s->weight[1];
     s->plan.on_acceleration = s->weight[2];
     s->plan.on_input = s->on_input;
+    for (int i = 0; i < 2; ++i) {
+        s->equipment[i] = regime_system(1 + i, 0.3, 0.01);
+        s->point[i] = (size_t)i % s->plan.outputs;
+    }
+    s->plan.equipment = s->equipment;
+    s->plan.point = s->point;
 }
 
 static rampwise_modes *create(const structure *s)
@@ -44,8 +52,8 @@ static rampwise_modes *create(const structure *s)
     return modes;
 }
 
-static void run_in_chunks(gsl_rng *r, rampwise_modes *modes, const structure *s, size_t n, const double *input,
-                          double *output)
+static void run_in_chunks(gsl_rng *r, rampwise_modes *modes, const structure *s, size_t n,
+                          const double *input, double *output)
 {
     for (size_t done = 0; done < n;) {
         size_t part = gsl_rng_uniform_int(r, 200);
@@ -75,8 +83,8 @@ static double sum_of(const structure *s, size_t o, double direct, const rampwise
         for (int moving = 0; moving < 2; ++moving)
             for (size_t j = g; j < g + 32 && j < s->plan.modes; ++j) {
                 const size_t place = j * s->plan.outputs + o;
-                const double weight = RAMPWISE_FMA(s->weight[2][place], s->c[j].acceleration[moving],
-                                                   s->weight[moving][place]);
+                const double weight =
+                    RAMPWISE_FMA(s->weight[2][place], s->c[j].acceleration[moving], s->weight[moving][place]);
                 y = RAMPWISE_FMA(moving ? at[j].v : at[j].u, weight, y);
             }
     return y;
@@ -185,6 +193,7 @@ START_TEST(cut_and_saved)
         rampwise_peak peaks[2][OUTPUTS];
         structure_make(&s, r, 40, 2, 5, kind);
         s.plan.peaks = 1;
+        s.plan.equipment_count = 2;
         rampwise_modes *const a = create(&s), *const b = create(&s), *const c = create(&s);
         random_record(r, input, N * 2);
         ck_assert_int_eq(rampwise_modes_run(a, N, input, one, NULL), RAMPWISE_OK);
@@ -199,6 +208,18 @@ START_TEST(cut_and_saved)
         ck_assert_int_eq(rampwise_modes_peaks(a, peaks[0]), RAMPWISE_OK);
         ck_assert_int_eq(rampwise_modes_peaks(c, peaks[1]), RAMPWISE_OK);
         equal_peaks(peaks[0], peaks[1], 5);
+        double x[2][4];
+        for (int q = RAMPWISE_DISPLACEMENT; q <= RAMPWISE_TOTAL_ACCELERATION; q += 2) {
+            ck_assert_int_eq(rampwise_equipment_peaks(a, q, peaks[0]), RAMPWISE_OK);
+            ck_assert_int_eq(rampwise_equipment_peaks(c, q, peaks[1]), RAMPWISE_OK);
+            equal_peaks(peaks[0], peaks[1], 2);
+            ck_assert_double_gt(peaks[0][1].high.value, 0);
+        }
+        ck_assert_int_eq(rampwise_equipment_peaks(a, RAMPWISE_VELOCITY, peaks[0]), RAMPWISE_ERROR_QUANTITY);
+        ck_assert_int_eq(rampwise_equipment_get(a, x[0], x[0] + 2), RAMPWISE_OK);
+        ck_assert_int_eq(rampwise_equipment_get(c, x[1], x[1] + 2), RAMPWISE_OK);
+        ck_assert_mem_eq(x[0], x[1], sizeof x[0]);
+        ck_assert(x[0][0] != 0);
         /* Every damaged byte is noticed, and another plan. */
         for (size_t i = 0; i < size; i += 37) {
             bytes[i] ^= 0x10;
@@ -226,7 +247,8 @@ START_TEST(overflow)
     rampwise_modes_plan plan;
     rampwise_modes_plan_init(&plan);
     for (int j = 0; j < 2; ++j)
-        ck_assert_int_eq(rampwise_coeffs_make(&c[j], &sys[j], 0.02, RAMPWISE_FORCE, RAMPWISE_RAMP), RAMPWISE_OK);
+        ck_assert_int_eq(rampwise_coeffs_make(&c[j], &sys[j], 0.02, RAMPWISE_FORCE, RAMPWISE_RAMP),
+                         RAMPWISE_OK);
     plan.modes = 2;
     plan.inputs = plan.outputs = 1;
     plan.c = c;
@@ -330,6 +352,10 @@ START_TEST(refusals)
     BAD(s.c[1] = made(s.c[1].system, 0.02, 0), RAMPWISE_ERROR_DIFFERENT);
     BAD(s.load[3] = NAN, RAMPWISE_ERROR_WEIGHT);
     BAD(s.weight[2][11] = INFINITY, RAMPWISE_ERROR_WEIGHT);
+    BAD((s.plan.equipment_count = 2, s.plan.point = NULL), RAMPWISE_ERROR_MISSING);
+    BAD((s.plan.equipment_count = 2, s.point[1] = 3), RAMPWISE_ERROR_COUNT);
+    BAD((s.plan.equipment_count = 2, s.equipment[1].mass = 0), RAMPWISE_ERROR_MASS);
+    BAD((s.plan.equipment_count = 2, s.equipment[1].stiffness = 1e300), RAMPWISE_ERROR_STEP_LENGTH);
     BAD(s.plan.instructions = 7, RAMPWISE_ERROR_INSTRUCTIONS);
     BAD(for (int j = 0; j < 4; ++j) s.c[j] = made(s.c[j].system, 0.01, 4), RAMPWISE_ERROR_INPUT);
     BAD((s.plan.peaks = 1, s.c[2] = made(regime_system(1, 2000, 0.01), 0.01, 0)), RAMPWISE_ERROR_STEP_LENGTH);
