@@ -103,6 +103,7 @@ static void measure(report *r, const extent *e, const char *python, const char *
     ours_bank_tasks(&r->tasks, in);
     ours_channel_tasks(&r->tasks, in);
     ours_spectrum_tasks(&r->tasks, in);
+    ours_modes_tasks(&r->tasks, in);
     textbook_tasks(&r->tasks, in);
     (void)scipy_tasks(&r->tasks, in, python, script, r->scipy, sizeof r->scipy);
     gsl_tasks(&r->tasks, in);
