@@ -163,13 +163,13 @@ void rampwise_equipment_begin_(rampwise_modes *m, size_t n)
     m->k->accumulate(m->inputs, n, m->input + m->inputs, m->inputs, e->from_now, 2 * e->width, e->gain);
 }
 
-void rampwise_equipment_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, const mode_tile *tile)
+void rampwise_equipment_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, mode_tile *tile)
 {
     equipment_core *const e = m->equipment;
     const size_t at = 2 * g * LANES * e->width;
     double *const gain = e->gain + 2 * t * TILE * e->width;
-    m->k->accumulate(LANES, n, tile->u[0], LANES, e->from_u + at, 2 * e->width, gain);
-    m->k->accumulate(LANES, n, tile->v[0], LANES, e->from_v + at, 2 * e->width, gain);
+    m->k->accumulate(modes_in(m, g), n, tile->u[0], LANES, e->from_u + at, 2 * e->width, gain);
+    m->k->accumulate(modes_in(m, g), n, tile->v[0], LANES, e->from_v + at, 2 * e->width, gain);
 }
 
 int rampwise_equipment_end_(rampwise_modes *m, size_t n)

@@ -285,16 +285,16 @@ int rampwise_modes_tile_(const rampwise_modes *m, size_t g, lane_block *lanes, s
     memcpy(tile->u[0], lanes->u, sizeof lanes->u);
     memcpy(tile->v[0], lanes->v, sizeof lanes->v);
     rampwise_modes_loads_(m, g, n, input, tile->p);
-    return m->k->under_own_inputs(lanes, LANES, n, tile->p, tile->u + 1, tile->v + 1);
+    return m->k->under_own_inputs(lanes, modes_in(m, g), n, tile->p, tile->u + 1, tile->v + 1);
 }
 
 void rampwise_modes_outputs_(const rampwise_modes *m, size_t g, size_t n, double (*u)[LANES],
                              double (*v)[LANES], double *output)
 {
     const size_t at = g * LANES * m->width;
-    m->k->accumulate(LANES, n, u[0], LANES, m->weight_u + at, m->width, output);
+    m->k->accumulate(modes_in(m, g), n, u[0], LANES, m->weight_u + at, m->width, output);
     if (m->weight_v != NULL)
-        m->k->accumulate(LANES, n, v[0], LANES, m->weight_v + at, m->width, output);
+        m->k->accumulate(modes_in(m, g), n, v[0], LANES, m->weight_v + at, m->width, output);
 }
 
 /* One group over the samples of a segment. */
@@ -419,7 +419,7 @@ int rampwise_equipment_run(rampwise_modes *modes, size_t n, const double *input,
 /* Up to LANES values from the present group's first mode on; zeros where there are none. */
 static void take_lanes(double *lanes, const rampwise_modes *m, size_t g, const double *x)
 {
-    const size_t count = m->modes - g * LANES < LANES ? m->modes - g * LANES : LANES;
+    const size_t count = modes_in(m, g);
     memset(lanes, 0, LANES * sizeof *lanes);
     if (x != NULL)
         memcpy(lanes, x + g * LANES, count * sizeof *x);

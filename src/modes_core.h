@@ -58,6 +58,11 @@ static inline size_t padded(size_t outputs)
     return (outputs + 7) & ~(size_t)7;
 }
 
+static inline size_t modes_in(const rampwise_modes *m, size_t g)
+{
+    return m->modes - g * LANES < LANES ? m->modes - g * LANES : LANES;
+}
+
 /* What a plan can be refused for, but for memory. */
 int rampwise_modes_check_(const rampwise_modes_plan *plan);
 
@@ -84,7 +89,7 @@ void rampwise_modes_peaks_take_(rampwise_modes *m, const rampwise_modes_plan *pl
 void rampwise_modes_peaks_fill_(rampwise_modes *m, const rampwise_modes_plan *plan);
 void rampwise_modes_peaks_start_(rampwise_modes *m);
 /* Bounds of tile t of a segment. */
-void rampwise_modes_peaks_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, const mode_tile *tile);
+void rampwise_modes_peaks_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, mode_tile *tile);
 /* After the bounds of all tiles of one group. */
 void rampwise_modes_peaks_group_(rampwise_modes *m, size_t g, size_t tiles);
 /* After a segment of n samples without a fault. */
@@ -109,7 +114,7 @@ void rampwise_equipment_start_(rampwise_modes *m);
 /* Along a segment of n samples: before its modes, a tile of them, after them (whether something is not finite any
    more), and back to where it began. */
 void rampwise_equipment_begin_(rampwise_modes *m, size_t n);
-void rampwise_equipment_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, const mode_tile *tile);
+void rampwise_equipment_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, mode_tile *tile);
 int rampwise_equipment_end_(rampwise_modes *m, size_t n);
 void rampwise_equipment_go_back_(rampwise_modes *m);
 void rampwise_equipment_segment_(rampwise_modes *m, size_t n);

@@ -93,34 +93,26 @@ void rampwise_modes_peaks_start_(rampwise_modes *m)
     }
 }
 
-/* The bound of |q''| over the step from row i; sqrt(a^2 + b^2) <= larger + 0.4143 smaller. */
-static void bound_step(const rampwise_modes *m, size_t g, const mode_tile *tile, size_t i, double *most)
+/* The bounds of |q''| over the n steps of a tile. */
+static void bound_steps(const rampwise_modes *m, size_t g, size_t n, mode_tile *tile, double (*most)[LANES])
 {
     const bound *const b = &m->peaks->bounds[g];
-    double(*const row)[LANES] = m->group[g].row;
     const double per_step = m->between == RAMPWISE_RAMP ? 1 / m->dt : 0;
-    for (size_t j = 0; j < LANES; ++j) {
-        const double u = tile->u[i][j], v = tile->v[i][j], p = tile->p[i][j];
-        const double z = row[0][j] * u + row[1][j] * v + row[2][j] * p;
-        const double slope = row[0][j] * v + row[1][j] * z + row[2][j] * ((tile->p[i + 1][j] - p) * per_step);
-        const double first = fabs(z), second = fabs(slope) * b->per_slope[j];
-        const double larger = first > second ? first : second, smaller = first > second ? second : first;
-        most[j] = b->growth[j] * (larger + 0.4143 * smaller);
-    }
+    m->k->free_motion_bounds(LANES, n, m->group[g].row, per_step, tile->p, tile->u, tile->v, b->growth,
+                             b->per_slope, most);
 }
 
-void rampwise_modes_peaks_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, const mode_tile *tile)
+void rampwise_modes_peaks_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, mode_tile *tile)
 {
     modes_peaks *const x = m->peaks;
-    double *const largest = x->largest[t], most[LANES];
+    double *const largest = x->largest[t], most[TILE][LANES];
     memcpy(x->begin + (g * TILES + t) * 2 * LANES, tile->u[0], sizeof tile->u[0]);
     memcpy(x->begin + ((g * TILES + t) * 2 + 1) * LANES, tile->v[0], sizeof tile->v[0]);
-    bound_step(m, g, tile, 0, largest);
-    for (size_t i = 1; i < n; ++i) {
-        bound_step(m, g, tile, i, most);
+    bound_steps(m, g, n, tile, most);
+    memcpy(largest, most[0], sizeof most[0]);
+    for (size_t i = 1; i < n; ++i)
         for (size_t j = 0; j < LANES; ++j)
-            largest[j] = most[j] > largest[j] ? most[j] : largest[j];
-    }
+            largest[j] = most[i][j] > largest[j] ? most[i][j] : largest[j];
 }
 
 void rampwise_modes_peaks_group_(rampwise_modes *m, size_t g, size_t tiles)
@@ -128,12 +120,20 @@ void rampwise_modes_peaks_group_(rampwise_modes *m, size_t g, size_t tiles)
     modes_peaks *const x = m->peaks;
     if (g == 0)
         memset(x->excess_tile, 0, tiles * m->width * sizeof *x->excess_tile);
-    m->k->accumulate(LANES, tiles, x->largest[0], LANES, x->excess_weight + g * LANES * m->width, m->width,
-                     x->excess_tile);
+    m->k->accumulate(modes_in(m, g), tiles, x->largest[0], LANES, x->excess_weight + g * LANES * m->width,
+                     m->width, x->excess_tile);
 }
 
+/* 1/((n + 1)(n + 2)) */
+#define PER(n) 1.0 / (((n) + 1) * ((n) + 2))
+#define PER_FOUR(n) PER(n), PER((n) + 1), PER((n) + 2), PER((n) + 3)
+static const double per_term[POWERS] = {PER_FOUR(0),  PER_FOUR(4),  PER_FOUR(8),
+                                        PER_FOUR(12), PER_FOUR(16), PER_FOUR(20)};
+#undef PER
+#undef PER_FOUR
+
 /* The series of one mode in one step, added to those of an output. With x the time in pieces, q = sum of a[n] x^n:
-   (n + 1)(n + 2) a[n + 2] = f[n] - S (n + 1) a[n + 1] - K a[n]. */
+   (n + 1)(n + 2) a[n + 2] = f[n] - S (n + 1) a[n + 1] - K a[n]; they end where two in a row are below 2^-60. */
 static void add_mode(const rampwise_modes *m, size_t g, size_t j, size_t i, double on_u, double on_v)
 {
     modes_peaks *const x = m->peaks;
@@ -144,14 +144,18 @@ static void add_mode(const rampwise_modes *m, size_t g, size_t j, size_t i, doub
     double u = at->u[i][j], v = at->v[i][j] * h, f[POWERS] = {per_load * at->p[i][j]};
     f[1] = per_load * change / (double)x->pieces;
     for (size_t piece = 0; piece < x->pieces; ++piece) {
-        double a[POWERS + 2] = {u, v};
-        for (size_t n = 0; n < POWERS; ++n)
-            a[n + 2] = (f[n] - S * (double)(n + 1) * a[n + 1] - K * a[n]) / (double)((n + 1) * (n + 2));
+        double a[POWERS + 2] = {u, v}, *const sum = x->series[piece];
+        const double small = 0x1p-60 * (fabs(u) + fabs(v) + fabs(f[0]) + fabs(f[1]));
+        size_t last = 1;
+        while (last < POWERS + 1 && (last < 4 || fabs(a[last]) + fabs(a[last - 1]) > small)) {
+            a[last + 1] = (f[last - 1] - S * ((double)last * a[last]) - K * a[last - 1]) * per_term[last - 1];
+            ++last;
+        }
         u = v = 0;
-        for (size_t n = POWERS + 1; n > 0; --n) {
+        for (size_t n = last; n > 0; --n) {
             u += a[n];
             v += (double)n * a[n];
-            x->series[piece][n - 1] += on_u * a[n - 1] + on_v / h * ((double)n * a[n]);
+            sum[n - 1] += on_u * a[n - 1] + on_v / h * ((double)n * a[n]);
         }
         u += a[0];
         f[0] += f[1];
@@ -299,9 +303,8 @@ void rampwise_modes_trace_(rampwise_modes *m, size_t t, size_t n)
         memcpy(lanes.u, x->begin + (g * TILES + t) * 2 * LANES, sizeof lanes.u);
         memcpy(lanes.v, x->begin + ((g * TILES + t) * 2 + 1) * LANES, sizeof lanes.v);
         (void)rampwise_modes_tile_(m, g, &lanes, n, input, &x->trace[g]);
-        for (size_t i = 0; i < n; ++i)
-            bound_step(m, g, &x->trace[g], i, most[i]);
-        m->k->accumulate(LANES, n, most[0], LANES, x->excess_weight + g * LANES * m->width, m->width,
+        bound_steps(m, g, n, &x->trace[g], most);
+        m->k->accumulate(modes_in(m, g), n, most[0], LANES, x->excess_weight + g * LANES * m->width, m->width,
                          x->excess_step);
     }
     for (size_t i = 0; i < n; ++i)

@@ -436,6 +436,29 @@ static void under_gains(size_t width, size_t n, const double *own, double *u, do
     }
 }
 
+/* sqrt(a^2 + b^2) <= larger + 0.4143 smaller */
+static void free_motion_bounds(size_t lanes, size_t n, double (*row)[LANES], double per_step,
+                               double (*p)[LANES], double (*u)[LANES], double (*v)[LANES],
+                               const double *growth, const double *per_slope, double (*most)[LANES])
+{
+    for (size_t lane = 0; lane < lanes; lane += WIDTH) {
+        const VECTOR on_u = vector_load(row[0] + lane), on_v = vector_load(row[1] + lane);
+        const VECTOR on_p = vector_load(row[2] + lane), grown = vector_load(growth + lane);
+        const VECTOR for_slope = vector_load(per_slope + lane);
+        for (size_t i = 0; i < n; ++i) {
+            const VECTOR now = vector_load(p[i] + lane), speed = vector_load(v[i] + lane);
+            const VECTOR change = vector_difference(vector_load(p[i + 1] + lane), now);
+            const VECTOR z = vector_fma(on_u, vector_load(u[i] + lane),
+                                        vector_fma(on_v, speed, vector_product(on_p, now)));
+            const VECTOR loaded = vector_product(on_p, vector_product(change, vector_all(per_step)));
+            const VECTOR slope = vector_fma(on_u, speed, vector_fma(on_v, z, loaded));
+            const VECTOR a = vector_size(z), b = vector_product(vector_size(slope), for_slope);
+            const VECTOR sum = vector_fma(vector_all(0.4143), vector_smaller(a, b), vector_larger(a, b));
+            vector_store(most[i] + lane, vector_product(grown, sum));
+        }
+    }
+}
+
 static void gather(const double *from, size_t stride, size_t count, size_t n, double (*tile)[LANES])
 {
     size_t j = 0;
@@ -469,6 +492,6 @@ static void scatter(double *to, size_t stride, size_t count, size_t n, double (*
 }
 
 extern const kernels KERNELS;
-const kernels KERNELS = {KERNELS_NAME, first_not_finite, advance,          under_one_input,
-                         stretch,      may_exceed,       under_own_inputs, rows,
-                         accumulate,   under_gains,      gather,           scatter};
+const kernels KERNELS = {KERNELS_NAME, first_not_finite, advance, under_one_input, stretch,
+                         may_exceed,   under_own_inputs, rows,    accumulate,      free_motion_bounds,
+                         under_gains,  gather,           scatter};

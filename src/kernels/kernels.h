@@ -67,6 +67,12 @@ typedef struct kernels {
     void (*accumulate)(size_t count, size_t n, const double *x, size_t stride, const double *weight,
                        size_t width, double *y);
 
+    /* For each of n <= TILE steps of a tile (row i to row i + 1), growth sqrt(z^2 + (per_slope z')^2) or a little more,
+       z = row over {u, v, p} where the step begins and z' its slope, the load changing by per_step (p - p_before). */
+    void (*free_motion_bounds)(size_t lanes, size_t n, double (*row)[LANES], double per_step,
+                               double (*p)[LANES], double (*u)[LANES], double (*v)[LANES],
+                               const double *growth, const double *per_slope, double (*most)[LANES]);
+
     /* Oscillators of `width` lanes (a multiple of 8) over n samples: gain[2 i] and gain[2 i + 1], rows of `width`, are
        what each step adds to u and v beside their own motion, own[0] to own[3] of `width` (A - 1, B, A', B' - 1);
        they become the states after the step. */
