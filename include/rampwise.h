@@ -3,6 +3,7 @@
    The headers are the reference manual, in the order in which data goes through them:
 
        system -> coefficients -> step -> record, channels, bank -> peaks, spectrum
+                                                         -> structure, modes, equipment, combination
 
    A record in a few lines:
 

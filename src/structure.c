@@ -172,20 +172,24 @@ static int is_taken(const rampwise_system *pairs, size_t found, size_t k)
     return 0;
 }
 
-/* The partner of root k: its conjugate, or of the real ones that are left the one that cancels best; 2 bodies where
-   there is none. */
+static double from_conjugate(number a, number b)
+{
+    return size_of((number){a.re - b.re, a.im + b.im});
+}
+
+/* The partner of root k: of those that are left the nearest to its conjugate, or the real one that cancels best. */
 static size_t partner_of(const rampwise_roots *r, const rampwise_system *pairs, size_t found, size_t k)
 {
     const number root = at(r->root, k);
-    size_t best = 2 * r->bodies;
-    double least = root.im != 0 ? 1e-6 * size_of(root) : INFINITY;
+    size_t best = k;
+    double least = INFINITY;
     for (size_t l = 0; l < 2 * r->bodies; ++l) {
         const number other = at(r->root, l);
-        if (l == k || (other.im != 0) != (root.im != 0) || is_taken(pairs, found, l))
+        const int opposite = root.im != 0 ? other.im * root.im < 0 : other.im == 0;
+        if (l == k || !opposite || is_taken(pairs, found, l))
             continue;
-        const double far =
-            root.im != 0 ? size_of((number){other.re - root.re, other.im + root.im}) : left_of(r, k, l);
-        if (far < least) {
+        const double far = root.im != 0 ? from_conjugate(root, other) : left_of(r, k, l);
+        if (best == k || far < least) {
             least = far;
             best = l;
         }
@@ -204,15 +208,12 @@ static size_t next_root(const rampwise_roots *r, const rampwise_system *pairs, s
     return next;
 }
 
-static int find_pairs(const rampwise_roots *r, rampwise_system *pairs)
+static void find_pairs(const rampwise_roots *r, rampwise_system *pairs)
 {
     for (size_t found = 0; found < r->bodies; ++found) {
-        const size_t k = next_root(r, pairs, found), l = partner_of(r, pairs, found, k);
-        if (l == 2 * r->bodies)
-            return RAMPWISE_ERROR_ROOTS;
-        pairs[found] = (rampwise_system){(double)k, (double)l, 0};
+        const size_t k = next_root(r, pairs, found);
+        pairs[found] = (rampwise_system){(double)k, (double)partner_of(r, pairs, found, k), 0};
     }
-    return RAMPWISE_OK;
 }
 
 /* (R + Q) s - (R b + Q a) of one output */
@@ -256,31 +257,70 @@ static void put_two(const rampwise_roots *r, size_t k, size_t l, double *load, d
     }
 }
 
+/* Whether the roots that are not real have their conjugates among them, as many on either side. */
+static int are_paired(const rampwise_roots *r)
+{
+    size_t above = 0, below = 0;
+    for (size_t k = 0; k < 2 * r->bodies; ++k) {
+        const number root = at(r->root, k);
+        int met = root.im == 0;
+        for (size_t l = 0; l < 2 * r->bodies && !met; ++l)
+            met = from_conjugate(root, at(r->root, l)) <= 1e-6 * size_of(root) &&
+                  at(r->root, l).im * root.im < 0;
+        if (!isfinite(root.re) || !isfinite(root.im) || !met)
+            return 0;
+        above += root.im > 0;
+        below += root.im < 0;
+    }
+    return above == below;
+}
+
+static double largest_root(const rampwise_roots *r)
+{
+    double largest = 1;
+    for (size_t k = 0; k < 2 * r->bodies; ++k)
+        largest = fmax(largest, size_of(at(r->root, k)));
+    return largest;
+}
+
+/* Of two sizes; NaN where one is. */
+static double larger_of(double a, double b)
+{
+    return b > a || isnan(b) ? b : a;
+}
+
+/* Whether all that is made of root k will be finite. */
+static int stays_finite(const rampwise_roots *r, size_t k, double largest)
+{
+    double load = 0, output = 0;
+    for (size_t i = 0; i < r->inputs; ++i)
+        load = larger_of(load, size_of(load_of(r, k, i)));
+    for (size_t o = 0; o < r->outputs; ++o)
+        output = larger_of(output, size_of(output_of(r, k, o)));
+    return isfinite(4 * load * output * largest) && isfinite(4 * output * largest) && isfinite(load) &&
+           isfinite(4 * largest * largest);
+}
+
 static int check_roots(const rampwise_roots *r)
 {
     if (r->size != sizeof *r || r->bodies == 0 || r->inputs == 0 || r->outputs == 0)
         return RAMPWISE_ERROR_COUNT;
     if (r->mass == NULL || r->damper == NULL || r->root == NULL || r->shape == NULL || r->force == NULL)
         return RAMPWISE_ERROR_MISSING;
+    if (!are_paired(r))
+        return RAMPWISE_ERROR_ROOTS;
+    const double largest = largest_root(r);
     for (size_t k = 0; k < 2 * r->bodies; ++k) {
         double size;
-        const number root = at(r->root, k), norm = norm_of(r, k, &size);
-        if (!isfinite(root.re) || !isfinite(root.im))
-            return RAMPWISE_ERROR_ROOTS;
+        const number norm = norm_of(r, k, &size);
         if (!isfinite(size))
             return RAMPWISE_ERROR_WEIGHT;
         if (size_of(norm) <= 1e-6 * size)
             return RAMPWISE_ERROR_DEFECTIVE;
+        if (!stays_finite(r, k, largest))
+            return RAMPWISE_ERROR_WEIGHT;
     }
     return RAMPWISE_OK;
-}
-
-static int all_finite(const double *x, size_t rows, size_t columns)
-{
-    for (size_t i = 0; i < rows * columns; ++i)
-        if (!isfinite(x[i]))
-            return 0;
-    return 1;
 }
 
 void rampwise_roots_init(rampwise_roots *roots)
@@ -299,12 +339,11 @@ int rampwise_roots_to_modes(const rampwise_roots *roots, rampwise_system *sys, d
 {
     if (roots == NULL || sys == NULL || load == NULL || on_displacement == NULL || on_velocity == NULL)
         return RAMPWISE_ERROR_MISSING;
-    int status = check_roots(roots);
-    if (status == RAMPWISE_OK)
-        status = find_pairs(roots, sys);
+    const int status = check_roots(roots);
     if (status != RAMPWISE_OK)
         return status;
-    const size_t each = roots->inputs == 1 ? 1 : 2, modes = rampwise_roots_modes(roots);
+    find_pairs(roots, sys);
+    const size_t each = roots->inputs == 1 ? 1 : 2;
     /* From the last on: the pairs are kept where the first oscillators will be. */
     for (size_t n = roots->bodies; n-- > 0;) {
         const size_t k = (size_t)sys[n].mass, l = (size_t)sys[n].damper, first = n * each;
@@ -315,8 +354,5 @@ int rampwise_roots_to_modes(const rampwise_roots *roots, rampwise_system *sys, d
         for (size_t i = 0; i < each; ++i)
             sys[first + i] = (rampwise_system){1, -(a.re + b.re) + 0.0, product_of(a, b).re};
     }
-    return all_finite(load, modes, roots->inputs) && all_finite(on_displacement, modes, roots->outputs) &&
-                   all_finite(on_velocity, modes, roots->outputs)
-               ? RAMPWISE_OK
-               : RAMPWISE_ERROR_WEIGHT;
+    return RAMPWISE_OK;
 }

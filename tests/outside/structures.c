@@ -459,6 +459,13 @@ START_TEST(zero_roots)
     x.root[1] = 17;
     ck_assert_int_eq(rampwise_roots_to_modes(&x.roots, x.sys, x.load, x.weight[0], x.weight[1]),
                      RAMPWISE_ERROR_ROOTS);
+    x.root[1] = NAN;
+    ck_assert_int_eq(rampwise_roots_to_modes(&x.roots, x.sys, x.load, x.weight[0], x.weight[1]),
+                     RAMPWISE_ERROR_ROOTS);
+    x.root[1] = -x.root[3];
+    x.on_u[0] = INFINITY;
+    ck_assert_int_eq(rampwise_roots_to_modes(&x.roots, x.sys, x.load, x.weight[0], x.weight[1]),
+                     RAMPWISE_ERROR_WEIGHT);
     x.roots.bodies = 0;
     ck_assert_int_eq(rampwise_roots_to_modes(&x.roots, x.sys, x.load, x.weight[0], x.weight[1]),
                      RAMPWISE_ERROR_COUNT);
