@@ -222,9 +222,9 @@ void rampwise_equipment_put_(const rampwise_modes *m, size_t n, const rampwise_h
 }
 
 /* What a stretch of steps can hold of a quantity z beyond its samples: x'' = -k x - c x' - y, so with M the largest
-   |x''|, |x| is at most its samples' and h^2/8 M, |x'| at most the rise of x over h and h M, and M (1 - K/8 - S) <= k |x| +
-   c rise/h + |y|. The second derivative of the total acceleration -(c x' + k x) is -(c x''' + k x''), and x''' follows from
-   y', which is at most the rise of y over h and h y'' = 8/h of the excess of y. Per mass. */
+   |x''|, |x| is at most its samples' and h^2/8 M, |x'| at most the rise of x over h and h M, and M (1 - K/8 - S) is at
+   most k |x| + c rise/h + |y|. The second derivative of the total acceleration -(c x' + k x) is -(c x''' + k x''), and
+   x''' follows from y', which is at most the rise of y over h and h y'' = 8/h of the excess of y. Per mass. */
 typedef struct stretch_bound {
     double u, u_rise, y, y_rise, y_excess;
 } stretch_bound;

@@ -38,8 +38,8 @@
    mode: a step at lane speed, one fused multiply-add for each input and each output (two where velocities or
    accelerations are weighted; outputs are taken by eights). Peaks take a bounded number of looks into steps: over
    20,000 samples, 100 modes took four times as long with the peaks of 3 outputs, twelve times with those of 50.
-   Memory for a mode: some 130 bytes, 8 for each input and for each output (16), with peaks 700 and 8 for each output more;
-   2 KiB for each output; whatever the number of samples. All since 0.1. */
+   Memory for a mode: some 130 bytes, 8 for each input and for each output (16), with peaks 700 and 8 for each
+   output more; 2 KiB for each output; whatever the number of samples. All since 0.1. */
 #ifndef RAMPWISE_MODES_H
 #define RAMPWISE_MODES_H
 
@@ -49,7 +49,8 @@
 #include "instructions.h"
 #include "peak.h"
 
-/* What an object is made of; everything is copied. Begin with rampwise_modes_plan_init: zero but for the size and RAMPWISE_FASTEST. */
+/* What an object is made of; everything is copied. Begin with rampwise_modes_plan_init: zero but for the size and
+   RAMPWISE_FASTEST. */
 typedef struct rampwise_modes_plan {
     size_t size;                   /* of this struct */
     size_t modes, inputs, outputs; /* 1 or more each */
@@ -79,11 +80,11 @@ RAMPWISE_API void rampwise_modes_plan_init(rampwise_modes_plan *plan);
 RAMPWISE_API size_t rampwise_modes_size(const rampwise_modes_plan *plan);
 RAMPWISE_API size_t rampwise_modes_alignment(void);
 
-/* The object in the caller's memory, at rest under zero input. RAMPWISE_ERROR_MISSING; _COUNT (a number of the plan
-   is 0 or too large, a point is not an output, or it was not begun with its init); _NOT_MADE; _DIFFERENT; _INPUT (neither force nor base
-   acceleration); _WEIGHT (a load factor or weight is not finite, or an acceleration's overflows); _INSTRUCTIONS;
-   _MEMORY; _STEP_LENGTH (peaks are wanted, and a mode or piece of equipment has w dt or c dt/m above 1024);
-   for equipment also what rampwise_coeffs_make refuses. */
+/* The object in the caller's memory, at rest under zero input. RAMPWISE_ERROR_MISSING; _COUNT (a number of the
+   plan is 0 or too large, a point is not an output, or it was not begun with its init); _NOT_MADE; _DIFFERENT; _INPUT
+   (neither force nor base acceleration); _WEIGHT (a load factor or weight is not finite, or an acceleration's
+   overflows); _INSTRUCTIONS; _MEMORY; _STEP_LENGTH (peaks are wanted, and a mode or piece of equipment has w dt or
+   c dt/m above 1024); for equipment also what rampwise_coeffs_make refuses. */
 RAMPWISE_API int rampwise_modes_init(void *memory, size_t bytes, const rampwise_modes_plan *plan,
                                      rampwise_modes **modes);
 
