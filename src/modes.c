@@ -35,7 +35,8 @@ static size_t times(size_t a, size_t b)
     return b != 0 && a > SIZE_MAX / b ? SIZE_MAX : a * b;
 }
 
-void rampwise_modes_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r)
+/* The memory of an object of a plan that is allowed; nothing is filled but pointers and counts. */
+static void take_memory(rampwise_modes *m, const rampwise_modes_plan *plan, room *r)
 {
     m->modes = plan->modes;
     m->inputs = plan->inputs;
@@ -104,7 +105,7 @@ int rampwise_modes_check_(const rampwise_modes_plan *plan)
         return RAMPWISE_ERROR_COUNT;
     rampwise_modes counted = {0};
     room r = {NULL, 0};
-    rampwise_modes_take_(&counted, plan, &r);
+    take_memory(&counted, plan, &r);
     if (r.size == SIZE_MAX)
         return RAMPWISE_ERROR_COUNT;
     int status = check_alike(plan->modes, plan->c);
@@ -190,7 +191,7 @@ static uint64_t number_of(const rampwise_modes *m, const rampwise_modes_plan *pl
     return mixed(number, m->inputs * m->width, m->direct);
 }
 
-int rampwise_modes_fill_(rampwise_modes *m, const rampwise_modes_plan *plan)
+static int fill(rampwise_modes *m, const rampwise_modes_plan *plan)
 {
     m->k = rampwise_kernels_(plan->instructions);
     m->dt = plan->c->dt;
@@ -216,7 +217,7 @@ size_t rampwise_modes_size(const rampwise_modes_plan *plan)
         return 0;
     rampwise_modes counted = {0};
     (void)rampwise_room_take_(&r, 1, sizeof counted);
-    rampwise_modes_take_(&counted, plan, &r);
+    take_memory(&counted, plan, &r);
     return r.size == SIZE_MAX ? 0 : r.size;
 }
 
@@ -238,8 +239,8 @@ int rampwise_modes_init(void *memory, size_t bytes, const rampwise_modes_plan *p
     memset(memory, 0, size);
     room r = {memory, 0};
     rampwise_modes *const made = rampwise_room_take_(&r, 1, sizeof *made);
-    rampwise_modes_take_(made, plan, &r);
-    status = rampwise_modes_fill_(made, plan);
+    take_memory(made, plan, &r);
+    status = fill(made, plan);
     if (status == RAMPWISE_OK)
         *modes = made;
     return status;
@@ -272,7 +273,8 @@ size_t rampwise_modes_count(const rampwise_modes *modes)
     return modes != NULL ? modes->modes : 0;
 }
 
-void rampwise_modes_loads_(const rampwise_modes *m, size_t g, size_t n, const double *input,
+/* At n + 1 samples. */
+static void loads_of_group(const rampwise_modes *m, size_t g, size_t n, const double *input,
                            double (*p)[LANES])
 {
     memset(p, 0, (n + 1) * sizeof *p);
@@ -284,12 +286,13 @@ int rampwise_modes_tile_(const rampwise_modes *m, size_t g, lane_block *lanes, s
 {
     memcpy(tile->u[0], lanes->u, sizeof lanes->u);
     memcpy(tile->v[0], lanes->v, sizeof lanes->v);
-    rampwise_modes_loads_(m, g, n, input, tile->p);
+    loads_of_group(m, g, n, input, tile->p);
     return m->k->under_own_inputs(lanes, modes_in(m, g), n, tile->p, tile->u + 1, tile->v + 1);
 }
 
-void rampwise_modes_outputs_(const rampwise_modes *m, size_t g, size_t n, double (*u)[LANES],
-                             double (*v)[LANES], double *output)
+/* What n states of one group add to n rows of outputs. */
+static void add_outputs(const rampwise_modes *m, size_t g, size_t n, double (*u)[LANES], double (*v)[LANES],
+                        double *output)
 {
     const size_t at = g * LANES * m->width;
     m->k->accumulate(modes_in(m, g), n, u[0], LANES, m->weight_u + at, m->width, output);
@@ -307,7 +310,7 @@ static int run_group(rampwise_modes *m, size_t g, size_t n)
     for (size_t t = 0; t * TILE < n; ++t) {
         const size_t part = n - t * TILE < TILE ? n - t * TILE : TILE;
         lost |= rampwise_modes_tile_(m, g, &m->group[g].lanes, part, m->input + t * TILE * m->inputs, &tile);
-        rampwise_modes_outputs_(m, g, part, tile.u + 1, tile.v + 1, m->output + (t * TILE + 1) * m->width);
+        add_outputs(m, g, part, tile.u + 1, tile.v + 1, m->output + (t * TILE + 1) * m->width);
         if (m->peaks != NULL)
             rampwise_modes_peaks_tile_(m, g, t, part, &tile);
         if (m->equipment != NULL)
@@ -435,7 +438,7 @@ static void outputs_of(rampwise_modes *m, const double *u, const double *v)
         double u_lanes[1][LANES], v_lanes[1][LANES];
         take_lanes(u_lanes[0], m, g, u);
         take_lanes(v_lanes[0], m, g, v);
-        rampwise_modes_outputs_(m, g, 1, u_lanes, v_lanes, row);
+        add_outputs(m, g, 1, u_lanes, v_lanes, row);
     }
 }
 

@@ -66,23 +66,9 @@ static inline size_t modes_in(const rampwise_modes *m, size_t g)
 /* What a plan can be refused for, but for memory. */
 int rampwise_modes_check_(const rampwise_modes_plan *plan);
 
-/* Takes the memory of an object of a plan that is allowed; fills nothing but pointers and counts. */
-void rampwise_modes_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r);
-
-/* Then fills it; _WEIGHT. */
-int rampwise_modes_fill_(rampwise_modes *m, const rampwise_modes_plan *plan);
-
-/* Loads of one group at n + 1 samples. */
-void rampwise_modes_loads_(const rampwise_modes *m, size_t g, size_t n, const double *input,
-                           double (*p)[LANES]);
-
 /* One group over a tile from its lanes' states on; answers whether one is not finite any more. */
 int rampwise_modes_tile_(const rampwise_modes *m, size_t g, lane_block *lanes, size_t n, const double *input,
                          mode_tile *tile);
-
-/* Adds what is in row 0 on, n rows, to the outputs. */
-void rampwise_modes_outputs_(const rampwise_modes *m, size_t g, size_t n, double (*u)[LANES],
-                             double (*v)[LANES], double *output);
 
 /* modes_peaks.c */
 void rampwise_modes_peaks_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r);

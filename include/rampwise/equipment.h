@@ -28,8 +28,10 @@
    inputs; modes in groups of 32 as in modes.h; then u + fma(A - 1, u, fma(B, v, sum)). Peaks, where the plan asks for
    them, are true between the samples as those of modes.h are: the power series of y goes into that of x.
 
-   Work: some 0.5 microseconds for each mode and doubling to make a piece; for a sample, 4 fused multiply-adds a
-   mode and piece. Memory: 32 bytes a mode and piece. All since 0.1. */
+   Work: to make a piece, some coefficients for each mode and doubling of the step; for a sample, 4 fused multiply-adds a
+   mode and piece. With peaks, steps that may hold one are looked into, which costs a power series of every mode; where
+   w dt of a piece is above 2 there is no bound that would pass a step by, and every step is looked into: there, better
+   go without peaks, or at a shorter dt. Memory: 32 bytes a mode and piece. All since 0.1. */
 #ifndef RAMPWISE_EQUIPMENT_H
 #define RAMPWISE_EQUIPMENT_H
 
