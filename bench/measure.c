@@ -104,6 +104,7 @@ static void measure(report *r, const extent *e, const char *python, const char *
     ours_f32_tasks(&r->tasks, in);
     ours_channel_tasks(&r->tasks, in);
     ours_spectrum_tasks(&r->tasks, in);
+    ours_modes_tasks(&r->tasks, in);
     textbook_tasks(&r->tasks, in);
     (void)scipy_tasks(&r->tasks, in, python, script, r->scipy, sizeof r->scipy);
     gsl_tasks(&r->tasks, in);

@@ -12,6 +12,7 @@ void ours_bank_tasks(task_list *list, const bench_case *in);
 void ours_f32_tasks(task_list *list, const bench_case *in);
 void ours_channel_tasks(task_list *list, const bench_case *in);
 void ours_spectrum_tasks(task_list *list, const bench_case *in);
+void ours_modes_tasks(task_list *list, const bench_case *in);
 void textbook_tasks(task_list *list, const bench_case *in);
 void gsl_tasks(task_list *list, const bench_case *in);
 

@@ -105,6 +105,33 @@ static void against_others(readings *all)
         "printed formulas in double / rampwise_run, u");
 }
 
+/* Steps a second of a mode with its 50 outputs are bounded by 10 + 50 operations and more, those of the bank by 12. */
+static void of_modes(readings *all)
+{
+    static const struct {
+        const char *id, *name;
+    } sizes[] = {
+        {"modes_10", "10"}, {"modes_100", "100"}, {"modes_1000", "1,000"}, {"modes_10000", "10,000"}};
+    for (size_t i = 0; i < sizeof sizes / sizeof *sizes; ++i) {
+        const task *const t = task_find(all->list, sizes[i].id);
+        const double limit = limits_rate(all->list, "fused", machine_best_set());
+        add(all, sizes[i].id, t != NULL && limit > 0 ? 60 / t->best / limit : NAN, AT_LEAST, NAN,
+            "%s modes, 50 outputs: 60 operations a mode and sample / limit", sizes[i].name);
+    }
+    add(all, "modes_of_bank", times(all, "modes_1000", "bank_1000"), AT_MOST, NAN,
+        "1,000 modes, 50 outputs / bank of 1,000, last state");
+    add(all, "modes_one_of_bank", times(all, "modes_1000_one", "bank_1000"), AT_MOST, NAN,
+        "1,000 modes, 1 output / bank of 1,000, last state");
+    add(all, "modes_peaks", times(all, "modes_100_peaks", "modes_100"), AT_MOST, NAN,
+        "100 modes, 50 outputs: with true peaks / without");
+    const task *const ten = task_find(all->list, "newmark_10"), *const hundred =
+                                                                    task_find(all->list, "newmark_100");
+    add(all, "newmark_10", times(all, "newmark_10", "modes_10"), AT_LEAST, NAN,
+        "Newmark, 10 full equations (error %.1e) / 10 modes", ten->error);
+    add(all, "newmark_100", times(all, "newmark_100", "modes_100"), AT_LEAST, NAN,
+        "Newmark, 100 full equations (error %.1e) / 100 modes", hundred->error);
+}
+
 static void of_size(readings *all)
 {
     add(all, "samples_200", times(all, "bank_1000_largest_n200", "bank_1000_largest"), AT_MOST, NAN,
@@ -128,6 +155,7 @@ size_t readings_make(reading *r, const task_list *list)
     against_gsl(&all);
     against_others(&all);
     of_spectra(&all);
+    of_modes(&all);
     of_size(&all);
     return all.count;
 }

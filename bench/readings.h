@@ -12,7 +12,7 @@ typedef struct reading {
     int at_least;  /* the target is a lower bound, else an upper one */
 } reading;
 
-enum { READINGS_MOST = 32 };
+enum { READINGS_MOST = 48 };
 
 /* How many there are. */
 size_t readings_make(reading *r, const task_list *list);

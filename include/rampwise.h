@@ -2,9 +2,10 @@
 
    The headers are the reference manual, in the order in which data goes through them:
 
-       system -> coefficients -> step -> record, channels, bank -> peaks, evidence, spectrum,
-                                          directions, energy
-                                       -> output, watch, stream (live data)
+       system -> coefficients -> step -> record, channels, bank
+              -> peaks, evidence, spectrum, directions, energy
+              -> output, frequency, watch, stream (live data)
+              -> structure, modes, equipment, combination (whole structures)
 
    A record in a few lines:
 
@@ -39,6 +40,10 @@
 #include "rampwise/stream.h"
 #include "rampwise/energy.h"
 #include "rampwise/directions.h"
+#include "rampwise/modes.h"
+#include "rampwise/structure.h"
+#include "rampwise/combination.h"
+#include "rampwise/equipment.h"
 #include "rampwise/foreign.h"
 
 #endif

@@ -123,7 +123,7 @@ int rampwise_saved_open_(const saved_kind *k, const void *object, const void *by
     if (version != k->version || edition != RAMPWISE_ARITHMETIC_EDITION)
         return RAMPWISE_ERROR_EDITION;
     if (rampwise_saved_size_(k, object) != count)
-        return RAMPWISE_ERROR_DAMAGED;
+        return RAMPWISE_ERROR_DIFFERENT;
     *s = from;
     return RAMPWISE_OK;
 }

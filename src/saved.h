@@ -49,7 +49,7 @@ size_t rampwise_saved_size_(const saved_kind *k, const void *object);
 int rampwise_saved_write_(const saved_kind *k, const void *object, void *bytes, size_t count);
 
 /* Whether the bytes are one whole object of this kind, as long as *object; then *s reads its members from the
-   first on. RAMPWISE_ERROR_DAMAGED, _KIND, _EDITION. What the members may hold is for the caller to check,
+   first on. RAMPWISE_ERROR_DAMAGED, _KIND, _EDITION, _DIFFERENT (another length). What the members may hold is for the caller to check,
    before they become an object. */
 int rampwise_saved_open_(const saved_kind *k, const void *object, const void *bytes, size_t count, saved *s);
 

@@ -55,6 +55,12 @@ const char *rampwise_status_text(int status)
         return "A percentile is not from 0 to 100";
     case RAMPWISE_ERROR_NO_REST:
         return "A load on a mass without a spring has no position of rest";
+    case RAMPWISE_ERROR_DEFECTIVE:
+        return "The spectrum is defective: roots coincide, or nearly, without a mode of their own each";
+    case RAMPWISE_ERROR_WEIGHT:
+        return "A load factor or weight is not finite";
+    case RAMPWISE_ERROR_ROOTS:
+        return "Complex roots do not come in conjugate pairs, or a root is not finite";
     case RAMPWISE_ERROR_SAMPLE:
         return "A sample is not a finite number";
     case RAMPWISE_ERROR_STATE:

@@ -40,6 +40,9 @@ enum {
     RAMPWISE_ERROR_FRACTION = -44,    /* a fraction of a step that is not from 0 to 1 */
     RAMPWISE_ERROR_PERCENT = -45,     /* a percentile that is not from 0 to 100 */
     RAMPWISE_ERROR_NO_REST = -46,     /* no position of rest: a load on a free mass */
+    RAMPWISE_ERROR_DEFECTIVE = -48,   /* roots that coincide without a mode of their own each */
+    RAMPWISE_ERROR_WEIGHT = -50,      /* a load factor or weight is not finite */
+    RAMPWISE_ERROR_ROOTS = -52,       /* complex roots that are no conjugate pairs, or not finite */
 
     /* The data are wrong. */
     RAMPWISE_ERROR_SAMPLE = -60, /* a sample is NaN or infinite */

@@ -591,6 +591,100 @@ static int rows(real (*row)[LANES], size_t lanes, size_t n, real (*p)[LANES], la
     return lost;
 }
 
+#ifndef SINGLE_PRECISION
+
+/* `samples` rows of y, `vectors` vectors wide: enough sums in flight to hide their latency, each weight fetched
+   once for all of them. Both are constants where this is inlined. */
+static inline __attribute__((always_inline)) void sums(int samples, int vectors, size_t count,
+                                                       const double *x, size_t stride, const double *weight,
+                                                       size_t width, double *y)
+{
+    VECTOR sum[4][2];
+    for (int i = 0; i < samples; ++i)
+        for (int j = 0; j < vectors; ++j)
+            sum[i][j] = vector_load(y + (size_t)i * width + (size_t)j * WIDTH);
+    for (size_t k = 0; k < count; ++k)
+        for (int j = 0; j < vectors; ++j) {
+            const VECTOR w = vector_load(weight + k * width + (size_t)j * WIDTH);
+            for (int i = 0; i < samples; ++i)
+                sum[i][j] = vector_fma(vector_all(x[(size_t)i * stride + k]), w, sum[i][j]);
+        }
+    for (int i = 0; i < samples; ++i)
+        for (int j = 0; j < vectors; ++j)
+            vector_store(y + (size_t)i * width + (size_t)j * WIDTH, sum[i][j]);
+}
+
+static void accumulate(size_t count, size_t n, const double *x, size_t stride, const double *weight,
+                       size_t width, double *y)
+{
+    for (size_t o = 0; o < width;) {
+        const int two = width - o >= 2 * WIDTH;
+        size_t i = 0;
+        for (; i + 4 <= n; i += 4)
+            if (two)
+                sums(4, 2, count, x + i * stride, stride, weight + o, width, y + i * width + o);
+            else
+                sums(4, 1, count, x + i * stride, stride, weight + o, width, y + i * width + o);
+        for (; i < n; ++i)
+            if (two)
+                sums(1, 2, count, x + i * stride, stride, weight + o, width, y + i * width + o);
+            else
+                sums(1, 1, count, x + i * stride, stride, weight + o, width, y + i * width + o);
+        o += two ? 2 * WIDTH : WIDTH;
+    }
+}
+
+/* As change_of_u and change_of_v, with what the load gives made before. A spent state whose gains are silent becomes +0. */
+static void under_gains(size_t width, size_t n, const double *own, double *u, double *v, double *gain)
+{
+    for (size_t lane = 0; lane < width; lane += WIDTH) {
+        const VECTOR A_minus_1 = vector_load(own + lane), B = vector_load(own + width + lane);
+        const VECTOR Ap = vector_load(own + 2 * width + lane),
+                     Bp_minus_1 = vector_load(own + 3 * width + lane);
+        VECTOR at = vector_load(u + lane), slope = vector_load(v + lane);
+        for (size_t i = 0; i < n; ++i) {
+            double *const for_u = gain + 2 * i * width + lane, *const for_v = for_u + width;
+            const VECTOR old = at, u_gain = vector_load(for_u), v_gain = vector_load(for_v);
+            const MASK silent = mask_both(mask_below(u_gain, SILENT), mask_below(v_gain, SILENT));
+            at = vector_sum(old, vector_fma(A_minus_1, old, vector_fma(B, slope, u_gain)));
+            slope = vector_sum(slope, vector_fma(Ap, old, vector_fma(Bp_minus_1, slope, v_gain)));
+            if (mask_any(silent)) {
+                at = vector_unless(at, mask_both(silent, mask_below(at, SPENT)));
+                slope = vector_unless(slope, mask_both(silent, mask_below(slope, SPENT)));
+            }
+            vector_store(for_u, at);
+            vector_store(for_v, slope);
+        }
+        vector_store(u + lane, at);
+        vector_store(v + lane, slope);
+    }
+}
+
+/* sqrt(a^2 + b^2) <= larger + 0.4143 smaller */
+static void free_motion_bounds(size_t lanes, size_t n, double (*row)[LANES], double per_step,
+                               double (*p)[LANES], double (*u)[LANES], double (*v)[LANES],
+                               const double *growth, const double *per_slope, double (*most)[LANES])
+{
+    for (size_t lane = 0; lane < lanes; lane += WIDTH) {
+        const VECTOR on_u = vector_load(row[0] + lane), on_v = vector_load(row[1] + lane);
+        const VECTOR on_p = vector_load(row[2] + lane), grown = vector_load(growth + lane);
+        const VECTOR for_slope = vector_load(per_slope + lane);
+        for (size_t i = 0; i < n; ++i) {
+            const VECTOR now = vector_load(p[i] + lane), speed = vector_load(v[i] + lane);
+            const VECTOR change = vector_difference(vector_load(p[i + 1] + lane), now);
+            const VECTOR z = vector_fma(on_u, vector_load(u[i] + lane),
+                                        vector_fma(on_v, speed, vector_product(on_p, now)));
+            const VECTOR loaded = vector_product(on_p, vector_product(change, vector_all(per_step)));
+            const VECTOR slope = vector_fma(on_u, speed, vector_fma(on_v, z, loaded));
+            const VECTOR a = vector_size(z), b = vector_product(vector_size(slope), for_slope);
+            const VECTOR sum = vector_fma(vector_all(0.4143), vector_smaller(a, b), vector_larger(a, b));
+            vector_store(most[i] + lane, vector_product(grown, sum));
+        }
+    }
+}
+
+#endif
+
 static void gather(const real *from, size_t stride, size_t count, size_t n, real (*tile)[LANES])
 {
     size_t j = 0;
@@ -632,6 +726,9 @@ const kernels KERNELS = {.name = KERNELS_NAME,
                          .stretch = stretch,
                          .may_exceed = may_exceed,
                          .under_two_inputs = under_two_inputs,
+                         .accumulate = accumulate,
+                         .free_motion_bounds = free_motion_bounds,
+                         .under_gains = under_gains,
 #endif
                          .under_own_inputs = under_own_inputs,
                          .rows = rows,

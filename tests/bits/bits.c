@@ -427,6 +427,84 @@ static void energies(void)
     printf("energies %016" PRIx64 "\n", hash);
 }
 
+/* A structure with equipment and peaks, in calls of `part` samples. */
+enum { MODES = 37, OUTPUTS = 5, PIECES = 3 };
+
+static rampwise_modes *make_structure(int kind)
+{
+    static rampwise_coeffs c[MODES];
+    static double load[MODES], weight[3][MODES * OUTPUTS], on_input[OUTPUTS];
+    static rampwise_system piece[PIECES];
+    static const size_t point[PIECES] = {0, 1, 4};
+    rampwise_modes_plan plan;
+    rampwise_modes *modes = NULL;
+    rampwise_modes_plan_init(&plan);
+    for (int j = 0; j < MODES; ++j) {
+        const rampwise_system sys = {number(0), number(range(-8, 3)), number(range(2, 14))};
+        if (rampwise_coeffs_make(&c[j], &sys, 0x1p-7, kinds[kind][0], kinds[kind][1]) != RAMPWISE_OK)
+            exit(EXIT_FAILURE);
+        load[j] = signed_number(0);
+        for (int i = 0; i < 3 * OUTPUTS; ++i)
+            weight[i % 3][j * OUTPUTS + i / 3] = signed_number(-3 * (i % 3));
+    }
+    for (int i = 0; i < OUTPUTS; ++i)
+        on_input[i] = signed_number(-2);
+    for (int i = 0; i < PIECES; ++i)
+        piece[i] = (rampwise_system){number(0), number(0), number(range(4, 10))};
+    piece[0] = c[0].system;
+    plan.modes = MODES;
+    plan.inputs = 1;
+    plan.outputs = OUTPUTS;
+    plan.c = c;
+    plan.load = load;
+    plan.on_displacement = weight[0];
+    plan.on_velocity = weight[1];
+    plan.on_acceleration = weight[2];
+    plan.on_input = on_input;
+    plan.peaks = 1;
+    plan.equipment_count = PIECES;
+    plan.equipment = piece;
+    plan.point = point;
+    if (rampwise_modes_create(&plan, &modes) != RAMPWISE_OK)
+        exit(EXIT_FAILURE);
+    return modes;
+}
+
+static uint64_t hashed_peaks(uint64_t hash, const rampwise_peak *peak, size_t n)
+{
+    for (size_t i = 0; i < n; ++i) {
+        const double values[4] = {peak[i].high.value, peak[i].high.fraction, peak[i].low.value,
+                                  peak[i].low.fraction};
+        hash = hashed(hash, values, sizeof values);
+    }
+    return hash;
+}
+
+static void structures(const char *name, size_t part)
+{
+    enum { SHORT = 300 };
+    static double p[SHORT], output[SHORT * OUTPUTS], x[SHORT * PIECES];
+    uint64_t hash = empty;
+    state = 99;
+    for (int kind = 0; kind < 4; ++kind) {
+        rampwise_peak peak[OUTPUTS + PIECES];
+        rampwise_modes *const modes = make_structure(kind);
+        for (int i = 0; i < SHORT; ++i)
+            p[i] = signed_number(range(-4, 0));
+        for (size_t i = 0; i < SHORT; i += part) {
+            const rampwise_history out = {NULL, NULL, NULL, x + i * PIECES};
+            if (rampwise_equipment_run(modes, part, p + i, output + i * OUTPUTS, &out, NULL) != RAMPWISE_OK)
+                exit(EXIT_FAILURE);
+        }
+        (void)rampwise_modes_peaks(modes, peak);
+        (void)rampwise_equipment_peaks(modes, RAMPWISE_TOTAL_ACCELERATION, peak + OUTPUTS);
+        hash = hashed(hashed(hash, output, sizeof output), x, sizeof x);
+        hash = hashed_peaks(hash, peak, OUTPUTS + PIECES);
+        rampwise_modes_free(modes);
+    }
+    printf("structures.%s %016" PRIx64 "\n", name, hash);
+}
+
 int main(void)
 {
     const int status = rampwise_self_test();
@@ -447,5 +525,8 @@ int main(void)
     singles("inline", single_inline);
     singles("run", single_run);
     singles("banks", single_sets);
+    structures("whole", 300);
+    structures("parts", 30);
+    structures("samples", 1);
     return EXIT_SUCCESS;
 }

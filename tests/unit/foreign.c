@@ -42,7 +42,7 @@ END_TEST
 /* Each of the pinned numbers has a text of its own, and no other number has one. */
 START_TEST(status_texts)
 {
-    static const int statuses[] = {0, -10, -12, -14, -16, -17, -18, -20, -22, -24, -26, -27, -28, -29, -30, -32, -34, -36, -38, -40, -42, -44, -45, -46, -60, -62, -64, -66, -70, -72, -74, -80, -90, -92};
+    static const int statuses[] = {0, -10, -12, -14, -16, -17, -18, -20, -22, -24, -26, -27, -28, -29, -30, -32, -34, -36, -38, -40, -42, -44, -45, -46, -48, -50, -52, -60, -62, -64, -66, -70, -72, -74, -80, -90, -92};
     const size_t count = sizeof statuses / sizeof *statuses;
     const char *const none = rampwise_status_text(1);
     size_t known = 0;

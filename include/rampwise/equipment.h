@@ -1,0 +1,58 @@
+/* rampwise/equipment.h: light equipment on a structure, and floor spectra.
+
+   A piece of equipment on a point of a structure is an oscillator under the point's acceleration y, which
+   is an output of modes.h (a total acceleration: on_acceleration = the shapes there, on_input = 1 in the direction):
+
+       m x'' + c x' + k x = -m y(t)
+
+   x is relative to the point. The equipment is so light that the structure does not feel it. The answer is exact for
+   the record that shakes the base: between two samples y is no straight line, but the sum of the free vibrations of the
+   modes, and a step of the equipment takes displacement, velocity and the loads of every mode:
+
+       x1 = A x0 + B x0' + sum over j of (E_j q_j + F_j q_j' + G_j load0_j + H_j load1_j) + direct terms of y
+
+   and x1' likewise. E to H come from the equations of mode and equipment together, by power series and doubling in
+   twofold arithmetic like all coefficients (coefficients.h), never from differences of two oscillators, which
+   lose eps over the distance of the frequencies: tuned equipment is as exact as any other. Loads of
+   all modes are gathered to the inputs. Undamped equipment tuned to an undamped mode grows without limit as long as
+   the mode moves: its peak in any record is finite, its residual (the largest of all motion after the record)
+   infinite. Residuals are not offered; a run goes on over as many zeros as are of interest.
+
+   A floor spectrum has a piece of equipment for every period. The usual way takes the history of y at the samples
+   as a record of its own, straight between them: rampwise_modes_run for y, and rampwise_spectrum of it. It loses what y
+   does between the samples: a mode of N samples a cycle acts with sinc^2(1/N) of its size at its own frequency (-19 %
+   at N = 4, -3.2 % at 10, -0.8 % at 20).
+
+   Equipment is part of the plan of modes.h; all functions there work on the object. Pieces are at rest against their
+   points at every start. Their order of arithmetic: the direct terms at the two ends of the step, each in the order of
+   inputs; modes in groups of 32 as in modes.h; then u + fma(A - 1, u, fma(B, v, sum)). Peaks, where the plan asks for
+   them, are true between the samples as those of modes.h are: the power series of y goes into that of x.
+
+   Work: to make a piece, some coefficients for each mode and doubling of the step; for a sample, 4 fused multiply-adds a
+   mode and piece. With peaks, steps that may hold one are looked into, which costs a power series of every mode; where
+   w dt of a piece is above 2 there is no bound that would pass a step by, and every step is looked into: there, better
+   go without peaks, or at a shorter dt. Memory: 32 bytes a mode and piece. All since 0.1. */
+#ifndef RAMPWISE_EQUIPMENT_H
+#define RAMPWISE_EQUIPMENT_H
+
+#include "modes.h"
+#include "record.h"
+
+RAMPWISE_BEGIN
+
+/* The next n samples, as rampwise_modes_run, with histories of the equipment where wanted, each
+   [n][equipment_count]: x, x', x'' and the total acceleration of the piece, -(c x' + k x)/m. history may be NULL.
+   RAMPWISE_ERROR_OVERFLOW also for equipment. */
+RAMPWISE_API int rampwise_equipment_run(rampwise_modes *modes, size_t n, const double *input, double *output,
+                                        const rampwise_history *history, size_t *bad);
+
+/* Displacement x and velocity x' of each piece at the present sample, [equipment_count]; NULL where not wanted. */
+RAMPWISE_API int rampwise_equipment_get(const rampwise_modes *modes, double *u, double *v);
+
+/* The peaks of all pieces from sample 0 to the present, peak[equipment_count]; quantity is RAMPWISE_DISPLACEMENT (x) or
+   RAMPWISE_TOTAL_ACCELERATION. RAMPWISE_ERROR_MISSING, _QUANTITY (another, or the plan did not ask for peaks). */
+RAMPWISE_API int rampwise_equipment_peaks(const rampwise_modes *modes, int quantity, rampwise_peak *peak);
+
+RAMPWISE_END
+
+#endif

@@ -1,0 +1,112 @@
+/* A structure's modes on their way through a record: what modes.c and equipment.c share. */
+#ifndef RAMPWISE_MODES_CORE_H
+#define RAMPWISE_MODES_CORE_H
+
+#include <stdint.h>
+#include "lanes.h"
+#include "rampwise/modes.h"
+
+/* Samples that all groups pass before the outputs are finished. */
+enum { TILES = 16, SEGMENT = TILE * TILES };
+
+/* Row 0 is the sample before a tile. */
+typedef double states_tile[TILE + 1][LANES];
+
+/* q'' = row[0] q + row[1] q' + row[2] load */
+typedef struct mode_group {
+    lane_block lanes;
+    double row[3][LANES];
+    _Alignas(LANE_ALIGNMENT) double begin[2][LANES]; /* q and q' where the segment began */
+} mode_group;
+
+/* One group over one tile: states at its samples, loads, and the sample before it in row 0 of each. */
+typedef struct mode_tile {
+    _Alignas(LANE_ALIGNMENT) states_tile u, v, p;
+} mode_tile;
+
+typedef struct modes_peaks modes_peaks;
+typedef struct equipment_core equipment_core;
+
+struct rampwise_modes {
+    const kernels *k;
+    size_t modes, inputs, outputs, width, groups; /* width: outputs, to the next multiple of 8 */
+    double dt;
+    int between;
+    uint64_t sample, plan; /* plan: a number made of all that the plan holds */
+    mode_group *group;
+    double *load;              /* [groups][inputs][LANES] */
+    double *weight_u;          /* [groups][LANES][width] */
+    double *weight_v;          /* the same, or NULL where all are zero */
+    double *direct;            /* [inputs][width] */
+    double *input;             /* [SEGMENT + 1][inputs]; row 0 is the present sample */
+    double *output;            /* [SEGMENT + 1][width]; likewise */
+    modes_peaks *peaks;        /* NULL where not wanted */
+    equipment_core *equipment; /* NULL where there is none */
+};
+
+/* Memory handed out piece by piece, each aligned; counted only where begin is NULL. size is SIZE_MAX once it does
+   not fit a size_t. */
+typedef struct room {
+    char *begin;
+    size_t size;
+} room;
+
+void *rampwise_room_take_(room *r, size_t count, size_t each);
+
+static inline size_t padded(size_t outputs)
+{
+    return (outputs + 7) & ~(size_t)7;
+}
+
+static inline size_t modes_in(const rampwise_modes *m, size_t g)
+{
+    return m->modes - g * LANES < LANES ? m->modes - g * LANES : LANES;
+}
+
+/* What a plan can be refused for, but for memory. */
+int rampwise_modes_check_(const rampwise_modes_plan *plan);
+
+/* One group over a tile from its lanes' states on; answers whether one is not finite any more. */
+int rampwise_modes_tile_(const rampwise_modes *m, size_t g, lane_block *lanes, size_t n, const double *input,
+                         mode_tile *tile);
+
+/* modes_peaks.c */
+void rampwise_modes_peaks_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r);
+void rampwise_modes_peaks_fill_(rampwise_modes *m, const rampwise_modes_plan *plan);
+void rampwise_modes_peaks_start_(rampwise_modes *m);
+/* Bounds of tile t of a segment. */
+void rampwise_modes_peaks_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, mode_tile *tile);
+/* After the bounds of all tiles of one group. */
+void rampwise_modes_peaks_group_(rampwise_modes *m, size_t g, size_t tiles);
+/* After a segment of n samples without a fault. */
+void rampwise_modes_peaks_segment_(rampwise_modes *m, size_t n);
+rampwise_peak *rampwise_modes_peak_(const rampwise_modes *m);
+
+/* For equipment, in a segment whose tiles are being looked at: the modes over the n steps of tile t once more; then
+   the power series of output o in the step after k, [pieces]; how much it can exceed the samples in a tile; and the
+   extremes of a series, noted where they exceed the floors and the peak. */
+enum { MODES_POWERS = 24 };
+void rampwise_modes_trace_(rampwise_modes *m, size_t t, size_t n);
+double (*rampwise_modes_series_(rampwise_modes *m, size_t k, size_t o, size_t *pieces))[MODES_POWERS + 1];
+double rampwise_modes_tile_excess_(const rampwise_modes *m, size_t t, size_t o);
+void rampwise_modes_curve_(const double *series, double floor_high, double floor_low, uint64_t sample,
+                           size_t piece, size_t pieces, rampwise_peak *peak);
+
+/* equipment.c: as the functions above; only where there is equipment */
+void rampwise_equipment_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r);
+int rampwise_equipment_check_(const rampwise_modes_plan *plan);
+int rampwise_equipment_fill_(rampwise_modes *m, const rampwise_modes_plan *plan);
+void rampwise_equipment_start_(rampwise_modes *m);
+/* Along a segment of n samples: before its modes, a tile of them, after them (whether something is not finite any
+   more), and back to where it began. */
+void rampwise_equipment_begin_(rampwise_modes *m, size_t n);
+void rampwise_equipment_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, mode_tile *tile);
+int rampwise_equipment_end_(rampwise_modes *m, size_t n);
+void rampwise_equipment_go_back_(rampwise_modes *m);
+void rampwise_equipment_segment_(rampwise_modes *m, size_t n);
+void rampwise_equipment_put_(const rampwise_modes *m, size_t n, const rampwise_history *out);
+size_t rampwise_equipment_count_(const rampwise_modes *m);
+double *rampwise_equipment_state_(const rampwise_modes *m, size_t i, int velocity);
+rampwise_peak *rampwise_equipment_peak_(const rampwise_modes *m, size_t i, int q);
+
+#endif
