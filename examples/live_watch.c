@@ -247,6 +247,8 @@ static void release(service *x)
         (void)rampwise_watch_release(&x->at[i].watch, UP);
         (void)rampwise_watch_release(&x->at[i].watch, DOWN);
         (void)rampwise_watch_reset(&x->at[i].watch);
+        if (x->picture.started)
+            note_row(x, i, x->picture.row[i].value);
     }
 }
 
@@ -345,6 +347,9 @@ static int do_job(service *x)
         return -1;
     int status = open_log(x);
     listen_to_signals();
+    if (status == 0 && x->port != 0)
+        fprintf(x->show, "Listening to 127.0.0.1, port %u\n", (unsigned)x->port);
+    fflush(stdout);
     if (status == 0)
         status = live_board_start(&x->board, &x->levels, x->show, x->log);
     if (status == 0) {
