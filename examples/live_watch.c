@@ -324,8 +324,8 @@ static void summarize(const service *x)
             (unsigned long long)counts.bridges, (unsigned long long)counts.starts,
             (unsigned long long)x->late, (unsigned long long)x->refused);
     for (size_t i = 0; i < x->levels.n; ++i)
-        fprintf(x->show, "Trips     %llu: %s, %s\n", (unsigned long long)x->picture.row[i].trips,
-                x->levels.at[i].gear->name, x->levels.at[i].of->name);
+        fprintf(x->show, "Trips     %s, %s: %llu\n", x->levels.at[i].gear->name, x->levels.at[i].of->name,
+                (unsigned long long)x->picture.row[i].trips);
     if (lost > 0)
         fprintf(x->show, "WARNING: %llu events came too fast for the log.\n", (unsigned long long)lost);
     fprintf(x->show, "A trip that protects people needs certified equipment and licensed practice.\n");
