@@ -1,7 +1,6 @@
 #include "live_board.h"
 
 #include <errno.h>
-#include <math.h>
 #include <string.h>
 #include <time.h>
 #include <unistd.h>
@@ -38,7 +37,7 @@ static void write_log(live_board *board)
         return;
     for (size_t i = 0; i < now->n_events; ++i)
         log_event(board, &now->event[i]);
-    if (fflush(board->log) != 0 && board->failed == 0)
+    if ((fflush(board->log) != 0 || ferror(board->log)) && board->failed == 0)
         board->failed = errno;
 }
 

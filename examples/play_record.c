@@ -65,15 +65,13 @@ static double as_sent(const player *x, double value)
 /* Until a sample that is so many seconds into the record is due. */
 static void wait_for(const player *x, double seconds)
 {
-    const double due = seconds / x->speed, whole = floor(due);
-    struct timespec until = {x->started.tv_sec + (time_t)whole,
-                             x->started.tv_nsec + (long)((due - whole) * 1e9)};
-    if (until.tv_nsec >= 1000000000) {
-        until.tv_nsec -= 1000000000;
-        ++until.tv_sec;
-    }
-    while (clock_nanosleep(CLOCK_MONOTONIC, TIMER_ABSTIME, &until, NULL) == EINTR)
-        ;
+    struct timespec now;
+    clock_gettime(CLOCK_MONOTONIC, &now);
+    const double gone =
+        (double)(now.tv_sec - x->started.tv_sec) + 1e-9 * (double)(now.tv_nsec - x->started.tv_nsec);
+    const double left = seconds / x->speed - gone;
+    if (left > 0) /* cut short by a signal, the sample is early */
+        nanosleep(&(struct timespec){(time_t)left, (long)((left - floor(left)) * 1e9)}, NULL);
 }
 
 static int send_line(const player *x, const live_line *line)
