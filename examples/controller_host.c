@@ -1,7 +1,6 @@
 /* controller_host: a computer as the board of controller_loop.c. Lines of live_line.h in whole counts on standard
    input are the converter; its timer ticks once for every number, missing ones too. Standard output is the
    service plug, CSV. */
-#include <errno.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
