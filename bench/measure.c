@@ -13,9 +13,11 @@
 typedef struct extent {
     double seconds;                                    /* of rounds */
     size_t rounds, every, stretch, sets, theta_rounds; /* every: of the oscillators, for errors */
+    size_t flat, paced;                                /* samples of each latency */
 } extent;
 
-static const extent whole = {75, 24, 1, CASE_STRETCH, 100, 60}, quick = {1, 1, 111, 200, 6, 2};
+static const extent whole = {75, 24, 1, CASE_STRETCH, 100, 60, 1000000, 2000},
+                    quick = {1, 1, 111, 200, 6, 2, 10000, 0};
 
 static void find_error(task *t, const reference *exact, size_t j, double *u)
 {
@@ -116,6 +118,7 @@ static void measure(report *r, const extent *e, const char *python, const char *
     r->rounds = rounds_run(&r->tasks, e->seconds, e->rounds);
     r->reading_count = readings_make(r->reading, &r->tasks);
     theta_run(r->theta, e->sets, e->theta_rounds);
+    latency_run(&r->latency, in, e->flat, e->paced);
 }
 
 int main(int count, char **word)

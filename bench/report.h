@@ -2,6 +2,7 @@
 #ifndef REPORT_H
 #define REPORT_H
 
+#include "latency.h"
 #include "machine.h"
 #include "readings.h"
 #include "task.h"
@@ -16,6 +17,7 @@ typedef struct report {
     size_t reading_count;
     reading reading[READINGS_MOST];
     theta_point theta[THETA_POINTS];
+    latency latency;
 } report;
 
 void report_print(const report *r);

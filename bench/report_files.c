@@ -145,7 +145,36 @@ static void put_theta(FILE *f, const report *r)
         }
         fprintf(f, "}");
     }
-    fprintf(f, "\n  ]\n");
+    fprintf(f, "\n  ],\n");
+}
+
+static void put_spread(FILE *f, const latency_spread *s)
+{
+    fprintf(f, "{");
+    number_member(f, "median", 1e9 * s->median);
+    number_member(f, "of_999_in_1000", 1e9 * s->most);
+    fprintf(f, "\"worst\": ");
+    put_number(f, 1e9 * s->worst);
+    fprintf(f, "}");
+}
+
+static void put_latency(FILE *f, const latency *l)
+{
+    fprintf(f, "  \"latency_ns\": {\"flat_samples\": %zu, \"paced_samples\": %zu, \"rows\": [", l->flat,
+            l->paced);
+    for (size_t i = 0; i < LATENCY_ROWS; ++i) {
+        fprintf(f, "%s\n    {", i > 0 ? "," : "");
+        text_member(f, "id", l->row[i].id);
+        text_member(f, "name", l->row[i].name);
+        fprintf(f, "\"flat\": ");
+        put_spread(f, &l->row[i].flat);
+        if (l->paced > 0) {
+            fprintf(f, ", \"at_1_kHz\": ");
+            put_spread(f, &l->row[i].paced);
+        }
+        fprintf(f, "}");
+    }
+    fprintf(f, "\n  ]}\n");
 }
 
 static int closed(FILE *f)
@@ -166,6 +195,7 @@ int report_json(const report *r, const char *path)
     put_limits(f, r);
     put_readings(f, r);
     put_theta(f, r);
+    put_latency(f, &r->latency);
     fprintf(f, "}\n");
     return closed(f);
 }

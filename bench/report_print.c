@@ -106,6 +106,34 @@ static void print_theta(const report *r)
     printf("Each the worst of %zu sets around that theta.\n", r->sets);
 }
 
+static void print_spread(const latency_spread *s)
+{
+    printf(" %8.0f %8.0f %9.0f", 1e9 * s->median, 1e9 * s->most, 1e9 * s->worst);
+}
+
+static void print_latency(const latency *l)
+{
+    printf("\nLatency of one live sample, ns; what else the machine does is in it\n");
+    printf("%-36s %27s", "", "flat out");
+    if (l->paced > 0)
+        printf(" %27s", "1,000 a second");
+    printf("\n%-36s %8s %8s %9s", "", "median", "99.9 %", "worst");
+    if (l->paced > 0)
+        printf(" %8s %8s %9s", "median", "99.9 %", "worst");
+    printf("\n");
+    for (size_t i = 0; i < LATENCY_ROWS; ++i) {
+        printf("%-36s", l->row[i].name);
+        print_spread(&l->row[i].flat);
+        if (l->paced > 0)
+            print_spread(&l->row[i].paced);
+        printf("\n");
+    }
+    printf("Of %zu samples each flat out", l->flat);
+    if (l->paced > 0)
+        printf(", and %zu at 1 kHz, between which the processor sleeps", l->paced);
+    printf(".\n");
+}
+
 void report_print(const report *r)
 {
     print_machine(r);
@@ -116,4 +144,5 @@ void report_print(const report *r)
     print_limits(r);
     print_readings(r);
     print_theta(r);
+    print_latency(&r->latency);
 }

@@ -134,10 +134,10 @@ static void print_after_end(const site_gear *gear, const site_largest *largest)
                    gear->piece[j].name);
 }
 
-void site_report_caution(void)
+void site_report_caution(FILE *stream)
 {
-    printf("Results support, and never replace, the governing code and a licensed engineer's "
-           "judgement.\n");
+    fprintf(stream, "Results support, and never replace, the governing code and a licensed engineer's "
+                    "judgement.\n");
 }
 
 void site_report_print(const site_record *record, const site_gear *gear, const site_largest *largest)
@@ -147,5 +147,5 @@ void site_report_print(const site_record *record, const site_gear *gear, const s
     print_table(record, gear, largest);
     print_sampling(record, gear);
     print_after_end(gear, largest);
-    site_report_caution();
+    site_report_caution(stdout);
 }

@@ -2,6 +2,7 @@
 #ifndef SITE_REPORT_H
 #define SITE_REPORT_H
 
+#include <stdio.h>
 #include "site_data.h"
 
 /* The value furthest from zero, and the first sample that has it. Begins as {0, 0}. */
@@ -26,6 +27,6 @@ void site_report_print(const site_record *record, const site_gear *gear, const s
    caution at the end. */
 void site_report_record(const site_record *record);
 void site_report_value(int width, double value, int with_sign);
-void site_report_caution(void);
+void site_report_caution(FILE *stream);
 
 #endif

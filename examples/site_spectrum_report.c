@@ -158,7 +158,7 @@ void site_spectrum_print(const site_spectrum *spectrum, const site_record *recor
     print_sampling(spectrum, record);
     print_evidence(spectrum, record);
     print_after_end(spectrum);
-    site_report_caution();
+    site_report_caution(stdout);
 }
 
 static void write_heading(FILE *stream, const site_spectrum *spectrum)
