@@ -290,7 +290,7 @@ static int do_hall(hall *h, const char *shake_path, const char *spectra_path)
     print_cabinet(h);
     if (spectra_path != NULL)
         printf("\nThe floor spectra are in %s\n", spectra_path);
-    site_report_caution();
+    site_report_caution(stdout);
     return 0;
 }
 
