@@ -28,7 +28,7 @@ static double sticky(twofold x)
 /* x 2^exponent, rounded once; + 0.0f makes -0 plain. */
 static float rounded_power(twofold x, int exponent)
 {
-    return (float)ldexp(sticky(x), exponent) + 0.0f;
+    return (float)scalbn(sticky(x), exponent) + 0.0f;
 }
 
 /* x/y, rounded once. */
@@ -50,7 +50,7 @@ enum { COMPUTED = offsetof(rampwise_coeffs, system) / sizeof(double) };
 
 static double rounded_power(twofold x, int exponent)
 {
-    return ldexp(x.hi, exponent) + 0.0;
+    return scalbn(x.hi, exponent) + 0.0;
 }
 
 static double quotient(double x, double y)
