@@ -21,7 +21,8 @@ static const char help[] =
     "  --between ramp|hold                  between samples; ramp where it is not given\n"
     "  --name NAME                          of the constant; oscillator where it is not given\n"
     "  --double                             the same in double precision too, as NAME_double\n"
-    "  --ticks N --intervals A,B,C...       prepared intervals of a stream too, as NAME_intervals: A, B, C ticks\n"
+    "  --ticks N --intervals A,B,C...       prepared intervals of a stream too, as NAME_intervals: A, B, C "
+    "ticks\n"
     "                                       long, where dt is N\n"
     "  --help\n"
     "\n"
@@ -209,7 +210,8 @@ static void print_begin(const request *r)
            "#if RAMPWISE_ARITHMETIC_EDITION != %d\n"
            "#error \"these coefficients belong to edition %d of rampwise's arithmetic: make them "
            "anew\"\n#endif\n",
-           r->intervals != NULL ? "stream" : "coefficients", rampwise_arithmetic_edition(), rampwise_arithmetic_edition());
+           r->intervals != NULL ? "stream" : "coefficients", rampwise_arithmetic_edition(),
+           rampwise_arithmetic_edition());
 }
 
 /* The ten coefficients and both rows, in the order of the structs. */

@@ -17,7 +17,7 @@
 #define NAMED(what) "double " what
 #endif
 
-enum { SETS = 140, STEPS = 150, SAMPLES = 240, OUTPUTS = 7, EVENTS = 4, WINDOW = 5, SAVED = 1600 };
+enum { SETS = 70, STEPS = 100, SAMPLES = 210, OUTPUTS = 7, EVENTS = 4, WINDOW = 5, SAVED = 1600 };
 
 static uint64_t hash;
 
@@ -199,7 +199,7 @@ static void put_next(int i)
     add(&flags, sizeof flags);
 }
 
-static void add_watch(PUBLIC(watch) *w)
+static void add_watch(PUBLIC(watch) * w)
 {
     rampwise_event taken[EVENTS];
     rampwise_peak peak;

@@ -21,6 +21,8 @@ static uint32_t ticks_of(void (*work)(void))
     timer[1] = LARGEST;
     timer[2] = 0;
     timer[0] = 5;
+    while (timer[2] == 0) /* until it is loaded */
+        ;
     const uint32_t before = timer[2];
     work();
     const uint32_t after = timer[2];

@@ -7,7 +7,8 @@
 #include <stdint.h>
 
 void say(const char *text);
-void say_number(const char *name, uint64_t x);             /* "name decimal" and the end of the line */
-void say_bits(const char *name, const void *data, size_t); /* "name hexadecimal": the FNV-1a hash of the bytes */
+void say_number(const char *name, uint64_t x); /* "name decimal" and the end of the line */
+void say_bits(const char *name, const void *data,
+              size_t); /* "name hexadecimal": the FNV-1a hash of the bytes */
 
 #endif
