@@ -17,7 +17,7 @@
 #define NAMED(what) "double " what
 #endif
 
-enum { SETS = 70, STEPS = 100, SAMPLES = 210, OUTPUTS = 7, EVENTS = 4, WINDOW = 5, SAVED = 1600 };
+enum { SETS = 70, STEPS = 100, SAMPLES = 140, OUTPUTS = 7, EVENTS = 4, WINDOW = 5, SAVED = 1600 };
 
 static uint64_t hash;
 

@@ -1,5 +1,5 @@
-/* Programs for their size in flash: STEP, STREAM, WATCH and MAKE say what is in them; with none of them it is the board's
-   own start. Constants come from tools/coefficients_as_source. */
+/* Programs for their size in flash: STEP, STREAM, WATCH and MAKE (coefficients, on the board) say what is in them; with
+   none of them it is the board's own start. Constants come from tools/coefficients_as_source. */
 #include "programs.h"
 #include "rampwise/status.h"
 #include "rampwise/stream.h"
@@ -9,6 +9,7 @@
 volatile int32_t converter; /* what an analogue input and a clock would write */
 volatile int64_t ticks;
 volatile float shown;
+volatile uint64_t passed;
 
 #ifdef STEP
 void program(void)
@@ -43,7 +44,7 @@ static void show_events(void)
 {
     rampwise_event event;
     while (rampwise_watch_events_f32(&watch, 1, &event) > 0)
-        ticks = (int64_t)event.sample;
+        passed = event.sample;
 }
 #else
 static int watched(const rampwise_coeffs_f32 *c)
