@@ -29,7 +29,7 @@ static PUBLIC(watch) watch;
 static PUBLIC(watched) window[2 * WINDOW];
 static PUBLIC(interval) prepared;
 static rampwise_event event[EVENTS];
-static real p, out;
+static real p, last, out;
 static int64_t stamp;
 static rampwise_stream_options o;
 static rampwise_watch_options w;
@@ -50,6 +50,16 @@ static void set_signal(int signal, int i)
 static void step(void)
 {
     PUBLIC(step)(&c, &s, p);
+}
+
+static void product(void)
+{
+    out = p * last;
+}
+
+static void sum(void)
+{
+    out = p + last;
 }
 
 static void put(void)
@@ -127,6 +137,19 @@ static void say_range(const char *loud, const char *silent, int watched, void (*
     }
 }
 
+/* The most instructions of one product or sum of noise, fetched and stored. */
+static void say_operation(const char *name, void (*work)(void))
+{
+    uint64_t most = 0;
+    for (int i = 0; i < SAMPLES; ++i) {
+        last = p;
+        set_signal(NOISE, i);
+        const uint64_t taken = instructions_of(work);
+        most = taken > most ? taken : most;
+    }
+    say_number(name, most);
+}
+
 /* Samples a prepared interval apart, and one that is not. */
 static void say_jitter(void)
 {
@@ -165,6 +188,8 @@ void PUBLIC(costs)(void)
     say_range(NAMED("step"), NAMED("silent step"), 0, step);
     say_range(NAMED("stream"), NAMED("silent stream"), 0, put);
     say_range(NAMED("watched"), NAMED("silent watched"), 1, put);
+    say_operation(NAMED("product"), product);
+    say_operation(NAMED("sum"), sum);
     say_jitter();
     say_stack();
     say_number(NAMED("status"), (uint64_t)-status);
