@@ -28,7 +28,7 @@ static double sticky(twofold x)
 /* x 2^exponent, rounded once; + 0.0f makes -0 plain. */
 static float rounded_power(twofold x, int exponent)
 {
-    return (float)ldexp(sticky(x), exponent) + 0.0f;
+    return (float)scalbn(sticky(x), exponent) + 0.0f;
 }
 
 /* x/y, rounded once. */

@@ -9,5 +9,5 @@ double rampwise_interval_dt_(double dt, uint64_t ticks, uint64_t per)
     const double mantissa = frexp(dt, &exponent);
     const twofold length =
         twofold_divide(twofold_product(mantissa, (double)ticks), (twofold){(double)per, 0});
-    return ldexp(length.hi, exponent);
+    return scalbn(length.hi, exponent);
 }

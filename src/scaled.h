@@ -53,7 +53,7 @@ static const scaled unity = {{0.5, 0}, 1};
 /* factor x, rounded once; + 0.0 makes -0 plain. */
 static inline double rounded(scaled factor, twofold x)
 {
-    return ldexp(twofold_multiply(factor.value, x).hi, factor.exponent) + 0.0;
+    return scalbn(twofold_multiply(factor.value, x).hi, factor.exponent) + 0.0;
 }
 
 #endif

@@ -14,10 +14,10 @@ static const twofold two_pi = {0x1.921fb54442d18p+2, 0x1.1a62633145c07p-52};
 static int natural(rampwise_system *sys, twofold omega, int exponent, double zeta)
 {
     const twofold square = twofold_multiply(omega, omega);
-    const double stiffness = ldexp(square.hi, 2 * exponent);
+    const double stiffness = scalbn(square.hi, 2 * exponent);
     int zeta_exponent;
     const double zeta_mantissa = frexp(zeta, &zeta_exponent);
-    const double damper = ldexp(twofold_multiply_by(omega, zeta_mantissa).hi, exponent + zeta_exponent + 1);
+    const double damper = scalbn(twofold_multiply_by(omega, zeta_mantissa).hi, exponent + zeta_exponent + 1);
     if (stiffness > DBL_MAX || (omega.hi > 0 && stiffness < DBL_MIN))
         return RAMPWISE_ERROR_FREQUENCY;
     if (!isfinite(damper))

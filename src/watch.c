@@ -7,6 +7,7 @@
 #include "series.h"
 #include "valid.h"
 #include "watch.h"
+#include "whole.h"
 
 typedef PUBLIC(watched) real_watched;
 typedef PUBLIC(instant) real_instant;
@@ -107,8 +108,9 @@ static real_instant instant_at(real value, uint64_t sample)
 static real_instant instant_of(const passage *at, real x, real value)
 {
     const real steps = (at->piece + x) * (at->samples / at->pieces);
-    const uint64_t whole = (uint64_t)steps;
-    return (real_instant){.value = value, .sample = at->sample + whole, .fraction = steps - (real)whole};
+    real fraction;
+    const uint64_t whole = whole_of(steps, &fraction);
+    return (real_instant){.value = value, .sample = at->sample + whole, .fraction = fraction};
 }
 
 static void tell(real_watch *w, int kind, int level, int direction, real_instant when, uint32_t flags)
@@ -523,7 +525,7 @@ void PUBLIC(watch_step)(real_watch *watch, const real_coeffs *c, const real_stat
         }
     }
     const real_instant first = instant_at(w->now_, sample);
-    passage at = {w, sample, (real)samples, (real)pieces, 0, flags, {first, first}};
+    passage at = {w, sample, real_of(samples), (real)pieces, 0, flags, {first, first}};
     if (w->jumps_)
         jump_to(&at, 0, at_begin(w, before, after));
     const real z = w->jumps_ ? at_begin(w, before, after) : w->now_;

@@ -3,6 +3,7 @@
 #include <ctype.h>
 #include <errno.h>
 #include <getopt.h>
+#include <inttypes.h>
 #include <math.h>
 #include <stdarg.h>
 #include <stdio.h>
@@ -20,6 +21,9 @@ static const char help[] =
     "  --between ramp|hold                  between samples; ramp where it is not given\n"
     "  --name NAME                          of the constant; oscillator where it is not given\n"
     "  --double                             the same in double precision too, as NAME_double\n"
+    "  --ticks N --intervals A,B,C...       prepared intervals of a stream too, as NAME_intervals: A, B, C "
+    "ticks\n"
+    "                                       long, where dt is N\n"
     "  --help\n"
     "\n"
     "The mass is 1: a force counts per mass. The header goes to standard output. It refuses to be compiled "
@@ -42,7 +46,8 @@ typedef struct request {
     int frequency_option; /* 'p', 'f' or 'o'; 0 where not given */
     double frequency, zeta, dt;
     int input, between, in_double;
-    const char *name;
+    uint64_t ticks; /* 0 where not given */
+    const char *intervals, *name;
 } request;
 
 static _Noreturn void refuse(const char *format, ...)
@@ -63,6 +68,27 @@ static double number(const char *option)
     if (end == optarg || *end != '\0' || !isfinite(x))
         refuse("--%s: '%s' is not a number", option, optarg);
     return x;
+}
+
+/* A number of ticks at *text, which goes on behind it. */
+static uint64_t whole_number(const char *option, const char **text)
+{
+    char *end;
+    errno = 0;
+    const unsigned long long x = strtoull(*text, &end, 10);
+    if (!isdigit((unsigned char)**text) || errno != 0 || x == 0)
+        refuse("--%s: '%s' is not a whole number above 0", option, *text);
+    *text = end;
+    return x;
+}
+
+static uint64_t ticks_of_dt(void)
+{
+    const char *text = optarg;
+    const uint64_t ticks = whole_number("ticks", &text);
+    if (*text != '\0')
+        refuse("--ticks: '%s' is not a whole number above 0", optarg);
+    return ticks;
 }
 
 static int choice(const char *option, const word *known)
@@ -103,6 +129,8 @@ static request read_options(int argc, char **argv)
                                             {"between", required_argument, NULL, 'b'},
                                             {"name", required_argument, NULL, 'n'},
                                             {"double", no_argument, NULL, 'd'},
+                                            {"ticks", required_argument, NULL, 'k'},
+                                            {"intervals", required_argument, NULL, 'l'},
                                             {"help", no_argument, NULL, 'h'},
                                             {NULL, 0, NULL, 0}};
     request r = {.zeta = NAN, .dt = NAN, .between = RAMPWISE_RAMP, .name = "oscillator"};
@@ -131,6 +159,12 @@ static request read_options(int argc, char **argv)
         case 'd':
             r.in_double = 1;
             break;
+        case 'k':
+            r.ticks = ticks_of_dt();
+            break;
+        case 'l':
+            r.intervals = optarg;
+            break;
         case 'h':
             fputs(help, stdout);
             exit(EXIT_SUCCESS);
@@ -143,6 +177,8 @@ static request read_options(int argc, char **argv)
         refuse("'%s' is not an option; see --help", argv[optind]);
     if (r.frequency_option == 0 || isnan(r.zeta) || isnan(r.dt) || r.input == 0)
         refuse("--period, --hertz or --omega, --damping-ratio, --dt and --input are needed; see --help");
+    if ((r.ticks == 0) != (r.intervals == NULL))
+        refuse("--ticks and --intervals belong together; see --help");
     return r;
 }
 
@@ -170,11 +206,12 @@ static void print_begin(const request *r)
            "   dt %.17g. Not to be edited. */\n"
            "#ifndef COEFFICIENTS_%s_H\n#define COEFFICIENTS_%s_H\n\n",
            rampwise_version(), what, r->frequency, r->zeta, r->dt, r->name, r->name);
-    printf("#include <rampwise/coefficients.h>\n#include <rampwise/version.h>\n\n"
+    printf("#include <rampwise/%s.h>\n#include <rampwise/version.h>\n\n"
            "#if RAMPWISE_ARITHMETIC_EDITION != %d\n"
            "#error \"these coefficients belong to edition %d of rampwise's arithmetic: make them "
            "anew\"\n#endif\n",
-           rampwise_arithmetic_edition(), rampwise_arithmetic_edition());
+           r->intervals != NULL ? "stream" : "coefficients", rampwise_arithmetic_edition(),
+           rampwise_arithmetic_edition());
 }
 
 /* The ten coefficients and both rows, in the order of the structs. */
@@ -200,7 +237,8 @@ static void print_kinds(int32_t input, int32_t between)
            how->name);
 }
 
-static void print_single(const char *name, const rampwise_coeffs_f32 *c)
+/* The members of a rampwise_coeffs_f32. */
+static void print_single_members(const rampwise_coeffs_f32 *c)
 {
     double values[18];
     for (int i = 0; i < 10; ++i)
@@ -209,13 +247,46 @@ static void print_single(const char *name, const rampwise_coeffs_f32 *c)
         values[10 + i] = c->acceleration[i];
         values[14 + i] = c->total[i];
     }
-    printf("\nstatic const rampwise_coeffs_f32 %s = {\n", name);
     print_values(values, "f");
     printf("    %af, %af, %af, %af, /* mass, damper, stiffness, rate */\n", (double)c->mass,
            (double)c->damper, (double)c->stiffness, (double)c->rate);
     printf("    %a, /* dt = %.17g */\n", c->dt, c->dt);
     print_kinds(c->input, c->between);
-    printf("    {0}, /* reserve */\n};\n");
+    printf("    {0}, /* reserve */\n");
+}
+
+static void print_single(const char *name, const rampwise_coeffs_f32 *c)
+{
+    printf("\nstatic const rampwise_coeffs_f32 %s = {\n", name);
+    print_single_members(c);
+    printf("};\n");
+}
+
+/* Goes through the list of intervals: made, so that what is wrong is told before anything is printed, or printed. */
+static void go_through_intervals(const request *r, const rampwise_coeffs_f32 *c, int printed)
+{
+    const char *text = r->intervals;
+    for (int ends = 0; !ends; ++text) {
+        rampwise_interval_f32 interval;
+        const uint64_t length = whole_number("intervals", &text);
+        ends = *text == '\0';
+        if (!ends && *text != ',')
+            refuse("--intervals: '%s' is not a whole number above 0", text);
+        demand(rampwise_interval_make_f32(&interval, c, r->ticks, length));
+        if (printed) {
+            printf("    {UINT64_C(%" PRIu64 "), {\n", interval.ticks);
+            print_single_members(&interval.c);
+            printf("    }},\n");
+        }
+    }
+}
+
+static void print_intervals(const request *r, const rampwise_coeffs_f32 *c)
+{
+    printf("\n/* For dt of %" PRIu64 " ticks. */\nstatic const rampwise_interval_f32 %s_intervals[] = {\n",
+           r->ticks, r->name);
+    go_through_intervals(r, c, 1);
+    printf("};\n");
 }
 
 static void print_double(const char *name, const rampwise_coeffs *c)
@@ -242,10 +313,14 @@ int main(int argc, char **argv)
     demand(rampwise_self_test());
     demand(rampwise_coeffs_make_f32(&single, &sys, r.dt, r.input, r.between));
     demand(rampwise_coeffs_make(&c, &sys, r.dt, r.input, r.between));
+    if (r.intervals != NULL)
+        go_through_intervals(&r, &single, 0);
     print_begin(&r);
     print_single(r.name, &single);
     if (r.in_double)
         print_double(r.name, &c);
+    if (r.intervals != NULL)
+        print_intervals(&r, &single);
     puts("\n#endif");
     if (fflush(stdout) != 0 || ferror(stdout))
         refuse("standard output: cannot be written: %s", strerror(errno));

@@ -52,7 +52,7 @@ enum {
 };
 
 /* Coefficients for one length of interval, prepared where making them takes too long. Filled by
-   rampwise_interval_make only. */
+   rampwise_interval_make only, here or on a host that prints it as a constant (tools/coefficients_as_source). */
 typedef struct rampwise_interval {
     uint64_t ticks;
     rampwise_coeffs c;

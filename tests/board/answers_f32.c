@@ -1,0 +1,3 @@
+/* The answers in single precision. */
+#define SINGLE_PRECISION
+#include "answers.c"

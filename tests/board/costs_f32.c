@@ -1,0 +1,3 @@
+/* The costs in single precision. */
+#define SINGLE_PRECISION
+#include "costs.c"
