@@ -38,7 +38,7 @@ static sample sample_of(const real_stream *x, const block *in, size_t i)
 /* Missing samples before one that comes so many ticks after its predecessor. */
 static uint64_t skipped_in(const real_stream *x, uint64_t ticks)
 {
-    if (ticks < x->ticks_ + (x->ticks_ + 1) / 2)
+    if (ticks < x->ticks_ + (x->ticks_ + 1) / 2 || (x->numbered_ && ticks <= (x->longest_ + 1) * x->ticks_))
         return 0;
     const uint64_t whole = ticks / x->ticks_, rest = ticks % x->ticks_;
     return whole - 1 + (rest >= x->ticks_ - rest);
@@ -380,7 +380,8 @@ static int check_options(const rampwise_stream_options *o)
         return RAMPWISE_ERROR_COUNT;
     if ((o->start != RAMPWISE_AT_REST && o->start != RAMPWISE_SETTLED) || o->missing < RAMPWISE_GAP_BRIDGE ||
         o->missing > RAMPWISE_GAP_REFUSE ||
-        (o->beyond != RAMPWISE_GAP_RESTART && o->beyond != RAMPWISE_GAP_REFUSE))
+        (o->beyond != RAMPWISE_GAP_RESTART && o->beyond != RAMPWISE_GAP_REFUSE) || o->numbered < 0 ||
+        o->numbered > 1)
         return RAMPWISE_ERROR_FLAGS;
     if (!isfinite(o->scale) || !isfinite(o->offset) || isnan(o->rail_low) || isnan(o->rail_high))
         return RAMPWISE_ERROR_SAMPLE;
@@ -442,6 +443,7 @@ int PUBLIC(stream_init)(real_stream *stream, const real_coeffs *c, const rampwis
     made.rail_low_ = (real)options->rail_low;
     made.rail_high_ = (real)options->rail_high;
     made.output_count_ = options->output_count;
+    made.numbered_ = options->numbered;
     memcpy(made.output_, options->output, sizeof made.output_);
     made.counts_.last_missing = made.counts_.last_clipped = UINT64_MAX;
     status = tune(&made, c, options->intervals, options->interval_count);
@@ -582,7 +584,7 @@ static void pass_stream(saved *s, void *object)
         rampwise_saved_uint64_(s, wide[i]);
     pass_counts(s, &x->counts_);
     int32_t *const numbers[] = {&x->start_,   &x->missing_, &x->beyond_,  &x->missing_raw_, &x->output_count_,
-                                &x->started_, &x->timed_,   &x->touched_, &x->flags_};
+                                &x->started_, &x->timed_,   &x->touched_, &x->flags_,       &x->numbered_};
     for (size_t i = 0; i < sizeof numbers / sizeof *numbers; ++i)
         saved_int(s, numbers[i]);
 }

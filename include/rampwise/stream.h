@@ -74,7 +74,9 @@ typedef struct rampwise_stream_options {
        and INFINITY. */
     double rail_low, rail_high;
     int32_t output_count; /* 0 to 8: 1 */
-    int32_t reserve_count;
+    /* 1: which samples are missing is told by their numbers (rampwise_stream_skip_to), and stamps of up to
+       longest + 1 dt later mean one longer step, however they jitter; 0: by stamps too. 0. */
+    int32_t numbered;
     rampwise_output output[RAMPWISE_STREAM_OUTPUTS]; /* displacement */
     /* Prepared intervals, rampwise_interval[interval_count] (_f32 in single precision), of the stream's
        system, input and between; used, not copied: NULL and 0. */
@@ -111,7 +113,7 @@ typedef struct rampwise_stream {
     rampwise_stream_counts counts_;
     int32_t start_, missing_, beyond_, missing_raw_, output_count_;
     int32_t started_, timed_, touched_; /* flags that the next step inherits */
-    int32_t flags_, reserve_number_;    /* of the last sample */
+    int32_t flags_, numbered_;          /* flags_: of the last sample */
     uint64_t reserve_[3];
 } rampwise_stream;
 
@@ -140,7 +142,7 @@ typedef struct rampwise_stream_f32 {
     rampwise_stream_counts counts_;
     int32_t start_, missing_, beyond_, missing_raw_, output_count_;
     int32_t started_, timed_, touched_;
-    int32_t flags_, reserve_number_;
+    int32_t flags_, numbered_;
     uint64_t reserve_[3];
 } rampwise_stream_f32;
 
@@ -159,7 +161,7 @@ RAMPWISE_API int rampwise_interval_make(rampwise_interval *interval, const rampw
 
 /* A stream under coefficients c, copied, that waits for its first sample, number 0.
    RAMPWISE_ERROR_MISSING, _NOT_MADE; _COUNT (options not begun with their init, output_count, or ticks 0 or
-   (longest + 1) ticks above 2^52); _FLAGS (start, missing or beyond); _QUANTITY, _COEFFICIENT (output.h);
+   (longest + 1) ticks above 2^52); _FLAGS (start, missing, beyond or numbered); _QUANTITY, _COEFFICIENT (output.h);
    _SAMPLE (scale, offset or a rail is NaN, or infinite where it must not be); _NO_REST (settled, and there is
    no rest); _DIFFERENT (a prepared interval of another oscillator); or one of rampwise_coeffs_make for the
    longest bridge, 2 (longest + 1) dt. */
@@ -221,8 +223,7 @@ RAMPWISE_API int rampwise_stream_attach(rampwise_stream *stream, rampwise_watch 
    saved_size   the bytes it takes, always the same for a stream.
    save         RAMPWISE_ERROR_MISSING; _MEMORY (count is less than that).
    resume       into a stream that was made by rampwise_stream_init: everything is replaced, but its prepared
-   intervals
-                and watches stay. count is exactly the size. RAMPWISE_ERROR_MISSING; _DAMAGED; _KIND (bytes of
+                intervals and watches stay. count is exactly the size. RAMPWISE_ERROR_MISSING; _DAMAGED; _KIND (bytes of
                 another kind of object); _EDITION (of a version with other bits); _DIFFERENT (the prepared
                 intervals are another oscillator's). */
 RAMPWISE_API size_t rampwise_stream_saved_size(const rampwise_stream *stream);

@@ -65,7 +65,7 @@ STREAM_OPTIONS = np.dtype(
     + [(name, "i4") for name in ("start", "missing", "beyond", "missing_raw")]
     + [("longest", "u8"), ("ticks", "u8")]
     + [(name, "f8") for name in ("scale", "offset", "rail_low", "rail_high")]
-    + [("output_count", "i4"), ("reserve_count", "i4"), ("output", OUTPUT, 8)]
+    + [("output_count", "i4"), ("numbered", "i4"), ("output", OUTPUT, 8)]
     + [("intervals", np.uintp), ("interval_count", np.uintp), ("reserve", np.uintp, 4)]
 )
 STREAM_COUNTS = np.dtype(
