@@ -5,6 +5,10 @@
 #include <check.h>
 #include <stdlib.h>
 
+/* A check that passes writes nothing: Check would note its place in a file, which costs more than most of our
+   checks, and there are millions. A crash is then placed by the last check's test alone. */
+#define _mark_point(file, line) ((void)0)
+
 static inline int suite_run(const char *name, void (*add_tests)(TCase *tests))
 {
     Suite *const suite = suite_create(name);
