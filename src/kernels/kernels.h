@@ -8,7 +8,6 @@
 
 #include <stddef.h>
 #include <stdint.h>
-#include "../outline.h"
 #include "rampwise/instructions.h"
 #include "../precision.h"
 
@@ -59,13 +58,11 @@ typedef struct kernels {
 
     /* The first `lanes` lanes under two inputs apart, states in two blocks, oscillators in the first: from p_last
        through p[0] to p[n - 1] of each. With x and y the quantity (0 u, 1 v, 2 the row over {u, v, p}) under either
-       input, `outside` becomes a bound of |a x + b y| for all sides {a, b} (outline.h) and samples, the one it begins
-       with among them: the largest over the octagon |x| <= extent[0], |y|
-       <= extent[1], |x + y| <= extent[2], |x - y| <= extent[3] around them. Answers whether a lane is not finite any
-       more. */
+       input, largest becomes the largest (form[0] x + form[1] y)^2 + (form[2] x + form[3] y)^2 of the samples, the one
+       it begins with among them. Answers whether a lane is not finite any more. */
     int (*under_two_inputs)(lane_block *first, lane_block *second, size_t lanes, int quantity,
-                            double (*row)[LANES], double (*side)[2][LANES], const double *p_last, size_t n,
-                            const double *const *p, double *outside, double (*extent)[LANES]);
+                            double (*row)[LANES], double (*form)[LANES], const double *p_last, size_t n,
+                            const double *const *p, double *largest);
 #endif
 
     /* Each lane under its own input, p[1] to p[n], n <= TILE; p[0] is the sample before. The states
