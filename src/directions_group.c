@@ -7,8 +7,8 @@
 #include "rampwise/status.h"
 #include "relative.h"
 
-/* Slacks: between samples, half of what is promised; of an ellipse at the samples, where all points are in a line but for
-   what rounding does along the way. */
+/* Slacks: between samples, half of what is promised; of an ellipse at the samples, where points are in a line but for what
+   rounding does on the way to them; and of what only serves to pass by as much as possible. */
 #define BETWEEN 5e-7
 #define SLIM 1e-13
 #define COARSE 0.02
@@ -39,7 +39,7 @@ void rampwise_directions_group_make_(directions_group *g, size_t count, const ra
     g->count = count;
     g->at_samples = at_samples;
     g->slack = at_samples ? OUTLINE_ROUNDING : BETWEEN;
-    g->ellipse_slack = at_samples ? SLIM : BETWEEN;
+    g->ellipse_slack = at_samples ? SLIM : BETWEEN / sqrt(2); /* sqrt 2 of it can be lost (outline.h) */
     for (size_t j = 0; j < count; ++j) {
         make_lane(&g->lane[j], &c[j], quantity, at_samples);
         for (size_t i = 0; i < 3; ++i)
@@ -62,7 +62,7 @@ static void make_ellipse(directions_group *g, size_t j)
     const ellipse before = l->inside;
     rampwise_outline_ellipse_(&l->outline, g->ellipse_slack, &l->inside);
     take_size(g, j);
-    const double more = l->waiting > 0 ? rampwise_ellipse_larger_(&before, &l->inside) : 1;
+    const double more = before.length > 0 ? rampwise_ellipse_larger_(&before, &l->inside) : INFINITY;
     for (size_t i = 0; i < l->waiting; ++i)
         l->stretch[i].largest *= more;
     l->made = g->stretches;
@@ -345,6 +345,7 @@ static int is_out(const ellipse *e, point z)
     return !(square_out(e, z.x, z.y) <= e->size * e->size);
 }
 
+/* Step m of a stretch between its samples. */
 static int look_between(directions_group *g, size_t j, const two_inputs *in, size_t sample, const steps *at,
                         size_t m)
 {
@@ -426,15 +427,15 @@ static size_t drop_held(directions_group *g, size_t j, const two_inputs *in)
     return l->waiting = kept;
 }
 
-/* Those that wait: first what is held by now goes, and if that leaves many (or `all` is asked) all are looked at, the
-   farthest first: most of the others are held then. */
+/* Those that wait: first what is held by now goes, and if that leaves many (or `all` is asked) half of the
+   room (or all) is made free by looking at the farthest first: most of the others are held then. */
 static int settle(const kernels *k, directions_group *g, size_t j, const two_inputs *in, int all)
 {
     directions_lane *const l = &g->lane[j];
-    if (drop_held(g, j, in) <= WAITING / 2 && !all)
+    if (l->waiting == 0 || (drop_held(g, j, in) <= WAITING / 2 && !all))
         return RAMPWISE_OK;
     sort_waiting(l);
-    for (; l->waiting > 0; --l->waiting) {
+    for (; l->waiting > (all ? 0 : WAITING / 2); --l->waiting) {
         const waiting_stretch *const at = &l->stretch[l->waiting - 1];
         if (is_held(g, j, in, at))
             continue;
@@ -460,13 +461,11 @@ static void stop_lost(directions_group *g)
 }
 
 /* Puts a stretch aside, and takes its last sample into the outline where that makes it much larger. The ellipse is then
-   fitted anew, when the run has become longer by a quarter. */
+   made anew if the run is twice as long as at the last time. */
 static int put_aside(const kernels *k, directions_group *g, size_t j, const two_inputs *in,
                      const waiting_stretch *at)
 {
     directions_lane *const l = &g->lane[j];
-    if (l->waiting == WAITING && settle(k, g, j, in, 0) != RAMPWISE_OK)
-        return RAMPWISE_ERROR_MEMORY;
     waiting_stretch *const to = &l->stretch[l->waiting++];
     const size_t next = at->first + at->n;
     *to = *at;
@@ -474,15 +473,13 @@ static int put_aside(const kernels *k, directions_group *g, size_t j, const two_
         {g->first.u[j], g->first.v[j], in->p[0][next - 1], sample_before(in, 0, next, 2)},
         {g->second.u[j], g->second.v[j], in->p[1][next - 1], sample_before(in, 1, next, 2)}};
     to->end = point_of(&l->x, &end[0], &end[1]);
-    if (!is_out(&l->inside, to->end))
-        return RAMPWISE_OK;
-    if (add_values(l, to->end.x, to->end.y, COARSE) != RAMPWISE_OK)
+    if (is_out(&l->inside, to->end) && add_values(l, to->end.x, to->end.y, COARSE) != RAMPWISE_OK)
         return RAMPWISE_ERROR_MEMORY;
-    if (l->changes != l->outline.changes && 4 * (g->stretches - l->made) >= g->stretches)
+    if (l->changes != l->outline.changes && 2 * (g->stretches - l->made) >= g->stretches)
         make_ellipse(g, j);
     l->looked += at->n;
     inscribe(g, j);
-    return RAMPWISE_OK;
+    return l->waiting == WAITING ? settle(k, g, j, in, 0) : RAMPWISE_OK;
 }
 
 static int run_stretch(const kernels *k, directions_group *g, const two_inputs *in, size_t first, size_t n)
@@ -502,9 +499,7 @@ static int run_stretch(const kernels *k, directions_group *g, const two_inputs *
         bound_input(p_last[i], n, p[i], &input[i]);
     ++g->stretches;
     for (size_t j = 0; j < g->count; ++j) {
-        if (stays_inside(g, j, largest[j], input))
-            continue;
-        if (g->lane[j].stopped)
+        if (stays_inside(g, j, largest[j], input) || g->lane[j].stopped)
             continue;
         const waiting_stretch at = {{u[0][j], u[1][j]}, {v[0][j], v[1][j]}, {0, 0}, largest[j], first, n};
         if (put_aside(k, g, j, in, &at) != RAMPWISE_OK)
