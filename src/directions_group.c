@@ -11,7 +11,7 @@
    rounding does on the way to them; and of what only serves to pass by as much as possible. */
 #define BETWEEN 5e-7
 #define SLIM 1e-13
-#define COARSE 0.02
+#define COARSE 0.002
 
 static void take_excess(const extremes *x, double excess[4])
 {
