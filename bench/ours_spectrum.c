@@ -58,7 +58,7 @@ static void add(task_list *list, const bench_case *in, const char *id, unsigned 
                           .once = once});
 }
 
-/* Two components, the second the first one backwards: median and largest over the direction, at the samples. */
+/* Two components, the second the first one backwards: median and largest over the direction. */
 typedef struct directions {
     spectrum one;
     double second[CASE_SAMPLES], value[PERIODS][2];
@@ -74,14 +74,14 @@ static void once_directions(void *self)
         fprintf(stderr, "bench: no directions\n");
 }
 
-static void add_directions(task_list *list, const bench_case *in)
+static void add_directions(task_list *list, const bench_case *in, const char *id, unsigned flags)
 {
     directions *const d = case_memory(sizeof *d);
-    make(&d->one, in, RAMPWISE_AT_SAMPLES);
+    make(&d->one, in, flags);
     for (size_t i = 0; i < CASE_SAMPLES; ++i)
         d->second[i] = in->p[CASE_SAMPLES - 1 - i];
     task_add(list, (task){.kind = TASK_PART,
-                          .id = "directions_samples",
+                          .id = id,
                           .name = "two components, 200 periods",
                           .gives = "percentiles",
                           .units = (double)PERIODS * CASE_SAMPLES,
@@ -94,5 +94,6 @@ void ours_spectrum_tasks(task_list *list, const bench_case *in)
     add(list, in, "spectrum_samples", RAMPWISE_AT_SAMPLES, 0);
     add(list, in, "spectrum_between", 0, 0);
     add(list, in, "spectrum_evidence", 0, 1);
-    add_directions(list, in);
+    add_directions(list, in, "directions_samples", RAMPWISE_AT_SAMPLES);
+    add_directions(list, in, "directions_between", 0);
 }

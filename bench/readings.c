@@ -91,6 +91,8 @@ static void of_spectra(readings *all)
         2.2, "the same with evidence / at samples");
     add(all, "directions_of_spectrum", times(all, "directions_samples", "spectrum_samples"), AT_MOST, 4,
         "percentiles of two components / peaks of one, at samples");
+    add(all, "directions_between_of_spectrum", times(all, "directions_between", "spectrum_between"), AT_MOST,
+        NAN, "the same between samples");
 }
 
 static void against_others(readings *all)

@@ -7,16 +7,29 @@
 #include "rampwise/status.h"
 #include "relative.h"
 
-/* Slacks: between samples, half of what is promised; and of what only serves to pass by as much as possible. */
+/* Slacks: between samples, half of what is promised; of an ellipse at the samples, where points are in a line but for what
+   rounding does on the way to them; and of what only serves to pass by as much as possible. */
 #define BETWEEN 5e-7
-#define COARSE 0.02
+#define SLIM 1e-13
+#define COARSE 0.002
+
+static void take_excess(const extremes *x, double excess[4])
+{
+    const double from[4] = {x->constant, x->from_p, x->from_change, x->from_size};
+    memcpy(excess, from, sizeof from);
+}
 
 static void make_lane(directions_lane *l, const rampwise_coeffs *c, int quantity, int at_samples)
 {
+    extremes *const x = &l->x;
     l->c = *c;
-    rampwise_extremes_bound_(&l->x, &l->c, quantity);
+    rampwise_extremes_bound_(x, &l->c, quantity);
+    if (!at_samples || !x->sampled)
+        take_excess(x, l->excess[0]);
+    rampwise_extremes_bound_steps_(x, SPAN);
+    take_excess(x, l->excess[1]);
     if (!at_samples)
-        (void)rampwise_extremes_make_(&l->x, &l->c, quantity); /* parts of a step that could be made */
+        (void)rampwise_extremes_make_(x, &l->c, quantity); /* parts of a step that could be made */
 }
 
 void rampwise_directions_group_make_(directions_group *g, size_t count, const rampwise_coeffs *c,
@@ -26,30 +39,36 @@ void rampwise_directions_group_make_(directions_group *g, size_t count, const ra
     g->count = count;
     g->at_samples = at_samples;
     g->slack = at_samples ? OUTLINE_ROUNDING : BETWEEN;
+    g->ellipse_slack = at_samples ? SLIM : BETWEEN / sqrt(2); /* sqrt 2 of it can be lost (outline.h) */
     for (size_t j = 0; j < count; ++j) {
-        directions_lane *const l = &g->lane[j];
-        make_lane(l, &c[j], quantity, at_samples);
-        const int followed =
-            !l->x.jumps && c[j].input != RAMPWISE_BASE_DISPLACEMENT; /* by the kernel's quantity */
-        g->excess[0][j] = !at_samples ? l->x.constant : followed ? 0 : INFINITY;
-        g->excess[1][j] = at_samples ? 0 : l->x.from_p;
-        g->excess[2][j] = at_samples ? 0 : l->x.from_change;
-        g->excess[3][j] = at_samples ? 0 : l->x.from_size;
+        make_lane(&g->lane[j], &c[j], quantity, at_samples);
         for (size_t i = 0; i < 3; ++i)
             g->row[i][j] = c[j].total[i];
     }
 }
 
-static void take_sides(directions_group *g, size_t j)
+/* The ellipse's size has changed. */
+static void take_size(directions_group *g, size_t j)
 {
-    double side[SIDES][2];
-    rampwise_outline_sides_(&g->lane[j].outline, g->slack, side);
+    directions_lane *const l = &g->lane[j];
+    l->changes = l->outline.changes;
+    l->looked = 0;
+    g->limit[j] = l->excess[0][0] == 0 ? l->inside.size * l->inside.size : -1;
+}
+
+static void make_ellipse(directions_group *g, size_t j)
+{
+    directions_lane *const l = &g->lane[j];
+    const ellipse before = l->inside;
+    rampwise_outline_ellipse_(&l->outline, g->ellipse_slack, &l->inside);
+    take_size(g, j);
+    const double more = before.length > 0 ? rampwise_ellipse_larger_(&before, &l->inside) : INFINITY;
+    for (size_t i = 0; i < l->waiting; ++i)
+        l->stretch[i].largest *= more;
+    l->made = g->stretches;
     for (int i = 0; i < 2; ++i) {
-        g->reach[i][j] = 0;
-        for (int k = 0; k < SIDES; ++k) {
-            g->side[k][i][j] = side[k][i];
-            g->reach[i][j] = fmax(g->reach[i][j], fabs(side[k][i]));
-        }
+        g->form[2 * i][j] = l->inside.form[i].x;
+        g->form[2 * i + 1][j] = l->inside.form[i].y;
     }
 }
 
@@ -67,6 +86,7 @@ static int add_values(directions_lane *l, double z1, double z2, double slack)
 
 int rampwise_directions_group_start_(directions_group *g, const double p0[2])
 {
+    g->stretches = 0;
     lane_block *const block[2] = {&g->first, &g->second};
     for (size_t j = 0; j < g->count; ++j) {
         directions_lane *const l = &g->lane[j];
@@ -83,7 +103,7 @@ int rampwise_directions_group_start_(directions_group *g, const double p0[2])
         l->outline.thinned = 0;
         if (add_values(l, value_of(&l->x, &s[0]), value_of(&l->x, &s[1]), g->slack) != RAMPWISE_OK)
             return RAMPWISE_ERROR_MEMORY;
-        take_sides(g, j);
+        make_ellipse(g, j);
     }
     return RAMPWISE_OK;
 }
@@ -112,8 +132,7 @@ static const rampwise_coeffs *over_part(directions_lane *l, int level, rampwise_
    <= 1/sqrt(stiffness) (the energy of a free vibration does not grow). The curve is off its chord by at most t (length
    - t)/2 of what z'' can be, so that it lies within the chord and the four points that are off its middle by
    length^2/4 of that. */
-static int holds_curve(const directions_lane *l, double length, const relative begin[2],
-                       const relative end[2])
+static int holds_curve(directions_lane *l, double length, const relative begin[2], const relative end[2])
 {
     const extremes *const x = &l->x;
     const double span = fmin(length, 1 / sqrt(x->stiffness)), off = length * length / 4;
@@ -189,28 +208,6 @@ static int add_inside(directions_lane *l, const rampwise_state s[2], const rampw
     return status;
 }
 
-/* Whether the step's end, or with the excess between samples its inside, may be beyond the outline's sides. */
-static int may_stick_out(const directions_group *g, size_t j, const rampwise_state s[2],
-                         const rampwise_state next[2], const double z[2], const double z_next[2])
-{
-    double most = 0;
-    for (int k = 0; g->at_samples && k < SIDES; ++k) {
-        const double end = fabs(g->side[k][0][j] * z_next[0] + g->side[k][1][j] * z_next[1]);
-        most = end > most ? end : most;
-    }
-    for (int k = 0; !g->at_samples && k < SIDES; ++k) {
-        const double a = g->side[k][0][j], b = g->side[k][1][j], end = fabs(a * z_next[0] + b * z_next[1]);
-        const double begin = fabs(a * z[0] + b * z[1]), size = fmax(begin, end);
-        const double p = fmax(fabs(a * s[0].p + b * s[1].p), fabs(a * next[0].p + b * next[1].p));
-        const double change = fabs(a * (next[0].p - s[0].p) + b * (next[1].p - s[1].p));
-        const double reached = size + g->excess[1][j] * p + g->excess[2][j] * change + g->excess[3][j] * size;
-        if (!(reached <= 1))
-            return 1;
-        most = fmax(most, reached);
-    }
-    return !(most + g->excess[0][j] <= 1);
-}
-
 /* Both values where the quantity jumps. */
 static int add_jump(directions_lane *l, const rampwise_state s[2], const rampwise_state next[2], double slack)
 {
@@ -222,16 +219,6 @@ static int add_jump(directions_lane *l, const rampwise_state s[2], const rampwis
     return add_values(l, rampwise_extremes_end_(x, &next[0]), rampwise_extremes_end_(x, &next[1]), slack);
 }
 
-static int add_step(directions_group *g, size_t j, const rampwise_state s[2], const rampwise_state next[2],
-                    const double z_next[2])
-{
-    directions_lane *const l = &g->lane[j];
-    int status = l->x.jumps ? add_jump(l, s, next, g->slack) : RAMPWISE_OK;
-    if (status == RAMPWISE_OK)
-        status = add_values(l, z_next[0], z_next[1], g->slack);
-    return status == RAMPWISE_OK && !g->at_samples ? add_inside(l, s, next) : status;
-}
-
 /* The sample at `back` before number i of a run: 1 or 2. */
 static double sample_before(const two_inputs *in, int which, size_t i, size_t back)
 {
@@ -240,107 +227,223 @@ static double sample_before(const two_inputs *in, int which, size_t i, size_t ba
     return i + 1 == back ? in->p_last[which] : in->p_before[which];
 }
 
+static double larger(double a, double b)
+{
+    return a > b ? a : b;
+}
+
+/* The square of how far out a point is, in sizes of the ellipse. */
+static double square_out(const ellipse *e, double x, double y)
+{
+    const double along = e->form[0].x * x + e->form[0].y * y, across = e->form[1].x * x + e->form[1].y * y;
+    return along * along + across * across;
+}
+
+/* What some samples, the inputs there and the changes of these are out by at most. */
+typedef struct reached {
+    double z, p, change;
+} reached;
+
+static void reach_inputs(const ellipse *e, const two_inputs *in, size_t first, size_t n, reached *r)
+{
+    double x = sample_before(in, 0, first, 1), y = sample_before(in, 1, first, 1);
+    r->p = square_out(e, x, y);
+    r->change = 0;
+    for (size_t i = first; i < first + n; ++i) {
+        const double before_x = x, before_y = y;
+        x = in->p[0][i];
+        y = in->p[1][i];
+        r->p = larger(square_out(e, x, y), r->p);
+        r->change = larger(square_out(e, x - before_x, y - before_y), r->change);
+    }
+    r->p = sqrt(r->p);
+    r->change = sqrt(r->change);
+}
+
+/* Any a x + b y is a quantity under an input, so that its excess is bounded as one is. */
+static double excess_of(const double from[4], const reached *r)
+{
+    return from[0] + from[1] * r->p + from[2] * r->change + from[3] * r->z;
+}
+
+/* Does a stretch stay inside the ellipse, as far as the largest of each input by itself tell? */
+static int stays_inside(const directions_group *g, size_t j, double largest, const reached input[2])
+{
+    if (g->at_samples)
+        return largest <= g->limit[j];
+    const directions_lane *const l = &g->lane[j];
+    const ellipse *const e = &l->inside;
+    const double x = sqrt(square_out(e, 1, 0)), y = sqrt(square_out(e, 0, 1));
+    const reached r = {sqrt(largest), x * input[0].p + y * input[1].p,
+                       x * input[0].change + y * input[1].change};
+    return r.z + excess_of(l->excess[0], &r) <= e->size;
+}
+
+/* Does the outline hold all between two samples with this excess? It does where it holds them with a share of itself
+   to spare that holds an ellipse of the excess. */
+static int holds_way(directions_lane *l, const double from[4], const point end[2], reached *r)
+{
+    r->z =
+        sqrt(larger(square_out(&l->inside, end[0].x, end[0].y), square_out(&l->inside, end[1].x, end[1].y)));
+    const double excess = excess_of(from, r), share = excess / l->inside.size;
+    if (r->z + excess <= l->inside.size)
+        return 1;
+    if (!(share < 0.5))
+        return 0;
+    for (int i = 0; i < 2; ++i)
+        if (!rampwise_outline_holds_(&l->outline, (point){end[i].x / (1 - share), end[i].y / (1 - share)}, 0))
+            return 0;
+    return 1;
+}
+
+/* The largest |p| and the largest change along a stretch. */
+static void bound_input(double before, size_t n, const double *p, reached *r)
+{
+    *r = (reached){0, fabs(before), 0};
+    for (size_t i = 0; i < n; ++i) {
+        r->p = larger(fabs(p[i]), r->p);
+        r->change = larger(fabs(p[i] - before), r->change);
+        before = p[i];
+    }
+}
+
+/* The steps of a stretch. */
+typedef struct steps {
+    rampwise_state s[2][SPAN + 1];
+    point z[SPAN + 1];
+} steps;
+
+static rampwise_state begin_of(const two_inputs *in, const waiting_stretch *at, int which)
+{
+    return (rampwise_state){at->u[which], at->v[which], sample_before(in, which, at->first, 1),
+                            sample_before(in, which, at->first, 2)};
+}
+
+static point point_of(const extremes *x, const rampwise_state *first, const rampwise_state *second)
+{
+    return (point){value_of(x, first), value_of(x, second)};
+}
+
+static void take_steps(const kernels *k, const directions_lane *l, const two_inputs *in,
+                       const waiting_stretch *at, steps *to)
+{
+    double u[2][SPAN], v[2][SPAN];
+    for (int i = 0; i < 2; ++i) {
+        const double *const p = in->p[i] + at->first;
+        const rampwise_history out = {u[i], v[i], NULL, NULL};
+        rampwise_state end = to->s[i][0] = begin_of(in, at, i);
+        (void)k->advance(&l->c, &end, 0, at->n, 1, p, &out);
+        for (size_t m = 0; m < at->n; ++m)
+            to->s[i][m + 1] = (rampwise_state){u[i][m], v[i][m], p[m], to->s[i][m].p};
+    }
+    for (size_t m = 0; m <= at->n; ++m)
+        to->z[m] = point_of(&l->x, &to->s[0][m], &to->s[1][m]);
+}
+
+static int is_out(const ellipse *e, point z)
+{
+    return !(square_out(e, z.x, z.y) <= e->size * e->size);
+}
+
+/* Step m of a stretch between its samples. */
+static int look_between(directions_group *g, size_t j, const two_inputs *in, size_t sample, const steps *at,
+                        size_t m)
+{
+    directions_lane *const l = &g->lane[j];
+    const rampwise_state s[2] = {at->s[0][m], at->s[1][m]}, next[2] = {at->s[0][m + 1], at->s[1][m + 1]};
+    reached r;
+    if (l->x.jumps && add_jump(l, s, next, g->slack) != RAMPWISE_OK)
+        return RAMPWISE_ERROR_MEMORY;
+    if (g->at_samples)
+        return RAMPWISE_OK;
+    reach_inputs(&l->inside, in, sample, 1, &r);
+    return holds_way(l, l->excess[0], at->z + m, &r) ? RAMPWISE_OK : add_inside(l, s, next);
+}
+
 /* A stretch step by step. */
 static int look(const kernels *k, directions_group *g, size_t j, const two_inputs *in,
                 const waiting_stretch *at)
 {
     directions_lane *const l = &g->lane[j];
-    rampwise_state s[2];
-    double u[2][SPAN], v[2][SPAN], z[2];
-    for (int i = 0; i < 2; ++i) {
-        s[i] = (rampwise_state){at->u[i], at->v[i], sample_before(in, i, at->first, 1),
-                                sample_before(in, i, at->first, 2)};
-        const rampwise_history out = {u[i], v[i], NULL, NULL};
-        rampwise_state end = s[i];
-        (void)k->advance(&l->c, &end, 0, at->n, 1, in->p[i] + at->first, &out);
-        z[i] = value_of(&l->x, &s[i]);
-    }
-    for (size_t i = 0; i < at->n; ++i) {
-        const rampwise_state next[2] = {{u[0][i], v[0][i], in->p[0][at->first + i], s[0].p},
-                                        {u[1][i], v[1][i], in->p[1][at->first + i], s[1].p}};
-        const double z_next[2] = {value_of(&l->x, &next[0]), value_of(&l->x, &next[1])};
-        if (may_stick_out(g, j, s, next, z, z_next) && add_step(g, j, s, next, z_next) != RAMPWISE_OK)
-            return RAMPWISE_ERROR_MEMORY;
-        memcpy(s, next, sizeof next);
-        memcpy(z, z_next, sizeof z);
-    }
-    return RAMPWISE_OK;
+    steps step;
+    int status = RAMPWISE_OK;
+    take_steps(k, l, in, at, &step);
+    for (size_t m = 1; status == RAMPWISE_OK && m <= at->n; ++m)
+        if (is_out(&l->inside, step.z[m]))
+            status = add_values(l, step.z[m].x, step.z[m].y, g->slack);
+    for (size_t m = 0; (!g->at_samples || l->x.jumps) && status == RAMPWISE_OK && m < at->n; ++m)
+        status = look_between(g, j, in, at->first + m, &step, m);
+    l->looked += at->n;
+    return status;
 }
 
-/* The largest |p| and the largest change along a stretch. */
-static void bound_input(double p_last, size_t n, const double *p, double *largest, double *change)
+/* Does the ellipse, or the outline, hold a stretch without a look at its steps? */
+static int is_held(directions_group *g, size_t j, const two_inputs *in, const waiting_stretch *at)
 {
-    double before = p_last;
-    *largest = fabs(before);
-    *change = 0;
-    for (size_t i = 0; i < n; ++i) {
-        const double size = fabs(p[i]), apart = fabs(p[i] - before);
-        *largest = size > *largest ? size : *largest;
-        *change = apart > *change ? apart : *change;
-        before = p[i];
-    }
-}
-
-/* Of both inputs of a stretch. */
-typedef struct input_bound {
-    double largest[2], change[2];
-} input_bound;
-
-static input_bound bound_inputs(const two_inputs *in, size_t first, size_t n)
-{
-    input_bound b;
-    for (int i = 0; i < 2; ++i)
-        bound_input(sample_before(in, i, first, 1), n, in->p[i] + first, &b.largest[i], &b.change[i]);
-    return b;
-}
-
-/* What lane j reaches of the sides with the excess between samples, where its samples reach `outside`. */
-static inline double with_excess(const directions_group *g, size_t j, double outside, const input_bound *b)
-{
-    return outside + g->excess[0][j] + g->excess[3][j] * outside +
-           g->reach[0][j] * (g->excess[1][j] * b->largest[0] + g->excess[2][j] * b->change[0]) +
-           g->reach[1][j] * (g->excess[1][j] * b->largest[1] + g->excess[2][j] * b->change[1]);
-}
-
-/* Is a stretch inside the outline by now? Its octagon (kernels.h) is, or with its excess inside the sides. */
-static int is_outdone(const directions_group *g, size_t j, const two_inputs *in, const waiting_stretch *at)
-{
-    const double *const e = at->extent;
-    const double x[4] = {e[0], e[2] - e[1], e[1] - e[3], -e[0]},
-                 y[4] = {e[2] - e[0], e[1], e[1], e[3] - e[0]};
-    double outside = 0;
-    for (int k = 0; k < SIDES; ++k)
-        for (int i = 0; i < 4; ++i) {
-            const double reached = fabs(g->side[k][0][j] * x[i] + g->side[k][1][j] * y[i]);
-            outside = reached > outside ? reached : outside;
-        }
-    if (g->at_samples && !(outside <= 1) && g->excess[0][j] == 0) {
-        for (int i = 0; i < 4; ++i)
-            if (!rampwise_outline_holds_(&g->lane[j].outline, (point){x[i], y[i]}, g->slack))
-                return 0;
+    directions_lane *const l = &g->lane[j];
+    const int is_short = l->excess[1][0] + l->excess[1][3] < 0.1; /* of little excess over its ends */
+    reached r = {sqrt(at->largest), 0, 0};
+    if (g->at_samples && (at->largest <= g->limit[j] || !is_short))
+        return at->largest <= g->limit[j];
+    reach_inputs(&l->inside, in, at->first, at->n, &r);
+    if (r.z + excess_of(l->excess[0], &r) <= l->inside.size)
         return 1;
-    }
-    const input_bound b = bound_inputs(in, at->first, at->n);
-    return with_excess(g, j, outside, &b) <= 1;
+    if (!is_short)
+        return 0;
+    const rampwise_state first = begin_of(in, at, 0), second = begin_of(in, at, 1);
+    const point way[2] = {point_of(&l->x, &first, &second), at->end};
+    return holds_way(l, l->excess[1], way, &r);
 }
 
-/* Those that wait: first what is outdone goes, and if that leaves many (or `all` is asked) all are looked at. */
-static int settle(const kernels *k, directions_group *g, size_t j, const two_inputs *in, int all)
+/* After the outline has grown, where enough has been looked at to pay for it. */
+static void inscribe(directions_group *g, size_t j)
+{
+    directions_lane *const l = &g->lane[j];
+    if (l->changes == l->outline.changes || 4 * l->looked < l->outline.count)
+        return;
+    rampwise_outline_inscribe_(&l->outline, g->ellipse_slack, &l->inside);
+    take_size(g, j);
+}
+
+/* The farthest to the end. */
+static void sort_waiting(directions_lane *l)
+{
+    for (size_t i = 1; i < l->waiting; ++i) {
+        const waiting_stretch at = l->stretch[i];
+        size_t to = i;
+        for (; to > 0 && l->stretch[to - 1].largest > at.largest; --to)
+            l->stretch[to] = l->stretch[to - 1];
+        l->stretch[to] = at;
+    }
+}
+
+static size_t drop_held(directions_group *g, size_t j, const two_inputs *in)
 {
     directions_lane *const l = &g->lane[j];
     size_t kept = 0;
     for (size_t i = 0; i < l->waiting; ++i)
-        if (!is_outdone(g, j, in, &l->stretch[i]))
+        if (!is_held(g, j, in, &l->stretch[i]))
             l->stretch[kept++] = l->stretch[i];
-    l->waiting = kept;
-    if (!all && kept <= WAITING / 2)
+    return l->waiting = kept;
+}
+
+/* Those that wait: first what is held by now goes, and if that leaves many (or `all` is asked) half of the
+   room (or all) is made free by looking at the farthest first: most of the others are held then. */
+static int settle(const kernels *k, directions_group *g, size_t j, const two_inputs *in, int all)
+{
+    directions_lane *const l = &g->lane[j];
+    if (l->waiting == 0 || (drop_held(g, j, in) <= WAITING / 2 && !all))
         return RAMPWISE_OK;
-    l->waiting = 0;
-    for (size_t i = 0; i < kept; ++i)
-        if ((i == 0 || !is_outdone(g, j, in, &l->stretch[i])) &&
-            look(k, g, j, in, &l->stretch[i]) != RAMPWISE_OK)
+    sort_waiting(l);
+    for (; l->waiting > (all ? 0 : WAITING / 2); --l->waiting) {
+        const waiting_stretch *const at = &l->stretch[l->waiting - 1];
+        if (is_held(g, j, in, at))
+            continue;
+        if (look(k, g, j, in, at) != RAMPWISE_OK)
             return RAMPWISE_ERROR_MEMORY;
-    take_sides(g, j);
+        inscribe(g, j);
+    }
+    make_ellipse(g, j);
     return RAMPWISE_OK;
 }
 
@@ -357,50 +460,51 @@ static void stop_lost(directions_group *g)
     }
 }
 
-/* States where a stretch begins, and what the kernel finds along it. */
-typedef struct traces {
-    double u[2][LANES], v[2][LANES], outside[LANES], extent[4][LANES];
-} traces;
-
-/* Puts the stretch aside, and takes its last sample into the outline where that makes it much larger. */
-static int put_aside(const kernels *k, directions_group *g, size_t j, const two_inputs *in, size_t first,
-                     size_t n, const traces *t)
+/* Puts a stretch aside, and takes its last sample into the outline where that makes it much larger. The ellipse is then
+   made anew if the run is twice as long as at the last time. */
+static int put_aside(const kernels *k, directions_group *g, size_t j, const two_inputs *in,
+                     const waiting_stretch *at)
 {
     directions_lane *const l = &g->lane[j];
-    if (l->waiting == WAITING && settle(k, g, j, in, 0) != RAMPWISE_OK)
-        return RAMPWISE_ERROR_MEMORY;
     waiting_stretch *const to = &l->stretch[l->waiting++];
-    *to = (waiting_stretch){{t->u[0][j], t->u[1][j]}, {t->v[0][j], t->v[1][j]}, {0}, first, n};
-    for (int i = 0; i < 4; ++i)
-        to->extent[i] = t->extent[i][j];
-    const rampwise_state s[2] = {
-        {g->first.u[j], g->first.v[j], in->p[0][first + n - 1], sample_before(in, 0, first + n, 2)},
-        {g->second.u[j], g->second.v[j], in->p[1][first + n - 1], sample_before(in, 1, first + n, 2)}};
-    const point z = {value_of(&l->x, &s[0]), value_of(&l->x, &s[1])};
-    if (rampwise_outline_holds_(&l->outline, z, COARSE))
-        return RAMPWISE_OK;
-    const int status = rampwise_outline_add_(&l->outline, z, COARSE);
-    take_sides(g, j);
-    return status;
+    const size_t next = at->first + at->n;
+    *to = *at;
+    const rampwise_state end[2] = {
+        {g->first.u[j], g->first.v[j], in->p[0][next - 1], sample_before(in, 0, next, 2)},
+        {g->second.u[j], g->second.v[j], in->p[1][next - 1], sample_before(in, 1, next, 2)}};
+    to->end = point_of(&l->x, &end[0], &end[1]);
+    if (is_out(&l->inside, to->end) && add_values(l, to->end.x, to->end.y, COARSE) != RAMPWISE_OK)
+        return RAMPWISE_ERROR_MEMORY;
+    if (l->changes != l->outline.changes && 2 * (g->stretches - l->made) >= g->stretches)
+        make_ellipse(g, j);
+    l->looked += at->n;
+    inscribe(g, j);
+    return l->waiting == WAITING ? settle(k, g, j, in, 0) : RAMPWISE_OK;
 }
 
 static int run_stretch(const kernels *k, directions_group *g, const two_inputs *in, size_t first, size_t n)
 {
-    traces t;
     const double p_last[2] = {sample_before(in, 0, first, 1), sample_before(in, 1, first, 1)};
     const double *const p[2] = {in->p[0] + first, in->p[1] + first};
-    memcpy(t.u[0], g->first.u, sizeof t.u[0]);
-    memcpy(t.v[0], g->first.v, sizeof t.v[0]);
-    memcpy(t.u[1], g->second.u, sizeof t.u[1]);
-    memcpy(t.v[1], g->second.v, sizeof t.v[1]);
+    double u[2][LANES], v[2][LANES], largest[LANES];
+    reached input[2] = {{0, 0, 0}, {0, 0, 0}};
+    memcpy(u[0], g->first.u, sizeof u[0]);
+    memcpy(v[0], g->first.v, sizeof v[0]);
+    memcpy(u[1], g->second.u, sizeof u[1]);
+    memcpy(v[1], g->second.v, sizeof v[1]);
     if (k->under_two_inputs(&g->first, &g->second, g->count, g->lane[0].x.quantity - RAMPWISE_DISPLACEMENT,
-                            g->row, g->side, p_last, n, p, t.outside, t.extent))
+                            g->row, g->form, p_last, n, p, largest))
         stop_lost(g);
-    const input_bound b = bound_inputs(in, first, n);
-    for (size_t j = 0; j < g->count; ++j)
-        if (!(with_excess(g, j, t.outside[j], &b) <= 1) && !g->lane[j].stopped &&
-            put_aside(k, g, j, in, first, n, &t) != RAMPWISE_OK)
+    for (int i = 0; i < 2 && !g->at_samples; ++i)
+        bound_input(p_last[i], n, p[i], &input[i]);
+    ++g->stretches;
+    for (size_t j = 0; j < g->count; ++j) {
+        if (stays_inside(g, j, largest[j], input) || g->lane[j].stopped)
+            continue;
+        const waiting_stretch at = {{u[0][j], u[1][j]}, {v[0][j], v[1][j]}, {0, 0}, largest[j], first, n};
+        if (put_aside(k, g, j, in, &at) != RAMPWISE_OK)
             return RAMPWISE_ERROR_MEMORY;
+    }
     return RAMPWISE_OK;
 }
 

@@ -10,17 +10,24 @@
 /* Halvings of a short piece (extremes.h) that are kept: 4^-16 of a curve's height is far below the slack. */
 enum { PARTS = 17 };
 
-/* Samples of a stretch, of which the kernels keep the extent; stretches of a lane that are put aside until they must be
+/* Samples of a stretch, of which the kernels keep the farthest; stretches of a lane that are put aside until they must be
    looked at: most are outdone before that. */
-enum { SPAN = 32, WAITING = 128 };
+enum { SPAN = 16, WAITING = 128 };
 
 typedef struct waiting_stretch {
-    double u[2], v[2], extent[4];
+    double u[2], v[2]; /* where it begins */
+    point end;
+    double largest;  /* of the ellipse's sum of squares */
     size_t first, n; /* its samples, counted from the first of this run */
 } waiting_stretch;
 
 typedef struct directions_lane {
     outline outline;
+    ellipse inside;      /* the outline */
+    size_t changes;      /* of the outline, when the ellipse was last inscribed */
+    size_t made, looked; /* stretches before the ellipse was made; samples looked at since it was inscribed */
+    double excess[2]
+                 [4]; /* extremes.h, of a step and of a stretch: constant, from_p, from_change, from_size */
     rampwise_coeffs c;
     extremes x;
     rampwise_coeffs part[PARTS]; /* of a short piece's length over 2^i */
@@ -31,14 +38,13 @@ typedef struct directions_lane {
 
 typedef struct directions_group {
     lane_block first, second;
-    double side[SIDES][2][LANES]; /* of the outlines */
-    double reach[2][LANES];       /* the largest |a|, |b| of them */
-    double excess[4][LANES];      /* extremes.h: constant, from_p, from_change, from_size */
+    double form[4][LANES]; /* of the ellipses */
     double row[3][LANES];
     directions_lane lane[LANES];
-    size_t count;
+    double limit[LANES];     /* the sizes squared; -1 where samples do not tell enough */
+    size_t count, stretches; /* stretches so far */
     int at_samples;
-    double slack; /* of the outlines in the end */
+    double slack, ellipse_slack; /* of the outlines in the end; of the ellipses */
 } directions_group;
 
 /* Two inputs at once; p_before and p_last are the samples before p[0]. */

@@ -136,27 +136,35 @@ static double pieces_until_decided(const extremes *x, double length)
     return (turns < dies ? turns : dies) + 2;
 }
 
-static void make_bounds(extremes *x)
+/* Has the quantity no kinks where the input has them? */
+static int is_smooth_at_samples(const rampwise_coeffs *c, int quantity)
+{
+    return c->input == RAMPWISE_BASE_ACCELERATION || quantity == RAMPWISE_DISPLACEMENT ||
+           (c->input == RAMPWISE_FORCE && quantity == RAMPWISE_VELOCITY);
+}
+
+void rampwise_extremes_bound_steps_(extremes *x, size_t steps)
 {
     const rampwise_coeffs *const c = x->c;
-    const double h = c->dt, S = fabs(x->damping) * h, K = fabs(x->stiffness) * h * h;
+    const double dt = c->dt, h = dt * (double)steps, S = fabs(x->damping) * h, K = fabs(x->stiffness) * h * h;
     const double rest = 1 - S - K / 8, unit = rest > 0.25 ? h * h / 8 / rest : 0;
     const double per_load = c->input == RAMPWISE_FORCE ? 1 / c->system.mass : 1;
     const int ramp = c->between == RAMPWISE_RAMP, loaded = c->input <= RAMPWISE_BASE_ACCELERATION;
-    x->constant = rest > 0.25 && x->sampled ? 0 : INFINITY;
+    x->constant =
+        rest > 0.25 && x->sampled && (steps == 1 || is_smooth_at_samples(c, x->quantity)) ? 0 : INFINITY;
     x->from_p = x->from_change = 0;
     x->from_size = unit * fabs(x->stiffness);
     /* z'' + damping z' + stiffness z = F inside the step */
     if (x->quantity == RAMPWISE_DISPLACEMENT) {
         x->from_p = loaded ? unit * per_load : 0;
-        x->from_change = c->input == RAMPWISE_BASE_VELOCITY ? unit / h : 0;
+        x->from_change = c->input == RAMPWISE_BASE_VELOCITY ? unit / dt : 0;
     } else if (x->quantity == RAMPWISE_VELOCITY) {
-        x->from_change = loaded && ramp ? unit * per_load / h : 0;
+        x->from_change = loaded && ramp ? unit * per_load / dt : 0;
     } else if (c->input == RAMPWISE_BASE_ACCELERATION) {
         x->from_p = unit * fabs(x->stiffness);
-        x->from_change = ramp ? unit * fabs(x->damping) / h : 0;
+        x->from_change = ramp ? unit * fabs(x->damping) / dt : 0;
     } else if (c->input == RAMPWISE_BASE_VELOCITY) {
-        x->from_change = unit * fabs(x->stiffness) / h;
+        x->from_change = unit * fabs(x->stiffness) / dt;
     }
 }
 
@@ -185,7 +193,7 @@ void rampwise_extremes_bound_(extremes *x, const rampwise_coeffs *c, int quantit
     x->halvings = halvings_for(x, c->dt);
     x->halvings = x->halvings > 0 ? x->halvings : 0;
     x->pieces = 1;
-    make_bounds(x);
+    rampwise_extremes_bound_steps_(x, 1);
 }
 
 int rampwise_extremes_make_(extremes *x, const rampwise_coeffs *c, int quantity)

@@ -26,6 +26,10 @@ typedef struct extremes {
 /* The bounds and what else needs no coefficients: enough for values at samples. */
 void rampwise_extremes_bound_(extremes *x, const rampwise_coeffs *c, int quantity);
 
+/* Of the excess over the first and last sample of so many steps instead, under loads on lines between samples; infinite
+   where the quantity has kinks at samples. */
+void rampwise_extremes_bound_steps_(extremes *x, size_t steps);
+
 /* All of it. Fails as rampwise_coeffs_make does. */
 int rampwise_extremes_make_(extremes *x, const rampwise_coeffs *c, int quantity);
 

@@ -8,6 +8,11 @@
 
 static const double pi = 3.141592653589793;
 
+static double larger(double a, double b)
+{
+    return a > b ? a : b;
+}
+
 static double cross(point a, point b)
 {
     return a.x * b.y - a.y * b.x;
@@ -54,46 +59,55 @@ void rampwise_outline_clear_(outline *o)
     memset(o, 0, sizeof *o);
 }
 
+static int is_from(const outline *o, size_t i, point p)
+{
+    return cross(o->corner[i], p) >= 0;
+}
+
 /* The last corner that comes before *p or at its angle, counterclockwise from the first one; *p becomes its own
    opposite where it is on the other side. */
-static ptrdiff_t sector_of(const outline *o, point *p)
+static ptrdiff_t sector_of(outline *o, point *p)
 {
-    if (cross(o->corner[0], *p) < 0)
+    if (!is_from(o, 0, *p))
         *p = opposite(*p);
     size_t low = 0, high = o->count;
+    const size_t near = o->sector < o->count ? o->sector : 0;
+    if (is_from(o, near, *p)) {
+        low = near;
+        high = high - low > 2 && !is_from(o, low + 2, *p) ? low + 2 : high;
+    } else {
+        high = near;
+        low = high > 2 && is_from(o, high - 2, *p) ? high - 2 : low;
+    }
     while (high - low > 1) {
         const size_t middle = low + (high - low) / 2;
-        if (cross(o->corner[middle], *p) >= 0)
+        if (is_from(o, middle, *p))
             low = middle;
         else
             high = middle;
     }
+    o->sector = low;
     return (ptrdiff_t)low;
-}
-
-static double distance_from(point p, point begin, point end)
-{
-    const point along = minus(end, begin), to = minus(p, begin);
-    const double square = dot(along, along), share = dot(to, along) / square;
-    if (!(share > 0))
-        return length(to);
-    if (share >= 1)
-        return length(minus(p, end));
-    return fabs(cross(along, to)) / sqrt(square);
 }
 
 /* Beyond the edge from begin to end, on its outer side as far as the rounding of points lets one see, and further
    from it than `slack`, a share of the largest. */
 static int is_beyond(const outline *o, point p, point begin, point end, double slack)
 {
-    const point along = minus(end, begin);
-    const double unsure = OUTLINE_ROUNDING * o->largest * (fabs(along.x) + fabs(along.y));
-    if (cross(along, minus(p, begin)) > unsure)
+    const point along = minus(end, begin), to = minus(p, begin);
+    const double area = cross(along, to),
+                 unsure = OUTLINE_ROUNDING * o->largest * (fabs(along.x) + fabs(along.y));
+    if (area > unsure)
         return 0;
-    return distance_from(p, begin, end) > slack * o->largest;
+    const double share = dot(to, along), square = dot(along, along), allowed = slack * o->largest;
+    if (!(share > 0))
+        return length(to) > allowed;
+    if (share >= square)
+        return length(minus(p, end)) > allowed;
+    return fabs(area) > allowed * sqrt(square);
 }
 
-int rampwise_outline_holds_(const outline *o, point p, double slack)
+int rampwise_outline_holds_(outline *o, point p, double slack)
 {
     if (o->count == 0)
         return p.x == 0 && p.y == 0;
@@ -220,38 +234,8 @@ int rampwise_outline_add_(outline *o, point p, double slack)
         o->corner[o->count++] = p;
     }
     o->largest = fmax(o->largest, length(p));
+    ++o->changes;
     return RAMPWISE_OK;
-}
-
-static double in_range(double a)
-{
-    return fmax(-DBL_MAX, fmin(DBL_MAX, a));
-}
-
-/* The line through two corners, moved out by half the slack. */
-static void side_through(double slack, point begin, point end, double side[2])
-{
-    const point along = minus(end, begin);
-    const double far = cross(begin, end) + 0.5 * slack * length(along);
-    side[0] = far > 0 ? in_range(along.y / far) : 0;
-    side[1] = far > 0 ? in_range(-along.x / far) : 0;
-}
-
-/* The corner of begin to end (numbers of corners) that is farthest beyond their line; one of them where there is
-   none between. */
-static ptrdiff_t beyond(const outline *o, ptrdiff_t begin, ptrdiff_t end)
-{
-    const point from = corner(o, begin), along = minus(corner(o, end), from);
-    ptrdiff_t best = begin;
-    double most = 0;
-    for (ptrdiff_t i = begin + 1; i < end; ++i) {
-        const double far = cross(minus(corner(o, i), from), along);
-        if (far > most) {
-            most = far;
-            best = i;
-        }
-    }
-    return best;
 }
 
 /* The corner farthest from the origin. */
@@ -264,29 +248,91 @@ static ptrdiff_t far_corner(const outline *o)
     return best;
 }
 
-/* Of the corner a that is farthest from the origin, the corner c farthest from the line of a, and one beyond either
-   side of their parallelogram. No angle of that but those at a and -a can be below a right one (at c by Thales, |c| <=
-   |a|; at the others because they lie no farther out than a, and no farther from a's line than c), so that only
-   there sides that are moved out meet far outside: there the length along a is limited. */
-void rampwise_outline_sides_(const outline *o, double slack, double side[SIDES][2])
+/* Second moments of area, in lengths of the farthest corner along and across it. */
+typedef struct moments {
+    double along, both, across;
+} moments;
+
+static moments moments_of(const outline *o, point along, point across)
 {
-    memset(side, 0, SIDES * sizeof *side);
-    if (o->count == 0) { /* nothing but zero is inside */
-        side[0][0] = side[1][1] = DBL_MAX;
-        return;
+    moments m = {0, 0, 0};
+    const point last = opposite(o->corner[o->count - 1]);
+    point a = {dot(along, last), dot(across, last)};
+    for (size_t i = 0; i < o->count; ++i) {
+        const point b = {dot(along, o->corner[i]), dot(across, o->corner[i])};
+        const double area = fabs(cross(a, b));
+        m.along += area * (a.x * a.x + a.x * b.x + b.x * b.x);
+        m.both += area * (a.x * a.y + b.x * b.y + 0.5 * (a.x * b.y + b.x * a.y));
+        m.across += area * (a.y * a.y + a.y * b.y + b.y * b.y);
+        a = b;
     }
-    const ptrdiff_t n = (ptrdiff_t)o->count;
-    ptrdiff_t at[5] = {far_corner(o)};
-    at[4] = at[0] + n;
-    at[2] = beyond(o, at[0], at[4]);
-    at[1] = beyond(o, at[0], at[2]);
-    at[3] = beyond(o, at[2], at[4]);
-    for (int k = 0; k < 4; ++k)
-        if (at[k] != at[k + 1])
-            side_through(slack * o->largest, corner(o, at[k]), corner(o, at[k + 1]), side[k]);
-    const point a = corner(o, at[0]);
-    side[4][0] = in_range(a.x / dot(a, a));
-    side[4][1] = in_range(a.y / dot(a, a));
+    return m;
+}
+
+/* The larger singular value's square of two by two numbers, by the sum of their squares and the determinant. */
+static double larger_square(double squares, double determinant)
+{
+    const double twice = 2 * fabs(determinant);
+    return 0.5 * (squares + sqrt((squares + twice) * fmax(squares - twice, 0)));
+}
+
+/* The ellipse whose moments are in the same proportion, but no slimmer than the slack. */
+void rampwise_outline_ellipse_(const outline *o, double slack, ellipse *e)
+{
+    *e = (ellipse){{{1e300, 0}, {0, 1e300}}, 0, 0, 0, 0}; /* nothing but zero is inside */
+    if (!(o->largest > 0))
+        return;
+    const point far = o->corner[far_corner(o)];
+    const double square = dot(far, far);
+    const point along = {far.x / square, far.y / square}, across = {-along.y, along.x};
+    const moments m = moments_of(o, along, across);
+    const double tilt = m.along > 0 ? m.both / m.along : 0,
+                 slim = m.along > 0 ? m.across / m.along - tilt * tilt : 0;
+    const double width = slim > slack * slack ? sqrt(slim) : slack;
+    e->form[0] = along;
+    e->form[1] = (point){(across.x - tilt * along.x) / width, (across.y - tilt * along.y) / width};
+    e->length = o->largest;
+    e->determinant = 1 / width;
+    e->longest = width * sqrt(larger_square(1 + (1 + tilt * tilt) / (width * width), 1 / width));
+    rampwise_outline_inscribe_(o, slack, e);
+}
+
+/* The least over all edges of how far the edge, moved out by the slack, is from the origin, by how far the ellipse of
+   size 1 reaches in that direction. Between the directions of two edges that are no more than a right angle apart, S of
+   the ellipse is then beyond S of their corner by sqrt(2) of the slack at most. They are more apart only at the farthest
+   corner a (at another one, c, the sides to a and -a meet at a right angle or more, by Thales, as |c| <= |a|), and there
+   the line across a is between them, which an ellipse of half axes up to |a| does not pass. */
+void rampwise_outline_inscribe_(const outline *o, double slack, ellipse *e)
+{
+    if (e->length == 0)
+        return;
+    const double scale = e->determinant / (e->length * e->length), moved = slack * o->largest;
+    const double most = o->largest / (e->length * e->longest);
+    double least = most * most;
+    point v = opposite(o->corner[o->count - 1]);
+    for (size_t i = 0; i < o->count; ++i) {
+        const point next = o->corner[i], edge = minus(next, v);
+        const double far = (cross(v, edge) + moved * larger(fabs(edge.x), fabs(edge.y))) * scale;
+        const double along = dot(e->form[0], edge), across = dot(e->form[1], edge);
+        const double reach = along * along + across * across;
+        if (!(far > 0))
+            least = 0;
+        else if (far * far < least * reach)
+            least = far * far / reach;
+        v = next;
+    }
+    e->size = sqrt(least);
+}
+
+double rampwise_ellipse_larger_(const ellipse *e, const ellipse *other)
+{
+    const double area = cross(e->form[0], e->form[1]);
+    double squares = 0;
+    for (int i = 0; i < 4; ++i) {
+        const double part = cross(e->form[i % 2], other->form[i / 2]) / area;
+        squares += part * part;
+    }
+    return larger_square(squares, cross(other->form[0], other->form[1]) / area);
 }
 
 /* At right angles to an edge, outwards. */
@@ -336,22 +382,23 @@ static double turn(point from, point to)
     return atan2(cross(from, to), dot(from, to));
 }
 
+/* How far from the corner, towards one end of an arc where S is s, S is above the level; negative where the end is not
+   on the `side` of the corner that it should be, so that both sides together leave what is between the ends. */
+static double angle_above(const arc *a, point end, double s, int side, double level, double *rate)
+{
+    if (s >= level)
+        return side * fabs(turn(a->corner, end));
+    *rate += side / sqrt((a->size - level) * (a->size + level));
+    return side * acos(level / a->size);
+}
+
 /* The part of an arc where S = size cos(phi - the corner's angle) is above the level. */
 static double part_above(const arc *a, double level, double *rate)
 {
-    const double half = acos(level / a->size), slope = 1 / sqrt((a->size - level) * (a->size + level));
-    double low = turn(a->corner, a->begin), high = turn(a->corner, a->end);
-    if (low >= half || high <= -half)
-        return 0;
-    if (low < -half) {
-        low = -half;
-        *rate += slope;
-    }
-    if (high > half) {
-        high = half;
-        *rate += slope;
-    }
-    return high - low;
+    const int before = cross(a->begin, a->corner) >= 0 ? 1 : -1,
+              after = cross(a->corner, a->end) >= 0 ? 1 : -1;
+    return angle_above(a, a->begin, a->s_begin, before, level, rate) +
+           angle_above(a, a->end, a->s_end, after, level, rate);
 }
 
 /* The measure of the angles where S is above the level, and how fast that falls as the level rises. Whole arcs in a

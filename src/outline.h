@@ -9,32 +9,44 @@ typedef struct point {
     double x, y;
 } point;
 
-/* The corners of one half, counterclockwise from any of them; after the last comes minus the first. */
 /* The slack for what rounding does to points that lie in a line. */
 #define OUTLINE_ROUNDING 1.8e-15
 
+/* The corners of one half, counterclockwise from any of them; after the last comes minus the first. */
 typedef struct outline {
     size_t count, room;
+    size_t sector;         /* where the last point was asked for: the next is mostly near */
+    size_t changes;        /* corners that came */
     point *corner, *spare; /* [room] each; they change places */
     double largest;        /* distance of a corner from the origin */
     size_t directions; /* 0: the memory grows. Else room is 2 directions; when that is full, it is thinned */
     int thinned;
 } outline;
 
-/* Inside all |a x + b y| <= 1 is inside the outline, to the slack: at most four sides of a polygon of corners, and
-   a limit to the length. Cheap to ask, and most points pass. */
-enum { SIDES = 5 };
+/* The points p with (form[0] p)^2 + (form[1] p)^2 <= size^2: an ellipse. Cheap to ask, and most points pass. */
+typedef struct ellipse {
+    point form[2];
+    double size;
+    double length, determinant,
+        longest; /* a length; in that length: of the forms; the longest half axis of size 1 */
+} ellipse;
 
 /* A zeroed outline is empty and grows; clear frees its memory and makes it so again. */
 void rampwise_outline_clear_(outline *o);
 
 /* Whether the outline holds the point, or it sticks out by no more than the slack, a share of `largest`. */
-int rampwise_outline_holds_(const outline *o, point p, double slack);
+int rampwise_outline_holds_(outline *o, point p, double slack);
 
 /* Takes a point in unless it is held. RAMPWISE_ERROR_MEMORY where there is no memory to grow. */
 int rampwise_outline_add_(outline *o, point p, double slack);
 
-void rampwise_outline_sides_(const outline *o, double slack, double side[SIDES][2]);
+/* An ellipse inside the outline, to `slack` of the largest; and its largest size after the outline has grown. S of the
+   ellipse exceeds S of the outline by sqrt(2) of the slack at most. */
+void rampwise_outline_ellipse_(const outline *o, double slack, ellipse *e);
+void rampwise_outline_inscribe_(const outline *o, double slack, ellipse *e);
+
+/* How much larger, squared, an ellipse is in another's forms than in its own, at most. */
+double rampwise_ellipse_larger_(const ellipse *e, const ellipse *other);
 
 /* Directions, from begin to end counterclockwise (of any length), in which one corner is the farthest: there S(phi) =
    size cos(phi - the corner's angle), s_begin and s_end at the ends. */

@@ -11,8 +11,8 @@
 
    How. S is the support function of the outline (the convex hull) of all points +-(u1, u2): between the directions of
    two neighbouring edges S(phi) = |corner| cos(phi - its angle), and no angle is ever tried. Both components are stepped
-   side by side, with the bits of rampwise_run; a stretch of samples inside a polygon of eight corners of the outline is
-   passed by at lane speed, others are looked at step by step. Work: two steps a sample and oscillator, and for each
+   side by side, with the bits of rampwise_run; a stretch of samples inside an ellipse that the outline holds is passed by at
+   lane speed; others are put aside and, where the outline does not hold them in the end, looked at step by step. Work: two steps a sample and oscillator, and for each
    point that the outline gains, a move of its corners (16 bytes each).
 
    At the samples the outline is exact, to 2e-13 of the largest S for the rounding of points that lie nearly in a line.
@@ -66,7 +66,7 @@ RAMPWISE_API int rampwise_percentiles_over_angle(size_t n, const double *x, cons
 typedef struct rampwise_directions rampwise_directions;
 
 /* Bytes of memory for n oscillators and M directions, n >= 1, M >= 2, and the alignment of its first byte; 0 where
-   either is out of range. About 16 KB and 64 M bytes an oscillator. The same for every instruction set. */
+   either is out of range. About 15 KB and 64 M bytes an oscillator. The same for every instruction set. */
 RAMPWISE_API size_t rampwise_directions_size(size_t n, size_t directions);
 RAMPWISE_API size_t rampwise_directions_alignment(void);
 

@@ -19,6 +19,9 @@
 /* Vectors in flight: enough to hide the latency of a step, few enough for the registers; a block may have fewer. */
 enum { MOST_IN_FLIGHT = 4, FLIGHT = LANES / WIDTH < MOST_IN_FLIGHT ? LANES / WIDTH : MOST_IN_FLIGHT };
 
+/* The same under two inputs, which are as much work each. */
+enum { PAIRS = FLIGHT < 2 ? FLIGHT : 2 };
+
 /* Oscillators on their way, one a lane. */
 typedef struct moving {
     VECTOR u, v;
@@ -389,79 +392,73 @@ static int stretch(lane_block *block, size_t lanes, unsigned looked, real (*row)
     return lost;
 }
 
-/* What a corner of a bounding octagon reaches of a side. */
-static inline VECTOR reached(VECTOR a, VECTOR b, VECTOR x, VECTOR y, VECTOR top)
+/* One oscillator under either input, and the largest q of the two quantities so far. */
+typedef struct moving_pair {
+    moving m[2];
+    VECTOR top;
+} moving_pair;
+
+static inline __attribute__((always_inline)) void reach(moving_pair *m, int quantity, real (*row)[LANES],
+                                                        real (*form)[LANES], size_t lane, VECTOR p1,
+                                                        VECTOR p2)
 {
-    return vector_larger_size(vector_fma(a, x, vector_product(b, y)), top);
+    const VECTOR x = looked_at(quantity, row, lane, m->m[0].u, m->m[0].v, p1);
+    const VECTOR y = looked_at(quantity, row, lane, m->m[1].u, m->m[1].v, p2);
+    const VECTOR along =
+        vector_fma(vector_load(form[1] + lane), y, vector_product(vector_load(form[0] + lane), x));
+    const VECTOR across =
+        vector_fma(vector_load(form[3] + lane), y, vector_product(vector_load(form[2] + lane), x));
+    m->top = vector_larger(vector_fma(across, across, vector_product(along, along)), m->top);
 }
 
-/* Of the points within |x| <= e[0], |y| <= e[1], |x + y| <= e[2], |x - y| <= e[3], none of which could be less: the
-   largest |a x + b y| of all sides, which is at one of eight corners. */
-static inline VECTOR reached_of_sides(double (*side)[2][LANES], size_t lane, const VECTOR *e)
+/* Each step is taken under both inputs, one after the other, so that its coefficients are fetched once. flight and
+   quantity are constants where this is inlined. */
+static inline __attribute__((always_inline)) int
+two_inputs_at(lane_block *first, lane_block *second, size_t at, int flight, int quantity, real (*row)[LANES],
+              real (*form)[LANES], const real *p_last, size_t n, const real *const *p, real *largest)
 {
-    const VECTOR right = vector_difference(e[2], e[0]), above = vector_difference(e[2], e[1]);
-    const VECTOR left = vector_difference(e[3], e[0]), beside = vector_difference(e[1], e[3]);
-    const VECTOR far = vector_difference(vector_all(0), e[0]);
-    VECTOR top = vector_all(0);
-    for (int k = 0; k < SIDES; ++k) {
-        const VECTOR a = vector_load(side[k][0] + lane), b = vector_load(side[k][1] + lane);
-        top = reached(a, b, e[0], right, top);
-        top = reached(a, b, above, e[1], top);
-        top = reached(a, b, beside, e[1], top);
-        top = reached(a, b, far, left, top);
+    moving_pair m[MOST_IN_FLIGHT];
+    const real *const p1 = p[0], *const p2 = p[1];
+    VECTOR before1 = vector_all(p_last[0]), before2 = vector_all(p_last[1]);
+    int was_silent1 = is_silent(p_last[0]), was_silent2 = is_silent(p_last[1]);
+    for (int j = 0; j < flight; ++j) {
+        const size_t lane = at + (size_t)j * WIDTH;
+        m[j] = (moving_pair){{load_moving(first, lane), load_moving(second, lane)}, vector_all(0)};
+        reach(&m[j], quantity, row, form, lane, before1, before2);
     }
-    return top;
-}
-
-/* A vector under both inputs hides the latency of its two steps by itself. quantity is a constant where this is
-   inlined. */
-static inline __attribute__((always_inline)) int two_inputs_at(size_t at, int quantity, lane_block *first,
-                                                               lane_block *second, double (*row)[LANES],
-                                                               double (*side)[2][LANES], const double *p_last,
-                                                               size_t n, const double *const *p,
-                                                               double *outside, double (*extent)[LANES])
-{
-    moving m1 = load_moving(first, at), m2 = load_moving(second, at);
-    VECTOR before1 = vector_all(p_last[0]), before2 = vector_all(p_last[1]), e[4];
-    const double *const p1 = p[0], *const p2 = p[1];
-    int silent1 = is_silent(p_last[0]), silent2 = is_silent(p_last[1]);
-    const VECTOR x0 = looked_at(quantity, row, at, m1.u, m1.v, before1),
-                 y0 = looked_at(quantity, row, at, m2.u, m2.v, before2);
-    e[0] = vector_size(x0);
-    e[1] = vector_size(y0);
-    e[2] = vector_size(vector_sum(x0, y0));
-    e[3] = vector_size(vector_difference(x0, y0));
     for (size_t i = 0; i < n; ++i) {
         const VECTOR now1 = vector_all(p1[i]), now2 = vector_all(p2[i]);
-        const int next1 = is_silent(p1[i]), next2 = is_silent(p2[i]);
-        step_together(first, at, 1, &m1, before1, now1, silent1 & next1);
-        step_together(first, at, 1, &m2, before2, now2, silent2 & next2);
-        const VECTOR x = looked_at(quantity, row, at, m1.u, m1.v, now1),
-                     y = looked_at(quantity, row, at, m2.u, m2.v, now2);
-        e[0] = vector_larger_size(x, e[0]);
-        e[1] = vector_larger_size(y, e[1]);
-        e[2] = vector_larger_size(vector_sum(x, y), e[2]);
-        e[3] = vector_larger_size(vector_difference(x, y), e[3]);
-        silent1 = next1;
-        silent2 = next2;
+        const int silent1 = is_silent(p1[i]), silent2 = is_silent(p2[i]);
+        for (int j = 0; j < flight; ++j) {
+            const size_t lane = at + (size_t)j * WIDTH;
+            step_together(first, lane, 1, &m[j].m[0], before1, now1, silent1 & was_silent1);
+            step_together(first, lane, 1, &m[j].m[1], before2, now2, silent2 & was_silent2);
+            reach(&m[j], quantity, row, form, lane, now1, now2);
+        }
+        was_silent1 = silent1;
+        was_silent2 = silent2;
         before1 = now1;
         before2 = now2;
     }
-    store_moving(first, at, &m1);
-    store_moving(second, at, &m2);
-    vector_store(outside + at, reached_of_sides(side, at, e));
-    for (int i = 0; i < 4; ++i)
-        vector_store(extent[i] + at, e[i]);
-    return vector_any_nan(zero_if_finite(&m1, zero_if_finite(&m2, vector_all(0))));
+    VECTOR zero = vector_all(0);
+    for (int j = 0; j < flight; ++j) {
+        const size_t lane = at + (size_t)j * WIDTH;
+        store_moving(first, lane, &m[j].m[0]);
+        store_moving(second, lane, &m[j].m[1]);
+        vector_store(largest + lane, m[j].top);
+        zero = zero_if_finite(&m[j].m[0], zero_if_finite(&m[j].m[1], zero));
+    }
+    return vector_any_nan(zero);
 }
 
+/* Two vectors in flight, four states, fill the registers. */
 static int under_two_inputs(lane_block *first, lane_block *second, size_t lanes, int quantity,
-                            double (*row)[LANES], double (*side)[2][LANES], const double *p_last, size_t n,
-                            const double *const *p, double *outside, double (*extent)[LANES])
+                            real (*row)[LANES], real (*form)[LANES], const real *p_last, size_t n,
+                            const real *const *p, real *largest)
 {
-#define UNDER(which) two_inputs_at(at, which, first, second, row, side, p_last, n, p, outside, extent)
+#define UNDER(which) two_inputs_at(first, second, at, PAIRS, which, row, form, p_last, n, p, largest)
     int lost = 0;
-    for (size_t at = 0; at < lanes; at += WIDTH)
+    for (size_t at = 0; at < lanes; at += PAIRS * WIDTH)
         lost |= quantity == 0 ? UNDER(0) : quantity == 1 ? UNDER(1) : UNDER(2);
 #undef UNDER
     return lost;

@@ -8,7 +8,6 @@
 
 #include <stddef.h>
 #include <stdint.h>
-#include "../outline.h"
 #include "rampwise/instructions.h"
 #include "../precision.h"
 
@@ -50,22 +49,20 @@ typedef struct kernels {
     int (*stretch)(lane_block *block, size_t lanes, unsigned looked, real (*row)[LANES], real p_last,
                    size_t n, const real *p, real (*high)[LANES], real (*low)[LANES]);
 
-    /* Which lanes of which of `count` stretches may exceed a floor at or between their samples, with the excess
-       of extremes.h, and what the samples of the other stretches reach: flags[2 i] has a bit a lane for the high side of stretch i, flags[2 i + 1] for the low one.
-       high and low of stretch i are at i stride. */
+    /* Which lanes of which of `count` stretches may exceed a floor, and what the samples of the other stretches reach,
+       at or between their samples, with the excess of extremes.h: flags[2 i] has a bit a lane for the high side of
+       stretch i, flags[2 i + 1] for the low one. high and low of stretch i are at i stride. */
     void (*may_exceed)(size_t lanes, size_t count, const real *high, const real *low, size_t stride,
                        const real *floor_high, const real *floor_low, real (*excess)[LANES],
                        const real *largest_p, const real *largest_change, uint32_t *flags);
 
     /* The first `lanes` lanes under two inputs apart, states in two blocks, oscillators in the first: from p_last
        through p[0] to p[n - 1] of each. With x and y the quantity (0 u, 1 v, 2 the row over {u, v, p}) under either
-       input, `outside` becomes a bound of |a x + b y| for all sides {a, b} (outline.h) and samples, the one it begins
-       with among them: the largest over the octagon |x| <= extent[0], |y|
-       <= extent[1], |x + y| <= extent[2], |x - y| <= extent[3] around them. Answers whether a lane is not finite any
-       more. */
+       input, largest becomes the largest (form[0] x + form[1] y)^2 + (form[2] x + form[3] y)^2 of the samples, the one
+       it begins with among them. Answers whether a lane is not finite any more. */
     int (*under_two_inputs)(lane_block *first, lane_block *second, size_t lanes, int quantity,
-                            double (*row)[LANES], double (*side)[2][LANES], const double *p_last, size_t n,
-                            const double *const *p, double *outside, double (*extent)[LANES]);
+                            double (*row)[LANES], double (*form)[LANES], const double *p_last, size_t n,
+                            const double *const *p, double *largest);
 
     /* y[i][o] += sum of x[i][k] weight[k][o] for i < n, k < count, o < width, where rows of x are `stride` apart
        and rows of y and weight `width`, a multiple of 8: y = fma(x, weight, y), k = 0 first. */

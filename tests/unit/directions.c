@@ -218,6 +218,48 @@ START_TEST(at_samples)
 }
 END_TEST
 
+/* A record so long that more is put aside than there is room for: growing noise, whose every cycle may be outermost, and
+   two components that grow to be one line. Between the samples S can fall short of S at the samples by no more than 1e-6
+   of the largest. */
+START_TEST(long_records)
+{
+    enum { LONG = 12000 };
+    static double p1[LONG], p2[LONG], z1[2 * LONG], z2[2 * LONG];
+    static const double omega[] = {0.01, 0.1, 0.6, 2};
+    gsl_rng *const r = random_make("long_records");
+    for (int kind = 0; kind < 2; ++kind) {
+        for (int i = 0; i < LONG; ++i) {
+            const double size = 1e-3 + (double)i / LONG;
+            p1[i] = size * random_between(r, -1, 1);
+            p2[i] =
+                kind == 0 ? size * random_between(r, -1, 1) : 0.7 * p1[i] + random_between(r, -1e-6, 1e-6);
+        }
+        for (size_t j = 0; j < sizeof omega / sizeof *omega; ++j) {
+            double at[PERCENTS], between[PERCENTS], want[PERCENTS];
+            const double zeta = 0.02;
+            for (unsigned flags = 0; flags < 2; ++flags)
+                ck_assert_int_eq(rampwise_spectrum_directions(LONG, 1, p1, p2, RAMPWISE_BASE_ACCELERATION, 1,
+                                                              &omega[j], &zeta, RAMPWISE_DISPLACEMENT,
+                                                              flags ? RAMPWISE_AT_SAMPLES : 0, PERCENTS,
+                                                              percent, flags ? at : between, NULL),
+                                 RAMPWISE_OK);
+            const size_t n = history_of(omega[j], zeta, 1, RAMPWISE_BASE_ACCELERATION, RAMPWISE_DISPLACEMENT,
+                                        LONG, p1, z1);
+            (void)history_of(omega[j], zeta, 1, RAMPWISE_BASE_ACCELERATION, RAMPWISE_DISPLACEMENT, LONG, p2,
+                             z2);
+            of_histories(n, z1, z2, want);
+            for (int i = 0; i < PERCENTS; ++i) {
+                ck_assert_msg(fabs(at[i] - want[i]) <= 1e-12 * want[5],
+                              "omega %g percentile %g: %.17g, not %.17g", omega[j], percent[i], at[i],
+                              want[i]);
+                ck_assert_double_ge(between[i], at[i] - 1e-6 * want[5]);
+            }
+        }
+    }
+    gsl_rng_free(r);
+}
+END_TEST
+
 enum { SHORT = 40, FINE = 512, FEW = 6 };
 
 /* The record on its lines FINE times as fine: at its samples, an exact scan. A point of the response is within (omega
@@ -479,6 +521,7 @@ static void add_tests(TCase *tests)
     tcase_add_test(tests, line);
     tcase_add_test(tests, circle);
     tcase_add_test(tests, at_samples);
+    tcase_add_test(tests, long_records);
     tcase_add_test(tests, between);
     tcase_add_test(tests, between_on_a_line);
     tcase_add_test(tests, object);
