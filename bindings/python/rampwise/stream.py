@@ -11,7 +11,7 @@ from numpy.typing import ArrayLike, NDArray
 from . import _arrays, _library
 from ._precision import Precision, arithmetic
 from ._provenance import provenance
-from .spectrum import Peaks
+from .peaks import Peaks
 from .system import Between, Input, System, choice, coefficients
 
 Output = Union[str, Sequence[float]]
@@ -414,20 +414,11 @@ class Stream:
 
     def save(self) -> bytes:
         """All of the stream but its watches as bytes of the library's own form, which C reads too."""
-        return self._saved("stream", self._at)
+        return _library.saved("stream", self._at, self._numbers.suffix)
 
     def resume(self, saved: bytes) -> None:
         """Goes on where `save` was called on a stream of the same kind."""
-        self._resume("stream", self._at, saved)
-
-    def _saved(self, kind: str, at: int) -> bytes:
-        saved = np.zeros(self._numbers.call(kind + "_saved_size", at), np.uint8)
-        _library.check(self._numbers.call(kind + "_save", at, _library.address(saved), saved.size))
-        return saved.tobytes()
-
-    def _resume(self, kind: str, at: int, saved: bytes) -> None:
-        held = np.frombuffer(saved, np.uint8)
-        _library.check(self._numbers.call(kind + "_resume", at, _library.address(held), held.size))
+        _library.resume("stream", self._at, saved, self._numbers.suffix)
 
     def __getstate__(self) -> Dict[str, Any]:
         return {"coeffs": self._coeffs, "options": self._options, "kept": self._kept, "saved": self.save(),
@@ -438,7 +429,7 @@ class Stream:
         for name, struct, levels, window, capacity, saved in held["watches"]:
             watch = Watch(self, name, struct, levels, None, window, capacity)
             _library.check(self._numbers.call("stream_attach", self._at, watch._at))
-            self._resume("watch", watch._at, saved)
+            watch.resume(saved)
             self._watches.append(watch)
         self.resume(held["saved"])
 
@@ -525,11 +516,11 @@ class Watch:
 
     def save(self) -> bytes:
         """All of the watch as bytes of the library's own form."""
-        return self._stream._saved("watch", self._at)
+        return _library.saved("watch", self._at, self._numbers.suffix)
 
     def resume(self, saved: bytes) -> None:
         """Goes on where `save` was called on a watch of the same levels, window and capacity."""
-        self._stream._resume("watch", self._at, saved)
+        _library.resume("watch", self._at, saved, self._numbers.suffix)
 
     def _kept(self) -> Tuple[Any, ...]:
         return self.output, self._struct, self.levels, self._window_steps, self._events.size, self.save()
