@@ -14,7 +14,7 @@ Three lines::
 `percentiles_over_angle`
 `energies`, `energy_spectrum`         where the energy goes
 `for_each`                            many records of unequal length; a bad one does not stop the rest
-`Bank`                                many oscillators under one input, fed in blocks
+`Bank`, `PeakBank`                    many oscillators under one input, fed in blocks; their true peaks
 `Stream`, `Level`                     one oscillator on live data, with gaps, rails, watches that trip
 `Structure`, `rayleigh_damper`,       structures by mass, damping and stiffness matrices: modes, records, live data,
 `modal_damper`                        equipment; needs SciPy
@@ -39,7 +39,7 @@ from .directions import DirectionalSpectrum, directional_spectrum, percentiles_o
 from .energy import Energies, EnergyHistory, EnergySpectrum, energies, energy_spectrum
 from .floor_spectrum import FloorSpectrum, floor_spectrum
 from .live_structure import Equipment, LiveStructure, StructureBlock, StructureResponse
-from .peaks import Peaks
+from .peaks import PeakBank, Peaks
 from .records import Outcomes, for_each
 from .response import Response, respond
 from .spectrum import Spectrum, equal_ratios, octaves, response_spectrum
@@ -63,6 +63,7 @@ __all__ = [
     "LevelReport",
     "LiveStructure",
     "Outcomes",
+    "PeakBank",
     "Peaks",
     "Response",
     "Row",

@@ -74,4 +74,4 @@ def damped_roots(squares: Doubles, damper: Doubles) -> Tuple[NDArray[np.complex1
     companion[n:, :n] = -np.diag(squares)
     companion[n:, n:] = -damper
     roots, vectors = _linalg().eig(companion)
-    return roots, np.ascontiguousarray(vectors[:n].T)
+    return roots.astype(complex), np.ascontiguousarray(vectors[:n].T, complex)  # SciPy's are real where all roots are

@@ -113,6 +113,15 @@ def test_records_of_other_damping(seed, n, dt, light, inputs):
     agree(frame, mass, damper, stiffness, force, random.uniform(-1, 1, (100, inputs)), dt)
 
 
+def test_real_roots_alone():
+    """Three bodies on dampers so strong that nothing swings."""
+    mass, stiffness = np.diag([1.0, 2.0, 1.5]), chain(np.array([100.0, 200.0, 150.0, 0.0]))
+    damper = chain(np.array([90.0, 150.0, 200.0, 0.0]))
+    frame = rampwise.Structure(mass, stiffness, damper=damper, force=np.eye(3)[:2])
+    assert not frame.classical and np.all(frame.roots.imag == 0)
+    agree(frame, mass, damper, stiffness, np.eye(3)[:2], np.random.default_rng(1).uniform(-1, 1, (100, 2)), 0.05)
+
+
 def test_both_ways_agree():
     """A classical structure by its modes and by pairs of roots, with a total acceleration: 1e-12 is some hundred
     roundings of the eigenvalue solver."""
