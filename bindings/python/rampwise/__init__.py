@@ -22,6 +22,8 @@ Three lines::
 `root_of_squares`,                    rules for peaks where only a spectrum is known; also `absolute_sum`, `with_share`,
 `complete_quadratic`                  `modal_correlation`
 `coefficients`                        the coefficients of a step
+`frequency_response`                  gain and phase, sampled beside continuous
+`evidence_input`                      what the sampling has cost, for whole histories
 `equal_ratios`, `octaves`             periods or frequencies of a spectrum
 `rampwise.plot`                       pictures; needs matplotlib
 ====================================  =================================================================
@@ -33,11 +35,13 @@ governing code and a licensed engineer's judgement.
 
 from ._library import arithmetic_edition, library_version
 from ._version import __version__
-from .bank import Bank
+from .bank import Bank, Histories
 from .combination import absolute_sum, complete_quadratic, modal_correlation, root_of_squares, with_share
 from .directions import DirectionalSpectrum, directional_spectrum, percentiles_over_angle
 from .energy import Energies, EnergyHistory, EnergySpectrum, energies, energy_spectrum
+from .evidence import evidence_input
 from .floor_spectrum import FloorSpectrum, floor_spectrum
+from .frequency import FrequencyResponse, frequency_response
 from .live_structure import Equipment, LiveStructure, StructureBlock, StructureResponse
 from .peaks import PeakBank, Peaks
 from .records import Outcomes, for_each
@@ -59,6 +63,8 @@ __all__ = [
     "Equipment",
     "Event",
     "FloorSpectrum",
+    "FrequencyResponse",
+    "Histories",
     "Level",
     "LevelReport",
     "LiveStructure",
@@ -85,8 +91,10 @@ __all__ = [
     "energies",
     "energy_spectrum",
     "equal_ratios",
+    "evidence_input",
     "floor_spectrum",
     "for_each",
+    "frequency_response",
     "library_version",
     "modal_correlation",
     "modal_damper",

@@ -9,17 +9,14 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from . import _arrays, _library
+from ._output import Output, output_struct
 from ._precision import Precision, arithmetic
 from ._provenance import provenance
 from .peaks import Peaks
 from .system import Between, Input, System, choice, coefficients
 
-Output = Union[str, Sequence[float]]
 Span = Literal["since start", "since reset", "in window"]
 
-_QUANTITIES = (
-    "displacement", "velocity", "acceleration", "total_acceleration", "spring_force", "damper_force", "load",
-)  # fmt: skip
 _STARTS = ("at rest", "settled")
 _MISSING = {"bridge": "GAP_BRIDGE", "hold": "GAP_HOLD", "refuse": "GAP_REFUSE"}
 _BEYOND = {"restart": "GAP_RESTART", "refuse": "GAP_REFUSE"}
@@ -116,20 +113,6 @@ class Block(NamedTuple):
     events: List[Event]
 
 
-def _output(output: Output) -> Tuple[str, NDArray[np.void]]:
-    """Its name and struct."""
-    struct = np.zeros((), _library.OUTPUT)
-    if isinstance(output, str):
-        struct["quantity"] = choice(output, _QUANTITIES, "outputs")
-        return output, struct
-    weights = _arrays.doubles(output, "outputs")
-    if weights.shape != (4,):
-        raise ValueError(f"outputs: four weights over u, v, p and p - p_before are needed, not shape {weights.shape}")
-    struct["row"] = weights
-    struct["quantity"] = _library.constant("WEIGHTED")
-    return "weighted", struct
-
-
 def _option(value: str, names: Dict[str, str], name: str) -> int:
     if value not in names:
         raise ValueError(f"{name}: {value!r} is none of {', '.join(map(repr, names))}")
@@ -223,7 +206,7 @@ class Stream:
             raise ValueError(f"system: one is needed, not shape {made.shape}")
         if isinstance(outputs, str):
             raise TypeError(f"outputs: a sequence is needed, such as [{outputs!r}]")
-        wanted = [_output(output) for output in outputs]
+        wanted = [output_struct(output) for output in outputs]
         if len(wanted) > _library.constant("STREAM_OUTPUTS"):
             raise ValueError(f"outputs: {_library.constant('STREAM_OUTPUTS')} at most, not {len(wanted)}")
         options = np.zeros(1, _library.STREAM_OPTIONS)
@@ -399,7 +382,7 @@ class Stream:
         -------
         Watch
         """
-        name, struct = _output(output)
+        name, struct = output_struct(output)
         plain = [level if isinstance(level, Level) else Level(_arrays.double(level, "levels")) for level in levels]
         watch = Watch(self, name, struct, plain, on_trip, _arrays.whole(window, "window", 0),
                       _arrays.whole(capacity, "capacity", 1))  # fmt: skip

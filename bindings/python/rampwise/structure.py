@@ -173,7 +173,8 @@ class Structure:
     T. K. Caughey and M. E. J. O'Kelly, Journal of Applied Mechanics 32(3), 583-588, 1965, for the condition (from
     memory). A pair of roots that coincide without a shape of their own each is refused: move a damper by 1e-10 of it.
     Modes come from LAPACK by SciPy, so that their last digits, and those of responses, depend on the platform; the
-    response to given modes does not. Results support, and never replace, the governing code and a licensed engineer's judgement.
+    response to given modes does not. Results support, and never replace, the governing code and a licensed engineer's
+    judgement.
 
     Examples
     --------

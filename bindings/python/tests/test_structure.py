@@ -45,7 +45,7 @@ def all_outputs(structure):
 
 def agree(structure, mass, damper, stiffness, force, record, dt, tolerance=1e-10):
     """All motion, each kind in units of its peak. 1e-10: the eigenvalue solvers' roundings, some n eps of the largest
-    root, act over all steps; measured some 1e-14."""
+    root, act over all steps; measured 2e-13 over 150 random chains of 2 to 12, 5e-13 for 60."""
     values = structure.respond(record, dt, all_outputs(structure), peaks=False).values
     expected = exact(mass, damper, stiffness, force, record, dt)
     for ours, theirs in zip(np.split(values, 3, axis=1), np.split(expected, 3, axis=1)):
@@ -215,8 +215,8 @@ def cascade(omega, zeta, piece_omega, piece_zeta, record, dt):
 @pytest.mark.parametrize("detuned", [0.0, 1e-9, 1e-4, 0.3])
 @pytest.mark.parametrize("zetas", [(0.0, 0.0), (0.03, 0.03), (0.05, 0.002)])
 def test_equipment_tuned_to_its_structure(detuned, zetas):
-    """1e-12: roundings of omega^2 and 2 zeta omega in double, of some eps, turn phases by omega t eps, and those of 60
-    steps add up; measured 1e-14."""
+    """1e-13: roundings of omega^2 and 2 zeta omega in double, of some eps, turn phases by omega t eps, and those of 60
+    steps add up; measured 8e-16."""
     omega, dt = 7.0, 0.05
     record = np.random.default_rng(6).uniform(-1, 1, 60)
     frame = rampwise.Structure([1.0], [omega**2], damping=zetas[0], direction=[1.0])
@@ -225,7 +225,7 @@ def test_equipment_tuned_to_its_structure(detuned, zetas):
                              equipment={"cabinet": rampwise.Equipment("floor", piece)})  # fmt: skip
     expected = cascade(omega, zetas[0], omega * (1 + detuned), zetas[1], record, dt)
     stretch = response.equipment["cabinet"].displacement
-    np.testing.assert_allclose(stretch, expected, rtol=0, atol=1e-12 * np.abs(expected).max())
+    np.testing.assert_allclose(stretch, expected, rtol=0, atol=1e-13 * np.abs(expected).max())
     assert response.equipment_displacement["cabinet"].size >= np.abs(stretch).max()
 
 
