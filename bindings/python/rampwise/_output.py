@@ -25,7 +25,9 @@ def output_struct(output: Output, argument: str = "outputs") -> Tuple[str, NDArr
         return output, struct
     weights = _arrays.doubles(output, argument)
     if weights.shape != (4,):
-        raise ValueError(f"{argument}: four weights over u, v, p and p - p_before are needed, not shape {weights.shape}")
+        raise ValueError(
+            f"{argument}: four weights over u, v, p and p - p_before are needed, not shape {weights.shape}"
+        )
     struct["row"] = weights
     struct["quantity"] = _library.constant("WEIGHTED")
     return "weighted", struct

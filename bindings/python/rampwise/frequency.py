@@ -7,7 +7,7 @@ from typing import NamedTuple, Optional
 import numpy as np
 from numpy.typing import ArrayLike
 
-from . import _arrays, _library
+from . import _library
 from ._arrays import Doubles
 from ._output import Output, output_struct
 from .system import Between, Input, System, coefficients, one_of

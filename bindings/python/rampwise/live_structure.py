@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import dataclasses
-from typing import Any, Dict, List, Mapping, NamedTuple, Optional, Tuple
+from typing import Any, Dict, Mapping, NamedTuple, Optional, Tuple
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
@@ -277,12 +277,16 @@ class LiveStructure:
         return found
 
     def _fed(self, name: str, *arguments: Any) -> int:
-        if not self._started:
-            raise ValueError("samples: none was put yet")
+        self._need_samples()
         return int(_library.call(name, self._at, *arguments))
 
+    def _need_samples(self) -> None:
+        if not self._started:
+            raise ValueError("samples: none was put yet")
+
     def save(self) -> bytes:
-        """State and peaks as bytes of the library's own form."""
+        """State and peaks as bytes of the library's own form, after a sample at least."""
+        self._need_samples()
         return _library.saved("modes", self._at)
 
     def resume(self, saved: bytes) -> None:

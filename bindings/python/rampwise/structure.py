@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import dataclasses
-from typing import Any, Mapping, NamedTuple, Optional, Sequence, Tuple, Union
+from typing import Mapping, NamedTuple, Optional, Tuple, Union
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
@@ -13,6 +13,7 @@ from ._arrays import Doubles
 from ._eigenvalues import damped_roots, matrix, modes_of, turned, zero_beside
 from .live_structure import Equipment, LiveStructure, Oscillators, StructureResponse
 from .system import Between, System, coefficients, damping_ratio
+
 
 def rayleigh_damper(
     mass: ArrayLike, stiffness: ArrayLike, *, omega: Tuple[float, float], damping: Union[float, Tuple[float, float]]
@@ -205,8 +206,7 @@ class Structure:
         if (damper is None) == (damping is None):
             raise TypeError("exactly one of damper and damping is needed by name")
         self._mass = matrix(mass, "mass")
-        self._stiffness = matrix(stiffness, "stiffness")
-        self._squares, self.shapes = modes_of(self._mass, self._stiffness)
+        self._squares, self.shapes = modes_of(self._mass, matrix(stiffness, "stiffness"))
         self.omega: Doubles = np.sqrt(self._squares)
         if damper is not None:
             given = matrix(damper, "damper")
@@ -244,7 +244,8 @@ class Structure:
         Exact for classical damping, else roughly those of `roots`. 0 for an undamped rigid body, infinite for a damped
         one.
         """
-        dampers = np.where(np.abs(self._modal_damper.diagonal()) <= self._zero_damper, 0, self._modal_damper.diagonal())
+        dampers = self._modal_damper.diagonal()
+        dampers = np.where(np.abs(dampers) <= self._zero_damper, 0.0, dampers)
         with np.errstate(divide="ignore", invalid="ignore"):
             return np.where(dampers == 0, 0.0, np.asarray(dampers / (2 * self.omega)))
 
@@ -336,7 +337,6 @@ class Structure:
         of_base[: len(self._direction)] = self._direction @ weights
         return self._row(acceleration=weights, input=of_base)
 
-
     def modal_peaks(self, row: Row, displacement: ArrayLike, direction: int = 0) -> Doubles:
         """Peaks of an output, a mode each, from a spectrum of the base: for the rules of combination.
 
@@ -427,10 +427,14 @@ class Structure:
         return Oscillators(system, made[0], made[1], made[2], np.zeros((modes, outputs)), on_input)
 
     def _corrected(self, oscillators: Oscillators, rows: _Rows, dt: float, between: Between) -> Oscillators:
-        """With weights on the inputs for what modes left out still do."""
+        """With weights on the inputs for what modes left out still do.
+
+        The whole structure settles, under the load less the inertia of its rigid bodies, as the sum of all elastic modes.
+        """
         elastic = self._squares > 0
         shapes = self.shapes[elastic]
-        settled = (self._force @ shapes.T / self._squares[elastic]) @ shapes @ rows.displacement.T + rows.input.T
+        moved = (self._force @ shapes.T / self._squares[elastic]) @ shapes
+        settled = np.ascontiguousarray(moved @ rows.displacement.T + rows.input.T)
         on_input = np.zeros(settled.shape)
         coeffs = coefficients(oscillators.system, dt, input="force", between=between)
         places = [_library.address(array) for array in (oscillators.plan(coeffs), settled, on_input)]

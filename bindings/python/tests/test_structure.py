@@ -1,6 +1,7 @@
 """Structures against matrix exponentials, closed forms from handbooks, and themselves."""
 
 import copy
+import json
 import pickle
 
 import mpmath
@@ -293,6 +294,12 @@ def test_static_correction():
     for corrected in (True, False):
         values = frame.respond(np.ones(400), 0.5, outputs, modes=2, static_correction=corrected).values[-1]
         assert (np.abs(values - settled).max() < 1e-11 * np.abs(settled).max()) == corrected
+    both = rampwise.Structure(mass, stiffness, damping=0.5, direction=np.ones(8), force=force)
+    for unit in np.eye(2):
+        values = both.respond(np.tile(unit, (400, 1)), 0.5, {name: both.displacement(int(name)) for name in outputs},
+                              modes=2, static_correction=True).values[-1]  # fmt: skip
+        expected = settled if unit[1] else -np.linalg.solve(stiffness, mass.diagonal())
+        np.testing.assert_allclose(values, expected, rtol=0, atol=1e-11 * np.abs(expected).max())
     based = rampwise.Structure(mass, stiffness, damping=0.5, direction=np.ones(8))
     roof = {"roof": based.total_acceleration(7)}
     values = based.respond(np.ones(400), 0.5, roof, modes=2, static_correction=True)["roof"]
@@ -328,6 +335,20 @@ def test_blocks_and_saving_change_no_bits():
     live.start()
     same_bits(live.put(record).values, whole.values)
     assert live.provenance == whole.provenance
+
+
+def test_plain_dictionaries_and_copies():
+    frame, outputs, equipment = frame_and_outputs()
+    record = np.random.default_rng(17).uniform(-1, 1, (20, 2))
+    response = pickle.loads(pickle.dumps(frame)).respond(record, 0.02, outputs, equipment=equipment)
+    same_bits(response.values, frame.respond(record, 0.02, outputs).values)
+    told = json.loads(json.dumps(response.to_dict()))
+    assert told["peaks"]["top"]["high"] == response.peaks["top"].high and told["outputs"] == ["top", "drift"]
+    floors = rampwise.floor_spectrum(frame, record, 0.02, {"top": outputs["top"]}, frequency=[2.0, 3.0])
+    assert json.loads(json.dumps(floors.to_dict()))["SA"] == floors.SA.tolist()
+    np.testing.assert_allclose(floors.PSA, (2 * np.pi * np.array([[2.0, 3.0]])) ** 2 * floors.SD, rtol=1e-14)
+    with pytest.raises(KeyError, match="none of the outputs 'top', 'drift'"):
+        response["bottom"]
 
 
 def test_rules_at_their_limits():
@@ -393,6 +414,7 @@ def test_other_refusals():
         (ValueError, "equipment: 'a' stands on 'b'",
          lambda: frame.live(0.1, row, equipment={"a": rampwise.Equipment("b", rampwise.System(1, 0, 1))})),
         (ValueError, "samples: none was put", live.peaks),
+        (ValueError, "samples: none was put", live.save),
         (ValueError, "samples: shape", lambda: live.put(np.ones((3, 2)))),
         (ValueError, "samples: there are no", lambda: live.put([])),
         (ValueError, "samples: .* \\(at sample 1 of this block\\)", lambda: live.put([0.0, np.nan])),
