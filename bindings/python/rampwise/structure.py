@@ -429,7 +429,7 @@ class Structure:
     def _corrected(self, oscillators: Oscillators, rows: _Rows, dt: float, between: Between) -> Oscillators:
         """With weights on the inputs for what modes left out still do.
 
-        The whole structure settles, under the load less the inertia of its rigid bodies, as the sum of all elastic modes.
+        The whole structure settles, under the load less its rigid bodies' inertia, as the sum of all elastic modes.
         """
         elastic = self._squares > 0
         shapes = self.shapes[elastic]

@@ -162,6 +162,23 @@ def test_rigid_bodies(dampers):
     agree(frame, mass, damper, stiffness, force, record, 0.03)
 
 
+def test_two_rigid_bodies():
+    """Two free chains, in coordinates that mix them: one slowed against the ground, one damped inside alone. The zero
+    frequency is double, and only the right one of its shapes is free of the damper."""
+    random = np.random.default_rng(21)
+    halves = [np.array([0.0, 90.0, 120.0, 0.0]), np.array([0.0, 70.0, 200.0, 0.0])]
+    dampers = [np.array([3.0, 2.0, 0.0, 0.0]), np.array([0.0, 4.0, 1.0, 0.0])]
+    mix = np.linalg.qr(random.normal(size=(6, 6)))[0]
+    mass, stiffness, damper = (
+        mix.T @ scipy.linalg.block_diag(*parts) @ mix
+        for parts in ([np.diag([1.0, 2.0, 1.5]), np.eye(3)], map(chain, halves), map(chain, dampers))
+    )
+    force = random.normal(size=(2, 6))
+    frame = rampwise.Structure(mass, stiffness, damper=damper, force=force)
+    assert np.all(frame.omega[:2] == 0) and frame.omega[2] > 1 and not frame.classical
+    agree(frame, mass, damper, stiffness, force, random.uniform(-1, 1, (100, 2)), 0.03)
+
+
 def test_dampers():
     """Rayleigh's matrix and the modal one give the ratios asked for; a damper more makes the damping non-classical."""
     random = np.random.default_rng(8)
