@@ -130,9 +130,13 @@ class Response:
         shape = self.displacement.shape[:-1]
         records = _arrays.to_shape(self.record, shape + self.time.shape)
         found = np.zeros((4,) + shape + (instants.size,))
+        kinds: Dict[str, Any] = {"input": self.input, "between": self.between}
+        made: Dict[float, NDArray[np.void]] = {}  # by the length of the step
         for i, instant in enumerate(instants.reshape(-1).tolist()):
-            step, made, fraction = self._step_of(instant)
-            coeffs_at = _library.addresses(_arrays.to_shape(made, shape)).tolist()
+            step, length, fraction = self._step_of(instant)
+            if length not in made:
+                made[length] = coefficients(self.system, length, **kinds)
+            coeffs_at = _library.addresses(_arrays.to_shape(made[length], shape)).tolist()
             for coeffs, row in zip(coeffs_at, np.ndindex(shape)):
                 before = row + (step,)
                 found[(slice(None),) + row + (i,)] = _inside(
@@ -141,16 +145,13 @@ class Response:
                 )  # fmt: skip
         return Histories(*found.reshape((4,) + shape + instants.shape))
 
-    def _step_of(self, instant: float) -> Tuple[int, NDArray[np.void], float]:
-        """The step that an instant lies in, its coefficients, and the fraction of it; samples as the notes say."""
-        side: Literal["left", "right"] = "left" if self.between == "ramp" else "right"
-        step = min(max(int(np.searchsorted(self.time, instant, side)) - 1, 0), self.time.size - 2)
+    def _step_of(self, instant: float) -> Tuple[int, float, float]:
+        """The step that an instant lies in, its length, and the fraction of it; a sample ends a step."""
+        step = max(int(np.searchsorted(self.time, instant)) - 1, 0)
         usual = self.provenance["options"]["dt"]
         length = float(self.time[step + 1] - self.time[step]) if usual is None else usual
-        kinds: Dict[str, Any] = {"input": self.input, "between": self.between}
         at_the_end = instant == self.time[step + 1]
-        fraction = 1.0 if at_the_end else min((instant - float(self.time[step])) / length, 1.0)
-        return step, coefficients(self.system, length, **kinds), fraction
+        return step, length, 1.0 if at_the_end else min((instant - float(self.time[step])) / length, 1.0)
 
     @staticmethod
     def _times(values: Doubles, history: Reals) -> Reals:

@@ -30,8 +30,8 @@ def test_between_samples(kind, between):
         atol = 1e-12 * np.abs(theirs).max()
         np.testing.assert_allclose(getattr(found, name)[:, 1:], theirs[:, 1:], rtol=0, atol=atol)
     at_samples = response.at(response.time)
-    for name in HISTORIES[:2]:
-        same_bits(getattr(at_samples, name), getattr(response, name))
+    for name in HISTORIES:  # a ramp's accelerations are those before a sample, of which the first has none
+        same_bits(getattr(at_samples, name)[:, 1:], getattr(response, name)[:, 1:])
 
 
 def test_between_stamped_samples():

@@ -274,6 +274,14 @@ def test_equipment_as_a_light_part_of_the_structure():
                                atol=1e-13 * size)  # fmt: skip
 
 
+def test_equipment_at_the_start():
+    """A force of 3 on a mass of 2 at rest: the point sets out with 1.5, and the equipment stays where it is."""
+    frame = rampwise.Structure([2.0], [50.0], damping=0.1, force=[1.0])
+    box = rampwise.Equipment("point", rampwise.System.natural(omega=4.0, damping=0.1))
+    histories = frame.respond([3.0, 1.0], 0.1, {"point": frame.total_acceleration(0)}, equipment={"box": box}).equipment
+    np.testing.assert_allclose([float(history[0]) for history in histories["box"]], [0, 0, -1.5, 0], rtol=1e-14)
+
+
 def test_floor_spectra():
     """The base's record cut 40 times finer is the same load; the usual way then loses a 1600th of some 4 %."""
     frame = rampwise.Structure([2.0, 1.0], [[900.0, -300.0], [-300.0, 300.0]], damping=0.03, direction=[1.0, 1.0])
