@@ -247,7 +247,7 @@ class PeakBank:
         return _library.saved("peaks", self._object.at)
 
     def resume(self, saved: bytes) -> None:
-        """Goes on where `save` was called on a bank of as many oscillators, for the same quantities and flags."""
+        """Goes on where `save` was called on a bank of as many oscillators, with the same options."""
         _library.resume("peaks", self._object.at, saved)
 
     def __getstate__(self) -> Dict[str, Any]:
