@@ -76,6 +76,19 @@ STREAM_COUNTS = np.dtype(
         )
     ]
 )  # fmt: skip
+MODES_PLAN = np.dtype(
+    [(name, np.uintp) for name in ("size", "modes", "inputs", "outputs", "c", "load")]
+    + [(name, np.uintp) for name in ("on_displacement", "on_velocity", "on_acceleration", "on_input")]
+    + [("peaks", "i4"), ("instructions", "i4")]
+    + [(name, np.uintp) for name in ("equipment_count", "equipment", "point")]
+    + [("reserve", np.uintp, 5)]
+)
+ROOTS = np.dtype(
+    [(name, np.uintp) for name in ("size", "bodies", "inputs", "outputs", "mass", "damper", "root", "shape")]
+    + [(name, np.uintp) for name in ("force", "on_displacement", "on_velocity")]
+    + [("reserve", np.uintp, 4)]
+)
+RESPONSE = np.dtype([("gain", "f8"), ("phase", "f8")])
 _STRUCTS = {
     "rampwise_system": SYSTEM,
     "rampwise_state": STATE,
@@ -99,6 +112,9 @@ _STRUCTS = {
     "rampwise_peak": PEAK,
     "rampwise_history": HISTORY,
     "rampwise_bank_wanted": BANK_WANTED,
+    "rampwise_modes_plan": MODES_PLAN,
+    "rampwise_roots": ROOTS,
+    "rampwise_response": RESPONSE,
 }
 
 _COUNT = ctypes.c_uint64
@@ -126,11 +142,21 @@ _PROTOTYPES: Dict[str, Any] = {  # the result first
     "rampwise_bank_run": (_INT, _POINTER, _SIZE, _POINTER, _POINTER, _POINTER),
     "rampwise_bank_stopped": (_SIZE, _POINTER, _POINTER),
     "rampwise_bank_read": (_INT, _POINTER, _POINTER),
+    "rampwise_bank_saved_size": (_SIZE, _POINTER),
+    "rampwise_bank_save": (_INT, _POINTER, _POINTER, _SIZE),
+    "rampwise_bank_resume": (_INT, _POINTER, _POINTER, _SIZE),
     "rampwise_peaks_size": (_SIZE, _SIZE),
     "rampwise_peaks_alignment": (_SIZE,),
     "rampwise_peaks_init": (_INT, _POINTER, _SIZE, _SIZE, _POINTER, _SIZE, _POINTER, ctypes.c_uint, _INT, _POINTER),
     "rampwise_peaks_run": (_INT, _POINTER, _SIZE, _POINTER, _POINTER),
     "rampwise_peaks_get": (_INT, _POINTER, _INT, ctypes.c_uint, _POINTER),
+    "rampwise_peaks_start": (_INT, _POINTER, _POINTER),
+    "rampwise_peaks_saved_size": (_SIZE, _POINTER),
+    "rampwise_peaks_save": (_INT, _POINTER, _POINTER, _SIZE),
+    "rampwise_peaks_resume": (_INT, _POINTER, _POINTER, _SIZE),
+    "rampwise_evidence_input": (_INT, _SIZE, _POINTER, _POINTER, _POINTER),
+    "rampwise_inside": (_INT, _POINTER, _POINTER, _DOUBLE, _DOUBLE, _POINTER),
+    "rampwise_frequency_response": (_INT, _POINTER, _POINTER, _DOUBLE, _POINTER, _POINTER),
     "rampwise_spectrum": (
         _INT, _SIZE, _DOUBLE, _POINTER, _INT, _SIZE, _POINTER, _POINTER, _INT, ctypes.c_uint, _POINTER, _POINTER,
     ),
@@ -177,16 +203,39 @@ _PROTOTYPES: Dict[str, Any] = {  # the result first
         _POINTER, _POINTER,
     ),
     "rampwise_percentiles_over_angle": (_INT, _SIZE, _POINTER, _POINTER, _SIZE, _POINTER, _POINTER, _POINTER),
+    "rampwise_modes_plan_init": (None, _POINTER),
+    "rampwise_modes_size": (_SIZE, _POINTER),
+    "rampwise_modes_alignment": (_SIZE,),
+    "rampwise_modes_init": (_INT, _POINTER, _SIZE, _POINTER, _POINTER),
+    "rampwise_modes_start": (_INT, _POINTER, _POINTER),
+    "rampwise_modes_read": (_INT, _POINTER, _POINTER),
+    "rampwise_modes_peaks": (_INT, _POINTER, _POINTER),
+    "rampwise_modes_saved_size": (_SIZE, _POINTER),
+    "rampwise_modes_save": (_INT, _POINTER, _POINTER, _SIZE),
+    "rampwise_modes_resume": (_INT, _POINTER, _POINTER, _SIZE),
+    "rampwise_equipment_run": (_INT, _POINTER, _SIZE, _POINTER, _POINTER, _POINTER, _POINTER),
+    "rampwise_equipment_peaks": (_INT, _POINTER, _INT, _POINTER),
+    "rampwise_static_correction": (_INT, _POINTER, _POINTER, _POINTER),
+    "rampwise_mass_share": (_INT, _POINTER, _POINTER, _POINTER),
+    "rampwise_roots_init": (None, _POINTER),
+    "rampwise_roots_modes": (_SIZE, _POINTER),
+    "rampwise_roots_to_modes": (_INT, _POINTER, _POINTER, _POINTER, _POINTER, _POINTER),
+    "rampwise_combine_absolute_sum": (_DOUBLE, _SIZE, _POINTER),
+    "rampwise_combine_root_of_squares": (_DOUBLE, _SIZE, _POINTER),
+    "rampwise_combine_complete_quadratic": (_DOUBLE, _SIZE, _POINTER, _POINTER, _POINTER),
+    "rampwise_combine_with_share": (_DOUBLE, _SIZE, _POINTER, _DOUBLE),
+    "rampwise_modal_correlation": (_DOUBLE, _DOUBLE, _DOUBLE, _DOUBLE, _DOUBLE),
     "rampwise_list_log": (_INT, _SIZE, _DOUBLE, _DOUBLE, _POINTER),
     "rampwise_list_octaves": (_INT, _DOUBLE, _DOUBLE, _SIZE, _SIZE, _POINTER, _POINTER),
 }  # fmt: skip
 _IN_SINGLE = (
     "coeffs_make", "start_settled", "acceleration", "total_acceleration", "run", "solve", "bank_size",
     "bank_alignment", "bank_init", "bank_start", "bank_set", "bank_get", "bank_retune", "bank_run", "bank_stopped",
-    "bank_read", "stream_init", "stream_start", "stream_put", "stream_put_raw", "stream_put_at", "stream_put_raw_at",
-    "stream_skip_to", "stream_read", "stream_state", "stream_count", "stream_retune", "stream_attach",
-    "stream_saved_size", "stream_save", "stream_resume", "watch_init", "watch_peak", "watch_reset", "watch_level",
-    "watch_release", "watch_events", "watch_counts", "watch_saved_size", "watch_save", "watch_resume",
+    "bank_read", "bank_saved_size", "bank_save", "bank_resume", "stream_init", "stream_start", "stream_put",
+    "stream_put_raw", "stream_put_at", "stream_put_raw_at", "stream_skip_to", "stream_read", "stream_state",
+    "stream_count", "stream_retune", "stream_attach", "stream_saved_size", "stream_save", "stream_resume",
+    "watch_init", "watch_peak", "watch_reset", "watch_level", "watch_release", "watch_events", "watch_counts",
+    "watch_saved_size", "watch_save", "watch_resume",
 )  # fmt: skip
 _MAKERS = ("coeffs_make",)  # numbers that go in stay double
 _PROTOTYPES.update({
@@ -221,6 +270,9 @@ _ARGUMENTS = {
     "FRAME": "frame",
     "GAP": "samples",
     "PERCENT": "percent",
+    "WEIGHT": "outputs",
+    "ROOTS": "damper",
+    "DEFECTIVE": "damper",
     "DAMAGED": "saved",
     "KIND": "saved",
     "EDITION": "saved",
@@ -337,6 +389,19 @@ def check(status: int, where: str = "", **names: str) -> None:
     argument = names.get(kind.lower(), _ARGUMENTS.get(kind, ""))
     text = status_text(status) + (f" ({where})" if where else "")
     raise ValueError(f"{argument}: {text}" if argument else text)
+
+
+def saved(kind: str, at: int, suffix: str = "") -> bytes:
+    """An object of a kind as bytes."""
+    held = np.zeros(call(f"{kind}_saved_size{suffix}", at), np.uint8)
+    check(call(f"{kind}_save{suffix}", at, address(held), held.size))
+    return held.tobytes()
+
+
+def resume(kind: str, at: int, held: bytes, suffix: str = "") -> None:
+    """Takes an object of a kind back from bytes."""
+    given = np.frombuffer(held, np.uint8)
+    check(call(f"{kind}_resume{suffix}", at, address(given), given.size), different="saved")
 
 
 def address(array: NDArray[Any]) -> int:

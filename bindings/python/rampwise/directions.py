@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import dataclasses
-from typing import Any, Dict, Literal, Optional, Tuple
+from typing import Any, Dict, Optional, Tuple
 
 import numpy as np
 from numpy.typing import ArrayLike
@@ -12,13 +12,10 @@ from . import _arrays, _library
 from ._arrays import Doubles
 from ._provenance import plain, provenance
 from ._work import spread
+from .peaks import AT_SAMPLES, QUANTITIES, Quantity
 from .spectrum import Oscillators
 from .system import Input, choice, damping_ratio, kinds, one_of
 
-Quantity = Literal["displacement", "velocity", "total_acceleration"]
-
-_QUANTITIES = ("displacement", "velocity", "total_acceleration")
-_AT_SAMPLES = _library.constant("AT_SAMPLES")
 _A_TASK = 64  # oscillators: two groups, 1 MB
 
 
@@ -141,7 +138,7 @@ def directional_spectrum(
     step = _arrays.double(dt, "dt")
     percents = _arrays.in_order(_arrays.doubles(percent, "percent"))
     input_number, _ = kinds(input, "ramp")
-    number = choice(quantity, _QUANTITIES, "quantity")
+    number = choice(quantity, QUANTITIES, "quantity")
     value = np.zeros((oscillators.omega.size, percents.size))
 
     def work(block: slice) -> None:
@@ -149,7 +146,7 @@ def directional_spectrum(
         found, bad = np.zeros((circular.size, percents.size)), np.zeros(1, np.uintp)
         status = _library.call("spectrum_directions", x.size, step, _library.address(x), _library.address(y),
                                input_number, circular.size, _library.address(circular), _library.address(damped),
-                               number, _AT_SAMPLES if at_samples else 0, percents.size, _library.address(percents),
+                               number, AT_SAMPLES if at_samples else 0, percents.size, _library.address(percents),
                                _library.address(found), _library.address(bad))  # fmt: skip
         _library.check(status, f"number {bad[0]}", sample="first or second", frequency=name, damper="damping")
         value[block] = found

@@ -13,6 +13,7 @@ from ._arrays import Doubles
 from ._precision import Arithmetic, Precision, arithmetic
 from ._provenance import plain, provenance
 from ._work import spread
+from .bank import Histories
 from .system import Between, Input, System, coefficients
 
 Start = Literal["at once", "ramp", "settled"]
@@ -98,6 +99,60 @@ class Response:
         """Damper times relative velocity; positive when pulled apart along +u."""
         return self._times(self.system.damper, self.relative_velocity)
 
+    def at(self, time: ArrayLike) -> Histories:
+        """The exact response between the samples.
+
+        Parameters
+        ----------
+        time : array_like
+            Instants from the first to the last sample.
+
+        Returns
+        -------
+        Histories
+            Displacement, velocity and both accelerations, of the systems' and records' shape and then that of `time`.
+            Double precision only.
+
+        Examples
+        --------
+        A load of 1 that stays, sampled once a time unit: u = 1 - cos t in between.
+
+        >>> import numpy, rampwise
+        >>> response = rampwise.respond(numpy.ones(5), 1.0, input="force", system=rampwise.System(1.0, 0.0, 1.0))
+        >>> round(float(response.at(numpy.pi).displacement), 12)
+        2.0
+        """
+        instants = _arrays.doubles(time, "time")
+        if self.displacement.dtype != np.float64:
+            raise ValueError("precision: values between the samples need 'double'")
+        if self.time.size < 2 or not np.all((instants >= self.time[0]) & (instants <= self.time[-1])):
+            raise ValueError("time: an instant is not between the first and the last sample")
+        shape = self.displacement.shape[:-1]
+        records = _arrays.to_shape(self.record, shape + self.time.shape)
+        found = np.zeros((4,) + shape + (instants.size,))
+        kinds: Dict[str, Any] = {"input": self.input, "between": self.between}
+        made: Dict[float, NDArray[np.void]] = {}  # by the length of the step
+        for i, instant in enumerate(instants.reshape(-1).tolist()):
+            step, length, fraction = self._step_of(instant)
+            if length not in made:
+                made[length] = coefficients(self.system, length, **kinds)
+            coeffs_at = _library.addresses(_arrays.to_shape(made[length], shape)).tolist()
+            for coeffs, row in zip(coeffs_at, np.ndindex(shape)):
+                before = row + (step,)
+                found[(slice(None),) + row + (i,)] = _inside(
+                    coeffs, self.displacement[before], self.velocity[before], records[before],
+                    records[row + (step + 1,)], fraction,
+                )  # fmt: skip
+        return Histories(*found.reshape((4,) + shape + instants.shape))
+
+    def _step_of(self, instant: float) -> Tuple[int, float, float]:
+        """The step that an instant lies in, its length, and the fraction of it; a sample ends a step."""
+        step = max(int(np.searchsorted(self.time, instant)) - 1, 0)
+        usual = self.provenance["options"]["dt"]
+        length = float(self.time[step + 1] - self.time[step]) if usual is None else usual
+        at_the_end = instant == self.time[step + 1]
+        return step, length, 1.0 if at_the_end else min((instant - float(self.time[step])) / length, 1.0)
+
     @staticmethod
     def _times(values: Doubles, history: Reals) -> Reals:
         return np.asarray(values[..., np.newaxis].astype(history.dtype) * history)
@@ -106,6 +161,17 @@ class Response:
         """Everything as plain dictionaries, lists, numbers and texts, as ``json.dumps`` takes them."""
         result: Dict[str, Any] = plain(self)
         return result
+
+
+def _inside(
+    coeffs: int, displacement: float, velocity: float, sample: float, following: float, fraction: float
+) -> Tuple[float, float, float, float]:
+    """The four histories at a fraction of a step."""
+    state = np.array([(displacement, velocity, sample, sample)], _library.STATE)
+    place = _library.address(state)
+    _library.check(_library.call("inside", coeffs, place, following, fraction, place))
+    accelerations = [_library.call(name, coeffs, place) for name in ("acceleration", "total_acceleration")]
+    return float(state["u"][0]), float(state["v"][0]), accelerations[0], accelerations[1]
 
 
 def chosen_system(

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import dataclasses
-from typing import Any, Dict, List, Literal, NamedTuple, Optional, Tuple
+from typing import Any, Dict, List, NamedTuple, Optional, Tuple
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
@@ -12,100 +12,11 @@ from . import _arrays, _library
 from ._arrays import Doubles
 from ._provenance import plain, provenance
 from ._work import spread
-from .system import Between, Input, System, coefficients, damping_ratio, kinds, one_of
+from .peaks import AT_SAMPLES, QUANTITIES, Part, Peaks, PeaksObject, part_number
+from .system import Between, Input, System, choice, coefficients, damping_ratio, kinds, one_of
 
-Part = Literal["primary", "residual", "maximax"]
-
-_PARTS: Dict[str, int] = {
-    "primary": 0,
-    "residual": _library.constant("RESIDUAL"),
-    "maximax": _library.constant("MAXIMAX"),
-}
-_QUANTITIES = tuple(_library.constant(name) for name in ("DISPLACEMENT", "VELOCITY", "TOTAL_ACCELERATION"))
-_AT_SAMPLES = _library.constant("AT_SAMPLES")
-_EVIDENCE = _library.constant("EVIDENCE")
 _ABRUPT_START, _ABRUPT_END = _library.constant("ABRUPT_START"), _library.constant("ABRUPT_END")
-_FASTEST = _library.constant("FASTEST")
 _A_TASK = 64  # oscillators: two blocks of lanes, 170 KB
-
-
-@dataclasses.dataclass(frozen=True, eq=False)
-class Peaks:
-    """Greatest and least values of a response, and when.
-
-    Attributes
-    ----------
-    high, low : ndarray
-        Greatest and least value; from rest ``high >= 0 >= low``. Infinite where a response overflows, or grows
-        without end.
-    high_time, low_time : ndarray
-        Their instants, counted from the first sample, in the unit of time of `dt`; infinite for a value that is never
-        reached.
-    high_error, low_error : ndarray or None
-        Where evidence was asked for: estimates of what the sampling of the record has cost each. ``high - high_error``
-        is closer to the response to the smooth load.
-    """
-
-    high: Doubles
-    high_time: Doubles
-    low: Doubles
-    low_time: Doubles
-    high_error: Optional[Doubles] = None
-    low_error: Optional[Doubles] = None
-
-    @classmethod
-    def _read(cls, peaks: NDArray[np.void], dt: float, evidence: Optional[NDArray[np.void]]) -> "Peaks":
-        values: List[Doubles] = []
-        for side in ("high", "low"):
-            instant = peaks[side]
-            sample = instant["sample"]
-            never = sample == np.iinfo(np.uint64).max
-            values += [instant["value"].copy(), np.where(never, np.inf, (sample + instant["fraction"]) * dt)]
-        if evidence is not None:
-            values += [evidence["error_high"].copy(), evidence["error_low"].copy()]
-        return cls(*values)
-
-    @property
-    def _high_is_larger(self) -> NDArray[np.bool_]:
-        high, low = np.abs(self.high), np.abs(self.low)
-        return np.asarray((high > low) | ((high == low) & (self.high_time <= self.low_time)))
-
-    @property
-    def value(self) -> Doubles:
-        """The larger in size of the two, with its sign; the earlier where they are equal."""
-        return np.where(self._high_is_larger, self.high, self.low)
-
-    @property
-    def size(self) -> Doubles:
-        """Size of the larger one."""
-        return np.abs(self.value)
-
-    @property
-    def sign(self) -> Doubles:
-        """Sign of the larger one: 1, -1, or 0 where nothing moves."""
-        return np.sign(self.value)
-
-    @property
-    def time(self) -> Doubles:
-        """Instant of the larger one."""
-        return np.where(self._high_is_larger, self.high_time, self.low_time)
-
-    @property
-    def error(self) -> Optional[Doubles]:
-        """Estimated sampling error of the larger one; None where no evidence was asked for."""
-        if self.high_error is None or self.low_error is None:
-            return None
-        return np.where(self._high_is_larger, self.high_error, self.low_error)
-
-    @property
-    def share(self) -> Optional[Doubles]:
-        """Size of the error over that of the value; 0 where both are 0."""
-        error = self.error
-        if error is None:
-            return None
-        size = np.where(error == 0, 1.0, self.size)
-        with np.errstate(divide="ignore", invalid="ignore"):
-            return np.asarray(np.abs(error) / size)
 
 
 @dataclasses.dataclass(frozen=True, eq=False)
@@ -313,8 +224,6 @@ def response_spectrum(
     """
     name, given = one_of(period=period, frequency=frequency, omega=omega)
     ratio = damping_ratio(damping, allow_strong_damping)
-    if part not in _PARTS:
-        raise ValueError(f"part: {part!r} is none of {', '.join(map(repr, _PARTS))}")
     samples = _arrays.records(record, "record")
     rows = _Records(samples, _arrays.double(dt, "dt"), input, between, part, at_samples, evidence)
     oscillators = Oscillators.make(name, given, ratio)
@@ -322,7 +231,7 @@ def response_spectrum(
     found, errors = rows.peaks(oscillators, threads, progress)
     peaks = [
         Peaks._read(found[i].reshape(shape), rows.dt, errors[i].reshape(shape) if evidence else None)
-        for i in range(len(_QUANTITIES))
+        for i in range(len(QUANTITIES))
     ]
     abrupt = errors[0]["abrupt"][:, 0].reshape(samples.shape[:-1]) if evidence and given.size and ratio.size else None
     return Spectrum(
@@ -347,7 +256,7 @@ class _Found(NamedTuple):
 
 def _nothing(shape: Tuple[int, ...]) -> _Found:
     return _Found(
-        [np.zeros(shape, _library.PEAK) for _ in _QUANTITIES], [np.zeros(shape, _library.EVIDENCE) for _ in _QUANTITIES]
+        [np.zeros(shape, _library.PEAK) for _ in QUANTITIES], [np.zeros(shape, _library.EVIDENCE) for _ in QUANTITIES]
     )
 
 
@@ -368,8 +277,8 @@ class _Records:
         self.dt = dt
         self.input: Input = input
         self.between: Between = between
-        self.part = _PARTS[part]
-        self.flags = _AT_SAMPLES if at_samples else 0
+        self.part = part_number(part)
+        self.at_samples = bool(at_samples)
         self.evidence = evidence
         self.n = samples.shape[-1]
         self.at = _library.addresses(samples[..., 0])
@@ -400,29 +309,15 @@ class _Records:
 
     def _block(self, row: int, made: NDArray[np.void]) -> _Found:
         """The peaks of some oscillators under one record."""
-        size = _library.call("peaks_size", made.size)
-        memory = _arrays.aligned(size, _library.call("peaks_alignment"))
-        quantities = np.array(_QUANTITIES, np.intc)
-        made = np.ascontiguousarray(made)
-        place, bad = np.zeros(1, np.uintp), np.zeros(1, np.uintp)
-        status = _library.call("peaks_init", _library.address(memory), size, made.size, _library.address(made),
-                               quantities.size, _library.address(quantities),
-                               self.flags | (_EVIDENCE if self.evidence else 0), _FASTEST,
-                               _library.address(place))  # fmt: skip
-        _library.check(status)
-        status = _library.call("peaks_run", int(place[0]), self.n, int(self.at[row]), _library.address(bad))
+        seen = PeaksObject(made, QUANTITIES, self.at_samples, self.evidence)
+        status, bad = seen.run(self.n, int(self.at[row]))
         self._check(status, row, bad)
-        found = _nothing((made.size,))
-        for quantity, peaks, errors in zip(_QUANTITIES, *found):
-            _library.check(_library.call("peaks_get", int(place[0]), quantity, self.part, _library.address(peaks)))
-            if self.evidence:
-                status = _library.call("peaks_evidence", int(place[0]), quantity, self.part, _library.address(errors))
-                _library.check(status)
-        return found
+        peaks, evidence = zip(*(seen.get(name, self.part) for name in QUANTITIES))
+        return _Found(list(peaks), list(evidence))
 
-    def _check(self, status: int, row: int, bad: NDArray[np.uintp]) -> None:
+    def _check(self, status: int, row: int, bad: int) -> None:
         index = [int(i) for i in np.unravel_index(row, self.samples.shape[:-1])]
-        _library.check(status, f"at sample {bad[0]}" + (f" of record {index}" if index else ""))
+        _library.check(status, f"at sample {bad}" + (f" of record {index}" if index else ""))
 
     def _follow_base(self, result: _Found, rigid: NDArray[np.intp], damping: Doubles) -> None:
         """Rigid oscillators have no coefficients."""
@@ -433,15 +328,16 @@ class _Records:
         input_number, _ = kinds(self.input, self.between)
         omega, ratio = np.full(rigid.size, np.inf), damping[rigid]
         for row in range(self.at.size):
-            for number, peaks, errors in zip(_QUANTITIES, *result):
+            for name, peaks, errors in zip(QUANTITIES, *result):
                 found, cost = np.zeros(rigid.size, _library.PEAK), np.zeros(rigid.size, _library.EVIDENCE)
                 bad = np.zeros(1, np.uintp)
                 places = [_library.address(found)] + ([_library.address(cost)] if self.evidence else [])
                 status = _library.call("spectrum_evidence" if self.evidence else "spectrum", self.n, self.dt,
                                        int(self.at[row]), input_number, rigid.size, _library.address(omega),
-                                       _library.address(ratio), number, self.flags | self.part, *places,
+                                       _library.address(ratio), choice(name, QUANTITIES, "quantity"),
+                                       (AT_SAMPLES if self.at_samples else 0) | self.part, *places,
                                        _library.address(bad))  # fmt: skip
-                self._check(status, row, bad)
+                self._check(status, row, int(bad[0]))
                 peaks[row, rigid] = found
                 errors[row, rigid] = cost
 

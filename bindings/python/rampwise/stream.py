@@ -9,17 +9,14 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from . import _arrays, _library
+from ._output import Output, output_struct
 from ._precision import Precision, arithmetic
 from ._provenance import provenance
-from .spectrum import Peaks
+from .peaks import Peaks
 from .system import Between, Input, System, choice, coefficients
 
-Output = Union[str, Sequence[float]]
 Span = Literal["since start", "since reset", "in window"]
 
-_QUANTITIES = (
-    "displacement", "velocity", "acceleration", "total_acceleration", "spring_force", "damper_force", "load",
-)  # fmt: skip
 _STARTS = ("at rest", "settled")
 _MISSING = {"bridge": "GAP_BRIDGE", "hold": "GAP_HOLD", "refuse": "GAP_REFUSE"}
 _BEYOND = {"restart": "GAP_RESTART", "refuse": "GAP_REFUSE"}
@@ -116,20 +113,6 @@ class Block(NamedTuple):
     events: List[Event]
 
 
-def _output(output: Output) -> Tuple[str, NDArray[np.void]]:
-    """Its name and struct."""
-    struct = np.zeros((), _library.OUTPUT)
-    if isinstance(output, str):
-        struct["quantity"] = choice(output, _QUANTITIES, "outputs")
-        return output, struct
-    weights = _arrays.doubles(output, "outputs")
-    if weights.shape != (4,):
-        raise ValueError(f"outputs: four weights over u, v, p and p - p_before are needed, not shape {weights.shape}")
-    struct["row"] = weights
-    struct["quantity"] = _library.constant("WEIGHTED")
-    return "weighted", struct
-
-
 def _option(value: str, names: Dict[str, str], name: str) -> int:
     if value not in names:
         raise ValueError(f"{name}: {value!r} is none of {', '.join(map(repr, names))}")
@@ -223,7 +206,7 @@ class Stream:
             raise ValueError(f"system: one is needed, not shape {made.shape}")
         if isinstance(outputs, str):
             raise TypeError(f"outputs: a sequence is needed, such as [{outputs!r}]")
-        wanted = [_output(output) for output in outputs]
+        wanted = [output_struct(output) for output in outputs]
         if len(wanted) > _library.constant("STREAM_OUTPUTS"):
             raise ValueError(f"outputs: {_library.constant('STREAM_OUTPUTS')} at most, not {len(wanted)}")
         options = np.zeros(1, _library.STREAM_OPTIONS)
@@ -399,7 +382,7 @@ class Stream:
         -------
         Watch
         """
-        name, struct = _output(output)
+        name, struct = output_struct(output)
         plain = [level if isinstance(level, Level) else Level(_arrays.double(level, "levels")) for level in levels]
         watch = Watch(self, name, struct, plain, on_trip, _arrays.whole(window, "window", 0),
                       _arrays.whole(capacity, "capacity", 1))  # fmt: skip
@@ -414,20 +397,11 @@ class Stream:
 
     def save(self) -> bytes:
         """All of the stream but its watches as bytes of the library's own form, which C reads too."""
-        return self._saved("stream", self._at)
+        return _library.saved("stream", self._at, self._numbers.suffix)
 
     def resume(self, saved: bytes) -> None:
         """Goes on where `save` was called on a stream of the same kind."""
-        self._resume("stream", self._at, saved)
-
-    def _saved(self, kind: str, at: int) -> bytes:
-        saved = np.zeros(self._numbers.call(kind + "_saved_size", at), np.uint8)
-        _library.check(self._numbers.call(kind + "_save", at, _library.address(saved), saved.size))
-        return saved.tobytes()
-
-    def _resume(self, kind: str, at: int, saved: bytes) -> None:
-        held = np.frombuffer(saved, np.uint8)
-        _library.check(self._numbers.call(kind + "_resume", at, _library.address(held), held.size))
+        _library.resume("stream", self._at, saved, self._numbers.suffix)
 
     def __getstate__(self) -> Dict[str, Any]:
         return {"coeffs": self._coeffs, "options": self._options, "kept": self._kept, "saved": self.save(),
@@ -438,7 +412,7 @@ class Stream:
         for name, struct, levels, window, capacity, saved in held["watches"]:
             watch = Watch(self, name, struct, levels, None, window, capacity)
             _library.check(self._numbers.call("stream_attach", self._at, watch._at))
-            self._resume("watch", watch._at, saved)
+            watch.resume(saved)
             self._watches.append(watch)
         self.resume(held["saved"])
 
@@ -525,11 +499,11 @@ class Watch:
 
     def save(self) -> bytes:
         """All of the watch as bytes of the library's own form."""
-        return self._stream._saved("watch", self._at)
+        return _library.saved("watch", self._at, self._numbers.suffix)
 
     def resume(self, saved: bytes) -> None:
         """Goes on where `save` was called on a watch of the same levels, window and capacity."""
-        self._stream._resume("watch", self._at, saved)
+        _library.resume("watch", self._at, saved, self._numbers.suffix)
 
     def _kept(self) -> Tuple[Any, ...]:
         return self.output, self._struct, self.levels, self._window_steps, self._events.size, self.save()

@@ -9,7 +9,7 @@ matplotlib.use("Agg")
 
 # RAMPWISE_SEED gives other random cases; without it they are the same every time.
 hypothesis.settings.register_profile(
-    "rampwise", derandomize="RAMPWISE_SEED" not in os.environ, deadline=None, max_examples=25, database=None,
+    "rampwise", derandomize="RAMPWISE_SEED" not in os.environ, deadline=None, max_examples=15, database=None,
     print_blob=True,
 )  # fmt: skip
 hypothesis.settings.load_profile("rampwise")

@@ -6,13 +6,14 @@ import threading
 
 import numpy as np
 import pytest
-from bits import same_bits, same_response, same_spectrum
+from bits import PEAK_FIELDS, QUANTITIES, same_bits, same_response, same_spectrum
 from hypothesis import given
 from hypothesis import strategies as st
 
 import rampwise
 
 RECORD = np.random.default_rng(13).uniform(-1, 1, 500)
+SKID = rampwise.System.natural(frequency=[2.0, 3.0], damping=0.05)
 SYSTEM = rampwise.System.natural(period=np.linspace(0.05, 3, 70), damping=0.05)
 
 
@@ -118,8 +119,63 @@ def test_stopped_oscillators_leave_the_others():
     assert oscillators.stopped == 1
     assert np.isnan(histories.displacement[0, -1]) and np.isfinite(histories.displacement[1]).all()
     assert np.isnan(oscillators.read().acceleration[0])
-    with pytest.raises(ValueError, match="stopped"):
-        pickle.dumps(oscillators)
+    again = pickle.loads(pickle.dumps(oscillators))
+    oscillators.run(np.ones(10))
+    again.run(np.ones(10))
+    assert again.stopped == 1
+    same_bits(again.read().displacement, oscillators.read().displacement)
+    same_bits(again.largest, oscillators.largest)
+
+
+@pytest.mark.parametrize("precision", ["double", "single"])
+def test_saved_banks(precision):
+    first, second = bank(precision=precision), bank(precision=precision)
+    first.run(RECORD[:200])
+    second.resume(first.save())
+    first.run(RECORD[200:])
+    second.run(RECORD[200:])
+    np.testing.assert_array_equal(first.state, second.state)
+    with pytest.raises(ValueError, match="^saved: "):
+        rampwise.Bank(SKID, 0.01, input="base acceleration").resume(first.save())
+
+
+@given(st.lists(st.integers(1, 499), max_size=4), st.sampled_from(["primary", "residual", "maximax"]))
+def test_peaks_in_blocks_are_spectra(cuts, part):
+    """Through a copy by pickle after every block."""
+    expected = rampwise.response_spectrum(RECORD, 0.01, frequency=[2.0, 3.0], part=part, evidence=True)
+    seen = rampwise.PeakBank(SKID, 0.01, input="base acceleration", quantities=QUANTITIES, evidence=True)
+    for block in np.split(RECORD, sorted(set(cuts))):
+        seen.put(block)
+        seen = pickle.loads(pickle.dumps(seen))
+    for quantity in QUANTITIES:
+        for field in PEAK_FIELDS + ("high_error", "low_error"):
+            same_bits(getattr(seen.peaks(quantity, part), field), getattr(getattr(expected, quantity), field))
+
+
+def test_peaks_from_states():
+    """What a bank has reached is sample 0 of the peaks; and a start is a start."""
+    oscillators = rampwise.Bank(SKID, 0.01, input="base acceleration")
+    oscillators.run(RECORD[:100])
+    seen = rampwise.PeakBank(SKID, 0.01, input="base acceleration", at_samples=True)
+    seen.start(oscillators.state)
+    first = np.abs(oscillators.state["u"])
+    seen.put(RECORD[100:])
+    histories = oscillators.run(RECORD[100:], histories=[0, 1])
+    same_bits(seen.peaks("displacement").size, np.maximum(first, np.abs(histories.displacement).max(axis=1)))
+    seen.start()
+    seen.put(RECORD)
+    expected = rampwise.response_spectrum(RECORD, 0.01, frequency=[2.0, 3.0], at_samples=True)
+    same_bits(seen.peaks("total_acceleration").value, expected.total_acceleration.value)
+    for kind, text, call in (
+        (ValueError, "quantity: ", lambda: seen.peaks("velocity")),
+        (ValueError, "part: ", lambda: seen.peaks("displacement", "late")),
+        (ValueError, "quantities: ", lambda: rampwise.PeakBank(SKID, 0.1, input="force", quantities=("speed",))),
+        (ValueError, "samples: .* \\(at sample 1 of this block\\)", lambda: seen.put([0.0, np.nan])),
+        (TypeError, "state: ", lambda: seen.start(np.zeros(2))),
+        (ValueError, "samples: ", lambda: rampwise.PeakBank(SKID, 0.1, input="force").peaks("displacement")),
+    ):
+        with pytest.raises(kind, match="^" + text):
+            call()
 
 
 def test_bank_refusals():

@@ -52,7 +52,8 @@ def test_nothing_but_the_library_knows_ctypes():
 
 
 def loaded(directory, **environment):
-    return subprocess.run([sys.executable, "-c", "import rampwise; print(rampwise.__file__, rampwise.library_version)"],
+    said = "rampwise.__file__, rampwise.library_version, *{'scipy', 'matplotlib'} & set(sys.modules)"
+    return subprocess.run([sys.executable, "-c", f"import sys, rampwise; print({said})"],
                           cwd=directory, capture_output=True, text=True,
                           env={**os.environ, "PYTHONPATH": str(directory), **environment})  # fmt: skip
 
@@ -94,3 +95,4 @@ def test_a_wheel_carries_its_library(tmp_path):
     result = loaded(tmp_path / "installed", RAMPWISE_LIBRARY="")
     assert result.returncode == 0, result.stderr
     assert result.stdout.startswith(str(tmp_path / "installed"))
+    assert result.stdout.strip().endswith(rampwise.library_version)  # and nothing loaded that is not needed yet

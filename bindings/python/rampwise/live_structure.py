@@ -1,0 +1,312 @@
+"""A structure's oscillators under records and live data, with equipment."""
+
+from __future__ import annotations
+
+import dataclasses
+from typing import Any, Dict, Mapping, NamedTuple, Optional, Tuple
+
+import numpy as np
+from numpy.typing import ArrayLike, NDArray
+
+from . import _arrays, _library
+from ._arrays import Doubles
+from ._provenance import plain, provenance
+from .bank import Histories
+from .peaks import Peaks
+from .system import Between, System, coefficients
+
+_FASTEST = _library.constant("FASTEST")
+_DISPLACEMENT, _TOTAL_ACCELERATION = _library.constant("DISPLACEMENT"), _library.constant("TOTAL_ACCELERATION")
+
+
+class Equipment(NamedTuple):
+    """Light equipment on a point of a structure, which does not feel it.
+
+    Attributes
+    ----------
+    on : str
+        Name of the output that is the total acceleration of the point.
+    system : System
+        One oscillator or, of any shape, many.
+    """
+
+    on: str
+    system: System
+
+
+class Oscillators(NamedTuple):
+    """A structure as oscillators under forces: the arrays of the library's plan."""
+
+    system: System  # (modes,)
+    load: Doubles  # (modes, inputs)
+    on_displacement: Doubles  # (modes, outputs)
+    on_velocity: Doubles
+    on_acceleration: Doubles
+    on_input: Doubles  # (inputs, outputs)
+
+    def plan(self, coeffs: NDArray[np.void]) -> NDArray[np.void]:
+        """The library's struct; it holds while this tuple and the coefficients live."""
+        plan = np.zeros(1, _library.MODES_PLAN)
+        _library.call("modes_plan_init", _library.address(plan))
+        plan["modes"], plan["inputs"] = self.load.shape
+        plan["outputs"] = self.on_input.shape[1]
+        plan["c"] = _library.address(coeffs)
+        for name in self._fields[1:]:
+            plan[name] = _library.address(getattr(self, name))
+        return plan
+
+
+class StructureBlock(NamedTuple):
+    """What samples gave.
+
+    Attributes
+    ----------
+    values : ndarray, shape (n, outputs)
+        The outputs at each sample.
+    equipment : dict of Histories
+        By the names of the equipment: motion relative to its point, and the total acceleration, of shape
+        ``(n,) + system.shape``. Empty where it was not asked for.
+    """
+
+    values: Doubles
+    equipment: Dict[str, Histories]
+
+
+@dataclasses.dataclass(frozen=True, eq=False)
+class StructureResponse:
+    """Histories and true peaks of a structure's outputs under a record; ``response["roof"]`` is one history.
+
+    Attributes
+    ----------
+    time : ndarray, shape (n,)
+        Times of the samples.
+    outputs : tuple of str
+        Names of the outputs.
+    values : ndarray, shape (n, outputs)
+        Their histories.
+    peaks : dict of Peaks
+        By the names of the outputs: true between the samples. Empty where they were not asked for.
+    equipment : dict of Histories
+        By the names of the equipment, of shape ``(n,) + system.shape``.
+    equipment_displacement, equipment_acceleration : dict of Peaks
+        Of the stretch between point and equipment, and of its total acceleration; of the shape of its system.
+    provenance : dict
+        Version, edition of the arithmetic, options.
+    """
+
+    time: Doubles
+    outputs: Tuple[str, ...]
+    values: Doubles
+    peaks: Dict[str, Peaks]
+    equipment: Dict[str, Histories]
+    equipment_displacement: Dict[str, Peaks]
+    equipment_acceleration: Dict[str, Peaks]
+    provenance: Dict[str, Any]
+
+    def __getitem__(self, name: str) -> Doubles:
+        """The history of one output, shape (n,)."""
+        if name not in self.outputs:
+            raise KeyError(f"{name!r} is none of the outputs {', '.join(map(repr, self.outputs))}")
+        return self.values[:, self.outputs.index(name)]
+
+    def to_dict(self) -> Dict[str, Any]:
+        """Everything as plain dictionaries, lists, numbers and texts, as ``json.dumps`` takes them."""
+        result: Dict[str, Any] = plain(self)
+        return result
+
+
+class LiveStructure:
+    """A structure on samples as they come, made by `Structure.live`.
+
+    It begins at rest under the first sample. However a record is cut into blocks, the bits are the same. It belongs to
+    one thread at a time; it can be pickled, and goes on where it was with the same bits.
+    """
+
+    def __init__(
+        self,
+        oscillators: Oscillators,
+        dt: float,
+        outputs: Tuple[str, ...],
+        between: Between,
+        peaks: bool,
+        equipment: Mapping[str, Equipment],
+    ) -> None:
+        for name, piece in equipment.items():
+            if piece.on not in outputs:
+                raise ValueError(f"equipment: {name!r} stands on {piece.on!r}, which is none of the outputs")
+        made = coefficients(oscillators.system, _arrays.double(dt, "dt"), input="force", between=between)
+        options = {"dt": float(dt), "between": between, "peaks": bool(peaks), "outputs": list(outputs)}
+        self._make(oscillators, made, options, dict(equipment))
+
+    def _make(
+        self,
+        oscillators: Oscillators,
+        made: NDArray[np.void],
+        options: Dict[str, Any],
+        equipment: Dict[str, Equipment],
+    ) -> None:
+        self._oscillators, self._coeffs, self._options, self._equipment = oscillators, made, options, equipment
+        self._started = False
+        outputs, pieces = options["outputs"], equipment.values()
+        systems = np.concatenate([np.zeros(0, _library.SYSTEM)] + [_structs(piece.system) for piece in pieces])
+        points = np.concatenate([np.zeros(0, np.uintp)] + [
+            np.full(piece.system.mass.size, outputs.index(piece.on), np.uintp) for piece in pieces
+        ])  # fmt: skip
+        self._points = points
+        plan = oscillators.plan(made)
+        plan["peaks"], plan["instructions"] = options["peaks"], _FASTEST
+        plan["equipment_count"] = points.size
+        plan["equipment"], plan["point"] = _library.address(systems), _library.address(points)
+        size = _library.call("modes_size", _library.address(plan))
+        self._memory = _arrays.aligned(size, _library.call("modes_alignment"))
+        place = np.zeros(1, np.uintp)
+        status = _library.call("modes_init", _library.address(self._memory), size, _library.address(plan),
+                               _library.address(place))  # fmt: skip
+        _library.check(status, count="outputs")
+        self._at = int(place[0])
+
+    @property
+    def outputs(self) -> Tuple[str, ...]:
+        """Names of the outputs."""
+        return tuple(self._options["outputs"])
+
+    @property
+    def provenance(self) -> Dict[str, Any]:
+        """Version, edition of the arithmetic, options."""
+        return provenance(**self._options)
+
+    def start(self) -> None:
+        """Begins anew: at rest under the next sample, which is sample 0."""
+        self._started = False
+
+    def put(self, samples: ArrayLike, *, equipment_histories: bool = False) -> StructureBlock:
+        """The next samples.
+
+        Parameters
+        ----------
+        samples : array_like, shape (n,) or (n, inputs)
+            Instants along the first axis; (n,) where there is one input.
+        equipment_histories : bool
+            Whether the motion of the equipment is wanted.
+
+        Returns
+        -------
+        StructureBlock
+
+        Raises
+        ------
+        ValueError
+            A sample is not finite: nothing was taken. An output or a mode overflows: the samples before it were taken.
+        """
+        block = self._frames(samples)
+        values = np.zeros((len(block), len(self.outputs)))
+        histories = self._room(len(block)) if equipment_histories else None
+        first = 0 if self._started else 1
+        if first:
+            self._begin(block, values, histories)
+        bad = np.zeros(1, np.uintp)
+        out = np.zeros(1, _library.HISTORY)
+        for field, history in zip(("u", "v", "a", "total"), histories or ()):
+            out[field] = _library.address(history[first:])
+        status = _library.call("equipment_run", self._at, len(block) - first, _library.address(block[first:]),
+                               _library.address(values[first:]), _library.address(out) if histories else None,
+                               _library.address(bad))  # fmt: skip
+        _library.check(status, f"at sample {first + int(bad[0])} of this block", sample="samples", overflow="samples")
+        return StructureBlock(values, self._split(histories) if histories else {})
+
+    def _frames(self, samples: ArrayLike) -> Doubles:
+        given = _arrays.doubles(samples, "samples")
+        inputs = self._oscillators.load.shape[1]
+        block = given[:, np.newaxis] if given.ndim == 1 and inputs == 1 else given
+        if block.ndim != 2 or block.shape[1] != inputs:
+            raise ValueError(f"samples: shape {given.shape}, where {'(n,) or ' * (inputs == 1)}(n, {inputs}) is needed")
+        if len(block) == 0:
+            raise ValueError("samples: there are no samples")
+        return np.asarray(_arrays.in_order(block))
+
+    def _room(self, samples: int) -> Histories:
+        return Histories(*(np.zeros((samples, self._points.size)) for _ in Histories._fields))
+
+    def _begin(self, block: Doubles, values: Doubles, histories: Optional[Histories]) -> None:
+        """Sample 0. The whole block is looked at first, so that a bad one has changed nothing."""
+        wrong = np.flatnonzero(~np.isfinite(block).all(axis=1))
+        if wrong.size > 0:
+            status = _library.constant("ERROR_SAMPLE")
+            _library.check(status, f"at sample {wrong[0]} of this block", sample="samples")
+        status = _library.call("modes_start", self._at, _library.address(block))
+        _library.check(status, "at sample 0 of this block", overflow="samples")
+        _library.check(_library.call("modes_read", self._at, _library.address(values)))
+        if histories is not None:  # at rest against its point
+            histories.acceleration[0] = -values[0][self._points]
+        self._started = True
+
+    def _split(self, flat: Histories) -> Dict[str, Histories]:
+        """Histories of all pieces, by the names of the equipment."""
+        found, first = {}, 0
+        for name, piece in self._equipment.items():
+            last = first + piece.system.mass.size
+            found[name] = Histories(*(
+                history[:, first:last].reshape(history.shape[:1] + piece.system.shape) for history in flat
+            ))  # fmt: skip
+            first = last
+        return found
+
+    def peaks(self) -> Dict[str, Peaks]:
+        """The peaks of the outputs from sample 0 to the present, true between the samples, by name."""
+        found = np.zeros(len(self.outputs), _library.PEAK)
+        _library.check(self._fed("modes_peaks", _library.address(found)), quantity="peaks")
+        return {name: Peaks._read(found[i, ...], self._options["dt"], None) for i, name in enumerate(self.outputs)}
+
+    def equipment_displacement(self) -> Dict[str, Peaks]:
+        """Peaks of the stretch between point and equipment, by name, of the shape of each system."""
+        return self._equipment_peaks(_DISPLACEMENT)
+
+    def equipment_acceleration(self) -> Dict[str, Peaks]:
+        """Peaks of the total acceleration of equipment, by name, of the shape of each system."""
+        return self._equipment_peaks(_TOTAL_ACCELERATION)
+
+    def _equipment_peaks(self, quantity: int) -> Dict[str, Peaks]:
+        flat = np.zeros(self._points.size, _library.PEAK)
+        if flat.size > 0:
+            _library.check(self._fed("equipment_peaks", quantity, _library.address(flat)), quantity="peaks")
+        found, first = {}, 0
+        for name, piece in self._equipment.items():
+            last = first + piece.system.mass.size
+            found[name] = Peaks._read(flat[first:last].reshape(piece.system.shape), self._options["dt"], None)
+            first = last
+        return found
+
+    def _fed(self, name: str, *arguments: Any) -> int:
+        self._need_samples()
+        return int(_library.call(name, self._at, *arguments))
+
+    def _need_samples(self) -> None:
+        if not self._started:
+            raise ValueError("samples: none was put yet")
+
+    def save(self) -> bytes:
+        """State and peaks as bytes of the library's own form, after a sample at least."""
+        self._need_samples()
+        return _library.saved("modes", self._at)
+
+    def resume(self, saved: bytes) -> None:
+        """Goes on where `save` was called on a structure with the same outputs and equipment."""
+        _library.resume("modes", self._at, saved)
+        self._started = True
+
+    def __getstate__(self) -> Dict[str, Any]:
+        return {"oscillators": self._oscillators, "coeffs": self._coeffs, "options": self._options,
+                "equipment": self._equipment, "saved": self.save() if self._started else None}  # fmt: skip
+
+    def __setstate__(self, held: Dict[str, Any]) -> None:
+        self._make(held["oscillators"], held["coeffs"], held["options"], held["equipment"])
+        if held["saved"] is not None:
+            self.resume(held["saved"])
+
+
+def _structs(system: System) -> NDArray[np.void]:
+    """The library's structs of systems, flat."""
+    structs = np.zeros(system.mass.size, _library.SYSTEM)
+    for field in ("mass", "damper", "stiffness"):
+        structs[field] = getattr(system, field).reshape(-1)
+    return structs
