@@ -35,11 +35,10 @@ struct equipment_core {
     twofold *sums;                     /* [inputs][4]: while they are being made */
     rampwise_peak *peak[LOOKED_AT];    /* [count], where peaks are wanted */
     double *floor_high[LOOKED_AT], *floor_low[LOOKED_AT];
-    envelope *envelope; /* [count]; omega is 0 where there is none */
-    double *rest_weight,
-        *rest; /* [groups][LANES][width], [TILES][width]: what modes do to it inside a step */
-    uint32_t *tiles[LOOKED_AT];  /* [count]: bits of those that may hold a peak */
-    uint32_t *first[LOOKED_AT];  /* [count]: the step that promises most */
+    envelope *envelope;                          /* [count]; omega is 0 where there is none */
+    double *rest_weight, *rest_tile, *rest_step; /* [groups][LANES][width], [TILES][width], [TILE][width] */
+    uint32_t *tiles[LOOKED_AT];                  /* [count]: bits of those that may hold a peak */
+    uint32_t *first[LOOKED_AT];                  /* [count]: the step that promises most */
     unsigned char *wanted;       /* [count]: bits of quantities that are looked at in a step */
     double *u_inside, *v_inside; /* [count]: where the next piece of it begins */
     uint32_t first_tiles;        /* bits of those where pieces have it */
@@ -78,7 +77,8 @@ void rampwise_equipment_take_(rampwise_modes *m, const rampwise_modes_plan *plan
         return;
     e->envelope = rampwise_room_take_(r, count, sizeof *e->envelope);
     e->rest_weight = rampwise_room_take_(r, m->groups * LANES, row);
-    e->rest = rampwise_room_take_(r, TILES, row);
+    e->rest_tile = rampwise_room_take_(r, TILES, row);
+    e->rest_step = rampwise_room_take_(r, TILE, row);
     e->wanted = rampwise_room_take_(r, count, 1);
     e->u_inside = rampwise_room_take_(r, 1, row);
     e->v_inside = rampwise_room_take_(r, 1, row);
@@ -138,22 +138,45 @@ static void add_inputs(const rampwise_modes *m, size_t j, const cascade *row)
     }
 }
 
+/* A mode that swings, seen by a piece: w, zeta, and w/omega. */
+typedef struct swing {
+    double w, zeta, ratio;
+} swing;
+
+/* Its motion y = Re(Y exp(s t)) has |Y| at most 1/sqrt(1 - zeta) of its energy bound, and the piece a motion
+   Re(-Y exp(s t)/D) under it, D = s^2 + c s + k: k e moves with s (s + c)/D, and k x with k/D. Beside it goes the free
+   motion that makes the sum begin at rest. */
+static double detuned(const swing *mode, const envelope *to, double h, double ends)
+{
+    const double w = mode->w, zeta = mode->zeta, r = mode->ratio, root = sqrt(1 - zeta * zeta);
+    const double S = to->ratio * to->omega, k = to->omega * to->omega;
+    const double D = hypot(w * w * (2 * zeta * zeta - 1) - S * zeta * w + k, root * w * (S - 2 * zeta * w));
+    const double beside = (1 + sqrt(1 + r * r)) / (D * sqrt(1 - zeta));
+    const double inverse = zeta + sqrt(1 + zeta * zeta);
+    const double off_mean = fmin(0.5 * h * w * w * inverse * inverse, w + 2 / h);
+    const double by_e = beside * w * hypot(S - zeta * w, root * w) + (1 + to->ratio) * off_mean / to->omega +
+                        to->ratio * fmin(2, w * h);
+    return fmin(by_e, beside * k + ends);
+}
+
 /* What a free vibration of mode j, with the energy bound 1 of its q'', can do to a piece within one step, beyond what
-   the values of y at its ends tell; envelope_of below says how. The smaller of two bounds: for a mode that
-   hardly moves in a step, and for any. */
+   the values of y at its ends tell; envelope_of below says how. The smallest of several bounds. */
 static double rest_of(const rampwise_modes *m, const envelope *to, const rampwise_coeffs *mode, double on_u,
                       double on_v)
 {
     const double h = m->dt, angle = to->omega * h, S = to->ratio * to->omega;
     const double stiffness = -mode->acceleration[0], damping = -mode->acceleration[1];
-    const double root = sqrt(fmax(stiffness, 0.25 / (h * h)));
-    const double slow = (on_u + on_v * root) * to->per_stiffness * h / to->omega * (1.5 + S * h + to->ratio);
+    const double w = sqrt(fmax(stiffness, 0.25 / (h * h)));
+    const double slow = (on_u + on_v * w) * to->per_stiffness * h / to->omega * (1.5 + S * h + to->ratio);
     if (!(stiffness >= 0.25 / (h * h) && damping >= 0))
         return slow;
+    const swing swinging = {w, 0.5 * damping / w, w / to->omega};
     const double inverse = rampwise_modes_inverse_(stiffness, damping), turned = sqrt(inverse) * stiffness;
-    const double driven = 2 * angle * (to->omega / root) * (1 + to->ratio) * (1 + damping / root);
-    const double ends = 2 + 2 / angle + to->ratio * (2 + root / to->omega + 2 / angle);
-    return fmin(slow, (on_u + on_v * turned) * inverse * to->per_stiffness * (driven + ends));
+    const double ends = 2 + 2 / angle + to->ratio * (2 + swinging.ratio + 2 / angle);
+    double size = 2 * angle / swinging.ratio * (1 + to->ratio) * (1 + 2 * swinging.zeta) + ends;
+    if (swinging.zeta < 1)
+        size = fmin(size, detuned(&swinging, to, h, ends));
+    return fmin(slow, (on_u + on_v * turned) * inverse * to->per_stiffness * size);
 }
 
 static void fill_envelope(rampwise_modes *m, const rampwise_modes_plan *plan, size_t i)
@@ -322,40 +345,44 @@ static double looked_at(const rampwise_coeffs *c, int q, double u, double v)
    is taken as it is: y = F' with |F| at most (1 + 2 zeta) |y|/omega_j drives x + integral of F to no more than 2 h (omega + c) |F|,
    and e differs from that by y/k now and the free motion from y/k and its mean slope. In the end x = e - y/k
    and the total acceleration is y - (k e + c e') + c y'/k. */
-static void envelope_of(const rampwise_modes *m, size_t i, size_t k, double u, double v, reach *r)
+static void envelope_of(const rampwise_modes *m, size_t i, size_t k, double u, double v, double excess,
+                        double rest, reach *r)
 {
     const equipment_core *const e = m->equipment;
     const envelope *const to = &e->envelope[i];
     const double now = m->output[k * m->width + e->point[i]],
                  next = m->output[(k + 1) * m->width + e->point[i]];
-    const double excess = rampwise_modes_tile_excess_(m, k / TILE, e->point[i]);
     const double high = (now > next ? now : next) + excess, low = (now < next ? now : next) - excess;
     /* a jump is part of the excess, not of the rise */
     const double jump = m->between == RAMPWISE_HOLD ? excess : 0, rise = fabs(next - now) + jump;
     const double angle = to->omega * m->dt, slope = (next - now) * to->per_stiffness / m->dt;
     const double from_u = u + now * to->per_stiffness, from_v = (v + slope) / to->omega;
     const double driven = rise * to->ratio + jump / angle;
-    const double size = 1.0001 * (sqrt(from_u * from_u + from_v * from_v) + driven * to->per_stiffness) +
-                        e->rest[k / TILE * e->width + i];
+    const double size =
+        1.0001 * (sqrt(from_u * from_u + from_v * from_v) + driven * to->per_stiffness) + rest;
     const double total = size * to->as_total + 1.0001 * to->ratio * rise / angle;
     *r = (reach){{size - low * to->per_stiffness, total + high},
                  {-size - high * to->per_stiffness, low - total}};
 }
 
-/* One piece in the step after k. */
-static void reach_of(const rampwise_modes *m, size_t i, size_t k, reach *r)
+/* One piece in the step after k; by the bounds of its tile, or, in a tile that is looked at, by its own. */
+static void reach_of(const rampwise_modes *m, size_t i, size_t k, int looking, reach *r)
 {
     const equipment_core *const e = m->equipment;
     const rampwise_coeffs *const c = &e->c[i];
     double u[2], v[2];
+    const double excess_of_y = looking ? rampwise_modes_step_excess_(m, k % TILE, e->point[i])
+                                       : rampwise_modes_tile_excess_(m, k / TILE, e->point[i]);
+    const double rest =
+        looking ? e->rest_step[k % TILE * e->width + i] : e->rest_tile[k / TILE * e->width + i];
     state_at(e, i, k, &u[0], &v[0]);
     state_at(e, i, k + 1, &u[1], &v[1]);
     *r = (reach){{INFINITY, INFINITY}, {-INFINITY, -INFINITY}};
     if (e->envelope[i].omega > 0)
-        envelope_of(m, i, k, u[0], v[0], r);
+        envelope_of(m, i, k, u[0], v[0], excess_of_y, rest, r);
     const double y[2] = {m->output[k * m->width + e->point[i]], m->output[(k + 1) * m->width + e->point[i]]};
     const stretch_bound b = {fmax(fabs(u[0]), fabs(u[1])), fabs(u[1] - u[0]), fmax(fabs(y[0]), fabs(y[1])),
-                             fabs(y[1] - y[0]), rampwise_modes_tile_excess_(m, k / TILE, e->point[i])};
+                             fabs(y[1] - y[0]), excess_of_y};
     for (int q = 0; q < LOOKED_AT; ++q) {
         const double excess = 1.0001 * excess_of(c, q, &b);
         const double z[2] = {looked_at(c, q, u[0], v[0]), looked_at(c, q, u[1], v[1])};
@@ -370,13 +397,23 @@ static int may_count(const equipment_core *e, size_t i, int q, const reach *r)
              r->low[q] >= fmin(e->floor_low[q][i], e->peak[q][i].low.value));
 }
 
+static void bound_rest(const rampwise_modes *m, size_t g, size_t n, const double *largest, double *rest)
+{
+    const equipment_core *const e = m->equipment;
+    if (g == 0)
+        memset(rest, 0, n * e->width * sizeof *rest);
+    m->k->accumulate(modes_in(m, g), n, largest, LANES, e->rest_weight + g * LANES * e->width, e->width,
+                     rest);
+}
+
 void rampwise_equipment_bound_group_(rampwise_modes *m, size_t g, size_t tiles, const double *largest)
 {
-    equipment_core *const e = m->equipment;
-    if (g == 0)
-        memset(e->rest, 0, tiles * e->width * sizeof *e->rest);
-    m->k->accumulate(modes_in(m, g), tiles, largest, LANES, e->rest_weight + g * LANES * e->width, e->width,
-                     e->rest);
+    bound_rest(m, g, tiles, largest, m->equipment->rest_tile);
+}
+
+void rampwise_equipment_bound_steps_(rampwise_modes *m, size_t g, size_t n, const double *largest)
+{
+    bound_rest(m, g, n, largest, m->equipment->rest_step);
 }
 
 static void raise_floors(const rampwise_modes *m, size_t n, size_t i, int q)
@@ -404,7 +441,7 @@ static void prepare_piece(rampwise_modes *m, size_t n, size_t i)
     }
     for (size_t k = 0; k < n; ++k) {
         reach r;
-        reach_of(m, i, k, &r);
+        reach_of(m, i, k, 0, &r);
         for (int q = 0; q < LOOKED_AT; ++q) {
             if (!may_count(e, i, q, &r))
                 continue;
@@ -428,13 +465,13 @@ void rampwise_equipment_prepare_(rampwise_modes *m, size_t n)
 }
 
 /* Whether piece i may count for q in the step after k, in this pass. */
-static int is_wanted(const rampwise_modes *m, size_t i, int q, size_t k, int pass)
+static int is_wanted(const rampwise_modes *m, size_t i, int q, size_t k, int pass, int looking)
 {
     const equipment_core *const e = m->equipment;
     reach r;
     if ((e->tiles[q][i] >> k / TILE & 1) == 0 || (e->first[q][i] == k) != (pass == 0))
         return 0;
-    reach_of(m, i, k, &r);
+    reach_of(m, i, k, looking, &r);
     return may_count(e, i, q, &r);
 }
 
@@ -446,7 +483,7 @@ int rampwise_equipment_may_count_(const rampwise_modes *m, size_t t, size_t n, i
     for (size_t i = 0; i < e->count; ++i)
         for (int q = 0; q < LOOKED_AT; ++q)
             for (size_t k = t * TILE; k < t * TILE + n; ++k)
-                if (is_wanted(m, i, q, k, pass))
+                if (is_wanted(m, i, q, k, pass, 0))
                     return 1;
     return 0;
 }
@@ -458,7 +495,7 @@ int rampwise_equipment_want_(rampwise_modes *m, size_t k, int pass)
     for (size_t i = 0; i < e->count; ++i) {
         e->wanted[i] = 0;
         for (int q = 0; q < LOOKED_AT; ++q)
-            e->wanted[i] |= (unsigned char)(is_wanted(m, i, q, k, pass) << q);
+            e->wanted[i] |= (unsigned char)(is_wanted(m, i, q, k, pass, 1) << q);
         state_at(e, i, k, &e->u_inside[i], &e->v_inside[i]);
         any |= e->wanted[i];
     }
@@ -476,8 +513,8 @@ static void look_at_piece(rampwise_modes *m, size_t i, size_t k, size_t piece, s
     double u = e->u_inside[i], v = e->v_inside[i] * d, z[MODES_POWERS + 1];
     double a[MODES_POWERS + 3] = {u, v};
     for (size_t n = 0; n <= MODES_POWERS; ++n)
-        a[n + 2] = (-S * (double)(n + 1) * a[n + 1] - K * a[n] - series[n * m->width + e->point[i]] * d * d) /
-                   (double)((n + 1) * (n + 2));
+        a[n + 2] = (-S * (double)(n + 1) * a[n + 1] - K * a[n] - series[n * m->width + e->point[i]] * d * d) *
+                   rampwise_modes_per_term_[n];
     u = v = 0;
     for (size_t n = MODES_POWERS + 2; n > 0; --n) {
         u += a[n];

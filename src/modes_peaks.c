@@ -153,13 +153,12 @@ void rampwise_modes_peaks_group_(rampwise_modes *m, size_t g, size_t tiles)
         rampwise_equipment_bound_group_(m, g, tiles, x->largest[0]);
 }
 
-/* 1/((n + 1)(n + 2)) */
 #define PER(n) 1.0 / (((n) + 1) * ((n) + 2))
-#define PER_FOUR(n) PER(n), PER((n) + 1), PER((n) + 2), PER((n) + 3)
-static const double per_term[POWERS] = {PER_FOUR(0),  PER_FOUR(4),  PER_FOUR(8),
-                                        PER_FOUR(12), PER_FOUR(16), PER_FOUR(20)};
+#define PER_FIVE(n) PER(n), PER((n) + 1), PER((n) + 2), PER((n) + 3), PER((n) + 4)
+const double rampwise_modes_per_term_[POWERS + 1] = {PER_FIVE(0), PER_FIVE(5), PER_FIVE(10), PER_FIVE(15),
+                                                     PER_FIVE(20)};
 #undef PER
-#undef PER_FOUR
+#undef PER_FIVE
 
 /* All groups where the step from row i of a tile begins. */
 static void begin_walk(const rampwise_modes *m, size_t i)
@@ -186,7 +185,8 @@ static int next_row(const walk *at, const double *S, const double *K, size_t n, 
     int ended = n >= 2;
     for (size_t j = 0; j < LANES; ++j) {
         const double load = n == 0 ? at->load[j] : n == 1 ? at->change[j] : 0;
-        a[n + 2][j] = (load - S[j] * ((double)(n + 1) * a[n + 1][j]) - K[j] * a[n][j]) * per_term[n];
+        a[n + 2][j] =
+            (load - S[j] * ((double)(n + 1) * a[n + 1][j]) - K[j] * a[n][j]) * rampwise_modes_per_term_[n];
     }
     for (size_t j = 0; ended && j < LANES; ++j) {
         const double size = fabs(at->u[j]) + fabs(at->v[j]) + fabs(at->load[j]) + fabs(at->change[j]);
@@ -347,15 +347,16 @@ void rampwise_modes_curve_(const double *a, double floor_high, double floor_low,
 {
     const double high = fmax(floor_high, peak->high.value), low = fmin(floor_low, peak->low.value);
     curve c = {a, 0, 0, fabs(a[0]) + fabs(a[1]), high, low, sample, piece, pieces, peak};
+    double end = a[0] + a[1];
     for (size_t n = 2; n <= POWERS; ++n) {
+        end += a[n];
         c.noise += fabs(a[n]);
         c.second += (double)(n * (n - 1)) * fabs(a[n]);
         c.third += (double)(n * (n - 1) * (n - 2)) * fabs(a[n]);
     }
-    /* No value here is further from a[0] than this. */
-    const double reach = c.noise - fabs(a[0]);
     c.noise *= 0x1p-44;
-    if (a[0] + reach <= high - c.noise && a[0] - reach >= low + c.noise)
+    const double excess = c.second / 8 + c.noise;
+    if (fmax(a[0], end) + excess <= high && fmin(a[0], end) - excess >= low)
         return;
     search(&c, 0, 1, 12);
     /* An extreme may lie on the end of a piece. */
@@ -395,6 +396,8 @@ static void trace(rampwise_modes *m, size_t t, size_t n)
         bound_steps(m, g, n, &x->trace[g], most);
         m->k->accumulate(modes_in(m, g), n, most[0], LANES, x->excess_weight + g * LANES * m->width, m->width,
                          x->excess_step);
+        if (m->equipment != NULL)
+            rampwise_equipment_bound_steps_(m, g, n, most[0]);
     }
     for (size_t i = 0; i < n; ++i)
         add_jumps(m, input, i, x->excess_step + i * m->width);
@@ -533,4 +536,9 @@ void rampwise_modes_peaks_segment_(rampwise_modes *m, size_t n)
 double rampwise_modes_tile_excess_(const rampwise_modes *m, size_t t, size_t o)
 {
     return m->peaks->excess_tile[t * m->width + o];
+}
+
+double rampwise_modes_step_excess_(const rampwise_modes *m, size_t i, size_t o)
+{
+    return m->peaks->excess_step[i * m->width + o];
 }
