@@ -143,19 +143,25 @@ typedef struct swing {
     double w, zeta, ratio;
 } swing;
 
+/* sqrt(a^2 + b^2) */
+static double size_of(double a, double b)
+{
+    return sqrt(a * a + b * b);
+}
+
 /* Its motion y = Re(Y exp(s t)) has |Y| at most 1/sqrt(1 - zeta) of its energy bound, and the piece a motion
-   Re(-Y exp(s t)/D) under it, D = s^2 + c s + k: k e moves with s (s + c)/D, and k x with k/D. Beside it goes the free
-   motion that makes the sum begin at rest. */
+   Re(-Y exp(s t)/D) under it, D = s^2 + c s + k: k e (envelope_of) moves with s (s + c)/D, and k x with k/D. Beside it
+   goes the free motion that makes the sum begin at rest. */
 static double detuned(const swing *mode, const envelope *to, double h, double ends)
 {
-    const double w = mode->w, zeta = mode->zeta, r = mode->ratio, root = sqrt(1 - zeta * zeta);
-    const double S = to->ratio * to->omega, k = to->omega * to->omega;
-    const double D = hypot(w * w * (2 * zeta * zeta - 1) - S * zeta * w + k, root * w * (S - 2 * zeta * w));
-    const double beside = (1 + sqrt(1 + r * r)) / (D * sqrt(1 - zeta));
+    const double w = mode->w, zeta = mode->zeta, root = sqrt(1 - zeta * zeta);
+    const double c = to->ratio * to->omega, k = to->omega * to->omega;
+    const double D = size_of(w * w * (2 * zeta * zeta - 1) - c * zeta * w + k, root * w * (c - 2 * zeta * w));
+    const double beside = (1 + size_of(1, mode->ratio)) / (D * sqrt(1 - zeta));
     const double inverse = zeta + sqrt(1 + zeta * zeta);
     const double off_mean = fmin(0.5 * h * w * w * inverse * inverse, w + 2 / h);
-    const double by_e = beside * w * hypot(S - zeta * w, root * w) + (1 + to->ratio) * off_mean / to->omega +
-                        to->ratio * fmin(2, w * h);
+    const double by_e = beside * w * size_of(c - zeta * w, root * w) +
+                        (1 + to->ratio) * off_mean / to->omega + to->ratio * fmin(2, w * h);
     return fmin(by_e, beside * k + ends);
 }
 
@@ -187,7 +193,7 @@ static void fill_envelope(rampwise_modes *m, const rampwise_modes_plan *plan, si
     if (!(k > 0 && damping >= 0))
         return;
     const double omega = sqrt(k), ratio = damping / omega;
-    *to = (envelope){omega, ratio, 1 / k, k * sqrt(1 + ratio * ratio)};
+    *to = (envelope){omega, ratio, 1 / k, k * size_of(1, ratio)};
     for (size_t j = 0; j < m->modes; ++j) {
         const size_t weight = j * m->width + e->point[i];
         const double on_v = m->weight_v != NULL ? fabs(m->weight_v[weight]) : 0;
@@ -337,13 +343,13 @@ static double looked_at(const rampwise_coeffs *c, int q, double u, double v)
     return q == 0 ? u : total_of(c, u, v);
 }
 
-/* The envelope. k e = k x + y swings by itself: e'' + c e' + k e = (y'' + c y')/k. The energy e'^2 + k e^2 of a free
-   motion never grows, and its root by no more than the size of what drives it, so the size sqrt(e^2 + e'^2/k)
-   of e is at most its size where the step begins and the time integral of |y'' + c y'|/(k omega). e begins with x + y/k, and e'
-   with x' + y'/k, y' being the rise of y in the step over h and a part of each mode; the rise drives it too. For the
-   rest, y as a sum of modes, either h |q''| bounds a mode's y' less its mean, and h |q''| the integral of its y''; or it
-   is taken as it is: y = F' with |F| at most (1 + 2 zeta) |y|/omega_j drives x + integral of F to no more than 2 h (omega + c) |F|,
-   and e differs from that by y/k now and the free motion from y/k and its mean slope. In the end x = e - y/k
+/* The envelope. e = x + y/k swings by itself: e'' + c e' + k e = (y'' + c y')/k. The root of the energy e'^2 + k e^2 of
+   a free motion never grows, and a driven one's by no more than the time integral of what drives it; over omega, that is
+   the size sqrt(e^2 + e'^2/k). e begins with x + y/k, and e' with x' + y'/k, y' being the rise of y in the step over h
+   and a part of each mode; the rise drives it too. What else a mode does (rest_of, detuned) has three bounds. Either h
+   |q''| bounds its y' less the mean, and the integral of its y''. Or y = F' with |F| at most (1 + 2 zeta) |y|/omega_j
+   is taken as it is: it drives x' + F, and x, to no more than 2 h (omega + c) |F|, and e differs from that by y/k and
+   the free motion from y/k and its mean slope. Or the motion under a mode off tune is known. In the end x = e - y/k,
    and the total acceleration is y - (k e + c e') + c y'/k. */
 static void envelope_of(const rampwise_modes *m, size_t i, size_t k, double u, double v, double excess,
                         double rest, reach *r)
@@ -358,8 +364,7 @@ static void envelope_of(const rampwise_modes *m, size_t i, size_t k, double u, d
     const double angle = to->omega * m->dt, slope = (next - now) * to->per_stiffness / m->dt;
     const double from_u = u + now * to->per_stiffness, from_v = (v + slope) / to->omega;
     const double driven = rise * to->ratio + jump / angle;
-    const double size =
-        1.0001 * (sqrt(from_u * from_u + from_v * from_v) + driven * to->per_stiffness) + rest;
+    const double size = 1.0001 * (size_of(from_u, from_v) + driven * to->per_stiffness) + rest;
     const double total = size * to->as_total + 1.0001 * to->ratio * rise / angle;
     *r = (reach){{size - low * to->per_stiffness, total + high},
                  {-size - high * to->per_stiffness, low - total}};
