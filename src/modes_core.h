@@ -105,9 +105,10 @@ void rampwise_equipment_begin_(rampwise_modes *m, size_t n);
 void rampwise_equipment_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, mode_tile *tile);
 int rampwise_equipment_end_(rampwise_modes *m, size_t n);
 void rampwise_equipment_go_back_(rampwise_modes *m);
-/* Peaks of a segment: the bounds of a group's tiles, largest[tiles][LANES] of q'', or of the steps of one; all bounds; whether a piece may
-   count in a tile, and which do in the step after k; their curves on a piece of it, by the series of the outputs,
-   [MODES_POWERS + 1][width]; the samples. Pass 0 is for the step that promises most, pass 1 for all others. */
+/* Peaks of a segment: bounds by a group's tiles, largest[tiles][LANES] of q'', or by the steps of a tile that is looked
+   at; floors and what may count; whether anything may in a tile, and in the step after k; their curves on a piece of
+   that step, by the series of the outputs, [MODES_POWERS + 1][width]; the samples. Pass 0 is for the step that promises
+   most, pass 1 for all others. */
 void rampwise_equipment_bound_group_(rampwise_modes *m, size_t g, size_t tiles, const double *largest);
 void rampwise_equipment_bound_steps_(rampwise_modes *m, size_t g, size_t n, const double *largest);
 void rampwise_equipment_prepare_(rampwise_modes *m, size_t n);

@@ -357,10 +357,79 @@ START_TEST(finer_samples)
 }
 END_TEST
 
+/* A piece at rest on a mode that swings: in its first steps nothing but what the mode does to it is to be found. */
+START_TEST(first_steps)
+{
+    gsl_rng *const r = random_make("first_steps");
+    enum { STEPS = 3, PARTS = 64 };
+    static const size_t point = 0;
+    const double dt = 0.01, load = 1;
+    double worst = 0;
+    for (int i = 0; i < 400; ++i) {
+        double input[1 + STEPS], finer[STEPS * PARTS];
+        rampwise_peak peak[2][3];
+        rampwise_system mode, piece;
+        ck_assert_int_eq(rampwise_system_natural(&mode, random_log(r, 0.1, 30) / dt, random_log(r, 1e-4, 2)),
+                         RAMPWISE_OK);
+        ck_assert_int_eq(rampwise_system_natural(&piece, random_log(r, 1, 30) / dt, random_log(r, 1e-4, 2)),
+                         RAMPWISE_OK);
+        if (i % 3 == 0)
+            piece.stiffness = mode.stiffness * (1 + (i % 2) * 0.02);
+        const double u = random_between(r, -1, 1), v = random_between(r, -1, 1) * sqrt(mode.stiffness);
+        const double on_u = i % 2 ? mode.stiffness : 0, on_v = i % 2 ? 0 : sqrt(mode.stiffness);
+        const double push = i % 5 == 0 ? mode.stiffness : 0;
+        for (int k = 0; k <= STEPS; ++k)
+            input[k] = push * random_between(r, -1, 1);
+        for (int k = 0; k < STEPS * PARTS; ++k)
+            finer[k] = input[k / PARTS] +
+                       (input[k / PARTS + 1] - input[k / PARTS]) * ((k % PARTS + 1) / (double)PARTS);
+        for (int fine = 0; fine < 2; ++fine) {
+            rampwise_coeffs c;
+            rampwise_modes *modes = NULL;
+            rampwise_modes_plan plan;
+            rampwise_modes_plan_init(&plan);
+            ck_assert_int_eq(
+                rampwise_coeffs_make(&c, &mode, fine ? dt / PARTS : dt, RAMPWISE_FORCE, RAMPWISE_RAMP),
+                RAMPWISE_OK);
+            plan.modes = plan.inputs = plan.outputs = plan.equipment_count = 1;
+            plan.c = &c;
+            plan.load = &load;
+            plan.on_displacement = &on_u;
+            plan.on_velocity = &on_v;
+            plan.equipment = &piece;
+            plan.point = &point;
+            plan.peaks = 1;
+            ck_assert_int_eq(rampwise_modes_create(&plan, &modes), RAMPWISE_OK);
+            ck_assert_int_eq(rampwise_modes_set(modes, &u, &v, input), RAMPWISE_OK);
+            ck_assert_int_eq(
+                rampwise_modes_run(modes, fine ? STEPS * PARTS : STEPS, fine ? finer : input + 1, NULL, NULL),
+                RAMPWISE_OK);
+            ck_assert_int_eq(rampwise_modes_peaks(modes, peak[fine]), RAMPWISE_OK);
+            ck_assert_int_eq(rampwise_equipment_peaks(modes, RAMPWISE_DISPLACEMENT, peak[fine] + 1),
+                             RAMPWISE_OK);
+            ck_assert_int_eq(rampwise_equipment_peaks(modes, RAMPWISE_TOTAL_ACCELERATION, peak[fine] + 2),
+                             RAMPWISE_OK);
+            rampwise_modes_free(modes);
+        }
+        for (int k = 0; k < 3; ++k) {
+            const double size = fmax(peak[1][k].high.value, -peak[1][k].low.value);
+            const double high = fabs(peak[0][k].high.value - peak[1][k].high.value) / size;
+            const double low = fabs(peak[0][k].low.value - peak[1][k].low.value) / size;
+            ck_assert_double_le(high, 1e-10);
+            ck_assert_double_le(low, 1e-10);
+            worst = fmax(worst, fmax(high, low));
+        }
+    }
+    printf("first steps: largest difference %.1e of the peak\n", worst);
+    gsl_rng_free(r);
+}
+END_TEST
+
 static void add_tests(TCase *tests)
 {
     tcase_add_test(tests, peaks);
     tcase_add_test(tests, finer_samples);
+    tcase_add_test(tests, first_steps);
 }
 
 int main(void)
