@@ -3,7 +3,6 @@
 #include <math.h>
 #include <string.h>
 #include "cascade.h"
-#include "extremes.h"
 #include "modes_core.h"
 #include "rampwise/status.h"
 #include "twofold.h"

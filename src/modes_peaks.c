@@ -1,7 +1,6 @@
 /* Peaks of sums of modes, between the samples too: modes.h says how. */
 #include <math.h>
 #include <string.h>
-#include "extremes.h"
 #include "modes_core.h"
 
 /* Powers of a series on a piece with w h and c h/m up to 1: the next are below 2^-60 of the first. */
