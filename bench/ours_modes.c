@@ -1,5 +1,6 @@
 /* Whole structures: shear buildings of 10 to 10,000 masses by their modes, 50 outputs, beside Newmark's average
-   acceleration on the full matrices with GSL's factorisation. */
+   acceleration on the full matrices with GSL's factorisation, the interval of a sample in as many parts as its error
+   needs. */
 #include <gsl/gsl_blas.h>
 #include <gsl/gsl_linalg.h>
 #include <math.h>
@@ -162,8 +163,22 @@ static double error_of(direct *d, const building *b)
     return error / peak;
 }
 
-/* With the parts that bring it to a thousandth of the peak: a power of two. */
-static void add_direct(task_list *list, const bench_case *in, building *b, const char *id, const char *name)
+/* The fewest parts, to some percent, that bring the error to the target; it falls with their square. */
+static double refine_to(direct *d, const building *b, double target)
+{
+    size_t parts = 1;
+    for (;;) {
+        refine(d, parts);
+        const double error = error_of(d, b);
+        if (error <= target || parts > 512)
+            return error;
+        const size_t next = (size_t)(0.98 * (double)parts * sqrt(error / target));
+        parts = next > parts ? next : parts + 1;
+    }
+}
+
+static void add_direct(task_list *list, const bench_case *in, building *b, double target, const char *id,
+                       const char *name)
 {
     direct *const d = case_memory(sizeof *d);
     const size_t n = b->n;
@@ -179,11 +194,7 @@ static void add_direct(task_list *list, const bench_case *in, building *b, const
     d->top = case_memory(CASE_SAMPLES * sizeof *d->top);
     fill_matrices(d);
     once(b);
-    double error = 1;
-    for (size_t parts = 1; error > 1e-3 && parts <= 64; parts *= 2) {
-        refine(d, parts);
-        error = error_of(d, b);
-    }
+    const double error = refine_to(d, b, target);
     task_add(list, (task){.kind = TASK_PART,
                           .id = id,
                           .name = name,
@@ -219,6 +230,9 @@ void ours_modes_tasks(task_list *list, const bench_case *in)
     (void)add(list, in, "modes_10000", "10,000 modes, 50 outputs", MOST, OUTPUTS, 0);
     (void)add(list, in, "modes_1000_one", "1,000 modes, 1 output", 1000, 1, 0);
     (void)add(list, in, "modes_100_peaks", "100 modes, 50 outputs and peaks", 100, OUTPUTS, 1);
-    add_direct(list, in, ten, "newmark_10", "Newmark on full matrices, 10 masses");
-    add_direct(list, in, hundred, "newmark_100", "Newmark on full matrices, 100 masses");
+    add_direct(list, in, ten, 1e-3, "newmark_10", "Newmark on full matrices, 10 masses, error 1e-3");
+    add_direct(list, in, ten, 1e-4, "newmark_10_fine", "Newmark on full matrices, 10 masses, error 1e-4");
+    add_direct(list, in, hundred, 1e-3, "newmark_100", "Newmark on full matrices, 100 masses, error 1e-3");
+    add_direct(list, in, hundred, 1e-4, "newmark_100_fine",
+               "Newmark on full matrices, 100 masses, error 1e-4");
 }

@@ -126,12 +126,16 @@ static void of_modes(readings *all)
         "1,000 modes, 1 output / bank of 1,000, last state");
     add(all, "modes_peaks", times(all, "modes_100_peaks", "modes_100"), AT_MOST, NAN,
         "100 modes, 50 outputs: with true peaks / without");
-    const task *const ten = task_find(all->list, "newmark_10"), *const hundred =
-                                                                    task_find(all->list, "newmark_100");
-    add(all, "newmark_10", times(all, "newmark_10", "modes_10"), AT_LEAST, NAN,
-        "Newmark, 10 full equations (error %.1e) / 10 modes", ten->error);
-    add(all, "newmark_100", times(all, "newmark_100", "modes_100"), AT_LEAST, NAN,
-        "Newmark, 100 full equations (error %.1e) / 100 modes", hundred->error);
+    static const struct {
+        const char *direct, *modes, *name;
+    } pairs[] = {{"newmark_10", "modes_10", "10"},
+                 {"newmark_10_fine", "modes_10", "10"},
+                 {"newmark_100", "modes_100", "100"},
+                 {"newmark_100_fine", "modes_100", "100"}};
+    for (size_t i = 0; i < sizeof pairs / sizeof *pairs; ++i)
+        add(all, pairs[i].direct, times(all, pairs[i].direct, pairs[i].modes), AT_LEAST, NAN,
+            "Newmark, %s full equations (error %.1e) / %s modes", pairs[i].name,
+            task_find(all->list, pairs[i].direct)->error, pairs[i].name);
 }
 
 static void of_size(readings *all)

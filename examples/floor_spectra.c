@@ -5,7 +5,10 @@
    take, what rules for peaks make of a spectrum, and the demand on the instrument cabinet; the floor spectra as CSV,
    beside those of the floors' sampled histories.
 
-       floor_spectra SHAKE [SPECTRA]                                examples/first_run runs it. */
+       floor_spectra SHAKE [SPECTRA]                                examples/first_run runs it.
+
+   Exit status: 0; 2 where an input is refused or something cannot be written: one line then says why on standard
+   error, nothing is on standard output, and no file is left. */
 #include <gsl/gsl_eigen.h>
 #include <math.h>
 #include <stdio.h>
@@ -54,6 +57,7 @@ typedef struct hall {
     rampwise_peak floor_peak[OUTPUTS], peak[PIECES], stretch[PIECES]; /* total acceleration, displacement */
     double *history;                                                  /* [n][OUTPUTS] */
     rampwise_peak resampled[PIECES];
+    double share[STOREYS], roof[STOREYS]; /* of the mass, with all modes up to one; each mode's largest */
 } hall;
 
 static int check(int status)
@@ -183,47 +187,57 @@ static double size(const rampwise_peak *peak)
     return fabs(rampwise_peak_larger(peak)->value);
 }
 
-static int print_modes(const rampwise_modes_plan *plan, const frame *f)
+static int share_mass(hall *h, const rampwise_modes_plan *plan)
 {
-    double whole = 0, share;
+    double whole = 0;
     rampwise_modes_plan first = *plan;
     for (size_t i = 0; i < STOREYS; ++i)
         whole += storey_mass[i];
+    int status = RAMPWISE_OK;
+    for (size_t j = 0; status == RAMPWISE_OK && j < STOREYS; ++j) {
+        first.modes = j + 1;
+        status = rampwise_mass_share(&first, &whole, &h->share[j]);
+    }
+    return check(status);
+}
+
+static void print_modes(const hall *h)
+{
     puts("Frame of three storeys (invented), modes from GSL, 4 % damped\n\n"
          "  mode  frequency   period  mass taken so far\n"
          "             (Hz)      (s)       (%)");
+    for (size_t j = 0; j < STOREYS; ++j)
+        printf("%6zu %10.3f %8.4f %9.1f\n", j + 1, h->modes.omega[j] / (2 * pi), 2 * pi / h->modes.omega[j],
+               100 * h->share[j]);
+}
+
+/* The roof's displacement from the spectrum of the ground alone: each mode's largest. */
+static int apply_rules(hall *h)
+{
     for (size_t j = 0; j < STOREYS; ++j) {
-        first.modes = j + 1;
-        if (check(rampwise_mass_share(&first, &whole, &share)) != 0)
+        rampwise_peak mode;
+        if (check(rampwise_spectrum(h->record.n, h->record.interval, h->record.acceleration,
+                                    RAMPWISE_BASE_ACCELERATION, 1, &h->modes.omega[j], &damping,
+                                    RAMPWISE_DISPLACEMENT, 0, &mode, NULL)) != 0)
             return -1;
-        printf("%6zu %10.3f %8.4f %9.1f\n", j + 1, f->omega[j] / (2 * pi), 2 * pi / f->omega[j], 100 * share);
+        h->roof[j] = h->modes.shape[j * STOREYS + UPPER] * h->modes.factor[j] * size(&mode);
     }
     return 0;
 }
 
-/* The roof's displacement from the spectrum of the ground alone, by each rule, beside the true peak. */
-static int print_rules(const hall *h)
+/* By each rule, beside the true peak. */
+static void print_rules(const hall *h)
 {
-    double peak[STOREYS], zeta[STOREYS];
-    for (size_t j = 0; j < STOREYS; ++j) {
-        rampwise_peak mode;
-        zeta[j] = damping;
-        if (check(rampwise_spectrum(h->record.n, h->record.interval, h->record.acceleration,
-                                    RAMPWISE_BASE_ACCELERATION, 1, &h->modes.omega[j], &zeta[j],
-                                    RAMPWISE_DISPLACEMENT, 0, &mode, NULL)) != 0)
-            return -1;
-        peak[j] = h->modes.shape[j * STOREYS + UPPER] * h->modes.factor[j] * size(&mode);
-    }
+    const double zeta[STOREYS] = {damping, damping, damping};
     printf("\nLargest displacement of the roof against the ground (mm)\n"
            "  exact, all modes together                %8.3f\n"
            "  square root of the sum of squares        %8.3f\n"
            "  complete quadratic combination           %8.3f\n"
            "  absolute sum                             %8.3f\n",
            1000 * size(&h->floor_peak[ROOF_DISPLACEMENT]),
-           1000 * rampwise_combine_root_of_squares(STOREYS, peak),
-           1000 * rampwise_combine_complete_quadratic(STOREYS, peak, h->modes.omega, zeta),
-           1000 * rampwise_combine_absolute_sum(STOREYS, peak));
-    return 0;
+           1000 * rampwise_combine_root_of_squares(STOREYS, h->roof),
+           1000 * rampwise_combine_complete_quadratic(STOREYS, h->roof, h->modes.omega, zeta),
+           1000 * rampwise_combine_absolute_sum(STOREYS, h->roof));
 }
 
 static void print_cabinet(const hall *h)
@@ -283,10 +297,12 @@ static int do_hall(hall *h, const char *shake_path, const char *spectra_path)
     (void)rampwise_list_log(PERIODS, shortest, longest, h->period);
     if (make_plan(h, &plan) != 0 || shake(h, &plan) != 0 || resample(h) != 0)
         return -1;
+    if (share_mass(h, &plan) != 0 || apply_rules(h) != 0)
+        return -1;
     if (spectra_path != NULL && whole_file_write(spectra_path, 1, &shake_path, write_spectra, h) != 0)
         return -1;
-    if (print_modes(&plan, &h->modes) != 0 || print_rules(h) != 0)
-        return -1;
+    print_modes(h);
+    print_rules(h);
     print_cabinet(h);
     if (spectra_path != NULL)
         printf("\nThe floor spectra are in %s\n", spectra_path);
@@ -294,14 +310,23 @@ static int do_hall(hall *h, const char *shake_path, const char *spectra_path)
     return 0;
 }
 
+static int check_words(int count, char **word)
+{
+    for (int i = 1; i < count; ++i)
+        if (word[i][0] == '-')
+            return complain("%s: no such option; usage: floor_spectra SHAKE [SPECTRA]", word[i]);
+    if (count < 2 || count > 3)
+        return complain("%s; usage: floor_spectra SHAKE [SPECTRA]",
+                        count < 2 ? "SHAKE is missing" : "too many files");
+    return 0;
+}
+
 int main(int count, char **word)
 {
     static hall h;
-    if (count < 2 || count > 3 || word[1][0] == '-') {
-        fputs("usage: floor_spectra SHAKE [SPECTRA]\n", stderr);
-        return 2;
-    }
-    const int status = do_hall(&h, word[1], count == 3 ? word[2] : NULL);
+    int status = check_words(count, word);
+    if (status == 0)
+        status = do_hall(&h, word[1], count == 3 ? word[2] : NULL);
     free(h.history);
     site_record_free(&h.record);
     return site_end(status);

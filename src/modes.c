@@ -365,8 +365,6 @@ static void finish_segment(rampwise_modes *m, size_t n, const destination *to)
     double *const output = to->output;
     if (m->peaks != NULL)
         rampwise_modes_peaks_segment_(m, n);
-    if (m->equipment != NULL && m->peaks != NULL)
-        rampwise_equipment_segment_(m, n);
     if (m->equipment != NULL)
         rampwise_equipment_put_(m, n, &to->history);
     for (size_t i = 0; output != NULL && i < n; ++i)

@@ -82,13 +82,15 @@ void rampwise_modes_peaks_group_(rampwise_modes *m, size_t g, size_t tiles);
 void rampwise_modes_peaks_segment_(rampwise_modes *m, size_t n);
 rampwise_peak *rampwise_modes_peak_(const rampwise_modes *m);
 
-/* For equipment, in a segment whose tiles are being looked at: the modes over the n steps of tile t once more; then
-   the power series of output o in the step after k, [pieces]; how much it can exceed the samples in a tile; and the
-   extremes of a series, noted where they exceed the floors and the peak. */
+/* For equipment: how much output o can exceed the samples in tile t of a segment, or in step i of the tile that is being
+   looked at; the energy bound of a free vibration
+   by that of its second derivative; and the extremes of a series, noted where they exceed floors and peak. */
 enum { MODES_POWERS = 24 };
-void rampwise_modes_trace_(rampwise_modes *m, size_t t, size_t n);
-double (*rampwise_modes_series_(rampwise_modes *m, size_t k, size_t o, size_t *pieces))[MODES_POWERS + 1];
+extern const double rampwise_modes_per_term_[MODES_POWERS + 1]; /* 1/((n + 1)(n + 2)) */
 double rampwise_modes_tile_excess_(const rampwise_modes *m, size_t t, size_t o);
+double rampwise_modes_step_excess_(const rampwise_modes *m, size_t i, size_t o);
+double rampwise_modes_inverse_(double stiffness, double damping);
+void rampwise_modes_note_(rampwise_peak *peak, double value, uint64_t sample, double fraction);
 void rampwise_modes_curve_(const double *series, double floor_high, double floor_low, uint64_t sample,
                            size_t piece, size_t pieces, rampwise_peak *peak);
 
@@ -103,7 +105,17 @@ void rampwise_equipment_begin_(rampwise_modes *m, size_t n);
 void rampwise_equipment_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, mode_tile *tile);
 int rampwise_equipment_end_(rampwise_modes *m, size_t n);
 void rampwise_equipment_go_back_(rampwise_modes *m);
-void rampwise_equipment_segment_(rampwise_modes *m, size_t n);
+/* Peaks of a segment: bounds by a group's tiles, largest[tiles][LANES] of q'', or by the steps of a tile that is looked
+   at; floors and what may count; whether anything may in a tile, and in the step after k; their curves on a piece of
+   that step, by the series of the outputs, [MODES_POWERS + 1][width]; the samples. Pass 0 is for the step that promises
+   most, pass 1 for all others. */
+void rampwise_equipment_bound_group_(rampwise_modes *m, size_t g, size_t tiles, const double *largest);
+void rampwise_equipment_bound_steps_(rampwise_modes *m, size_t g, size_t n, const double *largest);
+void rampwise_equipment_prepare_(rampwise_modes *m, size_t n);
+int rampwise_equipment_may_count_(const rampwise_modes *m, size_t t, size_t n, int pass);
+int rampwise_equipment_want_(rampwise_modes *m, size_t k, int pass);
+void rampwise_equipment_look_(rampwise_modes *m, size_t k, size_t piece, size_t pieces, const double *series);
+void rampwise_equipment_note_(rampwise_modes *m, size_t n);
 void rampwise_equipment_put_(const rampwise_modes *m, size_t n, const rampwise_history *out);
 size_t rampwise_equipment_count_(const rampwise_modes *m);
 double *rampwise_equipment_state_(const rampwise_modes *m, size_t i, int velocity);

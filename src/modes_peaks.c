@@ -1,7 +1,6 @@
 /* Peaks of sums of modes, between the samples too: modes.h says how. */
 #include <math.h>
 #include <string.h>
-#include "extremes.h"
 #include "modes_core.h"
 
 /* Powers of a series on a piece with w h and c h/m up to 1: the next are below 2^-60 of the first. */
@@ -15,6 +14,11 @@ typedef struct bound {
     double per_slope[LANES]; /* 1/sqrt(K) */
 } bound;
 
+/* A group on its way through the pieces of a step: its state, per piece of time, and its load and load's change. */
+typedef struct walk {
+    double u[LANES], v[LANES], load[LANES], change[LANES];
+} walk;
+
 struct modes_peaks {
     rampwise_peak *peak;               /* [outputs] */
     double *floor_high, *floor_low;    /* [outputs]: of the peak so far and the segment's samples */
@@ -24,7 +28,10 @@ struct modes_peaks {
     double (*largest)[LANES];          /* [TILES]: of the present group */
     double *excess_tile, *excess_step; /* [TILES][width], [TILE][width] */
     mode_tile *trace;                  /* [groups]: of a tile that is looked at */
-    double (*series)[POWERS + 1];      /* [pieces]: of an output in a step */
+    walk *at;                          /* [groups]: inside a step that is looked into */
+    double *series;                    /* [POWERS + 1][width]: of all outputs on one piece of it */
+    unsigned char *first;              /* [outputs]: the tile of the segment that promises most */
+    unsigned char *wanted;             /* [outputs]: those to be looked at in a step */
     size_t pieces;
 };
 
@@ -58,16 +65,35 @@ void rampwise_modes_peaks_take_(rampwise_modes *m, const rampwise_modes_plan *pl
     x->excess_tile = rampwise_room_take_(r, m->width, TILES * sizeof(double));
     x->excess_step = rampwise_room_take_(r, m->width, TILE * sizeof(double));
     x->trace = rampwise_room_take_(r, m->groups, sizeof *x->trace);
-    x->series = rampwise_room_take_(r, x->pieces, sizeof *x->series);
+    x->at = rampwise_room_take_(r, m->groups, sizeof *x->at);
+    x->series = rampwise_room_take_(r, m->width, (POWERS + 1) * sizeof(double));
+    x->first = rampwise_room_take_(r, m->outputs, 1);
+    x->wanted = rampwise_room_take_(r, m->outputs, 1);
+}
+
+double rampwise_modes_inverse_(double stiffness, double damping)
+{
+    const double ratio = 0.5 * damping / sqrt(stiffness), inverse = ratio + sqrt(1 + ratio * ratio);
+    return inverse * inverse / stiffness;
+}
+
+/* By how much a free vibration with the energy bound 1 of its second derivative exceeds its values at the ends of a
+   step: h^2/8; but at most twice its own energy bound, whatever the step. */
+static double excess_unit(double stiffness, double damping, double h)
+{
+    const double curved = h * h / 8;
+    if (!(stiffness >= 0.25 / (h * h) && damping >= 0))
+        return curved;
+    return fmin(curved, 2 * rampwise_modes_inverse_(stiffness, damping));
 }
 
 void rampwise_modes_peaks_fill_(rampwise_modes *m, const rampwise_modes_plan *plan)
 {
     modes_peaks *const x = m->peaks;
-    const double h = m->dt, unit = 1.0001 * h * h / 8, root_e_half = 1.2841;
+    const double h = m->dt, root_e_half = 1.2841;
     for (size_t j = 0; j < m->modes; ++j) {
         const double stiffness = -plan->c[j].acceleration[0], damping = -plan->c[j].acceleration[1];
-        const double K = fmax(stiffness, 0.25 / (h * h));
+        const double K = fmax(stiffness, 0.25 / (h * h)), unit = 1.0001 * excess_unit(stiffness, damping, h);
         bound *const b = &x->bounds[j / LANES];
         b->growth[j % LANES] = stiffness < 0 || damping < 0 ? INFINITY : stiffness < K ? root_e_half : 1;
         b->per_slope[j % LANES] = 1 / sqrt(K);
@@ -122,64 +148,105 @@ void rampwise_modes_peaks_group_(rampwise_modes *m, size_t g, size_t tiles)
         memset(x->excess_tile, 0, tiles * m->width * sizeof *x->excess_tile);
     m->k->accumulate(modes_in(m, g), tiles, x->largest[0], LANES, x->excess_weight + g * LANES * m->width,
                      m->width, x->excess_tile);
+    if (m->equipment != NULL)
+        rampwise_equipment_bound_group_(m, g, tiles, x->largest[0]);
 }
 
-/* 1/((n + 1)(n + 2)) */
 #define PER(n) 1.0 / (((n) + 1) * ((n) + 2))
-#define PER_FOUR(n) PER(n), PER((n) + 1), PER((n) + 2), PER((n) + 3)
-static const double per_term[POWERS] = {PER_FOUR(0),  PER_FOUR(4),  PER_FOUR(8),
-                                        PER_FOUR(12), PER_FOUR(16), PER_FOUR(20)};
+#define PER_FIVE(n) PER(n), PER((n) + 1), PER((n) + 2), PER((n) + 3), PER((n) + 4)
+const double rampwise_modes_per_term_[POWERS + 1] = {PER_FIVE(0), PER_FIVE(5), PER_FIVE(10), PER_FIVE(15),
+                                                     PER_FIVE(20)};
 #undef PER
-#undef PER_FOUR
+#undef PER_FIVE
 
-/* The series of one mode in one step, added to those of an output. With x the time in pieces, q = sum of a[n] x^n:
-   (n + 1)(n + 2) a[n + 2] = f[n] - S (n + 1) a[n + 1] - K a[n]; they end where two in a row are below 2^-60. */
-static void add_mode(const rampwise_modes *m, size_t g, size_t j, size_t i, double on_u, double on_v)
+/* All groups where the step from row i of a tile begins. */
+static void begin_walk(const rampwise_modes *m, size_t i)
 {
     modes_peaks *const x = m->peaks;
-    const mode_tile *const at = &x->trace[g];
-    const double h = m->dt / (double)x->pieces, per_load = m->group[g].row[2][j] * h * h;
-    const double K = -m->group[g].row[0][j] * h * h, S = -m->group[g].row[1][j] * h;
-    const double change = m->between == RAMPWISE_RAMP ? at->p[i + 1][j] - at->p[i][j] : 0;
-    double u = at->u[i][j], v = at->v[i][j] * h, f[POWERS] = {per_load * at->p[i][j]};
-    f[1] = per_load * change / (double)x->pieces;
-    for (size_t piece = 0; piece < x->pieces; ++piece) {
-        double a[POWERS + 2] = {u, v}, *const sum = x->series[piece];
-        const double small = 0x1p-60 * (fabs(u) + fabs(v) + fabs(f[0]) + fabs(f[1]));
-        size_t last = 1;
-        while (last < POWERS + 1 && (last < 4 || fabs(a[last]) + fabs(a[last - 1]) > small)) {
-            a[last + 1] = (f[last - 1] - S * ((double)last * a[last]) - K * a[last - 1]) * per_term[last - 1];
-            ++last;
+    const double d = m->dt / (double)x->pieces;
+    for (size_t g = 0; g < m->groups; ++g) {
+        const mode_tile *const from = &x->trace[g];
+        walk *const at = &x->at[g];
+        for (size_t j = 0; j < LANES; ++j) {
+            const double per_load = m->group[g].row[2][j] * d * d;
+            const double change = m->between == RAMPWISE_RAMP ? from->p[i + 1][j] - from->p[i][j] : 0;
+            at->u[j] = from->u[i][j];
+            at->v[j] = from->v[i][j] * d;
+            at->load[j] = per_load * from->p[i][j];
+            at->change[j] = per_load * change / (double)x->pieces;
         }
-        u = v = 0;
-        for (size_t n = last; n > 0; --n) {
-            u += a[n];
-            v += (double)n * a[n];
-            sum[n - 1] += on_u * a[n - 1] + on_v / h * ((double)n * a[n]);
-        }
-        u += a[0];
-        f[0] += f[1];
     }
 }
 
-/* The series of output o in the step from row i of a tile, whose inputs begin at `input`. */
-static void make_series(const rampwise_modes *m, const double *input, size_t i, size_t o)
+/* a[n + 2] of all lanes; answers whether all of row n + 1 and n + 2 are below 2^-60. */
+static int next_row(const walk *at, const double *S, const double *K, size_t n, double (*a)[LANES])
+{
+    int ended = n >= 2;
+    for (size_t j = 0; j < LANES; ++j) {
+        const double load = n == 0 ? at->load[j] : n == 1 ? at->change[j] : 0;
+        a[n + 2][j] =
+            (load - S[j] * ((double)(n + 1) * a[n + 1][j]) - K[j] * a[n][j]) * rampwise_modes_per_term_[n];
+    }
+    for (size_t j = 0; ended && j < LANES; ++j) {
+        const double size = fabs(at->u[j]) + fabs(at->v[j]) + fabs(at->load[j]) + fabs(at->change[j]);
+        ended = fabs(a[n + 2][j]) + fabs(a[n + 1][j]) <= 0x1p-60 * size;
+    }
+    return ended;
+}
+
+/* The series of one group on the present piece, q = sum of a[n] x^n with x the time in pieces:
+   (n + 1)(n + 2) a[n + 2] = f[n] - S (n + 1) a[n + 1] - K a[n]. Goes on to the next piece; answers how many terms. */
+static size_t group_series(const rampwise_modes *m, size_t g, double (*a)[LANES])
+{
+    walk *const at = &m->peaks->at[g];
+    const double d = m->dt / (double)m->peaks->pieces;
+    double S[LANES], K[LANES];
+    for (size_t j = 0; j < LANES; ++j) {
+        K[j] = -m->group[g].row[0][j] * d * d;
+        S[j] = -m->group[g].row[1][j] * d;
+    }
+    memcpy(a[0], at->u, sizeof at->u);
+    memcpy(a[1], at->v, sizeof at->v);
+    size_t n = 0;
+    while (n + 2 <= POWERS && !next_row(at, S, K, n, a))
+        ++n;
+    const size_t last = n + 2 <= POWERS ? n + 2 : POWERS;
+    memset(at->u, 0, sizeof at->u);
+    memset(at->v, 0, sizeof at->v);
+    for (size_t k = last + 1; k-- > 0;)
+        for (size_t j = 0; j < LANES; ++j) {
+            at->u[j] += a[k][j];
+            at->v[j] += (double)k * a[k][j];
+        }
+    for (size_t j = 0; j < LANES; ++j)
+        at->load[j] += at->change[j];
+    return last + 1;
+}
+
+/* The series of all outputs on a piece of the step from row i of a tile, whose inputs begin at `input`. */
+static void make_series(const rampwise_modes *m, const double *input, size_t i, size_t piece)
 {
     modes_peaks *const x = m->peaks;
-    memset(x->series, 0, x->pieces * sizeof *x->series);
+    const double pieces = (double)x->pieces, per_piece = pieces / m->dt;
+    memset(x->series, 0, (POWERS + 1) * m->width * sizeof *x->series);
     for (size_t in = 0; in < m->inputs; ++in) {
-        const double weight = m->direct[in * m->width + o], now = input[i * m->inputs + in];
+        const double now = input[i * m->inputs + in];
         const double change = m->between == RAMPWISE_RAMP ? input[(i + 1) * m->inputs + in] - now : 0;
-        for (size_t piece = 0; piece < x->pieces; ++piece) {
-            x->series[piece][0] += weight * (now + change * ((double)piece / (double)x->pieces));
-            x->series[piece][1] += weight * (change / (double)x->pieces);
+        for (size_t o = 0; o < m->width; ++o) {
+            const double weight = m->direct[in * m->width + o];
+            x->series[o] += weight * (now + change * ((double)piece / pieces));
+            x->series[m->width + o] += weight * (change / pieces);
         }
     }
-    for (size_t j = 0; j < m->groups * LANES; ++j) {
-        const double on_u = m->weight_u[j * m->width + o];
-        const double on_v = m->weight_v != NULL ? m->weight_v[j * m->width + o] : 0;
-        if (on_u != 0 || on_v != 0)
-            add_mode(m, j / LANES, j % LANES, i, on_u, on_v);
+    for (size_t g = 0; g < m->groups; ++g) {
+        double a[POWERS + 1][LANES];
+        const size_t terms = group_series(m, g, a), at = g * LANES * m->width;
+        m->k->accumulate(modes_in(m, g), terms, a[0], LANES, m->weight_u + at, m->width, x->series);
+        for (size_t n = 1; m->weight_v != NULL && n < terms; ++n)
+            for (size_t j = 0; j < LANES; ++j)
+                a[n - 1][j] = (double)n * a[n][j] * per_piece;
+        if (m->weight_v != NULL)
+            m->k->accumulate(modes_in(m, g), terms - 1, a[0], LANES, m->weight_v + at, m->width, x->series);
     }
 }
 
@@ -205,13 +272,28 @@ static double value_at(const curve *c, double x, double *slope, double *second)
     return value;
 }
 
+static int is_earlier(const rampwise_instant *a, const rampwise_instant *b)
+{
+    return a->sample < b->sample || (a->sample == b->sample && a->fraction < b->fraction);
+}
+
+/* Steps are not looked into in their order. */
+void rampwise_modes_note_(rampwise_peak *peak, double value, uint64_t sample, double fraction)
+{
+    const rampwise_instant at = {value, sample, fraction};
+    if (value > peak->high.value || (value == peak->high.value && is_earlier(&at, &peak->high)))
+        peak->high = at;
+    if (value < peak->low.value || (value == peak->low.value && is_earlier(&at, &peak->low)))
+        peak->low = at;
+}
+
 static void note_on(const curve *c, double value, double x)
 {
     const double fraction = ((double)c->piece + x) / (double)c->pieces;
     if (fraction < 1)
-        note_value(c->peak, value, c->sample, fraction);
+        rampwise_modes_note_(c->peak, value, c->sample, fraction);
     else
-        note_value(c->peak, value, c->sample + 1, 0);
+        rampwise_modes_note_(c->peak, value, c->sample + 1, 0);
 }
 
 /* The extreme between low and high, where the slope has opposite signs and is monotone: Newton's steps, halving
@@ -262,13 +344,19 @@ static void search(const curve *c, double low, double high, int depth)
 void rampwise_modes_curve_(const double *a, double floor_high, double floor_low, uint64_t sample,
                            size_t piece, size_t pieces, rampwise_peak *peak)
 {
-    curve c = {a, 0, 0, fabs(a[0]) + fabs(a[1]), floor_high, floor_low, sample, piece, pieces, peak};
+    const double high = fmax(floor_high, peak->high.value), low = fmin(floor_low, peak->low.value);
+    curve c = {a, 0, 0, fabs(a[0]) + fabs(a[1]), high, low, sample, piece, pieces, peak};
+    double end = a[0] + a[1];
     for (size_t n = 2; n <= POWERS; ++n) {
+        end += a[n];
         c.noise += fabs(a[n]);
         c.second += (double)(n * (n - 1)) * fabs(a[n]);
         c.third += (double)(n * (n - 1) * (n - 2)) * fabs(a[n]);
     }
     c.noise *= 0x1p-44;
+    const double excess = c.second / 8 + c.noise;
+    if (fmax(a[0], end) + excess <= high && fmin(a[0], end) - excess >= low)
+        return;
     search(&c, 0, 1, 12);
     /* An extreme may lie on the end of a piece. */
     double slope, second;
@@ -288,11 +376,12 @@ static void add_jumps(const rampwise_modes *m, const double *input, size_t i, do
 
 static int may_count(const modes_peaks *x, size_t o, double high, double low, double excess)
 {
-    return !(high + excess <= x->floor_high[o] && low - excess >= x->floor_low[o]);
+    return !(high + excess <= fmax(x->floor_high[o], x->peak[o].high.value) &&
+             low - excess >= fmin(x->floor_low[o], x->peak[o].low.value));
 }
 
 /* And the bounds of each step. */
-void rampwise_modes_trace_(rampwise_modes *m, size_t t, size_t n)
+static void trace(rampwise_modes *m, size_t t, size_t n)
 {
     modes_peaks *const x = m->peaks;
     const double *const input = m->input + t * TILE * m->inputs;
@@ -306,95 +395,149 @@ void rampwise_modes_trace_(rampwise_modes *m, size_t t, size_t n)
         bound_steps(m, g, n, &x->trace[g], most);
         m->k->accumulate(modes_in(m, g), n, most[0], LANES, x->excess_weight + g * LANES * m->width, m->width,
                          x->excess_step);
+        if (m->equipment != NULL)
+            rampwise_equipment_bound_steps_(m, g, n, most[0]);
     }
     for (size_t i = 0; i < n; ++i)
         add_jumps(m, input, i, x->excess_step + i * m->width);
 }
 
-static double sum_of(const double *series)
-{
-    double sum = 0;
-    for (size_t n = POWERS + 1; n-- > 0;)
-        sum += series[n];
-    return sum;
-}
-
-static void look_at_step(rampwise_modes *m, size_t t, size_t i, const double *input)
+/* Which outputs may have a peak in step i of tile t; answers whether one does. */
+static int want_in_step(const rampwise_modes *m, size_t t, size_t i, int pass)
 {
     modes_peaks *const x = m->peaks;
     const double *const before = m->output + (t * TILE + i) * m->width, *const after = before + m->width;
+    int any = 0;
     for (size_t o = 0; o < m->outputs; ++o) {
-        if (!may_count(x, o, fmax(before[o], after[o]), fmin(before[o], after[o]),
-                       x->excess_step[i * m->width + o]))
-            continue;
-        make_series(m, input, i, o);
-        const uint64_t sample = m->sample + t * TILE + i;
-        for (size_t piece = 0; piece < x->pieces; ++piece)
-            rampwise_modes_curve_(x->series[piece], x->floor_high[o], x->floor_low[o], sample, piece,
-                                  x->pieces, &x->peak[o]);
-        if (m->between == RAMPWISE_HOLD) /* where it jumps, the value before */
-            note_value(&x->peak[o], sum_of(x->series[x->pieces - 1]), sample + 1, 0);
+        x->wanted[o] = (x->first[o] == t) == (pass == 0) &&
+                       may_count(x, o, fmax(before[o], after[o]), fmin(before[o], after[o]),
+                                 x->excess_step[i * m->width + o]);
+        any |= x->wanted[o];
+    }
+    return any;
+}
+
+static void look_at_piece(const rampwise_modes *m, size_t o, uint64_t sample, size_t piece)
+{
+    modes_peaks *const x = m->peaks;
+    double series[POWERS + 1], sum = 0;
+    for (size_t n = POWERS + 1; n-- > 0;) {
+        series[n] = x->series[n * m->width + o];
+        sum += series[n];
+    }
+    rampwise_modes_curve_(series, x->floor_high[o], x->floor_low[o], sample, piece, x->pieces, &x->peak[o]);
+    if (m->between == RAMPWISE_HOLD && piece + 1 == x->pieces) /* where it jumps, the value before */
+        rampwise_modes_note_(&x->peak[o], sum, sample + 1, 0);
+}
+
+static void look_at_step(rampwise_modes *m, size_t t, size_t i, const double *input, int pass)
+{
+    modes_peaks *const x = m->peaks;
+    const size_t k = t * TILE + i;
+    int any = want_in_step(m, t, i, pass);
+    if (m->equipment != NULL)
+        any |= rampwise_equipment_want_(m, k, pass);
+    if (!any)
+        return;
+    begin_walk(m, i);
+    for (size_t piece = 0; piece < x->pieces; ++piece) {
+        make_series(m, input, i, piece);
+        for (size_t o = 0; o < m->outputs; ++o)
+            if (x->wanted[o])
+                look_at_piece(m, o, m->sample + k, piece);
+        if (m->equipment != NULL)
+            rampwise_equipment_look_(m, k, piece, x->pieces, x->series);
     }
 }
 
-/* Whether an output may have a peak in tile t of n steps. */
-static int tile_may_count(const rampwise_modes *m, size_t t, size_t n)
+/* The greatest and least samples of an output in tile t of n steps. */
+static void range_of(const rampwise_modes *m, size_t t, size_t n, size_t o, double *high, double *low)
+{
+    const double *const y = m->output + t * TILE * m->width + o;
+    *high = *low = y[0];
+    for (size_t i = 1; i <= n; ++i) {
+        *high = y[i * m->width] > *high ? y[i * m->width] : *high;
+        *low = y[i * m->width] < *low ? y[i * m->width] : *low;
+    }
+}
+
+static int output_may_count(const rampwise_modes *m, size_t t, size_t n, int pass)
 {
     const modes_peaks *const x = m->peaks;
     for (size_t o = 0; o < m->outputs; ++o) {
-        const double *const y = m->output + t * TILE * m->width + o;
-        double high = y[0], low = y[0];
-        for (size_t i = 1; i <= n; ++i) {
-            high = fmax(high, y[i * m->width]);
-            low = fmin(low, y[i * m->width]);
-        }
+        double high, low;
+        if ((x->first[o] == t) != (pass == 0))
+            continue;
+        range_of(m, t, n, o, &high, &low);
         if (may_count(x, o, high, low, x->excess_tile[t * m->width + o]))
             return 1;
     }
     return 0;
 }
 
-static void finish_tile(rampwise_modes *m, size_t t, size_t n)
+static size_t steps_of(size_t t, size_t n)
+{
+    return n - t * TILE < TILE ? n - t * TILE : TILE;
+}
+
+/* Floors that the samples raise, and the tile that can exceed them most. */
+static void prepare(const rampwise_modes *m, size_t n, size_t o)
 {
     modes_peaks *const x = m->peaks;
-    const double *const input = m->input + t * TILE * m->inputs;
-    for (size_t i = 0; i < n; ++i)
-        add_jumps(m, input, i, x->excess_tile + t * m->width);
-    const int looking = tile_may_count(m, t, n);
-    if (looking)
-        rampwise_modes_trace_(m, t, n);
-    for (size_t i = 0; i < n; ++i) {
-        if (looking)
-            look_at_step(m, t, i, input);
-        for (size_t o = 0; o < m->outputs; ++o)
-            note_value(&x->peak[o], m->output[(t * TILE + i + 1) * m->width + o],
-                       m->sample + t * TILE + i + 1, 0);
+    double most = -INFINITY;
+    x->floor_high[o] = x->peak[o].high.value;
+    x->floor_low[o] = x->peak[o].low.value;
+    x->first[o] = 0;
+    for (size_t t = 0; t * TILE < n; ++t) {
+        double high, low;
+        range_of(m, t, steps_of(t, n), o, &high, &low);
+        x->floor_high[o] = fmax(x->floor_high[o], high);
+        x->floor_low[o] = fmin(x->floor_low[o], low);
+        const double size = fmax(high, -low) + x->excess_tile[t * m->width + o];
+        if (size > most) {
+            most = size;
+            x->first[o] = (unsigned char)t;
+        }
     }
 }
 
+static void look_at_tile(rampwise_modes *m, size_t t, size_t n, int pass)
+{
+    const double *const input = m->input + t * TILE * m->inputs;
+    if (!output_may_count(m, t, n, pass) &&
+        !(m->equipment != NULL && rampwise_equipment_may_count_(m, t, n, pass)))
+        return;
+    trace(m, t, n);
+    for (size_t i = 0; i < n; ++i)
+        look_at_step(m, t, i, input, pass);
+}
+
+/* First what promises most, so that the rest is outdone. */
 void rampwise_modes_peaks_segment_(rampwise_modes *m, size_t n)
 {
     modes_peaks *const x = m->peaks;
-    for (size_t o = 0; o < m->outputs; ++o) {
-        x->floor_high[o] = x->peak[o].high.value;
-        x->floor_low[o] = x->peak[o].low.value;
-        for (size_t i = 1; i <= n; ++i) {
-            x->floor_high[o] = fmax(x->floor_high[o], m->output[i * m->width + o]);
-            x->floor_low[o] = fmin(x->floor_low[o], m->output[i * m->width + o]);
-        }
-    }
-    for (size_t t = 0; t * TILE < n; ++t)
-        finish_tile(m, t, n - t * TILE < TILE ? n - t * TILE : TILE);
-}
-
-double (*rampwise_modes_series_(rampwise_modes *m, size_t k, size_t o, size_t *pieces))[POWERS + 1]
-{
-    make_series(m, m->input + k / TILE * TILE * m->inputs, k % TILE, o);
-    *pieces = m->peaks->pieces;
-    return m->peaks->series;
+    for (size_t k = 0; k < n; ++k)
+        add_jumps(m, m->input, k, x->excess_tile + k / TILE * m->width);
+    for (size_t o = 0; o < m->outputs; ++o)
+        prepare(m, n, o);
+    if (m->equipment != NULL)
+        rampwise_equipment_prepare_(m, n);
+    for (int pass = 0; pass < 2; ++pass)
+        for (size_t t = 0; t * TILE < n; ++t)
+            look_at_tile(m, t, steps_of(t, n), pass);
+    for (size_t k = 1; k <= n; ++k)
+        for (size_t o = 0; o < m->outputs; ++o)
+            rampwise_modes_note_(&x->peak[o], m->output[k * m->width + o], m->sample + k, 0);
+    if (m->equipment != NULL)
+        rampwise_equipment_note_(m, n);
 }
 
 double rampwise_modes_tile_excess_(const rampwise_modes *m, size_t t, size_t o)
 {
     return m->peaks->excess_tile[t * m->width + o];
+}
+
+double rampwise_modes_step_excess_(const rampwise_modes *m, size_t i, size_t o)
+{
+    return m->peaks->excess_step[i * m->width + o];
 }

@@ -16,22 +16,30 @@
    lose eps over the distance of the frequencies: tuned equipment is as exact as any other. Loads of
    all modes are gathered to the inputs. Undamped equipment tuned to an undamped mode grows without limit as long as
    the mode moves: its peak in any record is finite, its residual (the largest of all motion after the record)
-   infinite. Residuals are not offered; a run goes on over as many zeros as are of interest.
+   infinite. Residuals are not offered: a sum of free vibrations has no closed form for its extremes, and how long one
+   must look on depends on the dampings. A run goes on over as many zeros as are of interest, and the peaks are then
+   those of record and zeros together (the maximax).
 
-   A floor spectrum has a piece of equipment for every period. The usual way takes the history of y at the samples
-   as a record of its own, straight between them: rampwise_modes_run for y, and rampwise_spectrum of it. It loses what y
-   does between the samples: a mode of N samples a cycle acts with sinc^2(1/N) of its size at its own frequency (-19 %
-   at N = 4, -3.2 % at 10, -0.8 % at 20).
+   A floor spectrum has a piece of equipment for every period. The usual, re-sampled way needs nothing of this header: it
+   takes the history of y at the samples as a record of its own, straight between them, from rampwise_modes_run to
+   rampwise_spectrum (under RAMPWISE_BASE_ACCELERATION), as examples/floor_spectra.c does beside the exact way. Its
+   error is what y does between the samples: a mode of N samples a cycle acts with sinc^2(1/N) of its size at its own
+   frequency (-19 % at N = 4, -3.2 % at 10, -0.8 % at 20). It has no bound for a spectrum as a whole: the example prints
+   the largest difference, 0.45 % with its fastest mode at N = 20.
 
    Equipment is part of the plan of modes.h; all functions there work on the object. Pieces are at rest against their
    points at every start. Their order of arithmetic: the direct terms at the two ends of the step, each in the order of
    inputs; modes in groups of 32 as in modes.h; then u + fma(A - 1, u, fma(B, v, sum)). Peaks, where the plan asks for
-   them, are true between the samples as those of modes.h are: the power series of y goes into that of x.
+   them, are true between the samples as those of modes.h are: the power series of y goes into that of x. A step is
+   passed by where the smaller of two bounds does not exceed the peak: dt^2/8 of the largest second derivative beyond the
+   samples, up to w dt = 2 or so; and at any w dt, for a piece with a spring, the energy of its motion about -y/(k/m)
+   where the step begins, with what each mode can add to that in a step.
 
    Work: to make a piece, some coefficients for each mode and doubling of the step; for a sample, 4 fused multiply-adds a
-   mode and piece. With peaks, steps that may hold one are looked into, which costs a power series of every mode; where
-   w dt of a piece is above 2 there is no bound that would pass a step by, and every step is looked into: there, better
-   go without peaks, or at a shorter dt. Memory: 32 bytes a mode and piece. All since 0.1. */
+   mode and piece. Peaks, measured with 100 modes and 100 pieces over 20,000 samples, take 3 times as long as without
+   where w dt is at most 1; with w dt of modes and pieces up to 30, 13 times under a record with a correlation of 0.9
+   from sample to sample, some 80 times under white noise: there most steps must be looked into, which costs a power
+   series of every mode and of each piece in question. Where that is too much, go without peaks, or at a shorter dt. Memory: 32 bytes a mode and piece, 40 with peaks. All since 0.1. */
 #ifndef RAMPWISE_EQUIPMENT_H
 #define RAMPWISE_EQUIPMENT_H
 

@@ -27,18 +27,22 @@
    Peaks between the samples, where the plan asks for them. An output is a sum of modes and has no closed form for
    its extremes. (1) q_j'' of a mode is a free vibration inside a step, so the energy in it bounds its size and
    its slope's over the whole step by their values where the step begins; an output exceeds the samples beside
-   it by at most dt^2/8 times the weighted sum of those bounds. A tile of 16 samples that cannot exceed the peak
-   so far is passed by, and so is a step. (2) In the steps that are left, the power series of all modes are summed
-   to one polynomial, on pieces of the step so short that w h and c h/m of every mode are at most 1. (3)
-   The polynomial's extremes are found by halving until its slope is monotone, or no more can be gained, and then by
+   it by at most the weighted sum of those bounds times dt^2/8 or, in a step of more than 4 radians, times twice the
+   inverse of omega_j^2. A tile of 16 samples that cannot exceed the peak so far is passed by, and so is a step; of 256
+   samples the tile that promises most is looked at first. (2) In the steps that are left, the power series of all modes
+   are summed to one polynomial for each output, on pieces of the step so short that w h and c h/m of every mode are at
+   most 1; the modes' series are made once for all outputs and equipment. (3) The polynomial's extremes, where it can
+   exceed the peak, are found by halving until its slope is monotone, or no more can be gained, and then by
    Newton's steps inside the bracket. The peak is right to rounding: 1e-12 of the sum of the sizes of its terms.
    Where held inputs make an output jump at a sample, both values count.
 
    Threads: an object belongs to one thread at a time. Nothing is allocated after it is made. Work for a sample and
    mode: a step at lane speed, one fused multiply-add for each input and each output (two where velocities or
-   accelerations are weighted; outputs are taken by eights). Peaks take a bounded number of looks into steps: over
-   20,000 samples, 100 modes took four times as long with the peaks of 3 outputs, twelve times with those of 50.
-   Memory for a mode: some 130 bytes, 8 for each input and for each output (16), with peaks 700 and 8 for each
+   accelerations are weighted; outputs are taken by eights). Peaks take a bounded number of looks into steps, more of
+   them the more of an output is in modes of many radians a step. Measured over 20,000 samples, 100 modes up to w dt = 8,
+   50 outputs, all with peaks: displacements take 3 times as long as without, total accelerations 9 times
+   under a record with a correlation of 0.9 from sample to sample, and 90 times under white noise.
+   Memory for a mode: some 130 bytes, 8 for each input and for each output (16), with peaks 730 and 8 for each
    output more; 2 KiB for each output; whatever the number of samples. All since 0.1. */
 #ifndef RAMPWISE_MODES_H
 #define RAMPWISE_MODES_H

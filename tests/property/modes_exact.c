@@ -260,9 +260,176 @@ START_TEST(peaks)
 }
 END_TEST
 
+/* The same straight or held inputs, given at 16 times as many samples: the same motion, but in steps
+   of at most two radians, where other bounds decide. The difference is rounding, of 16 times as many steps. */
+enum { MANY = 12, LONG = 300, FINER = 16 };
+
+static void make_long(rampwise_modes_plan *plan, rampwise_coeffs *c, const rampwise_system *sys, double dt,
+                      int between)
+{
+    for (int j = 0; j < MANY; ++j)
+        ck_assert_int_eq(rampwise_coeffs_make(&c[j], &sys[j], dt, RAMPWISE_BASE_ACCELERATION, between),
+                         RAMPWISE_OK);
+    plan->c = c;
+}
+
+static void peaks_of(const rampwise_modes_plan *plan, size_t n, const double *input, rampwise_peak *peak)
+{
+    rampwise_modes *modes = NULL;
+    ck_assert_int_eq(rampwise_modes_create(plan, &modes), RAMPWISE_OK);
+    ck_assert_int_eq(rampwise_modes_run(modes, n, input, NULL, NULL), RAMPWISE_OK);
+    ck_assert_int_eq(rampwise_modes_peaks(modes, peak), RAMPWISE_OK);
+    peak += plan->outputs;
+    ck_assert_int_eq(rampwise_equipment_peaks(modes, RAMPWISE_DISPLACEMENT, peak), RAMPWISE_OK);
+    peak += plan->equipment_count;
+    ck_assert_int_eq(rampwise_equipment_peaks(modes, RAMPWISE_TOTAL_ACCELERATION, peak), RAMPWISE_OK);
+    rampwise_modes_free(modes);
+}
+
+START_TEST(finer_samples)
+{
+    gsl_rng *const r = random_make("finer_samples");
+    const char *const points = getenv("RAMPWISE_POINTS");
+    const int cases = points != NULL ? atoi(points) / 500 : 4;
+    double worst = 0;
+    for (int i = 0; i < cases; ++i) {
+        static double input[LONG], finer[LONG * FINER], load[MANY], weight[2][MANY * OUTPUTS];
+        const double dt = 0.01, on_input[OUTPUTS] = {1, 1, 0};
+        const int between = i % 4 == 3 ? RAMPWISE_HOLD : RAMPWISE_RAMP;
+        rampwise_system sys[MANY], equipment[MANY];
+        rampwise_coeffs c[2][MANY];
+        size_t point[MANY];
+        rampwise_modes_plan plan;
+        rampwise_peak peak[2][OUTPUTS + 2 * MANY];
+        rampwise_modes_plan_init(&plan);
+        random_fill(r, load, MANY);
+        random_fill(r, weight[0], MANY * OUTPUTS);
+        random_fill(r, weight[1], MANY * OUTPUTS);
+        random_fill(r, input, LONG);
+        for (int k = LONG / 2; i % 2 && k < LONG; ++k) /* dies away */
+            input[k] *= exp((LONG / 2 - k) / 20.0);
+        for (int k = 0; k < LONG; ++k)
+            for (int part = 0; part < FINER; ++part) {
+                const double before = k > 0 ? input[k - 1] : 0, now = input[k];
+                const double share =
+                    between == RAMPWISE_HOLD ? part + 1 == FINER : (part + 1) / (double)FINER;
+                finer[k * FINER + part] = before + share * (now - before);
+            }
+        for (int j = 0; j < MANY; ++j) {
+            ck_assert_int_eq(
+                rampwise_system_natural(&sys[j], random_log(r, 0.05, 30) / dt, random_log(r, 1e-3, 0.5)),
+                RAMPWISE_OK);
+            ck_assert_int_eq(rampwise_system_natural(&equipment[j], random_log(r, 0.5, 30) / dt,
+                                                     j % 4 ? random_log(r, 1e-3, 3) : 0),
+                             RAMPWISE_OK);
+            if (j % 3 == 0)
+                equipment[j].stiffness = sys[j].stiffness * (1 + (j % 2) * 0.03);
+            for (int o = 0; o < OUTPUTS; ++o)
+                weight[0][j * OUTPUTS + o] *= o == 2 ? sys[j].stiffness / sys[j].mass : 0;
+            point[j] = (size_t)(j % OUTPUTS);
+        }
+        plan.modes = MANY;
+        plan.inputs = 1;
+        plan.outputs = OUTPUTS;
+        plan.load = load;
+        plan.on_displacement = weight[0];
+        plan.on_acceleration = weight[1];
+        plan.on_input = on_input;
+        plan.equipment_count = MANY;
+        plan.equipment = equipment;
+        plan.point = point;
+        plan.peaks = 1;
+        make_long(&plan, c[0], sys, dt, between);
+        peaks_of(&plan, LONG, input, peak[0]);
+        make_long(&plan, c[1], sys, dt / FINER, between);
+        peaks_of(&plan, LONG * FINER, finer, peak[1]);
+        for (int k = 0; k < OUTPUTS + 2 * MANY; ++k) {
+            const double size = fmax(peak[1][k].high.value, -peak[1][k].low.value);
+            const double high = fabs(peak[0][k].high.value - peak[1][k].high.value) / size;
+            const double low = fabs(peak[0][k].low.value - peak[1][k].low.value) / size;
+            ck_assert_double_le(high, 1e-10);
+            ck_assert_double_le(low, 1e-10);
+            worst = fmax(worst, fmax(high, low));
+        }
+    }
+    printf("finer samples: largest difference %.1e of the peak\n", worst);
+    gsl_rng_free(r);
+}
+END_TEST
+
+/* A piece at rest on a mode that swings: in its first steps nothing but what the mode does to it is to be found. */
+START_TEST(first_steps)
+{
+    gsl_rng *const r = random_make("first_steps");
+    enum { STEPS = 3, PARTS = 64 };
+    static const size_t point = 0;
+    const double dt = 0.01, load = 1;
+    double worst = 0;
+    for (int i = 0; i < 400; ++i) {
+        double input[1 + STEPS], finer[STEPS * PARTS];
+        rampwise_peak peak[2][3];
+        rampwise_system mode, piece;
+        ck_assert_int_eq(rampwise_system_natural(&mode, random_log(r, 0.1, 30) / dt, random_log(r, 1e-4, 2)),
+                         RAMPWISE_OK);
+        ck_assert_int_eq(rampwise_system_natural(&piece, random_log(r, 1, 30) / dt, random_log(r, 1e-4, 2)),
+                         RAMPWISE_OK);
+        if (i % 3 == 0)
+            piece.stiffness = mode.stiffness * (1 + (i % 2) * 0.02);
+        const double u = random_between(r, -1, 1), v = random_between(r, -1, 1) * sqrt(mode.stiffness);
+        const double on_u = i % 2 ? mode.stiffness : 0, on_v = i % 2 ? 0 : sqrt(mode.stiffness);
+        const double push = i % 5 == 0 ? mode.stiffness : 0;
+        for (int k = 0; k <= STEPS; ++k)
+            input[k] = push * random_between(r, -1, 1);
+        for (int k = 0; k < STEPS * PARTS; ++k)
+            finer[k] = input[k / PARTS] +
+                       (input[k / PARTS + 1] - input[k / PARTS]) * ((k % PARTS + 1) / (double)PARTS);
+        for (int fine = 0; fine < 2; ++fine) {
+            rampwise_coeffs c;
+            rampwise_modes *modes = NULL;
+            rampwise_modes_plan plan;
+            rampwise_modes_plan_init(&plan);
+            ck_assert_int_eq(
+                rampwise_coeffs_make(&c, &mode, fine ? dt / PARTS : dt, RAMPWISE_FORCE, RAMPWISE_RAMP),
+                RAMPWISE_OK);
+            plan.modes = plan.inputs = plan.outputs = plan.equipment_count = 1;
+            plan.c = &c;
+            plan.load = &load;
+            plan.on_displacement = &on_u;
+            plan.on_velocity = &on_v;
+            plan.equipment = &piece;
+            plan.point = &point;
+            plan.peaks = 1;
+            ck_assert_int_eq(rampwise_modes_create(&plan, &modes), RAMPWISE_OK);
+            ck_assert_int_eq(rampwise_modes_set(modes, &u, &v, input), RAMPWISE_OK);
+            ck_assert_int_eq(
+                rampwise_modes_run(modes, fine ? STEPS * PARTS : STEPS, fine ? finer : input + 1, NULL, NULL),
+                RAMPWISE_OK);
+            ck_assert_int_eq(rampwise_modes_peaks(modes, peak[fine]), RAMPWISE_OK);
+            ck_assert_int_eq(rampwise_equipment_peaks(modes, RAMPWISE_DISPLACEMENT, peak[fine] + 1),
+                             RAMPWISE_OK);
+            ck_assert_int_eq(rampwise_equipment_peaks(modes, RAMPWISE_TOTAL_ACCELERATION, peak[fine] + 2),
+                             RAMPWISE_OK);
+            rampwise_modes_free(modes);
+        }
+        for (int k = 0; k < 3; ++k) {
+            const double size = fmax(peak[1][k].high.value, -peak[1][k].low.value);
+            const double high = fabs(peak[0][k].high.value - peak[1][k].high.value) / size;
+            const double low = fabs(peak[0][k].low.value - peak[1][k].low.value) / size;
+            ck_assert_double_le(high, 1e-10);
+            ck_assert_double_le(low, 1e-10);
+            worst = fmax(worst, fmax(high, low));
+        }
+    }
+    printf("first steps: largest difference %.1e of the peak\n", worst);
+    gsl_rng_free(r);
+}
+END_TEST
+
 static void add_tests(TCase *tests)
 {
     tcase_add_test(tests, peaks);
+    tcase_add_test(tests, finer_samples);
+    tcase_add_test(tests, first_steps);
 }
 
 int main(void)
