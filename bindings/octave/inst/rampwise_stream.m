@@ -52,7 +52,7 @@ function stream = rampwise_stream (dt, varargin)
     error ("rampwise:argument", "%s: a stream has one oscillator; many under one input are a bank", caller);
   endif
   [input, between] = kinds (caller, options);
-  [quantities, fields] = outputs (caller, options.outputs);
+  [quantities, fields] = quantities (caller, options.outputs);
   rails = numbers (caller, "option 'rails'", options.rails);
   if (numel (rails) != 2)
     error ("rampwise:argument", "%s: option 'rails' must have two elements", caller);

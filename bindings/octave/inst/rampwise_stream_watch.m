@@ -32,7 +32,7 @@ function w = rampwise_stream_watch (stream, output, varargin)
   endif
   caller = "rampwise_stream_watch";
   object = stream_object (caller, stream);
-  quantity = outputs (caller, output);
+  quantity = quantities (caller, output);
   if (! isscalar (quantity))
     error ("rampwise:argument", "%s: a watch looks at one output", caller);
   endif

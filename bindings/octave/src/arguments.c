@@ -109,10 +109,10 @@ int answer(mxArray **out, int status, size_t fault)
 #define PRECISION(name) name##_f32
 #include "coefficients_body.h"
 
-void want_histories(mxArray **out, const mxArray *wanted, mxClassID class, size_t n, size_t columns)
+void want_histories(mxArray **out, const mxArray *wanted, int most, mxClassID class, size_t n, size_t columns)
 {
-    const double *const w = doubles(wanted, 4);
-    for (int i = 0; i < 4; ++i)
+    const double *const w = doubles(wanted, (size_t)most);
+    for (int i = 0; i < most; ++i)
         if (w[i] != 0)
             out[2 + i] = mxCreateNumericMatrix((mwSize)n, (mwSize)columns, class, mxREAL);
 }

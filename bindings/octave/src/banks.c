@@ -41,7 +41,7 @@ void bank_run(mxArray **out, const mxArray **in)
         which[i] = number >= 1 && number <= 4e9 && number == floor(number) ? (size_t)number - 1 : SIZE_MAX;
     }
     answer(out, RAMPWISE_OK, 0);
-    want_histories(out, in[3], mxDOUBLE_CLASS, n, chosen);
+    want_histories(out, in[3], HISTORIES, mxDOUBLE_CLASS, n, chosen);
     out[6] = matrix(rampwise_bank_count(bank), 1);
     for (int i = 2; i < 6; ++i)
         for (size_t j = 0; j < mxGetNumberOfElements(out[i]); ++j)

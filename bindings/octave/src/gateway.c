@@ -25,7 +25,7 @@ static void status_text(mxArray **out, const mxArray **in)
 }
 
 static const struct command {
-    char name[16];
+    char name[24];
     int takes, answers;
     command_call *call;
 } commands[] = {
@@ -39,14 +39,18 @@ static const struct command {
     {"bank_start", 2, 2, bank_start},
     {"coefficients", 4, 3, coefficients},
     {"constant", 1, 1, constant},
+    {"directions", 9, 3, directions},
+    {"energies", 8, 6, energies},
+    {"energy_spectrum", 6, 4, energy_spectrum},
     {"list_log", 3, 3, list_log},
     {"list_octaves", 3, 3, list_octaves},
     {"object_free", 1, 1, object_free},
     {"objects", 0, 1, objects},
-    {"peaks", 7, 3, peaks},
-    {"response", 10, 6, response},
-    {"response_f32", 10, 6, response_f32},
-    {"rigid_peaks", 4, 3, rigid_peaks},
+    {"peaks", 7, 4, peaks},
+    {"percentiles_over_angle", 3, 3, percentiles_over_angle},
+    {"response", 10, 10, response},
+    {"response_f32", 10, 10, response_f32},
+    {"rigid_peaks", 5, 4, rigid_peaks},
     {"status_text", 1, 1, status_text},
     {"stream_make", 11, 3, stream_make},
     {"stream_put", 3, 4, stream_put},

@@ -16,7 +16,7 @@
 #include <mex.h>
 #include <rampwise.h>
 
-enum { ANSWERS = 7 };
+enum { ANSWERS = 10, HISTORIES = 4, MOTIONS = 8 };
 
 /* ---- what comes in; all refuse what is not as they need it (arguments.c) ---- */
 
@@ -45,8 +45,12 @@ mxArray *empty(void);
 /* The status, and where; all other answers empty. Returns the status. */
 int answer(mxArray **out, int status, size_t fault);
 
-/* Room from out[2] on for the histories wanted, u, v, u'' and total; the others stay empty. And column j of them. */
-void want_histories(mxArray **out, const mxArray *wanted, mxClassID class, size_t n, size_t columns);
+/* Room from out[2] on for those wanted of `most` histories, the first four u, v, u'' and total; the others stay empty.
+   And column j of these four. */
+void want_histories(mxArray **out, const mxArray *wanted, int most, mxClassID class, size_t n,
+                    size_t columns);
+double *column(const mxArray *a, size_t n, size_t j); /* of n elements; NULL where a is empty */
+float *column_f32(const mxArray *a, size_t n, size_t j);
 rampwise_history histories(mxArray **out, size_t n, size_t j);
 rampwise_history_f32 histories_f32(mxArray **out, size_t n, size_t j);
 
@@ -69,6 +73,7 @@ void objects_clear(void);
 
 typedef void command_call(mxArray **out, const mxArray **in);
 command_call coefficients, system_from, response, response_f32, peaks, rigid_peaks, list_log, list_octaves;
+command_call energies, energy_spectrum, directions, percentiles_over_angle;
 command_call object_free, objects;
 command_call bank_make, bank_start, bank_run, bank_read, bank_set, bank_retune, bank_count;
 command_call stream_make, stream_put, stream_read, stream_start, stream_skip, stream_watch, stream_save,
