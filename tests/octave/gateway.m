@@ -2,13 +2,16 @@
 ## Every command is tried; random cases print their seed, RAMPWISE_SEED repeats it.
 1;
 
-function c = good_calls (bank, stream)
+function c = good_calls (bank, single_bank, stream)
   s = [1; 0.1; 9];
   p = sin (1:7).';
   force = 11;
   ramp = 21;
   c = {{"bank_count", bank}, {"bank_make", [s, s], 0.1, force, ramp}, {"bank_read", bank}, {"bank_retune", bank, 1, s, 0.1, force, ramp}, ...
        {"bank_run", bank, p, [2, 1], ones(1, 4)}, {"bank_set", bank, ones(4, 2)}, {"bank_start", bank, 1}, ...
+       {"bank_count_f32", single_bank}, {"bank_make_f32", [s, s], 0.1, force, ramp}, {"bank_read_f32", single_bank}, ...
+       {"bank_retune_f32", single_bank, 1, s, 0.1, force, ramp}, {"bank_run_f32", single_bank, single(p), [2, 1], ones(1, 4)}, ...
+       {"bank_set_f32", single_bank, ones(6, 2, "single")}, {"bank_start_f32", single_bank, 1}, ...
        {"coefficients", [s, s], 0.1, force, ramp}, {"directions", 0.1, p, p + 1, force, [1, 2], [0, 0.1], 31, 0, [50; 100]}, ...
        {"energies", [s, s], 0.1, force, ramp, 71, [0, 1], [1, 0], p}, {"energy_spectrum", 0.1, p, force, 72, [1, 2], [0, 0.1]}, {"constant", "RAMPWISE_RAMP"}, {"list_log", 1, 2, 5}, ...
        {"list_octaves", 1, 9, 3}, {"objects"}, {"peaks", [s, s], 0.1, force, ramp, [p, p], 0, 4}, {"percentiles_over_angle", p, p + 1, [0, 50]}, ...
@@ -64,8 +67,9 @@ before = __rampwise__ ("objects");
 
 ## The good ones are good.
 [status, fault, bank] = __rampwise__ ("bank_make", [1, 1; 0, 0; 4, 9], 0.1, 11, 21);
+[status, fault, single_bank] = __rampwise__ ("bank_make_f32", [1, 1; 0, 0; 4, 9], 0.1, 11, 21);
 stream = new_stream ();
-for call = good_calls (bank, stream)
+for call = good_calls (bank, single_bank, stream)
   try
     answer = __rampwise__ (call{1}{:});
     passed++;
@@ -80,7 +84,7 @@ for repeat = 1:2000
     __rampwise__ ("object_free", stream);
     stream = new_stream ();
   endif
-  calls = good_calls (bank, stream);
+  calls = good_calls (bank, single_bank, stream);
   call = calls{randi(numel (calls))};
   for i = 1:randi (2)
     junk = nonsense ();

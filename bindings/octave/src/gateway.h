@@ -21,7 +21,8 @@ enum { ANSWERS = 10, HISTORIES = 4, MOTIONS = 8 };
 /* ---- what comes in; all refuse what is not as they need it (arguments.c) ---- */
 
 void refuse(const char *what);
-const mxArray *real_double(const mxArray *a); /* a matrix */
+const mxArray *of_class(const mxArray *a, mxClassID class); /* a matrix of real numbers */
+const mxArray *real_double(const mxArray *a);
 double scalar(const mxArray *a);
 int integer(const mxArray *a);
 size_t whole_number(const mxArray *a);                 /* 0 to 2^31 - 1 */
@@ -38,7 +39,8 @@ rampwise_coeffs_f32 *make_coefficients_f32(mxArray **out, const mxArray **in);
 
 /* ---- what goes out ---- */
 
-mxArray *matrix(size_t rows, size_t columns); /* of zeros */
+mxArray *zeros(mxClassID class, size_t rows, size_t columns);
+mxArray *matrix(size_t rows, size_t columns); /* of doubles, zeros */
 mxArray *number(double x);
 mxArray *empty(void);
 
@@ -76,6 +78,8 @@ command_call coefficients, system_from, response, response_f32, peaks, rigid_pea
 command_call energies, energy_spectrum, directions, percentiles_over_angle;
 command_call object_free, objects;
 command_call bank_make, bank_start, bank_run, bank_read, bank_set, bank_retune, bank_count;
+command_call bank_make_f32, bank_start_f32, bank_run_f32, bank_read_f32, bank_set_f32, bank_retune_f32,
+    bank_count_f32;
 command_call stream_make, stream_put, stream_read, stream_start, stream_skip, stream_watch, stream_save,
     stream_resume;
 command_call watch_read, watch_events, watch_reset, watch_release;

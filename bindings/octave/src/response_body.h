@@ -80,9 +80,7 @@ void PRECISION(response)(mxArray **out, const mxArray **in)
          .systems = count_systems(in[0]),
          .start = integer(in[4])};
     const size_t wide = w.systems > 1 ? w.systems : w.columns;
-    if (mxGetClassID(in[7]) != CLASS || mxIsComplex(in[7]) || mxIsSparse(in[7]) ||
-        mxGetNumberOfDimensions(in[7]) != 2)
-        refuse("samples are a real, full matrix of their class");
+    (void)of_class(in[7], CLASS);
     if (w.n == 0 || w.systems == 0 || (w.columns > 1 ? w.columns : wide) != wide || w.columns == 0)
         refuse("systems and columns of samples must be as many, or one");
     w.u0 = doubles(in[5], wide);
