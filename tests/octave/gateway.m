@@ -19,12 +19,22 @@ function c = good_calls (bank, single_bank, stream)
        {"response", [s, s], 0.1, force, ramp, 2, [0, 0], [0, 0], p, [0, 1, 0, 1, 0, 0, 1, 0], (1:7).^2}, ...
        {"response_f32", s, 0.1, force, ramp, 2, [0, 0], [0, 0], single([p, p]), ones(1, 8), []}, ...
        {"rigid_peaks", 0.1, force, p, 0, 1}, {"status_text", -10}, ...
-       {"stream_make", s, 0.1, force, ramp, 61, 65, 68, 10, 1, [-Inf, Inf], [31, 33]}, {"stream_put", stream, p, []}, ...
+       {"stream_make", s, 0.1, force, ramp, 61, 65, 68, 10, 1, [-Inf, Inf], [31, 38; 0, 1; 0, 2; 0, 3; 0, 4], [1, 0, 9]}, {"stream_put", stream, p, []}, {"stream_put", stream, int32(p), []}, {"stream_retune", stream, s, 0.1, force, ramp}, ...
        {"stream_put", stream, p, int64(1:7) + intmax("int64") - 8}, {"stream_read", stream}, {"stream_save", stream}, ...
        {"stream_resume", stream, saved_bytes(stream)}, {"stream_skip", stream, 3}, {"stream_start", stream, [1, 2, 3, 4], 9}, ...
-       {"stream_watch", stream, s, 0.1, force, ramp, 31, [1; 0.1; 1; 1], 3, 4}, {"watch_events", stream, 1}, ...
+       {"stream_watch", stream, [31; 0; 0; 0; 0], [1; 0.1; 1; 1], 3, 4}, {"watch_events", stream, 1}, ...
        {"watch_read", stream, 1}, {"watch_release", stream, 1, 1}, {"watch_reset", stream, 1}, ...
        {"system", "period", [1, 2], [0, 0.1]}, {"version"}};
+endfunction
+
+## The same of a stream in single precision, given as NAME_f32.
+function c = single_calls (stream)
+  c = {{"stream_make_f32", [1; 0.1; 9], 0.1, 11, 21, 61, 65, 68, 10, 1, [-Inf, Inf], [31; 0; 0; 0; 0], [1, 0, 9]}, ...
+       {"stream_put_f32", stream, single(1:7), []}, {"stream_put_f32", stream, int32(1:7), int64(1:7) + intmax("int64") - 8}, ...
+       {"stream_read_f32", stream}, {"stream_save_f32", stream}, {"stream_skip_f32", stream, 3}, ...
+       {"stream_start_f32", stream, single(1:6), 9}, {"stream_retune_f32", stream, [1; 0.1; 9], 0.1, 11, 21}, ...
+       {"stream_watch_f32", stream, [31; 0; 0; 0; 0], [1; 0.1; 1; 1], 3, 4}, {"stream_resume_f32", stream, uint8(1:9)}, ...
+       {"watch_events_f32", stream, 1}, {"watch_read_f32", stream, 1}, {"watch_release_f32", stream, 1, 1}, {"watch_reset_f32", stream, 1}};
 endfunction
 
 function bytes = saved_bytes (stream)
@@ -32,9 +42,10 @@ function bytes = saved_bytes (stream)
 endfunction
 
 ## One watch, as before a call that may have made more: those would slow down what comes.
-function stream = new_stream ()
-  [status, fault, stream] = __rampwise__ ("stream_make", [1; 0.1; 9], 0.1, 11, 21, 61, 65, 68, 10, 1, [-Inf, Inf], [31, 33]);
-  __rampwise__ ("stream_watch", stream, [1; 0.1; 9], 0.1, 11, 21, 31, [1, -1; 0, 0; 1, -1; 0, 1], 5, 5);
+function stream = new_stream (ending)
+  [status, fault, stream] = __rampwise__ (["stream_make" ending], [1; 0.1; 9], 0.1, 11, 21, 61, 65, 68, 10, 1, ...
+                                          [-Inf, Inf], [31, 33; zeros(4, 2)], [1, 0, 9]);
+  __rampwise__ (["stream_watch" ending], stream, [31; 0; 0; 0; 0], [1, -1; 0, 0; 1, -1; 0, 1], 5, 5);
 endfunction
 
 function junk = nonsense ()
@@ -68,8 +79,9 @@ before = __rampwise__ ("objects");
 ## The good ones are good.
 [status, fault, bank] = __rampwise__ ("bank_make", [1, 1; 0, 0; 4, 9], 0.1, 11, 21);
 [status, fault, single_bank] = __rampwise__ ("bank_make_f32", [1, 1; 0, 0; 4, 9], 0.1, 11, 21);
-stream = new_stream ();
-for call = good_calls (bank, single_bank, stream)
+stream = new_stream ("");
+single_stream = new_stream ("_f32");
+for call = [good_calls(bank, single_bank, stream), single_calls(single_stream)]
   try
     answer = __rampwise__ (call{1}{:});
     passed++;
@@ -82,9 +94,11 @@ endfor
 for repeat = 1:2000
   if (mod (repeat, 50) == 0)
     __rampwise__ ("object_free", stream);
-    stream = new_stream ();
+    __rampwise__ ("object_free", single_stream);
+    stream = new_stream ("");
+    single_stream = new_stream ("_f32");
   endif
-  calls = good_calls (bank, single_bank, stream);
+  calls = [good_calls(bank, single_bank, stream), single_calls(single_stream)];
   call = calls{randi(numel (calls))};
   for i = 1:randi (2)
     junk = nonsense ();

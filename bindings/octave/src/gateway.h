@@ -80,8 +80,10 @@ command_call object_free, objects;
 command_call bank_make, bank_start, bank_run, bank_read, bank_set, bank_retune, bank_count;
 command_call bank_make_f32, bank_start_f32, bank_run_f32, bank_read_f32, bank_set_f32, bank_retune_f32,
     bank_count_f32;
-command_call stream_make, stream_put, stream_read, stream_start, stream_skip, stream_watch, stream_save,
-    stream_resume;
-command_call watch_read, watch_events, watch_reset, watch_release;
+command_call stream_make, stream_put, stream_read, stream_retune, stream_start, stream_skip, stream_watch,
+    stream_save, stream_resume, watch_read, watch_events, watch_reset, watch_release;
+command_call stream_make_f32, stream_put_f32, stream_read_f32, stream_retune_f32, stream_start_f32,
+    stream_skip_f32, stream_watch_f32, stream_save_f32, stream_resume_f32, watch_read_f32, watch_events_f32,
+    watch_reset_f32, watch_release_f32;
 
 #endif
