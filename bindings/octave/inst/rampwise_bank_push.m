@@ -15,8 +15,8 @@ function h = rampwise_bank_push (bank, p, chosen = [])
     print_usage ();
   endif
   caller = "rampwise_bank_push";
-  object = bank_object (caller, bank);
-  p = numbers (caller, "P", p);
+  [object, ending, as_class] = bank_object (caller, bank);
+  p = as_class (numbers (caller, "P", p));
   chosen = numbers (caller, "CHOSEN", chosen);
   if (! isvector (p) && ! isempty (p))
     error ("rampwise:argument", "%s: P must be a vector: one input for all oscillators", caller);
@@ -24,7 +24,8 @@ function h = rampwise_bank_push (bank, p, chosen = [])
   if (numel (unique (chosen)) != numel (chosen))
     error ("rampwise:count", "%s: CHOSEN must be different numbers", caller);
   endif
-  [status, fault, u, v, a, total, largest] = __rampwise__ ("bank_run", object, p, chosen, ones (1, 4) * (nargout > 0));
+  [status, fault, u, v, a, total, largest] = ...
+    __rampwise__ (["bank_run" ending], object, p, chosen, ones (1, 4) * (nargout > 0));
   if (status == -80)
     warning ("rampwise:overflow", "%s: response to P(%d): %s; oscillators are stopped", caller, fault,
              __rampwise__ ("status_text", status));

@@ -13,11 +13,11 @@ function now = rampwise_bank_read (bank)
   if (nargin != 1)
     print_usage ();
   endif
-  object = bank_object ("rampwise_bank_read", bank);
+  [object, ending] = bank_object ("rampwise_bank_read", bank);
   now = struct ();
   [now.displacement, now.velocity, now.acceleration, now.total_acceleration, now.state] = ...
-    __rampwise__ ("bank_read", object);
-  [count, now.stopped] = __rampwise__ ("bank_count", object);
+    __rampwise__ (["bank_read" ending], object);
+  [count, now.stopped] = __rampwise__ (["bank_count" ending], object);
 endfunction
 
 %!test

@@ -10,13 +10,13 @@ function rampwise_bank_retune (bank, i, varargin)
     print_usage ();
   endif
   caller = "rampwise_bank_retune";
-  object = bank_object (caller, bank);
+  [object, ending] = bank_object (caller, bank);
   options = parse (caller, rmfield (describe (), {"input", "between"}), varargin);
   s = systems (caller, options);
   if (columns (s) != 1)
     error ("rampwise:argument", "%s: one oscillator is retuned at a time", caller);
   endif
-  [status, fault] = __rampwise__ ("bank_retune", object, scalar (caller, "I", i), s, bank.dt, bank.kinds{:});
+  [status, fault] = __rampwise__ (["bank_retune" ending], object, scalar (caller, "I", i), s, bank.dt, bank.kinds{:});
   check (caller, status, fault);
 endfunction
 

@@ -2,7 +2,7 @@
 ## @deftypefn {} {} rampwise_bank_set (@var{bank}, @var{state})
 ## Puts all oscillators of @var{bank} into the states @var{state}, as @code{rampwise_bank_read} gives them: a matrix
 ## of a column @code{[u; v; p; p_before]} each oscillator. As the input is one, p is the same in all columns, and
-## p_before too.
+## p_before too. In single precision two rows more follow, the low parts of u and v.
 ## @seealso{rampwise_bank, rampwise_bank_read}
 ## @end deftypefn
 
@@ -11,13 +11,14 @@ function rampwise_bank_set (bank, state)
     print_usage ();
   endif
   caller = "rampwise_bank_set";
-  object = bank_object (caller, bank);
-  state = numbers (caller, "STATE", state);
-  count = __rampwise__ ("bank_count", object);
-  if (! size_equal (state, zeros (4, count)))
-    error ("rampwise:argument", "%s: STATE must be a matrix of 4 rows and %d columns", caller, count);
+  [object, ending, as_class] = bank_object (caller, bank);
+  state = as_class (numbers (caller, "STATE", state));
+  count = __rampwise__ (["bank_count" ending], object);
+  height = 4 + 2 * ! isempty (ending);
+  if (! size_equal (state, zeros (height, count)))
+    error ("rampwise:argument", "%s: STATE must be a matrix of %d rows and %d columns", caller, height, count);
   endif
-  [status, fault] = __rampwise__ ("bank_set", object, state);
+  [status, fault] = __rampwise__ (["bank_set" ending], object, state);
   check (caller, status, fault);
 endfunction
 

@@ -12,7 +12,8 @@ function rampwise_bank_start (bank, p0)
     print_usage ();
   endif
   caller = "rampwise_bank_start";
-  [status, fault] = __rampwise__ ("bank_start", bank_object (caller, bank), scalar (caller, "P0", p0));
+  [object, ending] = bank_object (caller, bank);
+  [status, fault] = __rampwise__ (["bank_start" ending], object, scalar (caller, "P0", p0));
   check (caller, status, fault);
 endfunction
 

@@ -22,11 +22,16 @@
 ## zero over the interval before it. "settled": at rest under @code{@var{p}(1)}, as if it had always been there.
 ## @item "displacement", "velocity"
 ## Of the mass at the first sample, for a start at once: 0 unless given; one value, or one for each column.
+## @item "outputs"
+## One word or a cell array of "displacement", "velocity", "acceleration" (the second derivative of the displacement),
+## "total acceleration" (against a fixed frame), these four by default; "relative displacement" and "relative velocity"
+## (against the base, what differs under a base displacement alone); "spring force" and "damper force" (stiffness and
+## damper times these, positive in tension; in the unit that "mass", 1 unless given, brings).
 ## @end table
 ##
-## @var{r} is a struct of @code{time}, a column that begins at 0, and the matrices @code{displacement},
-## @code{velocity}, @code{acceleration} (the second derivative of the displacement) and @code{total_acceleration}
-## (against a fixed frame) in the caller's units, a row each sample; and @code{provenance}.
+## @var{r} is a struct of @code{time}, a column that begins at 0; a matrix for each output, named like it with an
+## underscore for a space, in the caller's units, a row each sample; and @code{provenance}. Where the slope of the base
+## jumps at a sample, relative velocity and damper force are those before it.
 ##
 ## A sample that is NaN or infinite is refused with its index.
 ##
@@ -39,13 +44,9 @@ function r = rampwise_response (p, dt, varargin)
     print_usage ();
   endif
   caller = "rampwise_response";
-  defaults = describe ();
-  defaults.start = "at once";
-  defaults.displacement = 0;
-  defaults.velocity = 0;
-  options = parse (caller, defaults, varargin);
+  options = parse (caller, whole (), varargin);
   r = respond (caller, [], p, scalar (caller, "DT", dt), options);
-  r.time = (0:rows (r.displacement) - 1).' * dt;
+  r.time = (0:rows (r.(fieldnames (r){2})) - 1).' * dt;
 endfunction
 
 %!demo
@@ -111,6 +112,29 @@ endfunction
 %! r = rampwise_response (p, dt, "omega", 3, "damping", 0.05, "input", "base acceleration");
 %! assert (r.total_acceleration, r.acceleration + p, 1e-14);
 %! assert (r.provenance.arithmetic_edition, rampwise_version ().arithmetic_edition);
+%!test # the spring carries what the mass's acceleration and the damper leave: m u'' + fd + fs = p
+%! o8 = {"omega", 3, "damping", 0.2, "mass", 2, "outputs", {"spring force", "damper force", "acceleration"}};
+%! r = rampwise_response (p, dt, o8{:}, "input", "force");
+%! assert (fieldnames (r), {"time"; "spring_force"; "damper_force"; "acceleration"; "provenance"});
+%! assert (r.spring_force + r.damper_force + 2 * r.acceleration, p, 1e-14); # a few roundings of values below 2
+%!test # a moving base, given three ways: the same motion against it. x_g is of straight lines, so x_g' jumps
+%! o8 = {"omega", 3, "damping", 0.2, "mass", 2, "input", "base displacement"};
+%! words = {"relative displacement", "relative velocity", "spring force", "damper force"};
+%! r = rampwise_response (p, dt, o8{:}, "outputs", [words, {"displacement", "velocity", "total acceleration"}]);
+%! assert (r.relative_displacement, r.displacement - p, eps);
+%! assert (r.relative_velocity, r.velocity - [0; diff(p)] / dt, 1e-14);
+%! assert (r.spring_force, 18 * r.relative_displacement, 1e-14);
+%! assert (r.damper_force, 2 * 2 * 0.2 * 3 * r.relative_velocity, 1e-14);
+%! assert (r.spring_force + r.damper_force, -2 * r.total_acceleration, 1e-13);
+%! f = rampwise_response (single (p), dt, o8{:}, "outputs", "damper force");
+%! assert (class (f.damper_force), "single");
+%! assert (double (f.damper_force), r.damper_force, 1e-5); # differences of p in single precision over dt, c = 2.4
+%! a = rampwise_response (p, dt, o8{:}, "start", "ramp", "outputs", "relative velocity");
+%! b = rampwise_response ([0; p], dt, o8{:}, "outputs", "relative velocity");
+%! assert (a.relative_velocity, b.relative_velocity(2:end));
+%!error <an output is named twice> rampwise_response (p, dt, o{:}, "outputs", {"velocity", "velocity"})
+%!error <'output' must be one of> rampwise_response (p, dt, o{:}, "outputs", "load")
+%!error id=rampwise:overflow rampwise_response (1e300, dt, "omega", 1e5, "damping", 0, "input", "force", "displacement", 1e300, "outputs", "spring force")
 %!error <Invalid call> rampwise_response ()
 %!error <Invalid call> rampwise_response (1)
 %!error <rampwise_response: P.2.: A sample is not a finite number> rampwise_response ([1; NaN], dt, o{:})

@@ -15,11 +15,7 @@ function r = rampwise_response_at (t, p, varargin)
     print_usage ();
   endif
   caller = "rampwise_response_at";
-  defaults = describe ();
-  defaults.start = "at once";
-  defaults.displacement = 0;
-  defaults.velocity = 0;
-  options = parse (caller, defaults, varargin);
+  options = parse (caller, whole (), varargin);
   t = numbers (caller, "T", t)(:);
   p = samples (caller, p);
   if (numel (t) != rows (p))
@@ -51,6 +47,11 @@ endfunction
 %! a = rampwise_response_at (t(keep), p(keep), o{:}); b = rampwise_response (p, 0.125, o{:});
 %! assert (a.displacement, b.displacement(keep), 200 * eps); # 160 steps of values below 1
 %! assert (a.time, t(keep));
+%!test # velocities against a base at irregular times are over the intervals they are
+%! p = [0; 3; 1; 1; 5]; t = [0; 0.1; 0.3; 0.4; 0.9];
+%! r = rampwise_response_at (t, p, "omega", 3, "damping", 0.1, "input", "base displacement", ...
+%!                           "outputs", {"velocity", "relative velocity"});
+%! assert (r.relative_velocity, r.velocity - [0; diff(p) ./ diff(t)], 1e-13);
 %!error <Invalid call> rampwise_response_at (1)
 %!error <3 times T for 2 rows> rampwise_response_at ([1; 2; 3], [1; 2], o{:})
 %!error <rampwise_response_at: T.3.: A time is not finite, or not later> rampwise_response_at ([1; 2; 2], [1; 2; 3], o{:})

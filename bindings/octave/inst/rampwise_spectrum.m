@@ -20,6 +20,9 @@
 ## "primary" (default): from the first to the last sample. "residual": the free motion after it. "maximax": both.
 ## @item "at_samples"
 ## true: look at the samples only. Default: false.
+## @item "evidence"
+## true: estimate, beside, what the sampling of the record has cost. For straight lines between the samples, and not for
+## base displacement. Default: false.
 ## @end table
 ##
 ## @var{s} is a struct:
@@ -36,6 +39,13 @@
 ## structs of what lies behind SD, SV and SA: @code{high} and @code{low}, the greatest and the least value;
 ## @code{sign}, on which side the larger is, 1 or -1 (0 where nothing moves); and the instants @code{time} of the larger,
 ## @code{high_time} and @code{low_time}, counted from the first sample, infinite for a limit that is never reached;
+## @item @code{evidence}, if wanted
+## a struct of @code{SD}, @code{SV} and @code{SA}, structs of @code{error}, the estimated error of the larger value, with
+## its sign; @code{corrected}, the larger value less that, in size; and @code{share}, the size of the error over that of
+## the value. Likewise @code{displacement}, @code{velocity} and @code{total_acceleration} have @code{error_high} and
+## @code{error_low} then. And @code{abrupt_start} and @code{abrupt_end}, true for each channel whose record begins or ends
+## abruptly: at the start, estimates are worth nothing, at the end those of the last samples and of residuals. Estimates
+## hold for loads that are smooth between their samples, and not for loads of straight lines;
 ## @item @code{provenance}
 ## the library, and the edition of its arithmetic.
 ## @end table
@@ -52,34 +62,45 @@ function s = rampwise_spectrum (p, dt, varargin)
   options = parse (caller, defaults (), varargin);
   p = samples (caller, p);
   dt = scalar (caller, "DT", dt);
-  [way, value] = natural (caller, options);
-  value = value(:);
-  zeta = damping (caller, options)(:).';
-  s = oscillators (way, value, zeta);
+  [s, way, value, zeta] = grid_of (caller, options);
   [input, between] = kinds (caller, options);
   parts = {"primary", "residual", "maximax"};
   part = [0, constant("RESIDUAL"), constant("MAXIMAX")](choice (caller, "part", options.part, parts));
   at_samples = truth (caller, "at_samples", options.at_samples) * constant ("AT_SAMPLES");
+  evidence = truth (caller, "evidence", options.evidence);
 
   rigid = isinf (s.omega) & s.omega > 0;
   six = zeros (6, numel (value), numel (zeta), 3, columns (p));
+  three = zeros (3, numel (value), numel (zeta), 3, columns (p));
   if (any (rigid))
     if (between != constant ("RAMP"))
       error ("rampwise:option", "%s: a rigid mass needs option 'between' to be 'ramp'", caller);
     endif
-    [status, fault, x] = __rampwise__ ("rigid_peaks", dt, input, p, part + at_samples);
+    [status, fault, x, e] = __rampwise__ ("rigid_peaks", dt, input, p, part + at_samples, evidence + 0);
     check (caller, status, fault, size (p));
-    six(:,rigid,:,:,:) = reshape (x, 6, 1, 1, 3, columns (p)) .* ones (1, sum (rigid), numel (zeta));
+    spread = @(x) reshape (x, [], 1, 1, 3, columns (p)) .* ones (1, sum (rigid), numel (zeta));
+    six(:,rigid,:,:,:) = spread (x);
+    if (evidence)
+      three(:,rigid,:,:,:) = spread (e);
+    endif
   endif
   if (! all (rigid))
     [v, z] = ndgrid (value(! rigid), zeta);
     [status, fault, made] = __rampwise__ ("system", way, v, z);
     check (caller, status, mod (fault - 1, rows (v)) + 1);
-    [status, fault, x] = __rampwise__ ("peaks", made, dt, input, between, p, at_samples, part);
+    run = at_samples + evidence * constant ("EVIDENCE");
+    [status, fault, x, e] = __rampwise__ ("peaks", made, dt, input, between, p, run, part);
     check (caller, status, fault, size (p));
     six(:,! rigid,:,:,:) = reshape (x, 6, sum (! rigid), numel (zeta), 3, columns (p));
+    if (evidence)
+      three(:,! rigid,:,:,:) = reshape (e, 3, sum (! rigid), numel (zeta), 3, columns (p));
+    endif
   endif
   s = results (s, six, rigid);
+  if (evidence)
+    s = with_evidence (s, six, three);
+  endif
+  s.provenance = provenance ();
 endfunction
 
 function options = defaults ()
@@ -88,25 +109,7 @@ function options = defaults ()
   options.input = "base acceleration";
   options.part = "primary";
   options.at_samples = false;
-endfunction
-
-function x = constant (name)
-  x = __rampwise__ ("constant", ["RAMPWISE_" name]);
-endfunction
-
-function s = oscillators (way, value, zeta)
-  s = struct ("period", value, "frequency", value, "omega", value, "damping", zeta);
-  switch (way)
-    case "period"
-      s.frequency = 1 ./ value;
-      s.omega = 2 * pi ./ value;
-    case "frequency"
-      s.period = 1 ./ value;
-      s.omega = 2 * pi * value;
-    otherwise
-      s.period = 2 * pi ./ value;
-      s.frequency = value / (2 * pi);
-  endswitch
+  options.evidence = false;
 endfunction
 
 ## SIX is {larger, its time, high, its time, low, its time} x periods x dampings x quantities x channels.
@@ -124,7 +127,26 @@ function s = results (s, six, rigid)
     s.(quantities{q,1}) = struct ("sign", sign (pick (1, q)), "time", pick (2, q), "high", pick (3, q), "high_time",
                                   pick (4, q), "low", pick (5, q), "low_time", pick (6, q));
   endfor
-  s.provenance = provenance ();
+endfunction
+
+## THREE is {error of high, of low, abrupt} beside SIX.
+function s = with_evidence (s, six, three)
+  pick = @(of, k, q) reshape (of(k,:,:,q,:), size (of)([2, 3, 5:end]));
+  quantities = {"displacement", "SD"; "velocity", "SV"; "total_acceleration", "SA"};
+  for q = 1:3
+    [high, low, larger] = deal (pick (three, 1, q), pick (three, 2, q), pick (six, 1, q));
+    s.(quantities{q,1}).error_high = high;
+    s.(quantities{q,1}).error_low = low;
+    e = high;
+    from_low = larger != pick (six, 3, q);
+    e(from_low) = low(from_low);
+    share = abs (e) ./ abs (larger);
+    share(e == 0) = 0;
+    s.evidence.(quantities{q,2}) = struct ("error", e, "corrected", abs (larger - e), "share", share);
+  endfor
+  abrupt = reshape (three(3,1,1,1,:), 1, []);
+  s.evidence.abrupt_start = bitand (abrupt, constant ("ABRUPT_START")) != 0;
+  s.evidence.abrupt_end = bitand (abrupt, constant ("ABRUPT_END")) != 0;
 endfunction
 
 %!demo
@@ -184,6 +206,30 @@ endfunction
 %! c = rampwise_spectrum (p, dt, o{:}, "part", "maximax");
 %! assert (c.SD, max (a.SD, b.SD));
 %! assert (all (b.displacement.time >= 150 * dt - 1e-12));
+%!test # evidence: a smooth load sampled coarsely; the true spectrum is that of samples 32 times as close
+%! t = (0:200).' / 200; f = (0:200*32).' / (200*32);
+%! load = @(t) sin (pi * t) .^ 8 .* (cos (2 * pi * 20 * t) + sin (2 * pi * 9 * t)); # Hann-like ends, 10 samples a cycle
+%! o = {"period", [0.08; 0.3], "damping", [0.02, 0.1], "evidence", true};
+%! s = rampwise_spectrum (load (t), 1/200, o{:});
+%! x = rampwise_spectrum (load (f), 1/200/32, o{1:4});
+%! assert (! any ([s.evidence.abrupt_start, s.evidence.abrupt_end]));
+%! wrong = abs (s.SD - x.SD);
+%! assert (all (abs (s.evidence.SD.corrected - x.SD) < 0.2 * wrong)); # the header's fifth (rampwise/evidence.h)
+%! assert (s.evidence.SD.share, abs (s.evidence.SD.error) ./ s.SD, eps);
+%! e = s.displacement;
+%! assert (s.evidence.SD.error, merge (e.sign .* s.SD == e.high, e.error_high, e.error_low));
+%! q = rampwise_spectrum (load (t), 1/200, o{1:4});
+%! assert (q.SD, s.SD);
+%! assert (! isfield (q, "evidence"));
+%!test # channels of evidence; abrupt ends; the rigid mass
+%! s = rampwise_spectrum ([p, flipud(p), sin(pi*(0:150).'/150).^4], dt, "period", [0, 1], "evidence", true);
+%! assert (s.evidence.abrupt_start, [true, true, false]);
+%! assert (s.evidence.abrupt_end(3), false);
+%! assert (size (s.evidence.SA.error), [2, 1, 3]);
+%! assert (squeeze (s.evidence.SD.share(1,1,:)), zeros (3, 1));
+%!error id=rampwise:input rampwise_spectrum (p, dt, "period", 1, "input", "base displacement", "evidence", true)
+%!error id=rampwise:between rampwise_spectrum (p, dt, "period", 1, "between", "hold", "evidence", true)
+%!error <'evidence' must be true or false> rampwise_spectrum (p, dt, "period", 1, "evidence", "yes")
 %!error <Invalid call> rampwise_spectrum (1)
 %!error <exactly one of> rampwise_spectrum (1, 1, "damping", 0.05)
 %!assert (rampwise_spectrum (p, dt, "period", 1).damping, 0.05)

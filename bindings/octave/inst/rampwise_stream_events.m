@@ -13,8 +13,8 @@ function events = rampwise_stream_events (stream, w)
   if (nargin != 2)
     print_usage ();
   endif
-  [object, w] = stream_watched ("rampwise_stream_events", stream, w);
-  x = __rampwise__ ("watch_events", object, w);
+  [object, w, ending] = stream_watched ("rampwise_stream_events", stream, w);
+  x = __rampwise__ (["watch_events" ending], object, w);
   time = (x(1,:) + x(2,:)) * stream.dt;
   events = struct ("time", num2cell (time), "value", num2cell (x(3,:)), "level", num2cell (x(6,:)), "direction",
                    num2cell (x(5,:)), "clipped", num2cell (bitand (x(7,:), 2) > 0), "bridged",

@@ -2,7 +2,7 @@
 ## @deftypefn  {} {@var{h} =} rampwise_stream_push (@var{stream}, @var{p})
 ## @deftypefnx {} {@var{h} =} rampwise_stream_push (@var{stream}, @var{p}, @var{t})
 ## Takes @var{stream} over the next samples, the vector @var{p}; with the stamps @var{t}, whole numbers of ticks, each
-## later than the one before, best of class int64.
+## later than the one before, best of class int64. Samples of an integer class are raw (@code{rampwise_stream}).
 ##
 ## @var{h} is a struct of a column for each of the stream's outputs, named like them with an underscore for a space, and
 ## logical columns: @code{started}, the stream starts with this sample; @code{clipped}, an end of the step's line was
@@ -19,15 +19,15 @@ function h = rampwise_stream_push (stream, p, t = [])
     print_usage ();
   endif
   caller = "rampwise_stream_push";
-  object = stream_object (caller, stream);
-  p = numbers (caller, "P", p);
+  [object, ending, as_class] = stream_object (caller, stream);
+  p = raw_or (as_class, p, numbers (caller, "P", p), caller);
   if (! isvector (p) && ! isempty (p))
     error ("rampwise:argument", "%s: P must be a vector", caller);
   endif
   if (nargin > 2)
     t = stamps (caller, t, numel (p));
   endif
-  [status, fault, frames, flags] = __rampwise__ ("stream_put", object, p, t);
+  [status, fault, frames, flags] = __rampwise__ (["stream_put" ending], object, p, t);
   if (status == -80)
     warning ("rampwise:overflow", "%s: response to P(%d): %s", caller, fault, __rampwise__ ("status_text", status));
   else
@@ -38,6 +38,18 @@ function h = rampwise_stream_push (stream, p, t = [])
   for i = 1:4
     h.(names{i}) = bitand (flags, 2 ^ (i - 1)) != 0;
   endfor
+endfunction
+
+## Integers as int32, other numbers of the stream's class.
+function p = raw_or (as_class, given, p, caller)
+  if (! isinteger (given))
+    p = as_class (p);
+    return;
+  endif
+  if (any (p(:) > 2^31 - 1))
+    error ("rampwise:argument", "%s: raw samples P must be integers of 32 bits", caller);
+  endif
+  p = int32 (given);
 endfunction
 
 function t = stamps (caller, t, n)

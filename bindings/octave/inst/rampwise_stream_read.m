@@ -25,8 +25,8 @@ function now = rampwise_stream_read (stream)
   if (nargin != 1)
     print_usage ();
   endif
-  object = stream_object ("rampwise_stream_read", stream);
-  [counts, state, number, watches] = __rampwise__ ("stream_read", object);
+  [object, ending] = stream_object ("rampwise_stream_read", stream);
+  [counts, state, number, watches] = __rampwise__ (["stream_read" ending], object);
   now = struct ("number", number, "state", state);
   names = {"next", "good", "missing", "clipped", "bridges", "starts", "longest", "last_missing", "last_clipped"};
   for i = 1:numel (names)
@@ -34,7 +34,7 @@ function now = rampwise_stream_read (stream)
   endfor
   now.watches = struct ("since_start", {}, "since_reset", {}, "window", {}, "levels", {}, "lost", {}, "resets", {});
   for w = 1:watches
-    [peaks, levels, lost, resets] = __rampwise__ ("watch_read", object, w);
+    [peaks, levels, lost, resets] = __rampwise__ (["watch_read" ending], object, w);
     now.watches(w) = struct ("since_start", span (peaks(:,1:2), stream.dt), "since_reset", span (peaks(:,3:4), stream.dt),
                              "window", span (peaks(:,5:6), stream.dt), "levels", reports (levels), "lost", lost,
                              "resets", resets);

@@ -10,9 +10,9 @@ function rampwise_stream_release (stream, w, level)
     print_usage ();
   endif
   caller = "rampwise_stream_release";
-  [object, w] = stream_watched (caller, stream, w);
+  [object, w, ending] = stream_watched (caller, stream, w);
   level = count_of (caller, "LEVEL", level);
-  [status, fault] = __rampwise__ ("watch_release", object, w, min (level, 5));
+  [status, fault] = __rampwise__ (["watch_release" ending], object, w, min (level, 5));
   if (status == -26)
     error ("rampwise:count", "%s: the watch has no level %d", caller, level);
   endif

@@ -9,8 +9,8 @@ function rampwise_stream_reset (stream, w)
     print_usage ();
   endif
   caller = "rampwise_stream_reset";
-  [object, w] = stream_watched (caller, stream, w);
-  [status, fault] = __rampwise__ ("watch_reset", object, w);
+  [object, w, ending] = stream_watched (caller, stream, w);
+  [status, fault] = __rampwise__ (["watch_reset" ending], object, w);
   check (caller, status, fault);
 endfunction
 

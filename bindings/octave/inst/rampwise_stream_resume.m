@@ -2,7 +2,8 @@
 ## @deftypefn {} {} rampwise_stream_resume (@var{stream}, @var{bytes})
 ## Puts everything that @code{rampwise_stream_save} gave into @var{stream}, which goes on from there with the same bits.
 ## It must have the same watches, made in the same order with the same windows and events. Where bytes are refused
-## nothing has changed.
+## nothing has changed. A new watch must wait for @code{rampwise_stream_retune} then, which may name the same oscillator:
+## bytes can come from a stream that was retuned.
 ## @seealso{rampwise_stream_save}
 ## @end deftypefn
 
@@ -11,11 +12,11 @@ function rampwise_stream_resume (stream, bytes)
     print_usage ();
   endif
   caller = "rampwise_stream_resume";
-  object = stream_object (caller, stream);
+  [object, ending] = stream_object (caller, stream);
   if (! isa (bytes, "uint8"))
     error ("rampwise:argument", "%s: BYTES must be of class uint8", caller);
   endif
-  [status, fault] = __rampwise__ ("stream_resume", object, bytes);
+  [status, fault] = __rampwise__ (["stream_resume" ending], object, bytes);
   check (caller, status, fault);
 endfunction
 

@@ -10,7 +10,8 @@ function bytes = rampwise_stream_save (stream)
     print_usage ();
   endif
   caller = "rampwise_stream_save";
-  [status, fault, bytes] = __rampwise__ ("stream_save", stream_object (caller, stream));
+  [object, ending] = stream_object (caller, stream);
+  [status, fault, bytes] = __rampwise__ (["stream_save" ending], object);
   check (caller, status, fault);
 endfunction
 

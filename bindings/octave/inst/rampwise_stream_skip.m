@@ -10,8 +10,8 @@ function rampwise_stream_skip (stream, number)
     print_usage ();
   endif
   caller = "rampwise_stream_skip";
-  object = stream_object (caller, stream);
-  [status, fault] = __rampwise__ ("stream_skip", object, count_of (caller, "NUMBER", number));
+  [object, ending] = stream_object (caller, stream);
+  [status, fault] = __rampwise__ (["stream_skip" ending], object, count_of (caller, "NUMBER", number));
   if (status == -64)
     error ("rampwise:time", "%s: NUMBER is already past", caller);
   endif

@@ -3,7 +3,7 @@
 ## @deftypefnx {} {} rampwise_stream_start (@var{stream}, @var{number}, @var{state})
 ## Begins @var{stream} anew. The next sample pushed has the number @var{number} and starts it; or the state is
 ## @var{state}, @code{[u; v; p; p_before]}, at the sample @var{number}, and the next sample comes one dt later. Samples
-## are numbered from 0.
+## are numbered from 0. In single precision the low parts of u and v follow in the state.
 ## @seealso{rampwise_stream, rampwise_stream_skip}
 ## @end deftypefn
 
@@ -12,12 +12,12 @@ function rampwise_stream_start (stream, number, state = [])
     print_usage ();
   endif
   caller = "rampwise_stream_start";
-  object = stream_object (caller, stream);
-  state = numbers (caller, "STATE", state);
-  if (nargin == 3 && numel (state) != 4)
-    error ("rampwise:argument", "%s: STATE must have four elements", caller);
+  [object, ending, as_class] = stream_object (caller, stream);
+  state = as_class (numbers (caller, "STATE", state));
+  if (nargin == 3 && numel (state) != 4 + 2 * ! isempty (ending))
+    error ("rampwise:argument", "%s: STATE must have %s elements", caller, {"four", "six"}{1 + ! isempty(ending)});
   endif
-  [status, fault] = __rampwise__ ("stream_start", object, state, count_of (caller, "NUMBER", number));
+  [status, fault] = __rampwise__ (["stream_start" ending], object, state, count_of (caller, "NUMBER", number));
   check (caller, status, fault);
 endfunction
 

@@ -3,7 +3,7 @@
 ## Watches an output of @var{stream} from here on, between the samples too: its greatest and least values, and up to
 ## four levels. @var{w} is the number of the watch, from 1, for @code{rampwise_stream_read} and others.
 ##
-## @var{output} is one of the outputs of @code{rampwise_stream}. Options:
+## @var{output} is one of the outputs of @code{rampwise_stream}, or four weights as in its option "weighted". Options:
 ##
 ## @table @asis
 ## @item "level"
@@ -31,17 +31,24 @@ function w = rampwise_stream_watch (stream, output, varargin)
     print_usage ();
   endif
   caller = "rampwise_stream_watch";
-  object = stream_object (caller, stream);
-  quantity = outputs (caller, output);
-  if (! isscalar (quantity))
+  [object, ending] = stream_object (caller, stream);
+  if (isnumeric (output))
+    made = weights (caller, "OUTPUT", output);
+  else
+    made = quantities (caller, output);
+  endif
+  if (columns (made) != 1)
     error ("rampwise:argument", "%s: a watch looks at one output", caller);
   endif
   options = parse (caller, struct ("level", [], "direction", 1, "hysteresis", 0, "latch", false, "window", 0, "events",
                                    100), varargin);
-  [status, fault, w] = __rampwise__ ("stream_watch", object, stream.description{:}, quantity, levels (caller, options), ...
+  [status, fault, w] = __rampwise__ (["stream_watch" ending], object, made, levels (caller, options), ...
     count_of (caller, "option 'window'", options.window), count_of (caller, "option 'events'", options.events));
   if (status == -62)
     error ("rampwise:level", "%s: levels must be finite, and hysteresis 0 or more", caller);
+  endif
+  if (status == -18)
+    error ("rampwise:not_made", "%s: after rampwise_stream_resume, rampwise_stream_retune comes first", caller);
   endif
   check (caller, status, fault);
 endfunction
@@ -81,6 +88,13 @@ endfunction
 
 %!shared s
 %! s = rampwise_stream (0.1, "omega", 1, "damping", 0, "input", "force");
+%!test # weights: twice the displacement
+%! a = rampwise_stream (0.1, "omega", 1, "damping", 0, "input", "force");
+%! rampwise_stream_watch (a, "displacement"); rampwise_stream_watch (a, [2, 0, 0, 0]);
+%! rampwise_stream_push (a, [1, 3, -2, 5]);
+%! watches = rampwise_stream_read (a).watches;
+%! assert (watches(2).since_start.high, 2 * watches(1).since_start.high);
+%!error <four finite weights> rampwise_stream_watch (s, [1, 2])
 %!error <Invalid call> rampwise_stream_watch (s)
 %!error <'output' must be one of> rampwise_stream_watch (s, "height")
 %!error <looks at one output> rampwise_stream_watch (s, {"load", "velocity"})

@@ -9,11 +9,17 @@ void refuse(const char *what)
 
 /* ---- what comes in ---- */
 
+const mxArray *of_class(const mxArray *a, mxClassID class)
+{
+    if (mxGetClassID(a) != class || mxIsComplex(a) || mxIsSparse(a) || mxGetNumberOfDimensions(a) != 2)
+        refuse(class == mxDOUBLE_CLASS ? "a number must be a real, full matrix of doubles"
+                                       : "numbers must be a real, full matrix of their class");
+    return a;
+}
+
 const mxArray *real_double(const mxArray *a)
 {
-    if (!mxIsDouble(a) || mxIsComplex(a) || mxIsSparse(a) || mxGetNumberOfDimensions(a) != 2)
-        refuse("a number must be a real, full matrix of doubles");
-    return a;
+    return of_class(a, mxDOUBLE_CLASS);
 }
 
 double scalar(const mxArray *a)
@@ -74,9 +80,14 @@ void *memory(size_t bytes, size_t alignment)
 /* ---- what goes out ---- */
 
 /* mwSize is signed here, unsigned there. */
+mxArray *zeros(mxClassID class, size_t rows, size_t columns)
+{
+    return mxCreateNumericMatrix((mwSize)rows, (mwSize)columns, class, mxREAL);
+}
+
 mxArray *matrix(size_t rows, size_t columns)
 {
-    return mxCreateDoubleMatrix((mwSize)rows, (mwSize)columns, mxREAL);
+    return zeros(mxDOUBLE_CLASS, rows, columns);
 }
 
 mxArray *number(double x)
@@ -109,10 +120,10 @@ int answer(mxArray **out, int status, size_t fault)
 #define PRECISION(name) name##_f32
 #include "coefficients_body.h"
 
-void want_histories(mxArray **out, const mxArray *wanted, mxClassID class, size_t n, size_t columns)
+void want_histories(mxArray **out, const mxArray *wanted, int most, mxClassID class, size_t n, size_t columns)
 {
-    const double *const w = doubles(wanted, 4);
-    for (int i = 0; i < 4; ++i)
+    const double *const w = doubles(wanted, (size_t)most);
+    for (int i = 0; i < most; ++i)
         if (w[i] != 0)
-            out[2 + i] = mxCreateNumericMatrix((mwSize)n, (mwSize)columns, class, mxREAL);
+            out[2 + i] = zeros(class, n, columns);
 }

@@ -17,7 +17,7 @@ PRECISION(rampwise_coeffs) * PRECISION(make_coefficients)(mxArray **out, const m
     return c;
 }
 
-static REAL *PRECISION(column)(const mxArray *a, size_t n, size_t j)
+REAL *PRECISION(column)(const mxArray *a, size_t n, size_t j)
 {
     return mxIsEmpty(a) ? NULL : (REAL *)mxGetData(a) + n * j;
 }

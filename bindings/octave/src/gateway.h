@@ -16,12 +16,13 @@
 #include <mex.h>
 #include <rampwise.h>
 
-enum { ANSWERS = 7 };
+enum { ANSWERS = 10, HISTORIES = 4, MOTIONS = 8 };
 
 /* ---- what comes in; all refuse what is not as they need it (arguments.c) ---- */
 
 void refuse(const char *what);
-const mxArray *real_double(const mxArray *a); /* a matrix */
+const mxArray *of_class(const mxArray *a, mxClassID class); /* a matrix of real numbers */
+const mxArray *real_double(const mxArray *a);
 double scalar(const mxArray *a);
 int integer(const mxArray *a);
 size_t whole_number(const mxArray *a);                 /* 0 to 2^31 - 1 */
@@ -38,15 +39,20 @@ rampwise_coeffs_f32 *make_coefficients_f32(mxArray **out, const mxArray **in);
 
 /* ---- what goes out ---- */
 
-mxArray *matrix(size_t rows, size_t columns); /* of zeros */
+mxArray *zeros(mxClassID class, size_t rows, size_t columns);
+mxArray *matrix(size_t rows, size_t columns); /* of doubles, zeros */
 mxArray *number(double x);
 mxArray *empty(void);
 
 /* The status, and where; all other answers empty. Returns the status. */
 int answer(mxArray **out, int status, size_t fault);
 
-/* Room from out[2] on for the histories wanted, u, v, u'' and total; the others stay empty. And column j of them. */
-void want_histories(mxArray **out, const mxArray *wanted, mxClassID class, size_t n, size_t columns);
+/* Room from out[2] on for those wanted of `most` histories, the first four u, v, u'' and total; the others stay empty.
+   And column j of these four. */
+void want_histories(mxArray **out, const mxArray *wanted, int most, mxClassID class, size_t n,
+                    size_t columns);
+double *column(const mxArray *a, size_t n, size_t j); /* of n elements; NULL where a is empty */
+float *column_f32(const mxArray *a, size_t n, size_t j);
 rampwise_history histories(mxArray **out, size_t n, size_t j);
 rampwise_history_f32 histories_f32(mxArray **out, size_t n, size_t j);
 
@@ -69,10 +75,15 @@ void objects_clear(void);
 
 typedef void command_call(mxArray **out, const mxArray **in);
 command_call coefficients, system_from, response, response_f32, peaks, rigid_peaks, list_log, list_octaves;
+command_call energies, energy_spectrum, directions, percentiles_over_angle;
 command_call object_free, objects;
 command_call bank_make, bank_start, bank_run, bank_read, bank_set, bank_retune, bank_count;
-command_call stream_make, stream_put, stream_read, stream_start, stream_skip, stream_watch, stream_save,
-    stream_resume;
-command_call watch_read, watch_events, watch_reset, watch_release;
+command_call bank_make_f32, bank_start_f32, bank_run_f32, bank_read_f32, bank_set_f32, bank_retune_f32,
+    bank_count_f32;
+command_call stream_make, stream_put, stream_read, stream_retune, stream_start, stream_skip, stream_watch,
+    stream_save, stream_resume, watch_read, watch_events, watch_reset, watch_release;
+command_call stream_make_f32, stream_put_f32, stream_read_f32, stream_retune_f32, stream_start_f32,
+    stream_skip_f32, stream_watch_f32, stream_save_f32, stream_resume_f32, watch_read_f32, watch_events_f32,
+    watch_reset_f32, watch_release_f32;
 
 #endif

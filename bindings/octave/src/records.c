@@ -46,7 +46,7 @@ void system_from(mxArray **out, const mxArray **in)
 /* ---- whole records ---- */
 
 /* response, response_f32: systems, dt, input, between, start, u0, v0, samples (of class double, single), wanted, times
-   (empty where regular) -> u, v, u'', total.
+   (empty where regular) -> u, v, u'', total, relative displacement and velocity, forces of spring and damper.
    One column of answers for each system or column of samples; where both are many they go in pairs. */
 enum { AT_ONCE, BY_A_RAMP, SETTLED }; /* the starts of step.h */
 
@@ -101,8 +101,35 @@ static void put_peak(double *six, const rampwise_peak *peak, double dt)
     six[5] = seconds(&peak->low, dt);
 }
 
+/* error of high, of low, abrupt */
+static void put_evidence(double *three, const rampwise_evidence *evidence)
+{
+    three[0] = evidence->error_high;
+    three[1] = evidence->error_low;
+    three[2] = evidence->abrupt;
+}
+
+/* One quantity of one column of samples; three is NULL where there is no evidence. */
+static int put_peaks(const rampwise_peaks *object, size_t systems, int quantity, unsigned question, double dt,
+                     double *six, double *three)
+{
+    rampwise_peak *const found = mxCalloc(systems, sizeof *found);
+    rampwise_evidence *const evidence = mxCalloc(systems, sizeof *evidence);
+    int status = rampwise_peaks_get(object, quantity, question, found);
+    if (status == RAMPWISE_OK && three != NULL)
+        status = rampwise_peaks_evidence(object, quantity, question, evidence);
+    for (size_t i = 0; status == RAMPWISE_OK && i < systems; ++i) {
+        put_peak(six + 6 * i, &found[i], dt);
+        if (three != NULL)
+            put_evidence(three + 3 * i, &evidence[i]);
+    }
+    mxFree(found);
+    mxFree(evidence);
+    return status;
+}
+
 /* From in: systems, dt, input, between, samples, flags of the run, flags of the question
-   -> 6 x (systems x quantities x columns of samples) */
+   -> 6 x (systems x quantities x columns of samples), 3 x the same where the run has evidence */
 void peaks(mxArray **out, const mxArray **in)
 {
     const size_t n = mxGetM(real_double(in[4])), columns = mxGetN(in[4]), systems = count_systems(in[0]);
@@ -115,9 +142,9 @@ void peaks(mxArray **out, const mxArray **in)
     const size_t bytes = rampwise_peaks_size(systems);
     int status = rampwise_peaks_init(memory(bytes, rampwise_peaks_alignment()), bytes, systems, c, 3,
                                      quantities, run, RAMPWISE_FASTEST, &object);
-    rampwise_peak *const found = mxCalloc(systems, sizeof *found);
+    const int with_evidence = (run & RAMPWISE_EVIDENCE) != 0;
     mxArray *const made = matrix(6, systems * 3 * columns);
-    double *six = mxGetPr(made);
+    mxArray *const evidence = with_evidence ? matrix(3, systems * 3 * columns) : empty();
     size_t bad = 0;
     for (size_t j = 0; status == RAMPWISE_OK && j < columns; ++j) {
         bad = j * n;
@@ -126,38 +153,50 @@ void peaks(mxArray **out, const mxArray **in)
         if (status == RAMPWISE_OK)
             status = rampwise_peaks_run(object, n, mxGetPr(in[4]) + j * n, &at);
         bad += at;
-        for (int q = 0; status == RAMPWISE_OK && q < 3; ++q) {
-            status = rampwise_peaks_get(object, quantities[q], question, found);
-            for (size_t i = 0; status == RAMPWISE_OK && i < systems; ++i, six += 6)
-                put_peak(six, &found[i], dt);
+        for (size_t q = 0; status == RAMPWISE_OK && q < 3; ++q) {
+            const size_t first = (3 * j + q) * systems;
+            status = put_peaks(object, systems, quantities[q], question, dt, mxGetPr(made) + 6 * first,
+                               with_evidence ? mxGetPr(evidence) + 3 * first : NULL);
         }
     }
-    answer(out, status, status == RAMPWISE_OK ? 0 : bad + 1);
-    if (status == RAMPWISE_OK)
-        out[2] = made;
+    if (answer(out, status, status == RAMPWISE_OK ? 0 : bad + 1) != RAMPWISE_OK)
+        return;
+    out[2] = made;
+    out[3] = evidence;
 }
 
-/* The limit of stiff oscillators. From in: dt, input, samples, flags -> 6 x (quantities x columns of samples) */
+/* The limit of stiff oscillators. From in: dt, input, samples, flags, whether with evidence
+   -> 6 x (quantities x columns of samples), 3 x the same with evidence */
 void rigid_peaks(mxArray **out, const mxArray **in)
 {
     const size_t n = mxGetM(real_double(in[2])), columns = mxGetN(in[2]);
     const double dt = scalar(in[0]), omega = INFINITY, zeta = 0;
-    const int input = integer(in[1]), flags = integer(in[3]);
+    const int input = integer(in[1]), with_evidence = integer(in[4]);
+    const unsigned flags = (unsigned)integer(in[3]);
     mxArray *const made = matrix(6, 3 * columns);
+    mxArray *const evidence = with_evidence ? matrix(3, 3 * columns) : empty();
     for (size_t j = 0; j < columns; ++j)
         for (size_t q = 0; q < 3; ++q) {
             rampwise_peak peak;
             size_t bad = 0;
-            const int status = rampwise_spectrum(n, dt, mxGetPr(in[2]) + j * n, input, 1, &omega, &zeta,
-                                                 quantities[q], (unsigned)flags, &peak, &bad);
+            rampwise_evidence of_it;
+            const double *const p = mxGetPr(in[2]) + j * n;
+            const int status =
+                with_evidence
+                    ? rampwise_spectrum_evidence(n, dt, p, input, 1, &omega, &zeta, quantities[q], flags,
+                                                 &peak, &of_it, &bad)
+                    : rampwise_spectrum(n, dt, p, input, 1, &omega, &zeta, quantities[q], flags, &peak, &bad);
             if (status != RAMPWISE_OK) {
                 answer(out, status, bad + 1 + j * n);
                 return;
             }
             put_peak(mxGetPr(made) + 6 * (3 * j + q), &peak, dt);
+            if (with_evidence)
+                put_evidence(mxGetPr(evidence) + 3 * (3 * j + q), &of_it);
         }
     answer(out, RAMPWISE_OK, 0);
     out[2] = made;
+    out[3] = evidence;
 }
 
 enum { LONGEST_LIST = 100000000 };

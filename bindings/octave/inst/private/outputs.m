@@ -1,19 +1,14 @@
-## outputs (CALLER, WORDS): the library's numbers for outputs of a stream, and the fields they go by.
-function [quantities, fields] = outputs (caller, words)
-  known = {"displacement", "velocity", "acceleration", "total acceleration", "spring force", "damper force", "load"};
+## outputs (CALLER, WORDS, KNOWN): which of KNOWN the outputs WORDS are, from 1, and the fields they go by.
+function [which, fields] = outputs (caller, words, known)
   if (ischar (words))
     words = {words};
   endif
   if (! iscellstr (words) || isempty (words) || numel (words) > 8)
     error ("rampwise:option", "%s: outputs are one to eight of: %s", caller, strjoin (known, ", "));
   endif
-  quantities = zeros (1, numel (words));
-  fields = cell (1, numel (words));
-  for i = 1:numel (words)
-    fields{i} = strrep (known{choice(caller, "output", words{i}, known)}, " ", "_");
-    quantities(i) = __rampwise__ ("constant", ["RAMPWISE_", upper(fields{i})]);
-  endfor
-  if (numel (unique (quantities)) != numel (quantities))
+  which = cellfun (@(w) choice (caller, "output", w, known), words(:).');
+  fields = strrep (known(which), " ", "_");
+  if (numel (unique (which)) != numel (which))
     error ("rampwise:option", "%s: an output is named twice", caller);
   endif
 endfunction
