@@ -56,6 +56,9 @@ float *column_f32(const mxArray *a, size_t n, size_t j);
 rampwise_history histories(mxArray **out, size_t n, size_t j);
 rampwise_history_f32 histories_f32(mxArray **out, size_t n, size_t j);
 
+/* larger in size, its time, high, its time, low, its time (records.c) */
+void put_peak(double *six, const rampwise_peak *peak, double dt);
+
 /* ---- objects that stay (objects.c) ---- */
 
 typedef struct object_kind {
@@ -76,6 +79,7 @@ void objects_clear(void);
 typedef void command_call(mxArray **out, const mxArray **in);
 command_call coefficients, system_from, response, response_f32, peaks, rigid_peaks, list_log, list_octaves;
 command_call energies, energy_spectrum, directions, percentiles_over_angle;
+command_call structure, roots_to_modes, combine;
 command_call object_free, objects;
 command_call bank_make, bank_start, bank_run, bank_read, bank_set, bank_retune, bank_count;
 command_call bank_make_f32, bank_start_f32, bank_run_f32, bank_read_f32, bank_set_f32, bank_retune_f32,

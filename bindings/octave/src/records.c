@@ -89,8 +89,7 @@ static double seconds(const rampwise_instant *at, double dt)
     return at->sample == UINT64_MAX ? INFINITY : ((double)at->sample + at->fraction) * dt;
 }
 
-/* larger in size, its time, high, its time, low, its time */
-static void put_peak(double *six, const rampwise_peak *peak, double dt)
+void put_peak(double *six, const rampwise_peak *peak, double dt)
 {
     const rampwise_instant *const larger = rampwise_peak_larger(peak);
     six[0] = larger->value;

@@ -1,0 +1,195 @@
+## -*- texinfo -*-
+## @deftypefn  {} {@var{b} =} rampwise_structure (@var{M}, @var{C}, @var{K})
+## @deftypefnx {} {@var{b} =} rampwise_structure (@var{M}, [], @var{K}, "damping", @var{zeta})
+## @deftypefnx {} {@var{b} =} rampwise_structure (@var{M}, [], @var{K}, "rayleigh", [@var{f1}, @var{zeta1}; @var{f2}, @var{zeta2}])
+## The modes of the structure @code{M u'' + C u' + K u = forces}, for @code{rampwise_structure_response}.
+##
+## @var{M}, @var{C} and @var{K} are symmetric, @var{M} positive definite, @var{K} without negative eigenvalues. The damping
+## is the matrix @var{C}; or, where that is empty, one of
+##
+## @table @asis
+## @item "damping"
+## damping ratios of the modes, one for all or one each, slowest first; rigid-body modes have none;
+## @item "rayleigh"
+## @code{C = a M + b K} with damping ratios @var{zeta1} and @var{zeta2} at the frequencies @var{f1} and @var{f2}, in
+## cycles. A negative @code{a} or @code{b} is refused.
+## @end table
+##
+## Modes are those without damping. A mode that the damping ties to no other one is an ordinary oscillator; where all are,
+## damping is classical. The others go by the complex pairs of roots and shapes that they have together. What ties is an
+## element of the modal damping matrix, off its diagonal, above 1e-10 of the largest.
+##
+## @var{b} is a struct of columns, slowest mode first, @code{omega}, @code{frequency}, @code{period} and @code{damping} (that
+## of the diagonal, NaN for a rigid-body mode, which has omega 0); @code{shapes}, a column each, of modal mass 1; @code{roots},
+## of the damped structure; @code{classical}, true or false; and @code{provenance} and what the package needs.
+##
+## Results support, and never replace, the governing code and a licensed engineer's judgement.
+## @seealso{rampwise_structure_response, rampwise_combine}
+## @end deftypefn
+
+function b = rampwise_structure (M, C, K, varargin)
+  if (nargin < 3)
+    print_usage ();
+  endif
+  caller = "rampwise_structure";
+  options = parse (caller, struct ("damping", [], "rayleigh", []), varargin);
+  M = symmetric (caller, "M", M, rows (M));
+  K = symmetric (caller, "K", K, rows (M));
+  given = [! isempty(C), ! isempty(options.damping), ! isempty(options.rayleigh)];
+  if (sum (given) != 1)
+    error ("rampwise:option", "%s: give exactly one of C, 'damping' and 'rayleigh'", caller);
+  endif
+  [shapes, k] = undamped (caller, M, K);
+  if (given(1))
+    D = shapes.' * symmetric (caller, "C", C, rows (M)) * shapes;
+  elseif (given(2))
+    D = diag (2 * ratios (caller, options.damping, k) .* sqrt (k));
+  else
+    ab = rayleigh (caller, options.rayleigh);
+    D = diag (ab(1) + ab(2) * k);
+  endif
+  [shapes, D] = settle_groups (shapes, k, (D + D.') / 2);
+  off = abs (D - diag (diag (D))) > 1e-10 * max (abs (D(:)));
+  D(! off & ! eye (rows (D))) = 0;
+  coupled = any (off, 2);
+  omega = sqrt (k);
+  zeta = diag (D) ./ (2 * omega);
+  zeta(k == 0) = NaN;
+  [roots, root_shapes] = roots_of (k(coupled), D(coupled,coupled));
+  alone = arrayfun (@(d, k) quadratic (d, k), diag (D)(! coupled), k(! coupled), "UniformOutput", false);
+  b = struct ("omega", omega, "frequency", omega / (2 * pi), "period", 2 * pi ./ omega, "damping", zeta, "shapes", shapes,
+              "roots", [roots; vertcat(alone{:})], "classical", ! any (coupled), "provenance", provenance (),
+              "mass", M, "modal_damper", D, "modal_stiffness", k, "coupled", coupled, "coupled_roots", roots,
+              "coupled_shapes", root_shapes);
+endfunction
+
+function A = symmetric (caller, name, A, n)
+  A = numbers (caller, name, A);
+  if (isempty (A) || any (size (A) != n))
+    error ("rampwise:argument", "%s: M, C and K must be square and of one size", caller);
+  endif
+  if (! all (isfinite (A(:))) || any (any (abs (A - A.') > 1e-12 * max (abs (A(:))))))
+    error ("rampwise:argument", "%s: %s must be finite and symmetric", caller, name);
+  endif
+  A = (A + A.') / 2;
+endfunction
+
+## Shapes of unit modal mass, and the squares of omega; what rounding cannot tell from 0 is 0.
+function [shapes, k] = undamped (caller, M, K)
+  [R, failed] = chol (M);
+  if (failed)
+    error ("rampwise:argument", "%s: M must be positive definite", caller);
+  endif
+  B = R.' \ K / R;
+  [V, k] = eig ((B + B.') / 2, "vector");
+  [k, order] = sort (k);
+  shapes = R \ V(:,order);
+  lost = 16 * numel (k) * eps * max (abs (k));
+  k(abs (k) <= lost) = 0;
+  if (any (k < 0))
+    error ("rampwise:argument", "%s: K must have no negative eigenvalue", caller);
+  endif
+endfunction
+
+## Where frequencies coincide shapes are free to turn, and are turned to what the damping does not tie.
+function [shapes, D] = settle_groups (shapes, k, D)
+  n = numel (k);
+  first = 1;
+  for last = 1:n
+    if (last == n || k(last + 1) - k(last) > 1e-9 * max (k))
+      if (last > first)
+        g = first:last;
+        [V, ~] = eig (D(g,g));
+        shapes(:,g) = shapes(:,g) * V;
+        D(g,:) = V.' * D(g,:);
+        D(:,g) = D(:,g) * V;
+        D = (D + D.') / 2;
+      endif
+      first = last + 1;
+    endif
+  endfor
+endfunction
+
+function z = ratios (caller, z, k)
+  z = numbers (caller, "option 'damping'", z)(:);
+  if (! all (isfinite (z)) || any (z < 0) || ! any (numel (z) == [1, numel(k)]))
+    error ("rampwise:option", "%s: option 'damping' must be ratios, 0 or more, one for all modes or one for each", caller);
+  endif
+  if (any (z > 2))
+    error ("rampwise:damping", "%s: damping ratio %g is above 2: is it in per cent?", caller, max (z));
+  endif
+endfunction
+
+## a and b of zeta = a / (2 omega) + b omega / 2, at two frequencies.
+function ab = rayleigh (caller, x)
+  x = numbers (caller, "option 'rayleigh'", x);
+  if (! size_equal (x, eye (2)) || ! all (isfinite (x(:))) || any (x(:,1) <= 0) || x(1,1) == x(2,1))
+    error ("rampwise:option", "%s: option 'rayleigh' must be [f1, zeta1; f2, zeta2] with two frequencies", caller);
+  endif
+  w = 2 * pi * x(:,1);
+  ab = [1 ./ (2 * w), w / 2] \ x(:,2);
+  if (any (ab < 0))
+    error ("rampwise:option", "%s: option 'rayleigh' makes negative damping at other frequencies", caller);
+  endif
+endfunction
+
+function [roots, shapes] = roots_of (k, D)
+  n = numel (k);
+  [V, roots] = eig ([zeros(n), eye(n); -diag(k), -D], "vector");
+  shapes = V(1:n,:);
+endfunction
+
+function r = quadratic (d, k)
+  s = sqrt (complex (d ^ 2 - 4 * k));
+  r = [-d - s; -d + s] / 2;
+endfunction
+
+%!shared M, K
+%! M = diag ([2, 2, 1]); k = 600; K = k * [2, -1, 0; -1, 2, -1; 0, -1, 1];
+%!test # a uniform shear building with half a mass on top: omega^2 = 2 k/m (1 - cos ((2 j - 1) pi / 2 n))
+%! b = rampwise_structure (M, [], K, "damping", [0.02, 0.05, 0.1]);
+%! assert (b.omega .^ 2, 600 * (1 - cos ([1; 3; 5] * pi / 6)), 1e-11);
+%! assert (b.damping, [0.02; 0.05; 0.1], 1e-14);
+%! assert (b.shapes.' * M * b.shapes, eye (3), 1e-14);
+%! assert (b.classical);
+%! assert (sort (abs (b.roots)), sort ([b.omega; b.omega]), 1e-12);
+%!test # Rayleigh: the two ratios at the two frequencies, and the matrix by hand
+%! f = rampwise_structure (M, [], K, "damping", 0).frequency;
+%! b = rampwise_structure (M, [], K, "rayleigh", [f(1), 0.03; f(3), 0.05]);
+%! assert (b.damping([1, 3]), [0.03; 0.05], 1e-13);
+%! w = 2 * pi * f([1, 3]); ab = 2 * [1 ./ w, w] \ [0.03; 0.05];
+%! c = rampwise_structure (M, 4 * ab(1) * M + 4 * ab(2) * K, K);
+%! assert (c.classical);
+%! assert (c.damping, b.damping, 1e-13);
+%!test # roots of any damping are those of det (root^2 M + root C + K)
+%! C = 3 * [2, -1, 0; -1, 1, 0; 0, 0, 0];
+%! b = rampwise_structure (M, C, K);
+%! assert (! b.classical);
+%! assert (numel (b.roots), 6);
+%! for r = b.roots.'
+%!   s = svd (r ^ 2 * M + r * C + K);
+%!   assert (s(end) < 1e-12 * s(1));
+%! endfor
+%!test # frequencies that coincide: shapes that the damping does not tie exist
+%! b = rampwise_structure (eye (2), [3, 1; 1, 3], 100 * eye (2));
+%! assert (b.classical);
+%! assert (sort (b.damping), [0.1; 0.2], 1e-14);
+%!test # rigid bodies stay
+%! b = rampwise_structure (eye (2), [1, -1; -1, 1], 9 * [1, -1; -1, 1]);
+%! assert (b.omega, [0; sqrt(18)], 1e-14);
+%! assert (isnan (b.damping), [true; false]);
+%!error <Invalid call> rampwise_structure (M, M)
+%!error <exactly one of> rampwise_structure (M, M, K, "damping", 0.1)
+%!error <exactly one of> rampwise_structure (M, [], K)
+%!error <M must be positive definite> rampwise_structure (-M, [], K, "damping", 0)
+%!error <no negative eigenvalue> rampwise_structure (M, [], -K, "damping", 0)
+%!error <K must be finite and symmetric> rampwise_structure (M, [], K + [0, 1, 0; 0, 0, 0; 0, 0, 0], "damping", 0)
+%!error <C must be finite and symmetric> rampwise_structure (M, NaN (3), K)
+%!error <of one size> rampwise_structure (M, [], eye (2), "damping", 0)
+%!error <of one size> rampwise_structure (ones (2, 3), [], eye (2), "damping", 0)
+%!error id=rampwise:argument rampwise_structure ({}, [], K, "damping", 0)
+%!error <ratios, 0 or more> rampwise_structure (M, [], K, "damping", [0.1, 0.2])
+%!error <ratios, 0 or more> rampwise_structure (M, [], K, "damping", NaN)
+%!error <per cent> rampwise_structure (M, [], K, "damping", 5)
+%!error <must be .f1, zeta1> rampwise_structure (M, [], K, "rayleigh", [1, 2])
+%!error <negative damping> rampwise_structure (M, [], K, "rayleigh", [1, 0.05; 2, 0.01])
