@@ -28,7 +28,8 @@ enum {
     SAVED_BANK = 5,
     SAVED_PEAKS = 6,
     SAVED_MODES = 7,
-    SAVED_BANK_F32 = 8
+    SAVED_BANK_F32 = 8,
+    SAVED_DIRECTIONS = 9
 };
 
 typedef struct saved_kind {

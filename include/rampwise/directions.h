@@ -104,6 +104,13 @@ RAMPWISE_API int rampwise_directions_run(rampwise_directions *d, size_t n, const
 RAMPWISE_API int rampwise_directions_get(rampwise_directions *d, size_t n_percent, const double *percent,
                                          double *value, double *shortfall);
 
+/* All of it as bytes; resumed, it goes on to the same percentiles. Resumed into an object of the same oscillators,
+   quantity, flags and number of directions (RAMPWISE_ERROR_DIFFERENT). The bytes and the other errors are those of
+   rampwise_stream_save and rampwise_stream_resume (stream.h). */
+RAMPWISE_API size_t rampwise_directions_saved_size(const rampwise_directions *d);
+RAMPWISE_API int rampwise_directions_save(const rampwise_directions *d, void *bytes, size_t count);
+RAMPWISE_API int rampwise_directions_resume(rampwise_directions *d, const void *bytes, size_t count);
+
 RAMPWISE_END
 
 #endif

@@ -515,6 +515,58 @@ START_TEST(object_refusals)
 }
 END_TEST
 
+/* Resumed half way, in another object, it goes on to the same bits; damage and other objects are refused. */
+START_TEST(saved_and_resumed)
+{
+    gsl_rng *const r = random_make("saved_and_resumed");
+    static double p1[N], p2[N];
+    for (int i = 0; i < 6; ++i) {
+        enum { OSCILLATORS = 3, M = 9 };
+        const unsigned flags = i % 2 ? RAMPWISE_AT_SAMPLES : 0;
+        const size_t half = i == 0 ? 0 : gsl_rng_uniform_int(r, N);
+        rampwise_coeffs c[OSCILLATORS], other[OSCILLATORS];
+        double want[2][OSCILLATORS * PERCENTS], got[2][OSCILLATORS * PERCENTS];
+        random_fill(r, p1, N);
+        random_fill(r, p2, N);
+        for (int j = 0; j < OSCILLATORS; ++j) {
+            c[j] = made(regime_system(j % 4, 0.02 * pow(5, j), 0.01), 0.01, 2);
+            other[j] = made(regime_system(j % 4, 0.03 * pow(5, j), 0.01), 0.01, 2);
+        }
+        ck_assert_int_eq(c[0].between, RAMPWISE_RAMP);
+        rampwise_directions *const whole = make_object(OSCILLATORS, c, M, flags, RAMPWISE_FASTEST);
+        rampwise_directions *const resumed = make_object(OSCILLATORS, c, M, flags, RAMPWISE_BASELINE);
+        rampwise_directions *const different = make_object(OSCILLATORS, other, M, flags, RAMPWISE_FASTEST);
+        rampwise_directions *const looser = make_object(OSCILLATORS, c, M + 1, flags, RAMPWISE_FASTEST);
+        ck_assert_int_eq(rampwise_directions_run(whole, half, p1, p2, NULL), RAMPWISE_OK);
+        const size_t size = rampwise_directions_saved_size(whole);
+        unsigned char *const bytes = malloc(size);
+        ck_assert_int_eq(rampwise_directions_save(whole, bytes, size - 1), RAMPWISE_ERROR_MEMORY);
+        ck_assert_int_eq(rampwise_directions_save(whole, bytes, size), RAMPWISE_OK);
+        for (size_t k = 0; k < size; k += 37) {
+            bytes[k] ^= 16;
+            ck_assert_int_ne(rampwise_directions_resume(resumed, bytes, size), RAMPWISE_OK);
+            bytes[k] ^= 16;
+        }
+        ck_assert_int_eq(rampwise_directions_resume(resumed, bytes, size - 1), RAMPWISE_ERROR_DAMAGED);
+        ck_assert_int_eq(rampwise_directions_resume(different, bytes, size), RAMPWISE_ERROR_DIFFERENT);
+        ck_assert_int_eq(rampwise_directions_resume(looser, bytes, size), RAMPWISE_ERROR_DIFFERENT);
+        ck_assert_int_eq(rampwise_directions_resume(resumed, NULL, size), RAMPWISE_ERROR_MISSING);
+        ck_assert_int_eq(rampwise_directions_resume(resumed, bytes, size), RAMPWISE_OK);
+        ck_assert_int_eq(rampwise_directions_run(whole, N - half, p1 + half, p2 + half, NULL), RAMPWISE_OK);
+        ck_assert_int_eq(rampwise_directions_run(resumed, N - half, p1 + half, p2 + half, NULL), RAMPWISE_OK);
+        ck_assert_int_eq(rampwise_directions_get(whole, PERCENTS, percent, want[0], want[1]), RAMPWISE_OK);
+        ck_assert_int_eq(rampwise_directions_get(resumed, PERCENTS, percent, got[0], got[1]), RAMPWISE_OK);
+        ck_assert_mem_eq(want, got, sizeof want);
+        free(bytes);
+        rampwise_directions_free(whole);
+        rampwise_directions_free(resumed);
+        rampwise_directions_free(different);
+        rampwise_directions_free(looser);
+    }
+    gsl_rng_free(r);
+}
+END_TEST
+
 static void add_tests(TCase *tests)
 {
     tcase_add_test(tests, histories);
@@ -528,6 +580,7 @@ static void add_tests(TCase *tests)
     tcase_add_test(tests, edges);
     tcase_add_test(tests, refusals);
     tcase_add_test(tests, object_refusals);
+    tcase_add_test(tests, saved_and_resumed);
 }
 
 int main(void)
