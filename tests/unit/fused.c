@@ -1,4 +1,4 @@
-/* The library's own fused multiply-add: 4e7 triples a precision against the processor's, and a
+/* The library's own fused multiply-add: 2e7 triples a precision against the processor's, and a
    share of them against MPFR. RAMPWISE_TRIPLES in the environment changes the number. */
 #include <math.h>
 #include <stdint.h>
@@ -29,7 +29,7 @@ static int processor_fuses(void)
 static long triples(void)
 {
     const char *const given = getenv("RAMPWISE_TRIPLES");
-    return given != NULL ? atol(given) : 40000000;
+    return given != NULL ? atol(given) : 20000000;
 }
 
 static uint64_t random_bits(gsl_rng *r)
