@@ -83,7 +83,9 @@ before = __rampwise__ ("objects");
 [status, fault, single_bank] = __rampwise__ ("bank_make_f32", [1, 1; 0, 0; 4, 9], 0.1, 11, 21);
 stream = new_stream ("");
 single_stream = new_stream ("_f32");
-for call = [good_calls(bank, single_bank, stream), single_calls(single_stream)]
+calls = [good_calls(bank, single_bank, stream), single_calls(single_stream)];
+junk = nonsense ();
+for call = calls
   try
     answer = __rampwise__ (call{1}{:});
     passed++;
@@ -99,11 +101,10 @@ for repeat = 1:2000
     __rampwise__ ("object_free", single_stream);
     stream = new_stream ("");
     single_stream = new_stream ("_f32");
+    calls = [good_calls(bank, single_bank, stream), single_calls(single_stream)];
   endif
-  calls = [good_calls(bank, single_bank, stream), single_calls(single_stream)];
   call = calls{randi(numel (calls))};
   for i = 1:randi (2)
-    junk = nonsense ();
     call{max(1, randi(numel (call) + 1) - (rand () < 0.9))} = junk{randi(numel (junk))};
   endfor
   survives (call);

@@ -26,7 +26,7 @@ void PRECISION(bank_start)(mxArray **out, const mxArray **in)
     answer(out, PRECISION(rampwise_bank_start)(bank, (REAL)scalar(in[1])), 1);
 }
 
-/* object, samples, numbers of the oscillators chosen (from 1), wanted PRECISION(histories)
+/* object, samples, numbers of the oscillators chosen (from 1), wanted histories
    -> u, v, u'', total (samples x chosen), largest |u| of all; an overflow is a status beside answers, NaN where
    there is none */
 void PRECISION(bank_run)(mxArray **out, const mxArray **in)
