@@ -30,7 +30,8 @@ enum {
     UPPER = STOREYS - 1,
     FLOORS = 2,
     PERIODS = 300,
-    PIECES = FLOORS * PERIODS + FLOORS
+    PIECES = FLOORS * PERIODS + FLOORS,
+    AFTER = 100000 /* samples of free motion at most; damped as all is here, it ends with the first cycles */
 };
 static const double storey_mass[STOREYS] = {42000, 38000, 21000};
 static const double storey_stiffness[STOREYS] = {6.2e7, 4.8e7, 2.9e7};
@@ -55,6 +56,7 @@ typedef struct hall {
     rampwise_system piece[PIECES]; /* PERIODS on each floor, then a cabinet on each */
     size_t point[PIECES];
     rampwise_peak floor_peak[OUTPUTS], peak[PIECES], stretch[PIECES]; /* total acceleration, displacement */
+    rampwise_peak after[PIECES];                                      /* total acceleration after the shake */
     double *history;                                                  /* [n][OUTPUTS] */
     rampwise_peak resampled[PIECES];
     double share[STOREYS], roof[STOREYS]; /* of the mass, with all modes up to one; each mode's largest */
@@ -161,6 +163,8 @@ static int shake(hall *h, const rampwise_modes_plan *plan)
         status = rampwise_equipment_peaks(modes, RAMPWISE_TOTAL_ACCELERATION, h->peak);
     if (status == RAMPWISE_OK)
         status = rampwise_equipment_peaks(modes, RAMPWISE_DISPLACEMENT, h->stretch);
+    if (status == RAMPWISE_OK)
+        status = rampwise_equipment_residual(modes, RAMPWISE_TOTAL_ACCELERATION, AFTER, h->after, NULL);
     rampwise_modes_free(modes);
     return check(status);
 }
@@ -243,14 +247,15 @@ static void print_rules(const hall *h)
 static void print_cabinet(const hall *h)
 {
     printf("\nInstrument cabinet, %g Hz, %g %% damped: largest values, for the shake as it is sampled\n\n"
-           "                  floor's own        cabinet's       the same from the    stretch\n"
-           "                 acceleration     acceleration   floor's sampled history\n"
-           "                      (m/s^2)          (m/s^2)              (m/s^2)          (mm)\n",
+           "                  floor's own        cabinet's    after the      the same from the    stretch\n"
+           "                 acceleration     acceleration      shake    floor's sampled history\n"
+           "                      (m/s^2)          (m/s^2)    (m/s^2)             (m/s^2)          (mm)\n",
            cabinet_hertz, 100 * cabinet_damping);
     for (size_t i = 0; i < FLOORS; ++i) {
         const size_t e = FLOORS * PERIODS + i;
-        printf("  on the %-11s %8.3f %16.3f %20.3f %13.3f\n", floor_names[i], size(&h->floor_peak[floors[i]]),
-               size(&h->peak[e]), size(&h->resampled[e]), 1000 * size(&h->stretch[e]));
+        printf("  on the %-11s %8.3f %16.3f %10.3f %19.3f %13.3f\n", floor_names[i],
+               size(&h->floor_peak[floors[i]]), size(&h->peak[e]), size(&h->after[e]), size(&h->resampled[e]),
+               1000 * size(&h->stretch[e]));
     }
     double worst = 0, at = 0;
     for (size_t e = 0; e < FLOORS * PERIODS; ++e) {

@@ -594,3 +594,19 @@ rampwise_peak *rampwise_equipment_peak_(const rampwise_modes *m, size_t i, int q
 {
     return &m->equipment->peak[q][i];
 }
+
+size_t rampwise_equipment_point_(const rampwise_modes *m, size_t i)
+{
+    return m->equipment->point[i];
+}
+
+const double *rampwise_equipment_total_(const rampwise_modes *m, size_t i)
+{
+    return m->equipment->c[i].total;
+}
+
+double rampwise_equipment_value_(const rampwise_modes *m, size_t i, int q)
+{
+    const equipment_core *const e = m->equipment;
+    return looked_at(&e->c[i], q, e->u[i], e->v[i]);
+}

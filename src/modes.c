@@ -56,6 +56,8 @@ static void take_memory(rampwise_modes *m, const rampwise_modes_plan *plan, room
         rampwise_modes_peaks_take_(m, plan, r);
     if (plan->equipment_count > 0)
         rampwise_equipment_take_(m, plan, r);
+    if (plan->peaks)
+        m->kept = rampwise_room_take_(r, rampwise_modes_kept_size_(m, plan->equipment_count), 1);
 }
 
 static int counts_fit(const rampwise_modes_plan *plan)
@@ -374,6 +376,18 @@ static void finish_segment(rampwise_modes *m, size_t n, const destination *to)
     m->sample += n;
 }
 
+int rampwise_modes_go_on_(rampwise_modes *m, size_t n)
+{
+    const destination nowhere = {NULL, {NULL, NULL, NULL, NULL}};
+    memset(m->input + m->inputs, 0, n * m->inputs * sizeof *m->input);
+    const int lost = run_segment(m, n);
+    if (lost)
+        go_back(m);
+    else
+        finish_segment(m, n, &nowhere);
+    return !lost;
+}
+
 /* Up to SEGMENT samples; how many went by before a fault. */
 static size_t advance(rampwise_modes *m, size_t n, const double *input, const destination *to)
 {
@@ -438,6 +452,14 @@ static void outputs_of(rampwise_modes *m, const double *u, const double *v)
         take_lanes(v_lanes[0], m, g, v);
         add_outputs(m, g, 1, u_lanes, v_lanes, row);
     }
+}
+
+void rampwise_modes_release_(rampwise_modes *m)
+{
+    memset(m->input, 0, m->inputs * sizeof *m->input);
+    memset(m->output, 0, m->width * sizeof *m->output);
+    for (size_t g = 0; g < m->groups; ++g)
+        add_outputs(m, g, 1, &m->group[g].lanes.u, &m->group[g].lanes.v, m->output);
 }
 
 static int begin(rampwise_modes *m, const double *u, const double *v, const double *input)

@@ -42,6 +42,7 @@ struct rampwise_modes {
     double *output;            /* [SEGMENT + 1][width]; likewise */
     modes_peaks *peaks;        /* NULL where not wanted */
     equipment_core *equipment; /* NULL where there is none */
+    char *kept;                /* room for all that moves, where peaks are wanted */
 };
 
 /* Memory handed out piece by piece, each aligned; counted only where begin is NULL. size is SIZE_MAX once it does
@@ -69,6 +70,15 @@ int rampwise_modes_check_(const rampwise_modes_plan *plan);
 /* One group over a tile from its lanes' states on; answers whether one is not finite any more. */
 int rampwise_modes_tile_(const rampwise_modes *m, size_t g, lane_block *lanes, size_t n, const double *input,
                          mode_tile *tile);
+
+/* The base comes to rest, or the forces go, at once: outputs begin with the free motion. */
+void rampwise_modes_release_(rampwise_modes *m);
+
+/* n <= SEGMENT samples without input; 0 where something would not be finite any more: nothing has changed. */
+int rampwise_modes_go_on_(rampwise_modes *m, size_t n);
+
+/* modes_residual.c */
+size_t rampwise_modes_kept_size_(const rampwise_modes *m, size_t pieces);
 
 /* modes_peaks.c */
 void rampwise_modes_peaks_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r);
@@ -120,5 +130,11 @@ void rampwise_equipment_put_(const rampwise_modes *m, size_t n, const rampwise_h
 size_t rampwise_equipment_count_(const rampwise_modes *m);
 double *rampwise_equipment_state_(const rampwise_modes *m, size_t i, int velocity);
 rampwise_peak *rampwise_equipment_peak_(const rampwise_modes *m, size_t i, int q);
+
+/* The row of weights of the point of piece i, what the piece's total acceleration takes from x and x', and
+   its present displacement (q = 0) or total acceleration. */
+size_t rampwise_equipment_point_(const rampwise_modes *m, size_t i);
+const double *rampwise_equipment_total_(const rampwise_modes *m, size_t i);
+double rampwise_equipment_value_(const rampwise_modes *m, size_t i, int q);
 
 #endif

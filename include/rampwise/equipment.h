@@ -14,11 +14,7 @@
    and x1' likewise. E to H come from the equations of mode and equipment together, by power series and doubling in
    twofold arithmetic like all coefficients (coefficients.h), never from differences of two oscillators, which
    lose eps over the distance of the frequencies: tuned equipment is as exact as any other. Loads of
-   all modes are gathered to the inputs. Undamped equipment tuned to an undamped mode grows without limit as long as
-   the mode moves: its peak in any record is finite, its residual (the largest of all motion after the record)
-   infinite. Residuals are not offered: a sum of free vibrations has no closed form for its extremes, and how long one
-   must look on depends on the dampings. A run goes on over as many zeros as are of interest, and the peaks are then
-   those of record and zeros together (the maximax).
+   all modes are gathered to the inputs.
 
    A floor spectrum has a piece of equipment for every period. The usual, re-sampled way needs nothing of this header: it
    takes the history of y at the samples as a record of its own, straight between them, from rampwise_modes_run to
@@ -60,6 +56,15 @@ RAMPWISE_API int rampwise_equipment_get(const rampwise_modes *modes, double *u, 
 /* The peaks of all pieces from sample 0 to the present, peak[equipment_count]; quantity is RAMPWISE_DISPLACEMENT (x) or
    RAMPWISE_TOTAL_ACCELERATION. RAMPWISE_ERROR_MISSING, _QUANTITY (another, or the plan did not ask for peaks). */
 RAMPWISE_API int rampwise_equipment_peaks(const rampwise_modes *modes, int quantity, rampwise_peak *peak);
+
+/* The peaks of all pieces after the present sample, under zero input from there on, peak[equipment_count], and what no
+   later value exceeds, later[equipment_count] or NULL: as rampwise_modes_residual (modes.h) has them for outputs. The bound:
+   off the frequencies of the modes x is a free vibration and motions that follow the modes, each below its energy; near
+   one (damped), the mode adds to the root of the energy of x no more than the integral of its part of |y|. Undamped equipment
+   with k/m of an undamped mode that moves its point grows for ever: its peaks are infinite and never reached
+   (peak.h), while those of any record are finite. RAMPWISE_ERROR_MISSING, _QUANTITY. */
+RAMPWISE_API int rampwise_equipment_residual(rampwise_modes *modes, int quantity, uint64_t samples,
+                                             rampwise_peak *peak, double *later);
 
 RAMPWISE_END
 

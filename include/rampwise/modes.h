@@ -42,7 +42,7 @@
    them the more of an output is in modes of many radians a step. Measured over 20,000 samples, 100 modes up to w dt = 8,
    50 outputs, all with peaks: displacements take 3 times as long as without, total accelerations 9 times
    under a record with a correlation of 0.9 from sample to sample, and 90 times under white noise.
-   Memory for a mode: some 130 bytes, 8 for each input and for each output (16), with peaks 730 and 8 for each
+   Memory for a mode: some 130 bytes, 8 for each input and for each output (16), with peaks 750 and 8 for each
    output more; 2 KiB for each output; whatever the number of samples. All since 0.1. */
 #ifndef RAMPWISE_MODES_H
 #define RAMPWISE_MODES_H
@@ -125,6 +125,18 @@ RAMPWISE_API int rampwise_modes_run(rampwise_modes *modes, size_t n, const doubl
 /* The peaks of all outputs from sample 0 to the present, peak[outputs]. RAMPWISE_ERROR_MISSING, _QUANTITY (the plan
    did not ask for peaks). */
 RAMPWISE_API int rampwise_modes_peaks(const rampwise_modes *modes, rampwise_peak *peak);
+
+/* The peaks of all outputs after the present sample, peak[outputs], where the input is zero from there on at once (with
+   RAMPWISE_RESIDUAL's meaning in peak.h; instants count from sample 0 as ever). A sum of free vibrations has no closed
+   form for its extremes: the motion is walked along, `samples` steps at most, and less where a bound tells that nothing
+   later exceeds the peaks. later[outputs], where not NULL, becomes that bound: no later value is larger in size. Where it
+   is at most min(high, -low), but for the rounding of both, the peak is that of all time; where it is not, as with
+   undamped modes, whose sum comes near its bound at some far time, peak and bound enclose it. It is infinite where a mode
+   drifts or grows. The bound of a mode is its energy, which never grows: sqrt(z^2 + z'^2/(k/m)), z its part of the output.
+   The object goes on unchanged. With RAMPWISE_HOLD feed a zero first where the last sample is to act for its dt. Work: that of
+   a run with peaks, and a look at the bounds every 256 steps. RAMPWISE_ERROR_MISSING, _QUANTITY. */
+RAMPWISE_API int rampwise_modes_residual(rampwise_modes *modes, uint64_t samples, rampwise_peak *peak,
+                                         double *later);
 
 /* The object as bytes (state, sample and peaks; not the plan), and back into one made of the same plan, on any
    machine: the same bits go on. RAMPWISE_ERROR_MISSING, _MEMORY (fewer bytes than rampwise_modes_saved_size);

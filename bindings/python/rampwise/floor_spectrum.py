@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import dataclasses
-from typing import Any, Dict, List, Mapping, Optional, Tuple
+from typing import Any, Dict, List, Literal, Mapping, Optional, Tuple
 
 import numpy as np
 from numpy.typing import ArrayLike
@@ -94,6 +94,7 @@ def floor_spectrum(
     frequency: Optional[ArrayLike] = None,
     omega: Optional[ArrayLike] = None,
     damping: ArrayLike = 0.05,
+    part: Literal["primary", "maximax"] = "primary",
     modes: Optional[int] = None,
     allow_strong_damping: bool = False,
     threads: int = 1,
@@ -115,6 +116,9 @@ def floor_spectrum(
         Exactly one of them: of the equipment, as in `response_spectrum`, but none rigid or free.
     damping : array_like
         Ratios to critical damping. Every ratio meets every period.
+    part : {'primary', 'maximax'}
+        From the first to the last sample, or in the free motion of structure and equipment after it too, as in
+        `LiveStructure.peaks`. The usual way then goes over zeros to the last instant of a peak.
     modes : int, optional
         How many modes of the structure are kept, as in `Structure.live`.
     allow_strong_damping : bool
@@ -153,33 +157,50 @@ def floor_spectrum(
         raise ValueError(f"{name}: equipment is neither rigid nor free")
     natural: Dict[str, Any] = {grid.name: grid.given}
     systems = System.natural(damping=grid.damping, allow_strong_damping=True, **natural)
+    if part not in ("primary", "maximax"):
+        raise ValueError(f"part: {part!r} is neither 'primary' nor 'maximax'")
     step = _arrays.double(dt, "dt")
-    floors = structure.respond(record, step, points, modes=modes)
+    floors = structure.respond(record, step, points, part=part, modes=modes)
 
     def work(task: Tuple[str, slice]) -> Tuple[Peaks, Peaks]:
         point, block = task
         pieces = System(systems.mass[block], systems.damper[block], systems.stiffness[block])
         live = structure.live(step, {point: points[point]}, modes=modes, equipment={"pieces": Equipment(point, pieces)})
         live.put(record)
-        return live.equipment_displacement()["pieces"], live.equipment_acceleration()["pieces"]
+        return live.equipment_displacement(part)["pieces"], live.equipment_acceleration(part)["pieces"]
 
     blocks = [slice(first, first + _A_TASK) for first in range(0, grid.omega.size, _A_TASK)]
     found = spread(work, [(point, block) for point in points for block in blocks], threads, progress)
     shape = (len(points),) + grid.shape
-    sampled = response_spectrum(floors.values.T, step, period=period, frequency=frequency, omega=omega, damping=ratio,
+    displacement = _joined([pair[0] for pair in found], shape)
+    total_acceleration = _joined([pair[1] for pair in found], shape)
+    histories = floors.values
+    if part == "maximax":
+        live = structure.live(step, points, modes=modes, peaks=False)
+        histories = live.put(_longer(record, step, (displacement, total_acceleration))).values
+    sampled = response_spectrum(histories.T, step, period=period, frequency=frequency, omega=omega, damping=ratio,
                                 allow_strong_damping=True, threads=threads)  # fmt: skip
     return FloorSpectrum(
         *grid.lists,
         ratio,
         floors.outputs,
-        _joined([pair[0] for pair in found], shape),
-        _joined([pair[1] for pair in found], shape),
+        displacement,
+        total_acceleration,
         _joined([floors.peaks[point] for point in points], (len(points),)),
         sampled,
-        provenance(dt=step, modes=modes, threads=threads),
+        provenance(dt=step, part=part, modes=modes, threads=threads),
     )
 
 
 def _joined(parts: List[Peaks], shape: Tuple[int, ...]) -> Peaks:
-    fields = ("high", "high_time", "low", "low_time")
-    return Peaks(*(np.concatenate([getattr(part, f).reshape(-1) for part in parts]).reshape(shape) for f in fields))
+    fields = ("high", "high_time", "low", "low_time") + (("later",) if parts[0].later is not None else ())
+    return Peaks(**{f: np.concatenate([getattr(part, f).reshape(-1) for part in parts]).reshape(shape) for f in fields})
+
+
+def _longer(record: ArrayLike, dt: float, peaks: Tuple[Peaks, ...]) -> Doubles:
+    """The record with zeros to the last instant of a peak that is reached."""
+    given = _arrays.doubles(record, "record")
+    times = np.concatenate([time.reshape(-1) for of in peaks for time in (of.high_time, of.low_time)])
+    last = int(np.ceil(np.max(times[np.isfinite(times)], initial=0) / dt))
+    after = np.zeros((max(last + 1 - len(given), 0),) + given.shape[1:])
+    return np.concatenate([given, after])

@@ -12,7 +12,7 @@ from . import _arrays, _library
 from ._arrays import Doubles
 from ._provenance import plain, provenance
 from .bank import Histories
-from .peaks import Peaks
+from .peaks import Part, Peaks, part_number
 from .system import Between, System, coefficients
 
 _FASTEST = _library.constant("FASTEST")
@@ -251,30 +251,67 @@ class LiveStructure:
             first = last
         return found
 
-    def peaks(self) -> Dict[str, Peaks]:
-        """The peaks of the outputs from sample 0 to the present, true between the samples, by name."""
-        found = np.zeros(len(self.outputs), _library.PEAK)
-        _library.check(self._fed("modes_peaks", _library.address(found)), quantity="peaks")
-        return {name: Peaks._read(found[i, ...], self._options["dt"], None) for i, name in enumerate(self.outputs)}
+    def peaks(self, part: Part = "primary", *, samples: int = 1_000_000) -> Dict[str, Peaks]:
+        """The peaks of the outputs, true between the samples, by name; the structure goes on unchanged.
 
-    def equipment_displacement(self) -> Dict[str, Peaks]:
-        """Peaks of the stretch between point and equipment, by name, of the shape of each system."""
-        return self._equipment_peaks(_DISPLACEMENT)
+        Parameters
+        ----------
+        part : {'primary', 'residual', 'maximax'}
+            From sample 0 to the present, in the free motion from here on under zero input, or both.
+        samples : int
+            How many steps of the free motion are looked at, at most: it ends where nothing later can exceed the peaks.
+            ``Peaks.later`` tells what any later value can come to.
+        """
+        flat = self._parts("modes", (), len(self.outputs), part, samples)
+        return {name: flat._at(i) for i, name in enumerate(self.outputs)}
 
-    def equipment_acceleration(self) -> Dict[str, Peaks]:
-        """Peaks of the total acceleration of equipment, by name, of the shape of each system."""
-        return self._equipment_peaks(_TOTAL_ACCELERATION)
+    def equipment_displacement(self, part: Part = "primary", *, samples: int = 1_000_000) -> Dict[str, Peaks]:
+        """Peaks of the stretch between point and equipment, by name, of the shape of each system.
 
-    def _equipment_peaks(self, quantity: int) -> Dict[str, Peaks]:
-        flat = np.zeros(self._points.size, _library.PEAK)
-        if flat.size > 0:
-            _library.check(self._fed("equipment_peaks", quantity, _library.address(flat)), quantity="peaks")
-        found, first = {}, 0
+        Parameters
+        ----------
+        part, samples
+            As in `peaks`. Undamped equipment on an undamped mode of its own frequency grows for ever: its residual
+            is infinite.
+        """
+        return self._equipment_peaks(_DISPLACEMENT, part, samples)
+
+    def equipment_acceleration(self, part: Part = "primary", *, samples: int = 1_000_000) -> Dict[str, Peaks]:
+        """Peaks of the total acceleration of equipment, by name, of the shape of each system.
+
+        Parameters
+        ----------
+        part, samples
+            As in `equipment_displacement`.
+        """
+        return self._equipment_peaks(_TOTAL_ACCELERATION, part, samples)
+
+    def _equipment_peaks(self, quantity: int, part: Part, samples: int) -> Dict[str, Peaks]:
+        count, first = self._points.size, 0
+        found: Dict[str, Peaks] = {}
+        if count > 0:
+            flat = self._parts("equipment", (quantity,), count, part, samples)
         for name, piece in self._equipment.items():
             last = first + piece.system.mass.size
-            found[name] = Peaks._read(flat[first:last].reshape(piece.system.shape), self._options["dt"], None)
+            found[name] = flat._at(slice(first, last), piece.system.shape)
             first = last
         return found
+
+    def _parts(self, of: str, quantity: Tuple[int, ...], count: int, part: Part, samples: int) -> Peaks:
+        """Flat peaks of the outputs ('modes') or of a quantity of the equipment."""
+        part_number(part)
+        if not 0 <= samples < 2**64:
+            raise ValueError(f"samples: {samples} is not from 0 to 2^64 - 1")
+        found, later, parts = np.zeros(count, _library.PEAK), np.zeros(count), []
+        if part != "residual":
+            status = self._fed(f"{of}_peaks", *quantity, _library.address(found))
+            _library.check(status, quantity="peaks")
+            parts.append(Peaks._read(found, self._options["dt"], None))
+        if part != "primary":
+            status = self._fed(f"{of}_residual", *quantity, samples, _library.address(found), _library.address(later))
+            _library.check(status, quantity="peaks")
+            parts.append(dataclasses.replace(Peaks._read(found, self._options["dt"], None), later=later))
+        return parts[0] if len(parts) == 1 else parts[0]._then(parts[1])
 
     def _fed(self, name: str, *arguments: Any) -> int:
         self._need_samples()

@@ -49,6 +49,9 @@ class Peaks:
     high_error, low_error : ndarray or None
         Where evidence was asked for: estimates of what the sampling of the record has cost each. ``high - high_error``
         is closer to the response to the smooth load.
+    later : ndarray or None
+        Of a structure's free motion: no value after the steps that were looked at is larger in size. Where that is above
+        the smaller of ``high`` and ``-low``, a peak after them may be larger than the one found.
     """
 
     high: Doubles
@@ -57,6 +60,7 @@ class Peaks:
     low_time: Doubles
     high_error: Optional[Doubles] = None
     low_error: Optional[Doubles] = None
+    later: Optional[Doubles] = None
 
     @classmethod
     def _read(cls, peaks: NDArray[np.void], dt: float, evidence: Optional[NDArray[np.void]]) -> "Peaks":
@@ -69,6 +73,23 @@ class Peaks:
         if evidence is not None:
             values += [evidence["error_high"].copy(), evidence["error_low"].copy()]
         return cls(*values)
+
+    def _then(self, after: "Peaks") -> "Peaks":
+        """The peaks of this time and of the time after it."""
+        high, low = after.high > self.high, after.low < self.low
+        return Peaks(
+            np.where(high, after.high, self.high),
+            np.where(high, after.high_time, self.high_time),
+            np.where(low, after.low, self.low),
+            np.where(low, after.low_time, self.low_time),
+            later=after.later,
+        )
+
+    def _at(self, index: Any, shape: Tuple[int, ...] = ()) -> "Peaks":
+        """Some of these peaks, of the given shape."""
+        whole = [getattr(self, field.name) for field in dataclasses.fields(self)]
+        part: List[Any] = [None if values is None else values[index].reshape(shape) for values in whole]
+        return Peaks(*part)
 
     @property
     def _high_is_larger(self) -> NDArray[np.bool_]:

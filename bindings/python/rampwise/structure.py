@@ -12,6 +12,7 @@ from . import _arrays, _library
 from ._arrays import Doubles
 from ._eigenvalues import damped_roots, matrix, modes_of, turned, zero_beside
 from .live_structure import Equipment, LiveStructure, Oscillators, StructureResponse
+from .peaks import Part
 from .system import Between, System, coefficients, damping_ratio
 
 
@@ -498,6 +499,7 @@ class Structure:
         modes: Optional[int] = None,
         static_correction: bool = False,
         peaks: bool = True,
+        part: Part = "primary",
         equipment: Optional[Mapping[str, Equipment]] = None,
     ) -> StructureResponse:
         """The response to a whole record, from rest under its first sample.
@@ -508,6 +510,8 @@ class Structure:
             Instants along the first axis; (n,) where there is one input.
         dt, outputs, between, modes, static_correction, peaks, equipment
             As in `live`.
+        part : {'primary', 'residual', 'maximax'}
+            Whether the peaks are those of the record, of the free motion after it, or both: as in `LiveStructure.peaks`.
 
         Returns
         -------
@@ -521,9 +525,9 @@ class Structure:
             np.arange(len(block.values)) * float(dt),
             live.outputs,
             block.values,
-            live.peaks() if peaks else {},
+            live.peaks(part) if peaks else {},
             block.equipment,
-            live.equipment_displacement() if peaks else {},
-            live.equipment_acceleration() if peaks else {},
+            live.equipment_displacement(part) if peaks else {},
+            live.equipment_acceleration(part) if peaks else {},
             live.provenance,
         )

@@ -247,6 +247,45 @@ def test_equipment_tuned_to_its_structure(detuned, zetas):
     assert response.equipment_displacement["cabinet"].size >= np.abs(stretch).max()
 
 
+def test_residual_peaks():
+    """A run over zeros finds the same, the bank of single oscillators has it in closed form, and what is tuned and
+    undamped grows for ever. The floor spectrum's maximax is the larger of both times."""
+    rng = np.random.default_rng(7)
+    frame = rampwise.Structure([2.0, 1.0], [[300.0, -100.0], [-100.0, 100.0]], damping=0.03, direction=[1.0, 1.0])
+    record = np.append(rng.standard_normal(60), 0.0)
+    points = {"roof": frame.total_acceleration(1)}
+    piece = rampwise.System.natural(period=[0.4, 0.9], damping=0.02)
+    live = frame.live(0.02, points, equipment={"box": rampwise.Equipment("roof", piece)})
+    live.put(record)
+    before, residual, both = (live.equipment_displacement(p)["box"] for p in ("primary", "residual", "maximax"))
+    outputs = live.peaks("maximax")["roof"]
+    assert np.all(residual.later <= np.minimum(residual.high, -residual.low) * (1 + 1e-10))
+    assert np.all(residual.high_time >= 1.2) and np.all(before.high_time <= 1.2)
+    same_bits(both.high, np.maximum(before.high, residual.high))
+    same_bits(both.low_time, np.where(before.low <= residual.low, before.low_time, residual.low_time))
+    live.put(np.zeros(4000))
+    np.testing.assert_allclose(live.equipment_displacement()["box"].high, both.high, rtol=1e-11)
+    np.testing.assert_allclose(live.peaks()["roof"].low, outputs.low, rtol=1e-11)
+    floors = rampwise.floor_spectrum(frame, record, 0.02, points, period=[0.4, 0.9], damping=0.02, part="maximax")
+    same_bits(floors.displacement.high, both.high[np.newaxis, :])
+    assert np.all(np.abs(floors.sampled_error) < 0.01)
+
+    mass = rampwise.Structure([1.0], [[9.0]], damping=0.0, direction=[1.0])
+    alike = rampwise.System(*(getattr(mass.live(0.1, {"x": mass.displacement(0)})._oscillators.system, name)
+                              for name in ("mass", "damper", "stiffness")))  # fmt: skip
+    grown = mass.respond([1.0, -1.0, 0.5], 0.1, {"point": mass.total_acceleration(0)}, part="residual",
+                         equipment={"box": rampwise.Equipment("point", alike)})  # fmt: skip
+    assert np.all(grown.equipment_displacement["box"].high == np.inf)
+    assert np.all(grown.equipment_displacement["box"].high_time == np.inf)
+    assert grown.peaks["point"].size <= grown.peaks["point"].later * (1 + 1e-11)
+    with pytest.raises(ValueError, match="^part: 'all' is none of"):
+        live.peaks("all")
+    with pytest.raises(ValueError, match="^part: 'residual' is neither"):
+        rampwise.floor_spectrum(frame, record, 0.02, points, period=0.4, part="residual")
+    with pytest.raises(ValueError, match="^samples: -1 is not"):
+        live.peaks("residual", samples=-1)
+
+
 def test_equipment_as_a_light_part_of_the_structure():
     """A thousand-millionth of a mass on a frame with a damper of its own, in the coupled equations, is equipment to
     1e-9 of tuned motion over its damping: 1e-6 leaves room. Its histories belong together."""

@@ -1,0 +1,284 @@
+/* Peaks of the free motion from the present sample on: modes.h and equipment.h say how. */
+#include <float.h>
+#include <math.h>
+#include <string.h>
+#include "modes_core.h"
+#include "rampwise/equipment.h"
+#include "rampwise/status.h"
+
+enum { QUANTITIES = 2 }; /* of equipment: displacement and total acceleration */
+
+/* What of an object moves, in one piece of memory. */
+typedef struct keeping {
+    char *at;
+    int back; /* into the object, or out of it */
+} keeping;
+
+static void keep(keeping *k, void *x, size_t bytes)
+{
+    if (k->back)
+        memcpy(x, k->at, bytes);
+    else
+        memcpy(k->at, x, bytes);
+    k->at += bytes;
+}
+
+size_t rampwise_modes_kept_size_(const rampwise_modes *m, size_t pieces)
+{
+    const size_t doubles = m->inputs + m->width + 2 * LANES * m->groups, peaks = sizeof(rampwise_peak);
+    return sizeof m->sample + doubles * sizeof(double) + m->outputs * peaks +
+           pieces * (2 * sizeof(double) + QUANTITIES * peaks);
+}
+
+static void keep_all(rampwise_modes *m, int back)
+{
+    keeping k = {m->kept, back};
+    keep(&k, &m->sample, sizeof m->sample);
+    keep(&k, m->input, m->inputs * sizeof *m->input);
+    keep(&k, m->output, m->width * sizeof *m->output);
+    for (size_t g = 0; g < m->groups; ++g) {
+        keep(&k, m->group[g].lanes.u, sizeof m->group[g].lanes.u);
+        keep(&k, m->group[g].lanes.v, sizeof m->group[g].lanes.v);
+    }
+    keep(&k, rampwise_modes_peak_(m), m->outputs * sizeof(rampwise_peak));
+    for (size_t i = 0; i < rampwise_equipment_count_(m); ++i) {
+        for (int velocity = 0; velocity < 2; ++velocity)
+            keep(&k, rampwise_equipment_state_(m, i, velocity), sizeof(double));
+        for (int q = 0; q < QUANTITIES; ++q)
+            keep(&k, rampwise_equipment_peak_(m, i, q), sizeof(rampwise_peak));
+    }
+}
+
+/* z'' + damping z' + stiffness z = 0 */
+typedef struct free_motion {
+    double stiffness, damping, z, slope;
+} free_motion;
+
+/* sqrt(a^2 + b^2), whatever the units */
+static double size_of(double a, double b)
+{
+    const double larger = fmax(fabs(a), fabs(b)), smaller = fmin(fabs(a), fabs(b));
+    return larger > 0 ? larger * sqrt(1 + smaller / larger * (smaller / larger)) : 0;
+}
+
+/* A bound of |z| from now on: its energy z'^2 + stiffness z^2 never grows. Without a spring z goes one way. */
+static double largest_of(const free_motion *f)
+{
+    if (f->z == 0 && f->slope == 0)
+        return 0;
+    if (f->stiffness > 0 && f->damping >= 0)
+        return size_of(f->z, f->slope / sqrt(f->stiffness));
+    if (f->stiffness == 0 && f->damping > 0)
+        return fmax(fabs(f->z), fabs(f->z + f->slope / f->damping));
+    return f->stiffness == 0 && f->damping == 0 && f->slope == 0 ? fabs(f->z) : INFINITY;
+}
+
+/* A bound of the integral of |z| from now on. With real roots -s and -S, s the smaller in size,
+   z = z0 exp(-s t) + (z0' + s z0) (exp(-s t) - exp(-S t))/(S - s), and the last factor's integral is 1/(s S). With
+   complex ones z is below an envelope that falls with r = damping/2, and also |z0| + |z0' + r z0| t below that. */
+static double integral_of(const free_motion *f)
+{
+    const double r = 0.5 * f->damping, square = r * r - f->stiffness;
+    if (!(f->stiffness > 0 && f->damping > 0))
+        return INFINITY;
+    if (square >= 0) {
+        const double s = f->stiffness / (r + sqrt(square));
+        return fabs(f->z) / s + fabs(f->slope + s * f->z) / f->stiffness;
+    }
+    const double turned = f->slope + r * f->z, envelope = size_of(f->z, turned / sqrt(-square));
+    return fmin(envelope / r, fabs(f->z) / r + fabs(turned) / (r * r));
+}
+
+/* on_u q + on_v q' of a free mode, and its slope */
+static free_motion seen(const rampwise_modes *m, size_t j, double on_u, double on_v)
+{
+    const mode_group *const g = &m->group[j / LANES];
+    const double u = g->lanes.u[j % LANES], v = g->lanes.v[j % LANES];
+    const double stiffness = -g->row[0][j % LANES], damping = -g->row[1][j % LANES];
+    return (free_motion){stiffness, damping, on_u * u + on_v * v,
+                         on_u * v - on_v * (damping * v + stiffness * u)};
+}
+
+static free_motion seen_at(const rampwise_modes *m, size_t j, size_t o)
+{
+    const size_t at = j * m->width + o;
+    return seen(m, j, m->weight_u[at], m->weight_v != NULL ? m->weight_v[at] : 0);
+}
+
+/* What no later value of output o exceeds in size. */
+static double later_of_output(const rampwise_modes *m, size_t o)
+{
+    double later = 0;
+    for (size_t j = 0; j < m->modes; ++j) {
+        const free_motion z = seen_at(m, j, o);
+        later += largest_of(&z);
+    }
+    return later;
+}
+
+/* k z + c z' of a free motion z, and its slope */
+static free_motion force_of(const free_motion *z, double k, double c)
+{
+    const double second = -z->damping * z->slope - z->stiffness * z->z;
+    return (free_motion){z->stiffness, z->damping, k * z->z + c * z->slope, k * z->slope + c * second};
+}
+
+/* The motion alpha y + beta y' that a piece x'' + c x' + k x = -y can follow the free motion y in. With a = c - damping
+   and b = k - stiffness of y: (a D + b) (alpha + beta D) y = -y, so beta = a/D and alpha = (a damping - b)/D with
+   D = b^2 - a b damping + a^2 stiffness. Infinite where k and c are y's own, or D is out of range. */
+static free_motion following(const free_motion *y, double k, double c)
+{
+    const double a = c - y->damping, difference = k - y->stiffness;
+    const double rounding = 0x1p-51 * (k + y->stiffness);
+    const double b = copysign(fmax(fabs(difference) - rounding, 0), difference);
+    const double D = b * b - a * b * y->damping + a * a * y->stiffness;
+    if (!(D >= DBL_MIN && D <= DBL_MAX))
+        return (free_motion){y->stiffness, y->damping, INFINITY, INFINITY};
+    const double alpha = (a * y->damping - b) / D, beta = a / D;
+    const double second = -y->damping * y->slope - y->stiffness * y->z;
+    return (free_motion){y->stiffness, y->damping, alpha * y->z + beta * y->slope,
+                         alpha * y->slope + beta * second};
+}
+
+/* What later displacements and total accelerations of piece i do not exceed in size. x is the sum of the motions that
+   follow the modes, and of a free motion. Near a mode's own frequency the two are large and cancel; there the
+   mode drives the piece instead: that adds to the root of its energy no more than the integral of |y|. */
+static void later_of_piece(const rampwise_modes *m, size_t i, double later[QUANTITIES])
+{
+    const double *const total = rampwise_equipment_total_(m, i);
+    const double k = -total[0], c = -total[1];
+    free_motion rest = {k, c, *rampwise_equipment_state_(m, i, 0), *rampwise_equipment_state_(m, i, 1)};
+    double driven = 0;
+    later[0] = later[1] = 0;
+    for (size_t j = 0; j < m->modes; ++j) {
+        const free_motion y = seen_at(m, j, rampwise_equipment_point_(m, i));
+        if (y.z == 0 && y.slope == 0)
+            continue;
+        const free_motion x = following(&y, k, c), force = force_of(&x, k, c);
+        const double followed = largest_of(&x), integral = k > 0 ? integral_of(&y) : INFINITY;
+        if (2 * followed * sqrt(k) <= integral && followed < INFINITY) {
+            rest.z -= x.z;
+            rest.slope -= x.slope;
+            later[0] += followed;
+            later[1] += largest_of(&force);
+        } else {
+            driven += integral;
+        }
+    }
+    const free_motion force = force_of(&rest, k, c);
+    later[0] += largest_of(&rest);
+    later[1] += largest_of(&force);
+    if (driven > 0) {
+        later[0] += driven / sqrt(k);
+        later[1] += driven * sqrt(k + c * c);
+    }
+}
+
+/* Undamped equipment on an undamped mode of its own frequency that moves. */
+static int grows_for_ever(const rampwise_modes *m, size_t i)
+{
+    const double *const total = rampwise_equipment_total_(m, i);
+    for (size_t j = 0; j < m->modes && total[0] < 0 && total[1] == 0; ++j) {
+        const free_motion y = seen_at(m, j, rampwise_equipment_point_(m, i));
+        if (y.stiffness == -total[0] && y.damping == 0 && !(y.z == 0 && y.slope == 0))
+            return 1;
+    }
+    return 0;
+}
+
+/* What is asked for: outputs, or one quantity of the pieces. */
+typedef struct asked {
+    size_t count;
+    int equipment, q;
+} asked;
+
+static rampwise_peak *peak_of(const rampwise_modes *m, const asked *a, size_t i)
+{
+    return a->equipment ? rampwise_equipment_peak_(m, i, a->q) : &rampwise_modes_peak_(m)[i];
+}
+
+static double later_of(const rampwise_modes *m, const asked *a, size_t i)
+{
+    double later[QUANTITIES];
+    if (!a->equipment)
+        return later_of_output(m, i);
+    later_of_piece(m, i, later);
+    return later[a->q];
+}
+
+/* Whether nothing later exceeds the peak on either side by more than 1e-11 of the larger: the rounding of both. */
+static int is_final(const rampwise_peak *peak, double later)
+{
+    const double high = peak->high.value, low = -peak->low.value;
+    return later <= fmin(high, low) + 1e-11 * fmax(high, low);
+}
+
+/* Walks on until all are final, so many samples at most. The first that is not is asked again after each segment. */
+static void walk(rampwise_modes *m, const asked *a, uint64_t samples)
+{
+    size_t i = 0;
+    while (samples > 0) {
+        while (i < a->count && is_final(peak_of(m, a, i), later_of(m, a, i)))
+            ++i;
+        if (i == a->count)
+            return;
+        const size_t n = samples < SEGMENT ? (size_t)samples : SEGMENT;
+        if (!rampwise_modes_go_on_(m, n))
+            return;
+        samples -= n;
+    }
+}
+
+/* Peaks begin with the present values. */
+static void begin_peaks(rampwise_modes *m)
+{
+    for (size_t o = 0; o < m->outputs; ++o) {
+        const rampwise_instant now = {m->output[o], m->sample, 0};
+        rampwise_modes_peak_(m)[o] = (rampwise_peak){now, now};
+    }
+    for (size_t i = 0; i < rampwise_equipment_count_(m); ++i)
+        for (int q = 0; q < QUANTITIES; ++q) {
+            const rampwise_instant now = {rampwise_equipment_value_(m, i, q), m->sample, 0};
+            *rampwise_equipment_peak_(m, i, q) = (rampwise_peak){now, now};
+        }
+}
+
+static void residual(rampwise_modes *m, const asked *a, uint64_t samples, rampwise_peak *peak, double *later)
+{
+    keep_all(m, 0);
+    rampwise_modes_release_(m);
+    begin_peaks(m);
+    walk(m, a, samples);
+    for (size_t i = 0; i < a->count; ++i) {
+        peak[i] = *peak_of(m, a, i);
+        if (later != NULL)
+            later[i] = later_of(m, a, i);
+        if (a->equipment && grows_for_ever(m, i))
+            peak[i] = (rampwise_peak){{INFINITY, UINT64_MAX, 0}, {-INFINITY, UINT64_MAX, 0}};
+    }
+    keep_all(m, 1);
+}
+
+int rampwise_modes_residual(rampwise_modes *modes, uint64_t samples, rampwise_peak *peak, double *later)
+{
+    if (modes == NULL || peak == NULL)
+        return RAMPWISE_ERROR_MISSING;
+    if (modes->peaks == NULL)
+        return RAMPWISE_ERROR_QUANTITY;
+    const asked outputs = {modes->outputs, 0, 0};
+    residual(modes, &outputs, samples, peak, later);
+    return RAMPWISE_OK;
+}
+
+int rampwise_equipment_residual(rampwise_modes *modes, int quantity, uint64_t samples, rampwise_peak *peak,
+                                double *later)
+{
+    if (modes == NULL || peak == NULL)
+        return RAMPWISE_ERROR_MISSING;
+    if (modes->peaks == NULL || rampwise_equipment_count_(modes) == 0 ||
+        (quantity != RAMPWISE_DISPLACEMENT && quantity != RAMPWISE_TOTAL_ACCELERATION))
+        return RAMPWISE_ERROR_QUANTITY;
+    const asked pieces = {rampwise_equipment_count_(modes), 1, quantity == RAMPWISE_TOTAL_ACCELERATION};
+    residual(modes, &pieces, samples, peak, later);
+    return RAMPWISE_OK;
+}
