@@ -4,21 +4,11 @@
 #include <string.h>
 #include "rampwise/motion.h"
 #include "rampwise/status.h"
+#include "energy_steps.h"
 #include "one_step.h"
 #include "valid.h"
 
-/* What is added up along the way. */
-typedef struct sums {
-    twofold input, dissipated, base_velocity;
-} sums;
-
-/* What acts in one step. The load is first + change x, x from 0 to 1, mean in the middle; the base's velocity is
-   base[0] + base[1] (x - 1/2) + base[2] (x - 1/2)^2/2 where its work is asked for, and base_shift its way. */
-typedef struct course {
-    double y, w; /* relative displacement and velocity at the beginning */
-    double first, mean, change;
-    double base[3], base_shift;
-} course;
+enum { BLOCK = 64 }; /* samples whose energies are at hand at once */
 
 /* ---- coefficients ---- */
 
@@ -100,11 +90,6 @@ static void dissipation(rampwise_meter *meter, const step *s, const response *r,
     meter->squares[2] = rounded(for_force, D3);
 }
 
-static int base_works(const rampwise_meter *meter)
-{
-    return meter->frame == RAMPWISE_ABSOLUTE && meter->coeffs.input != RAMPWISE_FORCE;
-}
-
 static int coefficients_are_finite(const rampwise_meter *meter)
 {
     int finite =
@@ -148,148 +133,16 @@ static int make_meter(rampwise_meter *meter, const rampwise_coeffs *c, int frame
     return coefficients_are_finite(meter) ? RAMPWISE_OK : RAMPWISE_ERROR_COEFFICIENT;
 }
 
-/* ---- one step ---- */
-
-static void load_acts(course *along, double factor, double first, double next)
-{
-    along->first = factor * first;
-    along->change = factor * (next - first);
-    along->mean = factor * (0.5 * first + 0.5 * next);
-}
-
-/* The base's velocity from a line of acceleration, and its gain carried in two doubles. */
-static void base_accelerates(course *along, twofold *velocity, double h, double first, double next)
-{
-    const twofold sum = twofold_sum(first, next);
-    const double gain = 0.5 * h * sum.hi;
-    const double rest = RAMPWISE_FMA(0.5 * h, sum.hi, -gain) + 0.5 * h * sum.lo;
-    along->base[1] = gain;
-    along->base[2] = h * (next - first);
-    along->base[0] = RAMPWISE_FMA(0.5, gain, RAMPWISE_FMA(-0.125, along->base[2], velocity->hi));
-    *velocity = twofold_add(*velocity, twofold_ordered_sum(gain, rest));
-}
-
-/* What acts between the state and the next sample; the base's velocity goes on to that sample. */
-static course course_of(const rampwise_coeffs *c, const rampwise_state *s, double p_next,
-                        twofold *base_velocity)
-{
-    const double held = c->between == RAMPWISE_HOLD ? s->p : p_next;
-    const double rate = (held - s->p) / c->dt;
-    course along = {s->u, s->v, 0, 0, 0, {0, 0, 0}, 0};
-    switch (c->input) {
-    case RAMPWISE_FORCE:
-        load_acts(&along, 1, s->p, held);
-        break;
-    case RAMPWISE_BASE_ACCELERATION:
-        load_acts(&along, -c->system.mass, s->p, held);
-        base_accelerates(&along, base_velocity, c->dt, s->p, held);
-        break;
-    case RAMPWISE_BASE_VELOCITY:
-        load_acts(&along, -c->system.mass, rate, rate);
-        along.base[0] = 0.5 * s->p + 0.5 * held;
-        along.base[1] = held - s->p;
-        break;
-    default:
-        along.y = s->u - s->p;
-        along.w = s->v - rate;
-        along.base[0] = rate;
-    }
-    along.base_shift = c->dt * RAMPWISE_FMA(along.base[2], 1.0 / 24, along.base[0]);
-    return along;
-}
-
-static double form(const double row[3], double velocity, double force, double change)
-{
-    return RAMPWISE_FMA(row[0], velocity, RAMPWISE_FMA(row[1], force, row[2] * change));
-}
-
-static double work_done(const rampwise_meter *meter, const course *along)
-{
-    const double(*const row)[3] = meter->work;
-    const double stiffness = meter->coeffs.system.stiffness, spring = -stiffness * along->y;
-    const double force = RAMPWISE_FMA(-stiffness, along->y, along->mean);
-    const double first = form(row[0], along->w, force, along->change);
-    if (!base_works(meter))
-        return RAMPWISE_FMA(along->mean, first,
-                            along->change * form(row[1], along->w, spring, along->change));
-    const double second = form(row[1], along->w, force, along->change);
-    const double third = form(row[2], along->w, force, along->change);
-    const double turning = RAMPWISE_FMA(along->base[1], second, along->base[2] * third);
-    return RAMPWISE_FMA(spring, along->base_shift, RAMPWISE_FMA(along->base[0], first, turning));
-}
-
-/* Of a held base displacement, on the spring. */
-static double work_of_jump(const rampwise_coeffs *c, double u, double p, double p_next)
-{
-    if (c->input != RAMPWISE_BASE_DISPLACEMENT || c->between != RAMPWISE_HOLD)
-        return 0;
-    return 0.5 * c->system.stiffness * (p - p_next) * ((u - p) + (u - p_next));
-}
-
-static double energy_lost(const rampwise_meter *meter, const course *along)
-{
-    const double *const d = meter->squares;
-    const double force = RAMPWISE_FMA(-meter->coeffs.system.stiffness, along->y, along->first);
-    const double velocity = RAMPWISE_FMA(meter->into_velocity[0], force,
-                                         RAMPWISE_FMA(meter->into_velocity[1], along->change, along->w));
-    const double rest = RAMPWISE_FMA(meter->into_force, along->change, force);
-    return RAMPWISE_FMA(d[0] * velocity, velocity,
-                        RAMPWISE_FMA(d[1] * rest, rest, d[2] * along->change * along->change));
-}
-
-static twofold base_velocity_at(const rampwise_meter *meter, const rampwise_state *s, const sums *so_far)
-{
-    if (base_works(meter) && meter->coeffs.input == RAMPWISE_BASE_ACCELERATION)
-        return so_far->base_velocity;
-    return (twofold){base_works(meter) && meter->coeffs.input == RAMPWISE_BASE_VELOCITY ? s->p : 0, 0};
-}
-
-static rampwise_energy energies(const rampwise_meter *meter, const rampwise_state *s, const sums *so_far)
-{
-    const rampwise_system *const sys = &meter->coeffs.system;
-    const twofold base = base_velocity_at(meter, s, so_far);
-    const double velocity = (s->v + base.hi) + base.lo;
-    const double stretch = rampwise_relative_displacement(&meter->coeffs, s);
-    return (rampwise_energy){so_far->input.hi, 0.5 * sys->mass * velocity * velocity,
-                             0.5 * sys->stiffness * stretch * stretch, so_far->dissipated.hi};
-}
-
-static int energy_is_finite(const rampwise_energy *energy)
-{
-    return isfinite(energy->input) && isfinite(energy->kinetic) && isfinite(energy->strain) &&
-           isfinite(energy->dissipated);
-}
-
-/* One step of state and sums, and the energies after it; 0 and nothing changed where something overflows. */
-static int take_step(const rampwise_meter *meter, rampwise_state *s, sums *so_far, double p_next,
-                     rampwise_energy *energy)
-{
-    sums next = *so_far;
-    rampwise_state after = *s;
-    const course along = course_of(&meter->coeffs, s, p_next, &next.base_velocity);
-    rampwise_step(&meter->coeffs, &after, p_next);
-    const double work = work_done(meter, &along) + work_of_jump(&meter->coeffs, after.u, s->p, p_next);
-    next.input = twofold_add(next.input, (twofold){work, 0});
-    next.dissipated = twofold_add(next.dissipated, (twofold){energy_lost(meter, &along), 0});
-    const rampwise_energy reached = energies(meter, &after, &next);
-    if (!state_is_finite(&after) || !energy_is_finite(&reached))
-        return 0;
-    *so_far = next;
-    *s = after;
-    *energy = reached;
-    return 1;
-}
-
 /* ---- meters ---- */
 
-static sums sums_of(const rampwise_meter *meter)
+static energy_sums sums_of(const rampwise_meter *meter)
 {
-    return (sums){{meter->input[0], meter->input[1]},
-                  {meter->dissipated[0], meter->dissipated[1]},
-                  {meter->base_velocity[0], meter->base_velocity[1]}};
+    return (energy_sums){{meter->input[0], meter->input[1]},
+                         {meter->dissipated[0], meter->dissipated[1]},
+                         {meter->base_velocity[0], meter->base_velocity[1]}};
 }
 
-static void keep_sums(rampwise_meter *meter, const sums *so_far)
+static void keep_sums(rampwise_meter *meter, const energy_sums *so_far)
 {
     meter->input[0] = so_far->input.hi;
     meter->input[1] = so_far->input.lo;
@@ -326,12 +179,28 @@ int rampwise_meter_read(const rampwise_meter *meter, const rampwise_state *s, ra
         return RAMPWISE_ERROR_MISSING;
     if (!meter_is_made(meter))
         return RAMPWISE_ERROR_NOT_MADE;
-    const sums so_far = sums_of(meter);
-    const rampwise_energy now = energies(meter, s, &so_far);
+    const energy_sums so_far = sums_of(meter);
+    const rampwise_energy now = energies_at(meter, s, &so_far);
     if (!energy_is_finite(&now))
         return RAMPWISE_ERROR_OVERFLOW;
     *energy = now;
     return RAMPWISE_OK;
+}
+
+/* n samples in blocks, their energies into energy[n] where it is not NULL; how many went by before one overflows. */
+static size_t advance(const rampwise_meter *meter, rampwise_state *s, energy_sums *so_far, size_t n,
+                      const double *p, rampwise_energy *energy)
+{
+    rampwise_energy unseen[BLOCK];
+    for (size_t done = 0, part; done < n; done += part) {
+        part = n - done < BLOCK ? n - done : BLOCK;
+        rampwise_energy *const to = energy != NULL ? energy + done : unseen;
+        const size_t went =
+            rampwise_kernels_(RAMPWISE_FASTEST)->energies(meter, s, so_far, part, p + done, to);
+        if (went < part)
+            return done + went;
+    }
+    return n;
 }
 
 int rampwise_meter_run(rampwise_meter *meter, rampwise_state *s, size_t n, const double *p,
@@ -344,12 +213,8 @@ int rampwise_meter_run(rampwise_meter *meter, rampwise_state *s, size_t n, const
         status = check_samples(n, p, bad);
     if (status != RAMPWISE_OK)
         return status;
-    sums so_far = sums_of(meter);
-    rampwise_energy now;
-    size_t reached = 0;
-    for (; reached < n && take_step(meter, s, &so_far, p[reached], &now); ++reached)
-        if (energy != NULL)
-            energy[reached] = now;
+    energy_sums so_far = sums_of(meter);
+    const size_t reached = advance(meter, s, &so_far, n, p, energy);
     keep_sums(meter, &so_far);
     return reached < n ? blame(RAMPWISE_ERROR_OVERFLOW, reached, bad) : RAMPWISE_OK;
 }
@@ -406,16 +271,20 @@ static void respond(const record *r, double omega, double zeta, rampwise_energy 
     rampwise_meter meter;
     rampwise_state s;
     (void)start_oscillator(r, omega, zeta, &meter, &s);
-    sums so_far = sums_of(&meter);
-    *last = energies(&meter, &s, &so_far);
+    energy_sums so_far = sums_of(&meter);
+    *last = energies_at(&meter, &s, &so_far);
     *greatest = 0;
-    for (size_t i = 1; i < r->n; ++i) {
-        if (!take_step(&meter, &s, &so_far, r->p[i], last)) {
+    for (size_t done = 1, part; done < r->n; done += part) {
+        rampwise_energy energy[BLOCK];
+        part = r->n - done < BLOCK ? r->n - done : BLOCK;
+        if (advance(&meter, &s, &so_far, part, r->p + done, energy) < part) {
             *last = (rampwise_energy){INFINITY, INFINITY, INFINITY, INFINITY};
             *greatest = INFINITY;
             return;
         }
-        *greatest = last->input > *greatest ? last->input : *greatest;
+        for (size_t i = 0; i < part; ++i)
+            *greatest = energy[i].input > *greatest ? energy[i].input : *greatest;
+        *last = energy[part - 1];
     }
 }
 

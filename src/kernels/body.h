@@ -5,6 +5,9 @@
 
 #include <stdint.h>
 #include <string.h>
+#ifndef SINGLE_PRECISION
+#include "../energy_steps.h"
+#endif
 #include "../entry.h"
 #include "kernels.h"
 
@@ -714,6 +717,18 @@ static void scatter(real *to, size_t stride, size_t count, size_t n, real (*tile
             to[j * stride + i] = tile[i][j];
 }
 
+#ifndef SINGLE_PRECISION
+static size_t energies(const rampwise_meter *meter, rampwise_state *s, energy_sums *so_far, size_t n,
+                       const double *p, rampwise_energy *energy)
+{
+    const rampwise_meter m = *meter;
+    size_t i = 0;
+    while (i < n && take_step(&m, s, so_far, p[i], &energy[i]))
+        ++i;
+    return i;
+}
+#endif
+
 extern const kernels KERNELS;
 const kernels KERNELS = {.name = KERNELS_NAME,
                          .first_not_finite = first_not_finite,
@@ -726,6 +741,7 @@ const kernels KERNELS = {.name = KERNELS_NAME,
                          .accumulate = accumulate,
                          .free_motion_bounds = free_motion_bounds,
                          .under_gains = under_gains,
+                         .energies = energies,
 #endif
                          .under_own_inputs = under_own_inputs,
                          .rows = rows,

@@ -26,6 +26,12 @@ typedef struct lane_block {
 /* Consecutive samples of LANES lanes. */
 typedef real lane_tile[TILE][LANES];
 
+#ifndef SINGLE_PRECISION
+struct energy_sums;    /* energy_steps.h */
+struct rampwise_meter; /* rampwise/energy.h */
+struct rampwise_energy;
+#endif
+
 typedef struct kernels {
     int name; /* RAMPWISE_BASELINE and so on */
 
@@ -79,6 +85,11 @@ typedef struct kernels {
        what each step adds to u and v beside their own motion, own[0] to own[3] of `width` (A - 1, B, A', B' - 1);
        they become the states after the step. */
     void (*under_gains)(size_t width, size_t n, const double *own, double *u, double *v, double *gain);
+
+    /* One oscillator and its energies (energy_steps.h) after each of n samples; stops before the one that overflows
+       and answers how many went by. */
+    size_t (*energies)(const struct rampwise_meter *meter, rampwise_state *s, struct energy_sums *so_far,
+                       size_t n, const double *p, struct rampwise_energy *energy);
 #endif
 
     /* Each lane under its own input, p[1] to p[n], n <= TILE; p[0] is the sample before. The states
