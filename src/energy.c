@@ -3,8 +3,10 @@
 #include <math.h>
 #include <string.h>
 #include "rampwise/motion.h"
+#include "rampwise/peak.h"
 #include "rampwise/status.h"
 #include "one_step.h"
+#include "spectrum_list.h"
 #include "valid.h"
 
 /* What is added up along the way. */
@@ -382,22 +384,18 @@ int rampwise_energy_solve(const rampwise_coeffs *c, int frame, double u0, double
 /* ---- spectra ---- */
 
 typedef struct record {
-    size_t n;
-    double dt;
+    record_kind kind; /* whose quantity does not matter */
     const double *p;
-    int input, frame;
+    int frame;
 } record;
 
 /* Oscillator and meter, at rest under the first sample. */
 static int start_oscillator(const record *r, double omega, double zeta, rampwise_meter *meter,
                             rampwise_state *s)
 {
-    rampwise_system sys;
     rampwise_coeffs c;
     rampwise_start(s, 0, 0, r->p[0]);
-    int status = rampwise_system_natural(&sys, omega, zeta);
-    if (status == RAMPWISE_OK)
-        status = rampwise_coeffs_make(&c, &sys, r->dt, r->input, RAMPWISE_RAMP);
+    const int status = rampwise_record_oscillator_(&r->kind, omega, zeta, &c);
     return status == RAMPWISE_OK ? rampwise_meter_start(meter, &c, s, r->frame) : status;
 }
 
@@ -409,7 +407,7 @@ static void respond(const record *r, double omega, double zeta, rampwise_energy 
     sums so_far = sums_of(&meter);
     *last = energies(&meter, &s, &so_far);
     *greatest = 0;
-    for (size_t i = 1; i < r->n; ++i) {
+    for (size_t i = 1; i < r->kind.n; ++i) {
         if (!take_step(&meter, &s, &so_far, r->p[i], last)) {
             *last = (rampwise_energy){INFINITY, INFINITY, INFINITY, INFINITY};
             *greatest = INFINITY;
@@ -421,21 +419,17 @@ static void respond(const record *r, double omega, double zeta, rampwise_energy 
 
 static int check_record(const record *r, size_t *bad)
 {
-    if (r->n == 0)
-        return RAMPWISE_ERROR_COUNT;
-    if (!isfinite(r->dt) || r->dt <= 0)
-        return RAMPWISE_ERROR_INTERVAL;
-    if (r->input < RAMPWISE_FORCE || r->input > RAMPWISE_BASE_DISPLACEMENT)
-        return RAMPWISE_ERROR_INPUT;
-    const int status = check_frame(r->frame, r->input);
-    return status == RAMPWISE_OK ? check_samples(r->n, r->p, bad) : status;
+    int status = rampwise_record_kind_check_(&r->kind);
+    if (status == RAMPWISE_OK)
+        status = check_frame(r->frame, r->kind.input);
+    return status == RAMPWISE_OK ? check_samples(r->kind.n, r->p, bad) : status;
 }
 
 int rampwise_energy_spectrum(size_t n, double dt, const double *p, int input, int frame, size_t n_osc,
                              const double *omega, const double *zeta, rampwise_energy *last, double *greatest,
                              size_t *bad)
 {
-    const record r = {n, dt, p, input, frame};
+    const record r = {{n, dt, input, RAMPWISE_DISPLACEMENT}, p, frame};
     if (p == NULL || (n_osc > 0 && (omega == NULL || zeta == NULL)))
         return RAMPWISE_ERROR_MISSING;
     int status = check_record(&r, bad);
