@@ -1,4 +1,4 @@
-/* Complex numbers, without the compiler's own, whose products ask for infinities. */
+/* Complex numbers. Those of compilers look after infinities and NaN in every product, by calls. */
 #ifndef RAMPWISE_COMPLEX_NUMBER_H
 #define RAMPWISE_COMPLEX_NUMBER_H
 
