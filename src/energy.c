@@ -14,8 +14,9 @@ typedef struct sums {
     twofold input, dissipated, base_velocity;
 } sums;
 
-/* What acts in one step. The load is first + change x, x from 0 to 1, mean in the middle; the base's velocity is
-   base[0] + base[1] (x - 1/2) + base[2] (x - 1/2)^2/2 where its work is asked for, and base_shift its way. */
+/* What acts in one step. The load is first + change x, x from 0 to 1, mean in the middle; the
+   base's velocity is base[0] + base[1] (x - 1/2) + base[2] (x - 1/2)^2/2 where its work is asked
+   for, and base_shift its way. */
 typedef struct course {
     double y, w; /* relative displacement and velocity at the beginning */
     double first, mean, change;
@@ -24,9 +25,9 @@ typedef struct course {
 
 /* ---- coefficients ---- */
 
-/* The integral over the step of (x - 1/2)^power/power! times the velocity in answer to an impulse, a constant load
-   or a ramp (which = 0, 1, 2); G lists g, G1, G2 and so on from place 1, each the integral of the one before it.
-   By parts. which = 3 is the displacement under a ramp. */
+/* The integral over the step of (x - 1/2)^power/power! times the velocity in answer to an impulse, a constant
+   load or a ramp (which = 0, 1, 2); G lists g, G1, G2 and so on from place 1, each the integral of the one
+   before it. By parts. which = 3 is the displacement under a ramp. */
 static twofold moment(const twofold *G, int which, int power)
 {
     const twofold *const first = &G[which + 1];
@@ -46,8 +47,8 @@ static twofold centred_moment(const twofold *G, int which, int power)
     return twofold_subtract(moment(G, which, power), twofold_times_power(moment(G, which - 1, power), -1));
 }
 
-/* The work of the load mean + change (x - 1/2) on the velocity, a form in its answers: the product of mean and
-   change appears twice with opposite signs, and what is left of it meets the spring's force alone. */
+/* The work of the load mean + change (x - 1/2) on the velocity, a form in its answers: the product of mean
+   and change appears twice with opposite signs, and what is left of it meets the spring's force alone. */
 static void work_of_load(rampwise_meter *meter, const step *s, const twofold *G)
 {
     const scaled for_force = scaled_multiply(s->h, s->h_over_m);
@@ -57,8 +58,9 @@ static void work_of_load(rampwise_meter *meter, const step *s, const twofold *G)
                 rounded(which == 0 ? s->h : for_force, centred_moment(G, which, power));
 }
 
-/* The work of the base: moments of the mass's acceleration times its mass, which is the force of damper and spring
-   with its sign changed. The spring's force at the beginning of the step, which does not change, is left out. */
+/* The work of the base: moments of the mass's acceleration times its mass, which is the force of
+   damper and spring with its sign changed. The spring's force at the beginning of the step, which
+   does not change, is left out. */
 static void work_of_base(rampwise_meter *meter, const step *s, const twofold *G)
 {
     const scaled for_velocity = scaled_double(-meter->coeffs.system.mass),
@@ -79,8 +81,8 @@ static twofold unless_negative(twofold a)
     return a.hi < 0 ? (twofold){0, 0} : a;
 }
 
-/* The integral of the squared velocity, a quadratic form in velocity, force and change of load, as a sum of squares
-   (the factors of Lagrange and Gauss): D1 (v + l f + m b)^2 + D2 (f + n b)^2 + D3 b^2. */
+/* The integral of the squared velocity, a quadratic form in velocity, force and change of load, as a sum of
+   squares (the factors of Lagrange and Gauss): D1 (v + l f + m b)^2 + D2 (f + n b)^2 + D3 b^2. */
 static void dissipation(rampwise_meter *meter, const step *s, const response *r, const integrals *more)
 {
     const twofold vf = twofold_times_power(twofold_multiply(r->g, r->g), -1);

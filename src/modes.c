@@ -148,8 +148,8 @@ static void fill_mode(rampwise_modes *m, const rampwise_modes_plan *plan, size_t
     }
 }
 
-/* What accelerations take from the inputs. It cancels much of a direct weight, as 1 - sum of factor shape, so it
-   is summed in twofold arithmetic. */
+/* What accelerations take from the inputs. It cancels much of a direct weight, as 1 - sum of factor shape, so
+   it is summed in twofold arithmetic. */
 static void fill_direct(rampwise_modes *m, const rampwise_modes_plan *plan, size_t i, size_t o)
 {
     twofold sum = {weight_at(plan->on_input, i * m->outputs + o), 0};

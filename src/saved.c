@@ -59,8 +59,8 @@ void rampwise_saved_float_(saved *s, float *x)
         memcpy(x, &bits, sizeof bits);
 }
 
-/* Half bytes divided by x^32 + x^26 + x^23 + x^22 + x^16 + x^12 + x^11 + x^10 + x^8 + x^7 + x^5 + x^4 + x^2 + x + 1,
-   the lowest bit first. */
+/* Half bytes divided by x^32 + x^26 + x^23 + x^22 + x^16 + x^12 + x^11 + x^10 + x^8 + x^7 +
+   x^5 + x^4 + x^2 + x + 1, the lowest bit first. */
 static const uint32_t remainders[16] = {
     0x00000000u, 0x1db71064u, 0x3b6e20c8u, 0x26d930acu, 0x76dc4190u, 0x6b6b51f4u, 0x4db26158u, 0x5005713cu,
     0xedb88320u, 0xf00f9344u, 0xd6d6a3e8u, 0xcb61b38cu, 0x9b64c2b0u, 0x86d3d2d4u, 0xa00ae278u, 0xbdbdf21cu,

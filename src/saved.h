@@ -1,10 +1,11 @@
 /* Objects as bytes: the same on every machine, and refused where they are damaged.
 
-   One function an object goes through its members, whether they are counted, written or read: saved_kind.pass.
+   One function an object goes through its members, whether they are counted, written, looked at or read:
+   saved_kind.pass.
    Bytes: the eight letters RAMPWISE; four numbers of four bytes: kind of object, version of its format,
-   edition of the arithmetic, zero; the length of all in eight bytes; the members; a CRC-32 of everything before
-   it (ISO/IEC/IEEE 8802-3, the check sequence of ISO 3309 and ITU-T V.42). Numbers are little-endian, floating
-   point as the bits of IEEE 754. */
+   edition of the arithmetic, zero; the length of all in eight bytes; the members; a CRC-32 of everything
+   before it (ISO/IEC/IEEE 8802-3, the check sequence of ISO 3309 and ITU-T V.42). Numbers are little-endian,
+   floating point as the bits of IEEE 754. */
 #ifndef RAMPWISE_SAVED_H
 #define RAMPWISE_SAVED_H
 
@@ -60,12 +61,12 @@ size_t rampwise_saved_size_(const saved_kind *k, const void *object);
 int rampwise_saved_write_(const saved_kind *k, const void *object, void *bytes, size_t count);
 
 /* Whether the bytes are one whole object of this kind, as long as *object; then *s reads its members from the
-   first on. RAMPWISE_ERROR_MISSING, _DAMAGED, _KIND, _EDITION, _DIFFERENT (another length). What the members may
-   hold is for the caller to check, before they become an object. */
+   first on. RAMPWISE_ERROR_MISSING, _DAMAGED, _KIND, _EDITION, _DIFFERENT (another length). What the members
+   may hold is for the caller to check, before they become an object. */
 int rampwise_saved_open_(const saved_kind *k, const void *object, const void *bytes, size_t count, saved *s);
 
 /* Opens them and reads *object: goes through them twice, first to look, then to change. Besides the errors of
-   opening, RAMPWISE_ERROR_DIFFERENT or _DAMAGED as the way through the members has noted; nothing has changed. */
+   opening, RAMPWISE_ERROR_DIFFERENT or _DAMAGED, as was noted on the way; nothing has changed then. */
 int rampwise_saved_resume_(const saved_kind *k, void *object, const void *bytes, size_t count);
 
 uint32_t rampwise_saved_checksum_(const unsigned char *bytes, size_t count);

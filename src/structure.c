@@ -129,7 +129,8 @@ static complex_number load_of(const rampwise_roots *r, size_t k, size_t in)
     return product_of(sum, inverse_of(norm_of(r, k, &size)));
 }
 
-/* How far the residues in the displacements, shape shape'/norm, of two real roots cancel: 0 all, 1 nothing. */
+/* How far the residues in the displacements, shape shape'/norm, of two real roots
+   cancel: 0 all, 1 nothing. */
 static double left_of(const rampwise_roots *r, size_t k, size_t l)
 {
     double size, kk = 0, kl = 0, ll = 0;
@@ -159,7 +160,8 @@ static double from_conjugate(complex_number a, complex_number b)
     return size_of((complex_number){a.re - b.re, a.im + b.im});
 }
 
-/* The partner of root k: of those that are left the nearest to its conjugate, or the real one that cancels best. */
+/* The partner of root k: of those that are left the nearest to its conjugate, or the
+   real one that cancels best. */
 static size_t partner_of(const rampwise_roots *r, const rampwise_system *pairs, size_t found, size_t k)
 {
     const complex_number root = at(r->root, k);
@@ -220,8 +222,8 @@ static void put_one(const rampwise_roots *r, size_t k, size_t l, double *load, d
     }
 }
 
-/* As two, under several: for complex roots under the real and the imaginary parts of the loads, for real ones under
-   the loads of either. */
+/* As two, under several: for complex roots under the real and the imaginary parts of the loads, for real ones
+   under the loads of either. */
 static void put_two(const rampwise_roots *r, size_t k, size_t l, double *load, double *on_displacement,
                     double *on_velocity)
 {

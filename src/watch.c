@@ -162,8 +162,8 @@ static void note(real_peak *peak, real_instant at)
         peak->low = at;
 }
 
-/* Where the series meets `edge` between low and high, over which it is monotone: Newton's steps, halving where
-   one leaves the bracket, and every other time when eight have not ended it. */
+/* Where the series meets `edge` between low and high, over which it is monotone: Newton's steps, halving
+   where one leaves the bracket, and every other time when eight have not ended it. */
 static real meeting(const series *s, real low, real high, real edge, int rising)
 {
     real x = (low + high) / 2, second;
