@@ -380,13 +380,12 @@ static const saved_kind kind = {SAVED_BANK, 1, pass_bank};
 
 size_t PUBLIC(bank_saved_size)(const real_bank *bank)
 {
-    return bank != NULL ? rampwise_saved_size_(&kind, bank) : 0;
+    return rampwise_saved_size_(&kind, bank);
 }
 
 int PUBLIC(bank_save)(const real_bank *bank, void *bytes, size_t count)
 {
-    return bank != NULL && bytes != NULL ? rampwise_saved_write_(&kind, bank, bytes, count)
-                                         : RAMPWISE_ERROR_MISSING;
+    return rampwise_saved_write_(&kind, bank, bytes, count);
 }
 
 /* Whether n saved oscillators share what those of a bank do. */
@@ -425,8 +424,6 @@ int PUBLIC(bank_resume)(real_bank *bank, const void *bytes, size_t count)
 {
     saved s;
     one x;
-    if (bank == NULL || bytes == NULL)
-        return RAMPWISE_ERROR_MISSING;
     int status = rampwise_saved_open_(&kind, bank, bytes, count, &s);
     if (status == RAMPWISE_OK)
         status = check_saved(s, bank->n);

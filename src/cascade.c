@@ -4,11 +4,11 @@
 #include "one_step.h"
 #include "rampwise/status.h"
 
-/* x'' + S2 x' + K2 x = alpha u + beta u', u the motion of the mode, in units of the step. With the mode's load a
-   ramp, a constant and an impulse, x after the step from rest is s, p and v, each the slope of the one before, and v'
-   that of v. What an initial displacement of the mode adds follows: u = 1 - K1 (the motion under a constant load),
-   so x = alpha G1 of the light one - K1 p. There is nothing to divide by the distance of the two frequencies: tuned
-   is like any other. */
+/* x'' + S2 x' + K2 x = alpha u + beta u', u the motion of the mode, in units of the step. With the mode's
+   load a ramp, a constant and an impulse, x after the step from rest is s, p and v, each the slope of the one
+   before, and v' that of v. What an initial displacement of the mode adds follows: u = 1 - K1 (the motion
+   under a constant load), so x = alpha G1 of the light one - K1 p. There is nothing to divide by the distance
+   of the two frequencies: tuned is like any other. */
 typedef struct coupling {
     twofold s, p, v, v_slope;
 } coupling;
@@ -79,8 +79,8 @@ static twofold kept(twofold a, int exponent)
     return fabs(a.hi) < 0x1p-300 ? (twofold){0, 0} : twofold_times_power(a, exponent);
 }
 
-/* Two equal steps as one: the light one goes on from where the first step left it, under what the mode does from
-   where that left the mode; then in units of the longer step. */
+/* Two equal steps as one: the light one goes on from where the first step left it, under what the mode does
+   from where that left the mode; then in units of the longer step. */
 static coupling doubled(const coupling *x, const part *mode, const part *light, twofold alpha)
 {
     const twofold A = A_of(light), g = light->r.g, Bp = Bp_of(light), Kg = twofold_multiply(light->K, g);

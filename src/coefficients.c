@@ -11,9 +11,9 @@
 #ifdef SINGLE_PRECISION
 enum { COMPUTED = offsetof(rampwise_coeffs_f32, dt) / sizeof(float) }; /* members that can overflow */
 
-/* The twofold number as a double whose last bit tells whether there is more behind it (rounding to odd: S. Boldo
-   and G. Melquiond, IEEE Trans. Computers 57(4), 462-471, 2008), which makes the float it is rounded to next the
-   nearest to the twofold number itself. */
+/* The twofold number as a double whose last bit tells whether there is more behind it (rounding to odd: S.
+   Boldo and G. Melquiond, IEEE Trans. Computers 57(4), 462-471, 2008), which makes the float it is rounded to
+   next the nearest to the twofold number itself. */
 static double sticky(twofold x)
 {
     uint64_t bits;

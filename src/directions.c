@@ -372,139 +372,102 @@ int rampwise_directions_get(rampwise_directions *d, size_t n_percent, const doub
 
 /* ---- saving ---- */
 
-/* On the way through saved bytes. Reading goes through them twice: first to look, then to change. */
-typedef struct passage {
-    rampwise_directions *d;
-    int look, different, damaged;
-} passage;
-
-static int changes(const saved *s, const passage *way)
+static void pass_doubles(saved *s, double *x, size_t n)
 {
-    return s->from != NULL && !way->look;
+    for (size_t i = 0; i < n; ++i)
+        s->damaged |= isnan(rampwise_saved_double_(s, &x[i]));
 }
 
-static void pass_doubles(saved *s, passage *way, double *x, size_t n)
-{
-    for (size_t i = 0; i < n; ++i) {
-        double value = x[i];
-        rampwise_saved_double_(s, &value);
-        way->damaged |= isnan(value);
-        if (changes(s, way))
-            x[i] = value;
-    }
-}
-
-static void pass_number(saved *s, const passage *way, size_t *x)
-{
-    size_t value = *x;
-    saved_size(s, &value);
-    if (changes(s, way))
-        *x = value;
-}
-
-static void pass_flag(saved *s, passage *way, int *x)
+static void pass_flag(saved *s, int *x)
 {
     int32_t value = *x;
-    saved_int(s, &value);
-    way->damaged |= value != 0 && value != 1;
-    if (changes(s, way))
-        *x = value;
+    const int32_t passed = saved_int(s, &value);
+    s->damaged |= passed != 0 && passed != 1;
+    if (saved_changes(s))
+        *x = passed;
 }
 
-/* What must be the same where it is resumed. */
-static void pass_equal(saved *s, passage *way, uint64_t mine)
-{
-    uint64_t value = mine;
-    rampwise_saved_uint64_(s, &value);
-    way->different |= value != mine;
-}
-
-static void pass_coeffs(saved *s, passage *way, const rampwise_coeffs *mine)
+static void pass_coeffs(saved *s, const rampwise_coeffs *mine)
 {
     rampwise_coeffs c = *mine;
-    saved_coeffs(s, &c);
-    way->different |= memcmp(&c, mine, sizeof c) != 0;
+    saved all = *s;
+    all.looks = 0;
+    saved_coeffs(&all, &c);
+    s->at = all.at;
+    s->different |= memcmp(&c, mine, sizeof c) != 0;
 }
 
 /* All places for corners, so that the length does not depend on how many there are. */
-static void pass_outline(saved *s, passage *way, outline *o)
+static void pass_outline(saved *s, outline *o)
 {
-    size_t count = o->count;
-    saved_size(s, &count);
-    way->damaged |= count > o->room;
-    pass_number(s, way, &o->sector);
-    pass_number(s, way, &o->changes);
-    pass_doubles(s, way, &o->largest, 1);
-    pass_flag(s, way, &o->thinned);
+    const size_t count = saved_size(s, &o->count);
+    s->damaged |= count > o->room;
+    saved_size(s, &o->sector);
+    saved_size(s, &o->changes);
+    pass_doubles(s, &o->largest, 1);
+    pass_flag(s, &o->thinned);
     for (size_t i = 0; i < o->room; ++i) {
-        point none = {0, 0}, *const at = i < count && i < o->room ? &o->corner[i] : &none;
-        pass_doubles(s, way, &at->x, 1);
-        pass_doubles(s, way, &at->y, 1);
+        point none = {0, 0}, *const at = i < count ? &o->corner[i] : &none;
+        pass_doubles(s, &at->x, 1);
+        pass_doubles(s, &at->y, 1);
     }
-    if (changes(s, way))
-        o->count = count;
 }
 
-static void pass_ellipse(saved *s, passage *way, ellipse *e)
+static void pass_ellipse(saved *s, ellipse *e)
 {
     double *const numbers[] = {&e->form[0].x, &e->form[0].y, &e->form[1].x,   &e->form[1].y,
                                &e->size,      &e->length,    &e->determinant, &e->longest};
     for (size_t i = 0; i < sizeof numbers / sizeof *numbers; ++i)
-        pass_doubles(s, way, numbers[i], 1);
+        pass_doubles(s, numbers[i], 1);
 }
 
-static void pass_lane(saved *s, passage *way, directions_group *g, size_t j)
+static void pass_lane(saved *s, directions_group *g, size_t j)
 {
     directions_lane *const l = &g->lane[j];
     lane_block *const block[2] = {&g->first, &g->second};
-    pass_coeffs(s, way, &l->c);
+    pass_coeffs(s, &l->c);
     for (int i = 0; i < 2; ++i) {
-        pass_doubles(s, way, &block[i]->u[j], 1);
-        pass_doubles(s, way, &block[i]->v[j], 1);
+        pass_doubles(s, &block[i]->u[j], 1);
+        pass_doubles(s, &block[i]->v[j], 1);
     }
-    pass_flag(s, way, &l->stopped);
-    pass_outline(s, way, &l->outline);
-    pass_ellipse(s, way, &l->inside);
-    pass_number(s, way, &l->changes);
-    pass_number(s, way, &l->made);
-    pass_number(s, way, &l->looked);
+    pass_flag(s, &l->stopped);
+    pass_outline(s, &l->outline);
+    pass_ellipse(s, &l->inside);
+    saved_size(s, &l->changes);
+    saved_size(s, &l->made);
+    saved_size(s, &l->looked);
     for (int i = 0; i < 4; ++i)
-        pass_doubles(s, way, &g->form[i][j], 1);
-    pass_doubles(s, way, &g->limit[j], 1);
+        pass_doubles(s, &g->form[i][j], 1);
+    pass_doubles(s, &g->limit[j], 1);
 }
 
-static void pass(saved *s, void *object)
+static void pass_directions(saved *s, void *object)
 {
-    passage *const way = object;
-    rampwise_directions *const d = way->d;
-    pass_equal(s, way, d->n);
-    pass_equal(s, way, d->directions);
-    pass_equal(s, way, (uint64_t)d->groups[0].lane[0].x.quantity);
-    pass_equal(s, way, (uint64_t)d->groups[0].at_samples);
-    pass_flag(s, way, &d->started);
-    pass_doubles(s, way, d->in.p_before, 2);
-    pass_doubles(s, way, d->in.p_last, 2);
+    rampwise_directions *const d = object;
+    saved_equal(s, d->n);
+    saved_equal(s, d->directions);
+    saved_equal(s, (uint64_t)d->groups[0].lane[0].x.quantity);
+    saved_equal(s, (uint64_t)d->groups[0].at_samples);
+    pass_flag(s, &d->started);
+    pass_doubles(s, d->in.p_before, 2);
+    pass_doubles(s, d->in.p_last, 2);
     for (size_t g = 0; g < lane_groups(d->n); ++g) {
-        pass_number(s, way, &d->groups[g].stretches);
+        saved_size(s, &d->groups[g].stretches);
         for (size_t j = 0; j < d->groups[g].count; ++j)
-            pass_lane(s, way, &d->groups[g], j);
+            pass_lane(s, &d->groups[g], j);
     }
 }
 
-static const saved_kind kind = {SAVED_DIRECTIONS, 1, pass};
+static const saved_kind kind = {SAVED_DIRECTIONS, 1, pass_directions};
 
 size_t rampwise_directions_saved_size(const rampwise_directions *d)
 {
-    passage way = {(rampwise_directions *)(uintptr_t)d, 1, 0, 0};
-    return d != NULL ? rampwise_saved_size_(&kind, &way) : 0;
+    return rampwise_saved_size_(&kind, d);
 }
 
 int rampwise_directions_save(const rampwise_directions *d, void *bytes, size_t count)
 {
-    passage way = {(rampwise_directions *)(uintptr_t)d, 1, 0, 0};
-    if (d == NULL || bytes == NULL)
-        return RAMPWISE_ERROR_MISSING;
-    return rampwise_saved_write_(&kind, &way, bytes, count);
+    return rampwise_saved_write_(&kind, d, bytes, count);
 }
 
 /* A lane that had stopped stands still again. */
@@ -521,19 +484,8 @@ static void still_stopped(rampwise_directions *d)
 
 int rampwise_directions_resume(rampwise_directions *d, const void *bytes, size_t count)
 {
-    passage way = {d, 1, 0, 0};
-    saved s;
-    if (d == NULL || bytes == NULL)
-        return RAMPWISE_ERROR_MISSING;
-    const int status = rampwise_saved_open_(&kind, &way, bytes, count, &s);
-    if (status != RAMPWISE_OK)
-        return status;
-    saved first = s;
-    pass(&first, &way);
-    if (way.different || way.damaged)
-        return way.different ? RAMPWISE_ERROR_DIFFERENT : RAMPWISE_ERROR_DAMAGED;
-    way.look = 0;
-    pass(&s, &way);
-    still_stopped(d);
-    return RAMPWISE_OK;
+    const int status = rampwise_saved_resume_(&kind, d, bytes, count);
+    if (status == RAMPWISE_OK)
+        still_stopped(d);
+    return status;
 }

@@ -7,8 +7,8 @@
 #include "rampwise/status.h"
 #include "relative.h"
 
-/* Slacks: between samples, half of what is promised; of an ellipse at the samples, where points are in a line but for what
-   rounding does on the way to them; and of what only serves to pass by as much as possible. */
+/* Slacks: between samples, half of what is promised; of an ellipse at the samples, where points are in a line
+   but for what rounding does on the way to them; and of what only serves to pass by as much as possible. */
 #define BETWEEN 5e-7
 #define SLIM 1e-13
 #define COARSE 0.002
@@ -108,8 +108,8 @@ int rampwise_directions_group_start_(directions_group *g, const double p0[2])
     return RAMPWISE_OK;
 }
 
-/* Coefficients over the 2^-level part of a step: kept from a short piece on, else made into *scratch. NULL where there
-   are none. */
+/* Coefficients over the 2^-level part of a step: kept from a short piece on, else made into *scratch.
+   NULL where there are none. */
 static const rampwise_coeffs *over_part(directions_lane *l, int level, rampwise_coeffs *scratch)
 {
     const int kept = level - l->x.halvings;
@@ -127,11 +127,11 @@ static const rampwise_coeffs *over_part(directions_lane *l, int level, rampwise_
     return kept < 0 ? scratch : &l->part[kept];
 }
 
-/* Does the outline hold the curve from begin to end, a part of a step `length` long? Its second derivative z'' is a free
-   vibration, z''(t) = g(t) z''(0) + h(t) z'''(0), and with damping and stiffness not negative |g| <= 1 and |h| <= t, |h|
-   <= 1/sqrt(stiffness) (the energy of a free vibration does not grow). The curve is off its chord by at most t (length
-   - t)/2 of what z'' can be, so that it lies within the chord and the four points that are off its middle by
-   length^2/4 of that. */
+/* Does the outline hold the curve from begin to end, a part of a step `length` long? Its second derivative
+   z'' is a free vibration, z''(t) = g(t) z''(0) + h(t) z'''(0), and with damping and stiffness not negative
+   |g| <= 1 and |h| <= t, |h| <= 1/sqrt(stiffness) (the energy of a free vibration does not grow). The curve
+   is off its chord by at most t (length - t)/2 of what z'' can be, so that it lies within the chord and the
+   four points that are off its middle by length^2/4 of that. */
 static int holds_curve(directions_lane *l, double length, const relative begin[2], const relative end[2])
 {
     const extremes *const x = &l->x;
@@ -186,8 +186,8 @@ static int add_pieces(directions_lane *l, const relative begin[2])
     return RAMPWISE_OK;
 }
 
-/* In a long step of many cycles the extremes of one sign are convex in order, whatever the angle: only those near its
-   ends can count. */
+/* In a long step of many cycles the extremes of one sign are convex in order, whatever the angle: only
+   those near its ends can count. */
 static int add_inside(directions_lane *l, const rampwise_state s[2], const rampwise_state next[2])
 {
     const extremes *const x = &l->x;
@@ -279,8 +279,8 @@ static int stays_inside(const directions_group *g, size_t j, double largest, con
     return r.z + excess_of(l->excess[0], &r) <= e->size;
 }
 
-/* Does the outline hold all between two samples with this excess? It does where it holds them with a share of itself
-   to spare that holds an ellipse of the excess. */
+/* Does the outline hold all between two samples with this excess? It does where it holds them with a share of
+   itself to spare that holds an ellipse of the excess. */
 static int holds_way(directions_lane *l, const double from[4], const point end[2], reached *r)
 {
     r->z =
@@ -460,8 +460,8 @@ static void stop_lost(directions_group *g)
     }
 }
 
-/* Puts a stretch aside, and takes its last sample into the outline where that makes it much larger. The ellipse is then
-   made anew if the run is twice as long as at the last time. */
+/* Puts a stretch aside, and takes its last sample into the outline where that makes it much larger. The
+   ellipse is then made anew if the run is twice as long as at the last time. */
 static int put_aside(const kernels *k, directions_group *g, size_t j, const two_inputs *in,
                      const waiting_stretch *at)
 {

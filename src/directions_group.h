@@ -1,5 +1,5 @@
-/* Outlines of up to LANES oscillators under two inputs: what the object of directions.h has many of, and the everyday
-   form one at a time. */
+/* Outlines of up to LANES oscillators under two inputs: what the object of directions.h has many of, and the
+   everyday form one at a time. */
 #ifndef RAMPWISE_DIRECTIONS_GROUP_H
 #define RAMPWISE_DIRECTIONS_GROUP_H
 
@@ -10,8 +10,8 @@
 /* Halvings of a short piece (extremes.h) that are kept: 4^-16 of a curve's height is far below the slack. */
 enum { PARTS = 17 };
 
-/* Samples of a stretch, of which the kernels keep the farthest; stretches of a lane that are put aside until they must be
-   looked at: most are outdone before that. */
+/* Samples of a stretch, of which the kernels keep the farthest; stretches of a lane that are put aside until
+   they must be looked at: most are outdone before that. */
 enum { SPAN = 16, WAITING = 128 };
 
 typedef struct waiting_stretch {

@@ -3,18 +3,20 @@
 #include <math.h>
 #include <string.h>
 #include "rampwise/motion.h"
+#include "rampwise/peak.h"
 #include "rampwise/status.h"
 #include "energy_steps.h"
 #include "one_step.h"
+#include "spectrum_list.h"
 #include "valid.h"
 
 enum { BLOCK = 64 }; /* samples whose energies are at hand at once */
 
 /* ---- coefficients ---- */
 
-/* The integral over the step of (x - 1/2)^power/power! times the velocity in answer to an impulse, a constant load
-   or a ramp (which = 0, 1, 2); G lists g, G1, G2 and so on from place 1, each the integral of the one before it.
-   By parts. which = 3 is the displacement under a ramp. */
+/* The integral over the step of (x - 1/2)^power/power! times the velocity in answer to an impulse, a constant
+   load or a ramp (which = 0, 1, 2); G lists g, G1, G2 and so on from place 1, each the integral of the one
+   before it. By parts. which = 3 is the displacement under a ramp. */
 static twofold moment(const twofold *G, int which, int power)
 {
     const twofold *const first = &G[which + 1];
@@ -34,8 +36,8 @@ static twofold centred_moment(const twofold *G, int which, int power)
     return twofold_subtract(moment(G, which, power), twofold_times_power(moment(G, which - 1, power), -1));
 }
 
-/* The work of the load mean + change (x - 1/2) on the velocity, a form in its answers: the product of mean and
-   change appears twice with opposite signs, and what is left of it meets the spring's force alone. */
+/* The work of the load mean + change (x - 1/2) on the velocity, a form in its answers: the product of mean
+   and change appears twice with opposite signs, and what is left of it meets the spring's force alone. */
 static void work_of_load(rampwise_meter *meter, const step *s, const twofold *G)
 {
     const scaled for_force = scaled_multiply(s->h, s->h_over_m);
@@ -45,8 +47,9 @@ static void work_of_load(rampwise_meter *meter, const step *s, const twofold *G)
                 rounded(which == 0 ? s->h : for_force, centred_moment(G, which, power));
 }
 
-/* The work of the base: moments of the mass's acceleration times its mass, which is the force of damper and spring
-   with its sign changed. The spring's force at the beginning of the step, which does not change, is left out. */
+/* The work of the base: moments of the mass's acceleration times its mass, which is the force of
+   damper and spring with its sign changed. The spring's force at the beginning of the step, which
+   does not change, is left out. */
 static void work_of_base(rampwise_meter *meter, const step *s, const twofold *G)
 {
     const scaled for_velocity = scaled_double(-meter->coeffs.system.mass),
@@ -67,8 +70,8 @@ static twofold unless_negative(twofold a)
     return a.hi < 0 ? (twofold){0, 0} : a;
 }
 
-/* The integral of the squared velocity, a quadratic form in velocity, force and change of load, as a sum of squares
-   (the factors of Lagrange and Gauss): D1 (v + l f + m b)^2 + D2 (f + n b)^2 + D3 b^2. */
+/* The integral of the squared velocity, a quadratic form in velocity, force and change of load, as a sum of
+   squares (the factors of Lagrange and Gauss): D1 (v + l f + m b)^2 + D2 (f + n b)^2 + D3 b^2. */
 static void dissipation(rampwise_meter *meter, const step *s, const response *r, const integrals *more)
 {
     const twofold vf = twofold_times_power(twofold_multiply(r->g, r->g), -1);
@@ -247,22 +250,18 @@ int rampwise_energy_solve(const rampwise_coeffs *c, int frame, double u0, double
 /* ---- spectra ---- */
 
 typedef struct record {
-    size_t n;
-    double dt;
+    record_kind kind; /* whose quantity does not matter */
     const double *p;
-    int input, frame;
+    int frame;
 } record;
 
 /* Oscillator and meter, at rest under the first sample. */
 static int start_oscillator(const record *r, double omega, double zeta, rampwise_meter *meter,
                             rampwise_state *s)
 {
-    rampwise_system sys;
     rampwise_coeffs c;
     rampwise_start(s, 0, 0, r->p[0]);
-    int status = rampwise_system_natural(&sys, omega, zeta);
-    if (status == RAMPWISE_OK)
-        status = rampwise_coeffs_make(&c, &sys, r->dt, r->input, RAMPWISE_RAMP);
+    const int status = rampwise_record_oscillator_(&r->kind, omega, zeta, &c);
     return status == RAMPWISE_OK ? rampwise_meter_start(meter, &c, s, r->frame) : status;
 }
 
@@ -274,9 +273,9 @@ static void respond(const record *r, double omega, double zeta, rampwise_energy 
     energy_sums so_far = sums_of(&meter);
     *last = energies_at(&meter, &s, &so_far);
     *greatest = 0;
-    for (size_t done = 1, part; done < r->n; done += part) {
+    for (size_t done = 1, part; done < r->kind.n; done += part) {
         rampwise_energy energy[BLOCK];
-        part = r->n - done < BLOCK ? r->n - done : BLOCK;
+        part = r->kind.n - done < BLOCK ? r->kind.n - done : BLOCK;
         if (advance(&meter, &s, &so_far, part, r->p + done, energy) < part) {
             *last = (rampwise_energy){INFINITY, INFINITY, INFINITY, INFINITY};
             *greatest = INFINITY;
@@ -290,21 +289,17 @@ static void respond(const record *r, double omega, double zeta, rampwise_energy 
 
 static int check_record(const record *r, size_t *bad)
 {
-    if (r->n == 0)
-        return RAMPWISE_ERROR_COUNT;
-    if (!isfinite(r->dt) || r->dt <= 0)
-        return RAMPWISE_ERROR_INTERVAL;
-    if (r->input < RAMPWISE_FORCE || r->input > RAMPWISE_BASE_DISPLACEMENT)
-        return RAMPWISE_ERROR_INPUT;
-    const int status = check_frame(r->frame, r->input);
-    return status == RAMPWISE_OK ? check_samples(r->n, r->p, bad) : status;
+    int status = rampwise_record_kind_check_(&r->kind);
+    if (status == RAMPWISE_OK)
+        status = check_frame(r->frame, r->kind.input);
+    return status == RAMPWISE_OK ? check_samples(r->kind.n, r->p, bad) : status;
 }
 
 int rampwise_energy_spectrum(size_t n, double dt, const double *p, int input, int frame, size_t n_osc,
                              const double *omega, const double *zeta, rampwise_energy *last, double *greatest,
                              size_t *bad)
 {
-    const record r = {n, dt, p, input, frame};
+    const record r = {{n, dt, input, RAMPWISE_DISPLACEMENT}, p, frame};
     if (p == NULL || (n_osc > 0 && (omega == NULL || zeta == NULL)))
         return RAMPWISE_ERROR_MISSING;
     int status = check_record(&r, bad);

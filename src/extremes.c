@@ -53,9 +53,9 @@ static void in_piece(const extremes *x, relative r, double length, const place *
     }
 }
 
-/* A short piece is passed by where the slope z' keeps its sign: it does not turn, or turns where it is too large
-   to come to zero (z'' is nowhere twice its larger end). And where it changes its sign once, if z then rises over
-   its ends, or falls below them, by too little: less than a triangle of twice the height. */
+/* A short piece is passed by where the slope z' keeps its sign: it does not turn, or turns where it is too
+   large to come to zero (z'' is nowhere twice its larger end). And where it changes its sign once, if z then
+   rises over its ends, or falls below them, by too little: less than a triangle of twice the height. */
 static int passed_by(derivatives begin, derivatives end, double length, const rampwise_peak *peak)
 {
     const double a = fabs(begin.z1), b = fabs(end.z1);
@@ -90,8 +90,8 @@ static int sign_of(double x, double noise)
 }
 
 /* Where the roots are real, z'' has one zero at most in all: a part in which neither z' nor z'' changes its
-   sign is passed by. What is lost in rounding has no sign; a part that begins and ends so has died away. `depth`
-   halvings are left until a piece is short. */
+   sign is passed by. What is lost in rounding has no sign; a part that begins and ends so has died away.
+   `depth` halvings are left until a piece is short. */
 static void halve(const extremes *x, relative r, double length, place where, int depth, rampwise_peak *peak)
 {
     rampwise_coeffs whole, half;

@@ -26,8 +26,8 @@ typedef struct extremes {
 /* The bounds and what else needs no coefficients: enough for values at samples. */
 void rampwise_extremes_bound_(extremes *x, const rampwise_coeffs *c, int quantity);
 
-/* Of the excess over the first and last sample of so many steps instead, under loads on lines between samples; infinite
-   where the quantity has kinks at samples. */
+/* Of the excess over the first and last sample of so many steps instead, under loads on lines between
+   samples; infinite where the quantity has kinks at samples. */
 void rampwise_extremes_bound_steps_(extremes *x, size_t steps);
 
 /* All of it. Fails as rampwise_coeffs_make does. */
@@ -36,14 +36,14 @@ int rampwise_extremes_make_(extremes *x, const rampwise_coeffs *c, int quantity)
 /* The quantity at the sample that s has reached. */
 double rampwise_extremes_value_(const extremes *x, const rampwise_state *s);
 
-/* The quantity at the beginning of the step from s to p_next, at the end of the step to s, and at the beginning
-   of the free motion after s: where it jumps, other values than the sample's. */
+/* The quantity at the beginning of the step from s to p_next, at the end of the step to s, and at the
+   beginning of the free motion after s: where it jumps, other values than the sample's. */
 double rampwise_extremes_begin_(const extremes *x, const rampwise_state *s, double p_next);
 double rampwise_extremes_end_(const extremes *x, const rampwise_state *s);
 double rampwise_extremes_after_begin_(const extremes *x, const rampwise_state *s);
 
-/* Raises and lowers *peak by what lies inside the step from s, which is sample `sample`, to next. The ends are
-   the caller's. */
+/* Raises and lowers *peak by what lies inside the step from s, which is sample `sample`, to next.
+   The ends are the caller's. */
 void rampwise_extremes_inside_(const extremes *x, const rampwise_state *s, const rampwise_state *next,
                                uint64_t sample, rampwise_peak *peak);
 

@@ -2,40 +2,22 @@
 
 #include <math.h>
 #include <stddef.h>
+#include "complex_number.h"
 #include "rampwise/status.h"
-
-typedef struct complex_number {
-    double re, im;
-} complex_number;
-
-static complex_number sum(complex_number a, complex_number b)
-{
-    return (complex_number){a.re + b.re, a.im + b.im};
-}
-
-static complex_number times(complex_number a, complex_number b)
-{
-    return (complex_number){a.re * b.re - a.im * b.im, a.re * b.im + a.im * b.re};
-}
-
-static complex_number scaled(double factor, complex_number a)
-{
-    return (complex_number){factor * a.re, factor * a.im};
-}
 
 static complex_number quotient(complex_number a, complex_number b)
 {
     const double size = hypot(b.re, b.im);
     const complex_number unit = {b.re / size, -b.im / size};
-    return scaled(1 / size, times(a, unit));
+    return scaled(1 / size, product_of(a, unit));
 }
 
 /* The row over {u, v, 1, p - p_before}. */
 static complex_number output_of(const double row[4], complex_number u, complex_number v,
                                 complex_number change)
 {
-    const complex_number moved = sum(scaled(row[0], u), scaled(row[1], v));
-    return sum(moved, sum((complex_number){row[2], 0}, scaled(row[3], change)));
+    const complex_number moved = sum_of(scaled(row[0], u), scaled(row[1], v));
+    return sum_of(moved, sum_of((complex_number){row[2], 0}, scaled(row[3], change)));
 }
 
 /* z - 1 by the half angle, so that a slow tone keeps its digits beside A - 1 and B' - 1. */
@@ -45,11 +27,11 @@ static complex_number at_samples(const rampwise_coeffs *c, const double row[4], 
     const complex_number z_1 = {-2 * half_sine * half_sine, 2 * half_sine * half_cosine};
     const complex_number z = {1 + z_1.re, z_1.im};
     const complex_number z_A = {z_1.re - c->A_minus_1, z_1.im}, z_Bp = {z_1.re - c->Bp_minus_1, z_1.im};
-    const complex_number load_u = sum((complex_number){c->C, 0}, scaled(c->D, z));
-    const complex_number load_v = sum((complex_number){c->Cp, 0}, scaled(c->Dp, z));
-    const complex_number determinant = sum(times(z_A, z_Bp), (complex_number){-c->B * c->Ap, 0});
-    const complex_number u = quotient(sum(times(z_Bp, load_u), scaled(c->B, load_v)), determinant);
-    const complex_number v = quotient(sum(times(z_A, load_v), scaled(c->Ap, load_u)), determinant);
+    const complex_number load_u = sum_of((complex_number){c->C, 0}, scaled(c->D, z));
+    const complex_number load_v = sum_of((complex_number){c->Cp, 0}, scaled(c->Dp, z));
+    const complex_number determinant = sum_of(product_of(z_A, z_Bp), (complex_number){-c->B * c->Ap, 0});
+    const complex_number u = quotient(sum_of(product_of(z_Bp, load_u), scaled(c->B, load_v)), determinant);
+    const complex_number v = quotient(sum_of(product_of(z_A, load_v), scaled(c->Ap, load_u)), determinant);
     return output_of(row, u, v, quotient(z_1, z));
 }
 
@@ -65,7 +47,7 @@ static complex_number continuous_of(const rampwise_coeffs *c, const double row[4
         load = (complex_number){0, -s->mass * omega};
     else if (c->input == RAMPWISE_BASE_DISPLACEMENT)
         load = (complex_number){s->stiffness, s->damper * omega};
-    const complex_number u = quotient(load, stiffness), v = times((complex_number){0, omega}, u);
+    const complex_number u = quotient(load, stiffness), v = product_of((complex_number){0, omega}, u);
     return output_of(row, u, v, (complex_number){0, omega * c->dt});
 }
 

@@ -150,8 +150,8 @@ static void fill_mode(rampwise_modes *m, const rampwise_modes_plan *plan, size_t
     }
 }
 
-/* What accelerations take from the inputs. It cancels much of a direct weight, as 1 - sum of factor shape, so it
-   is summed in twofold arithmetic. */
+/* What accelerations take from the inputs. It cancels much of a direct weight, as 1 - sum of factor shape, so
+   it is summed in twofold arithmetic. */
 static void fill_direct(rampwise_modes *m, const rampwise_modes_plan *plan, size_t i, size_t o)
 {
     twofold sum = {weight_at(plan->on_input, i * m->outputs + o), 0};
@@ -531,99 +531,59 @@ int rampwise_modes_peaks(const rampwise_modes *modes, rampwise_peak *peak)
     return RAMPWISE_OK;
 }
 
-/* On the way through saved bytes. Reading goes through them twice: first to look, then to change. */
-typedef struct passage {
-    rampwise_modes *m;
-    int look, different, damaged;
-} passage;
+/* ---- saving ---- */
 
-static void pass_doubles(saved *s, passage *way, double *x, size_t n)
+static void pass_doubles(saved *s, double *x, size_t n)
 {
-    for (size_t i = 0; i < n; ++i) {
-        double value = x[i];
-        rampwise_saved_double_(s, &value);
-        way->damaged |= !isfinite(value);
-        if (s->from != NULL && !way->look)
-            x[i] = value;
+    for (size_t i = 0; i < n; ++i)
+        s->damaged |= !isfinite(rampwise_saved_double_(s, &x[i]));
+}
+
+static void pass_peak(saved *s, rampwise_peak *peak)
+{
+    rampwise_instant *const side[2] = {&peak->high, &peak->low};
+    for (int i = 0; i < 2; ++i) {
+        pass_doubles(s, &side[i]->value, 1);
+        rampwise_saved_uint64_(s, &side[i]->sample);
+        pass_doubles(s, &side[i]->fraction, 1);
     }
 }
 
-static void pass_uint64(saved *s, const passage *way, uint64_t *x)
+static void pass_modes(saved *s, void *object)
 {
-    uint64_t value = *x;
-    rampwise_saved_uint64_(s, &value);
-    if (s->from != NULL && !way->look)
-        *x = value;
-}
-
-static void pass_instant(saved *s, passage *way, rampwise_instant *x)
-{
-    pass_doubles(s, way, &x->value, 1);
-    pass_uint64(s, way, &x->sample);
-    pass_doubles(s, way, &x->fraction, 1);
-}
-
-static void pass(saved *s, void *object)
-{
-    passage *const way = object;
-    rampwise_modes *const m = way->m;
-    uint64_t plan = m->plan;
-    rampwise_saved_uint64_(s, &plan);
-    way->different = plan != m->plan;
-    pass_uint64(s, way, &m->sample);
-    pass_doubles(s, way, m->input, m->inputs);
-    pass_doubles(s, way, m->output, m->outputs);
+    rampwise_modes *const m = object;
+    saved_equal(s, m->plan);
+    rampwise_saved_uint64_(s, &m->sample);
+    pass_doubles(s, m->input, m->inputs);
+    pass_doubles(s, m->output, m->outputs);
     for (size_t j = 0; j < m->modes; ++j) {
-        pass_doubles(s, way, &m->group[j / LANES].lanes.u[j % LANES], 1);
-        pass_doubles(s, way, &m->group[j / LANES].lanes.v[j % LANES], 1);
+        pass_doubles(s, &m->group[j / LANES].lanes.u[j % LANES], 1);
+        pass_doubles(s, &m->group[j / LANES].lanes.v[j % LANES], 1);
     }
     rampwise_peak *const peak = m->peaks != NULL ? rampwise_modes_peak_(m) : NULL;
-    for (size_t o = 0; peak != NULL && o < m->outputs; ++o) {
-        pass_instant(s, way, &peak[o].high);
-        pass_instant(s, way, &peak[o].low);
-    }
+    for (size_t o = 0; peak != NULL && o < m->outputs; ++o)
+        pass_peak(s, &peak[o]);
     for (size_t i = 0; i < rampwise_equipment_count_(m); ++i) {
-        pass_doubles(s, way, rampwise_equipment_state_(m, i, 0), 1);
-        pass_doubles(s, way, rampwise_equipment_state_(m, i, 1), 1);
-        for (int q = 0; peak != NULL && q < 2; ++q) {
-            pass_instant(s, way, &rampwise_equipment_peak_(m, i, q)->high);
-            pass_instant(s, way, &rampwise_equipment_peak_(m, i, q)->low);
-        }
+        pass_doubles(s, rampwise_equipment_state_(m, i, 0), 1);
+        pass_doubles(s, rampwise_equipment_state_(m, i, 1), 1);
+        for (int q = 0; peak != NULL && q < 2; ++q)
+            pass_peak(s, rampwise_equipment_peak_(m, i, q));
     }
 }
 
-static const saved_kind kind = {SAVED_MODES, 1, pass};
+static const saved_kind kind = {SAVED_MODES, 1, pass_modes};
 
 size_t rampwise_modes_saved_size(const rampwise_modes *modes)
 {
-    passage way = {(rampwise_modes *)(uintptr_t)modes, 1, 0, 0};
-    return modes != NULL ? rampwise_saved_size_(&kind, &way) : 0;
+    return rampwise_saved_size_(&kind, modes);
 }
 
 int rampwise_modes_save(const rampwise_modes *modes, void *bytes, size_t count)
 {
-    passage way = {(rampwise_modes *)(uintptr_t)modes, 1, 0, 0};
-    if (modes == NULL || bytes == NULL)
-        return RAMPWISE_ERROR_MISSING;
-    return rampwise_saved_write_(&kind, &way, bytes, count);
+    return rampwise_saved_write_(&kind, modes, bytes, count);
 }
 
 int rampwise_modes_resume(rampwise_modes *modes, const void *bytes, size_t count)
 {
-    passage way = {modes, 1, 0, 0};
-    if (modes == NULL || bytes == NULL)
-        return RAMPWISE_ERROR_MISSING;
-    saved s;
-    const int status = rampwise_saved_open_(&kind, &way, bytes, count, &s);
-    if (status != RAMPWISE_OK)
-        return status;
-    saved first = s;
-    pass(&first, &way);
-    if (way.different)
-        return RAMPWISE_ERROR_DIFFERENT;
-    if (way.damaged)
-        return RAMPWISE_ERROR_DAMAGED;
-    way.look = 0;
-    pass(&s, &way);
-    return RAMPWISE_OK;
+    return rampwise_saved_resume_(&kind, modes, bytes, count);
 }

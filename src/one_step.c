@@ -139,10 +139,10 @@ static twofold doubled_load(const twofold *G, int n, twofold A)
     return twofold_times_power(sum, -n);
 }
 
-/* The squares over two steps: those over the first, and over the second with what the first leaves. An impulse
-   leaves the velocity B' and the force -K g, a constant load g and A, a ramp G1 and e = g + S G1, in units of
-   one step. The products of two velocities have the integrals g^2/2 (impulse and constant load), G1^2/2
-   (constant load and ramp), and g G1 - the constant's square (impulse and ramp). */
+/* The squares over two steps: those over the first, and over the second with what the first leaves. An
+   impulse leaves the velocity B' and the force -K g, a constant load g and A, a ramp G1 and e = g + S G1, in
+   units of one step. The products of two velocities have the integrals g^2/2 (impulse and constant load),
+   G1^2/2 (constant load and ramp), and g G1 - the constant's square (impulse and ramp). */
 static integrals doubled_integrals(const integrals *i, const response *r, twofold K, twofold S)
 {
     const twofold one = {1, 0};

@@ -64,8 +64,8 @@ static int is_from(const outline *o, size_t i, point p)
     return cross(o->corner[i], p) >= 0;
 }
 
-/* The last corner that comes before *p or at its angle, counterclockwise from the first one; *p becomes its own
-   opposite where it is on the other side. */
+/* The last corner that comes before *p or at its angle, counterclockwise from the first one; *p becomes its
+   own opposite where it is on the other side. */
 static ptrdiff_t sector_of(outline *o, point *p)
 {
     if (!is_from(o, 0, *p))
@@ -90,8 +90,8 @@ static ptrdiff_t sector_of(outline *o, point *p)
     return (ptrdiff_t)low;
 }
 
-/* Beyond the edge from begin to end, on its outer side as far as the rounding of points lets one see, and further
-   from it than `slack`, a share of the largest. */
+/* Beyond the edge from begin to end, on its outer side as far as the rounding of points lets one see, and
+   further from it than `slack`, a share of the largest. */
 static int is_beyond(const outline *o, point p, point begin, point end, double slack)
 {
     const point along = minus(end, begin), to = minus(p, begin);
@@ -185,8 +185,8 @@ static int grow(outline *o)
     return RAMPWISE_OK;
 }
 
-/* p in its sector becomes a corner; those beside it that do not stick out any more go. Where that is over the end of
-   the list, p becomes the first. */
+/* p in its sector becomes a corner; those beside it that do not stick out any more go. Where that is over the
+   end of the list, p becomes the first. */
 static void insert(outline *o, ptrdiff_t sector, point p)
 {
     const ptrdiff_t n = (ptrdiff_t)o->count;
@@ -269,7 +269,8 @@ static moments moments_of(const outline *o, point along, point across)
     return m;
 }
 
-/* The larger singular value's square of two by two numbers, by the sum of their squares and the determinant. */
+/* The larger singular value's square of two by two numbers, by the sum of their
+   squares and the determinant. */
 static double larger_square(double squares, double determinant)
 {
     const double twice = 2 * fabs(determinant);
@@ -297,11 +298,12 @@ void rampwise_outline_ellipse_(const outline *o, double slack, ellipse *e)
     rampwise_outline_inscribe_(o, slack, e);
 }
 
-/* The least over all edges of how far the edge, moved out by the slack, is from the origin, by how far the ellipse of
-   size 1 reaches in that direction. Between the directions of two edges that are no more than a right angle apart, S of
-   the ellipse is then beyond S of their corner by sqrt(2) of the slack at most. They are more apart only at the farthest
-   corner a (at another one, c, the sides to a and -a meet at a right angle or more, by Thales, as |c| <= |a|), and there
-   the line across a is between them, which an ellipse of half axes up to |a| does not pass. */
+/* The least over all edges of how far the edge, moved out by the slack, is from the origin, by how far the
+   ellipse of size 1 reaches in that direction. Between the directions of two edges that are no more than a
+   right angle apart, S of the ellipse is then beyond S of their corner by sqrt(2) of the slack at most. They
+   are more apart only at the farthest corner a (at another one, c, the sides to a and -a meet at a right
+   angle or more, by Thales, as |c| <= |a|), and there the line across a is between them, which an ellipse of
+   half axes up to |a| does not pass. */
 void rampwise_outline_inscribe_(const outline *o, double slack, ellipse *e)
 {
     if (e->length == 0)
@@ -382,8 +384,9 @@ static double turn(point from, point to)
     return atan2(cross(from, to), dot(from, to));
 }
 
-/* How far from the corner, towards one end of an arc where S is s, S is above the level; negative where the end is not
-   on the `side` of the corner that it should be, so that both sides together leave what is between the ends. */
+/* How far from the corner, towards one end of an arc where S is s, S is above the level; negative
+   where the end is not on the `side` of the corner that it should be, so that both sides together
+   leave what is between the ends. */
 static double angle_above(const arc *a, point end, double s, int side, double level, double *rate)
 {
     if (s >= level)
@@ -401,8 +404,8 @@ static double part_above(const arc *a, double level, double *rate)
            angle_above(a, a->end, a->s_end, after, level, rate);
 }
 
-/* The measure of the angles where S is above the level, and how fast that falls as the level rises. Whole arcs in a
-   row are one turn. */
+/* The measure of the angles where S is above the level, and how fast that falls as the level rises. Whole
+   arcs in a row are one turn. */
 static double angles_above(size_t count, const arc *arcs, double level, double *rate)
 {
     double sum = 0;
@@ -451,7 +454,8 @@ double rampwise_arcs_percentile_(size_t count, const arc *arcs, double percent)
     return level;
 }
 
-/* Each line is x cos phi + y sin phi = S(phi); neighbours meet in a corner, which is the farthest between them. */
+/* Each line is x cos phi + y sin phi = S(phi); neighbours meet in a corner, which is
+   the farthest between them. */
 size_t rampwise_outline_arcs_around_(const outline *o, arc *arcs)
 {
     if (o->count == 0)

@@ -1,5 +1,5 @@
-/* The outline of the points +-(x, y) of a motion: their convex hull, which is symmetric about the origin. Its support
-   function is S(phi), the largest |x cos phi + y sin phi|. */
+/* The outline of the points +-(x, y) of a motion: their convex hull, which is symmetric about the origin. Its
+   support function is S(phi), the largest |x cos phi + y sin phi|. */
 #ifndef RAMPWISE_OUTLINE_H
 #define RAMPWISE_OUTLINE_H
 
@@ -23,7 +23,8 @@ typedef struct outline {
     int thinned;
 } outline;
 
-/* The points p with (form[0] p)^2 + (form[1] p)^2 <= size^2: an ellipse. Cheap to ask, and most points pass. */
+/* The points p with (form[0] p)^2 + (form[1] p)^2 <= size^2: an ellipse. Cheap to
+   ask, and most points pass. */
 typedef struct ellipse {
     point form[2];
     double size;
@@ -40,23 +41,24 @@ int rampwise_outline_holds_(outline *o, point p, double slack);
 /* Takes a point in unless it is held. RAMPWISE_ERROR_MEMORY where there is no memory to grow. */
 int rampwise_outline_add_(outline *o, point p, double slack);
 
-/* An ellipse inside the outline, to `slack` of the largest; and its largest size after the outline has grown. S of the
-   ellipse exceeds S of the outline by sqrt(2) of the slack at most. */
+/* An ellipse inside the outline, to `slack` of the largest; and its largest size after the outline has grown.
+   S of the ellipse exceeds S of the outline by sqrt(2) of the slack at most. */
 void rampwise_outline_ellipse_(const outline *o, double slack, ellipse *e);
 void rampwise_outline_inscribe_(const outline *o, double slack, ellipse *e);
 
 /* How much larger, squared, an ellipse is in another's forms than in its own, at most. */
 double rampwise_ellipse_larger_(const ellipse *e, const ellipse *other);
 
-/* Directions, from begin to end counterclockwise (of any length), in which one corner is the farthest: there S(phi) =
-   size cos(phi - the corner's angle), s_begin and s_end at the ends. */
+/* Directions, from begin to end counterclockwise (of any length), in which one corner is the farthest: there
+   S(phi) = size cos(phi - the corner's angle), s_begin and s_end at the ends. */
 typedef struct arc {
     point corner, begin, end;
     double size, s_begin, s_end;
 } arc;
 
-/* The arcs of the corners, arcs[count], and those of the polygon whose sides touch the outline in its `directions`
-   directions, arcs[directions], which holds all that the outline has lost. They answer how many. */
+/* The arcs of the corners, arcs[count], and those of the polygon whose sides touch the
+   outline in its `directions` directions, arcs[directions], which holds all that the outline
+   has lost. They answer how many. */
 size_t rampwise_outline_arcs_(const outline *o, arc *arcs);
 size_t rampwise_outline_arcs_around_(const outline *o, arc *arcs);
 

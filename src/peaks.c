@@ -274,13 +274,6 @@ static void pass_shared(saved *s, shared *x)
     saved_doubles(s, x->ends.recent, END_SAMPLES);
 }
 
-static void pass_instant(saved *s, rampwise_instant *x)
-{
-    rampwise_saved_double_(s, &x->value);
-    rampwise_saved_uint64_(s, &x->sample);
-    rampwise_saved_double_(s, &x->fraction);
-}
-
 static void pass_candidate(saved *s, candidate *x)
 {
     double *const numbers[] = {&x->best, &x->most, &x->u, &x->v, &x->error_u, &x->error_v};
@@ -301,8 +294,7 @@ static void pass_lane(saved *s, group_lane *x)
     rampwise_saved_double_(s, &x->error_v);
     saved_int(s, &x->stopped);
     for (int q = 0; q < 3; ++q) {
-        pass_instant(s, &x->found[q].peak.high);
-        pass_instant(s, &x->found[q].peak.low);
+        saved_peak(s, &x->found[q].peak);
         rampwise_saved_double_(s, &x->found[q].evidence.error_high);
         rampwise_saved_double_(s, &x->found[q].evidence.error_low);
         pass_candidate(s, &x->high[q]);
@@ -326,13 +318,12 @@ static const saved_kind kind = {SAVED_PEAKS, 1, pass_peaks};
 
 size_t rampwise_peaks_saved_size(const rampwise_peaks *peaks)
 {
-    return peaks != NULL ? rampwise_saved_size_(&kind, peaks) : 0;
+    return rampwise_saved_size_(&kind, peaks);
 }
 
 int rampwise_peaks_save(const rampwise_peaks *peaks, void *bytes, size_t count)
 {
-    return peaks != NULL && bytes != NULL ? rampwise_saved_write_(&kind, peaks, bytes, count)
-                                          : RAMPWISE_ERROR_MISSING;
+    return rampwise_saved_write_(&kind, peaks, bytes, count);
 }
 
 static int candidate_is_right(const candidate *x)
@@ -388,8 +379,6 @@ static void read_group(saved *s, const rampwise_peaks *peaks, peaks_group *g)
 int rampwise_peaks_resume(rampwise_peaks *peaks, const void *bytes, size_t count)
 {
     saved s;
-    if (peaks == NULL || bytes == NULL)
-        return RAMPWISE_ERROR_MISSING;
     int status = rampwise_saved_open_(&kind, peaks, bytes, count, &s);
     if (status == RAMPWISE_OK)
         status = check_saved(s, peaks);

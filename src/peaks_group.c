@@ -100,8 +100,8 @@ static double in_range(double change)
     return change < DBL_MAX ? change : DBL_MAX;
 }
 
-/* The greatest sizes of one stretch's samples and changes, the sample before it among them: in four parts, which
-   do not wait for each other. */
+/* The greatest sizes of one stretch's samples and changes, the sample before it among them: in four parts,
+   which do not wait for each other. */
 static void bound_stretch(size_t n, double before, const double *p, double *largest_p, double *largest_change)
 {
     double size[4] = {fabs(before), 0, 0, 0}, change[4] = {fabs(p[0] - before), 0, 0, 0};
@@ -200,9 +200,9 @@ static void look_into_step(const extremes *x, int inside, const rampwise_state *
     note_value(peak, z_next, sample + 1, 0);
 }
 
-/* How much of the input's own error a quantity has at once, beside what the motion has: the factor of p in it where
-   the motion is held still. A ramp is off by 6 f (1 - f) d at the fraction f of a step, and so by d on average, which
-   is what d as the input has at the samples too. */
+/* How much of the input's own error a quantity has at once, beside what the motion has: the factor of p in it
+   where the motion is held still. A ramp is off by 6 f (1 - f) d at the fraction f of a step, and so by d on
+   average, which is what d as the input has at the samples too. */
 static double direct_share(const extremes *x)
 {
     const rampwise_system *const system = &x->c->system;

@@ -6,12 +6,12 @@
 #include "kernels/kernels.h"
 #include "rampwise/evidence.h"
 
-/* Samples of a stretch, whose greatest and least values the kernels keep; stretches of a segment, which is gone
-   through twice: all at lane speed, then those stretches that may hold a peak. */
+/* Samples of a stretch, whose greatest and least values the kernels keep; stretches of a segment, which is
+   gone through twice: all at lane speed, then those stretches that may hold a peak. */
 enum { STRETCH = 32, STRETCHES = 16, SEGMENT = STRETCH * STRETCHES };
 
-/* A stretch that may hold the peak of one side, put aside until it must be looked at: most are soon outdone by
-   so much that they never are. */
+/* A stretch that may hold the peak of one side, put aside until it must be looked at: most are soon outdone
+   by so much that they never are. */
 typedef struct candidate {
     double best, most; /* at its samples; what it can hold at most, with the excess between them */
     double u, v;       /* where it begins */
@@ -43,8 +43,8 @@ typedef struct peaks_group {
     int at_samples, with_evidence;
 } peaks_group;
 
-/* Where the input has come to. With evidence the oscillators stand one sample behind, at the last whose second
-   difference d is known: `next` was fed and is still to be stepped to. */
+/* Where the input has come to. With evidence the oscillators stand one sample behind, at the last whose
+   second difference d is known: `next` was fed and is still to be stepped to. */
 typedef struct input_end {
     uint64_t sample; /* of p */
     double p_before, p, d;
@@ -68,8 +68,8 @@ void rampwise_group_make_(peaks_group *g, size_t count, const rampwise_coeffs *c
 /* States s, or rest under p0 where s is NULL, at sample 0. */
 void rampwise_group_start_(peaks_group *g, const rampwise_state *s, double p0);
 
-/* The next n samples of an input that has come to `end`, for groups made with the flags `looks`; p[n] is read with
-   evidence. */
+/* The next n samples of an input that has come to `end`, for groups made with the flags `looks`;
+   p[n] is read with evidence. */
 void rampwise_segment_make_(segment *along, const input_end *end, size_t n, const double *p, unsigned looks);
 
 /* Moves *end to where the segment ends. */

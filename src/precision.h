@@ -1,5 +1,5 @@
-/* Names in the precision that a file is compiled for. A file that serves both precisions is compiled by itself
-   in double; its twin X_f32.c defines SINGLE_PRECISION and includes it. */
+/* Names in the precision that a file is compiled for. A file that serves both precisions is compiled by
+   itself in double; its twin X_f32.c defines SINGLE_PRECISION and includes it. */
 #ifndef RAMPWISE_PRECISION_H
 #define RAMPWISE_PRECISION_H
 

@@ -1,5 +1,5 @@
-/* Relative motion inside a step, where the input is a line: the state of it, its quantity with derivatives, and the
-   way from one instant to another. */
+/* Relative motion inside a step, where the input is a line: the state of it, its quantity with derivatives,
+   and the way from one instant to another. */
 #ifndef RAMPWISE_RELATIVE_H
 #define RAMPWISE_RELATIVE_H
 

@@ -1,4 +1,5 @@
-/* The motion inside a piece of a step as a power series, its slope's zeros and where it turns, in both precisions. */
+/* The motion inside a piece of a step as a power series, its slope's zeros and where
+   it turns, in both precisions. */
 #ifndef RAMPWISE_SERIES_H
 #define RAMPWISE_SERIES_H
 
@@ -15,8 +16,8 @@
 #endif
 
 /* z over a piece of length 1: z + sum of e[n] x^n, n = 1 to count. Above the second power the terms follow
-   z'''' + S z''' + K z'' = 0; they end where two in a row have fallen below 2^-60 of the first two. With |S| and
-   |K| up to 1 that is before 24. */
+   z'''' + S z''' + K z'' = 0; they end where two in a row have fallen below 2^-60 of the first two. With
+   |S| and |K| up to 1 that is before 24. */
 enum { TERMS = 24 };
 
 typedef struct series {
@@ -27,10 +28,13 @@ typedef struct series {
 /* clang-format off */
 static const real inverse_factorial[TERMS + 1] = {
     REAL_C(1.0), REAL_C(1.0), REAL_C(0.5), REAL_C(0.16666666666666666), REAL_C(0.041666666666666664),
-    REAL_C(0.008333333333333333), REAL_C(0.001388888888888889), REAL_C(0.0001984126984126984), REAL_C(2.48015873015873e-05), REAL_C(2.7557319223985893e-06),
-    REAL_C(2.755731922398589e-07), REAL_C(2.505210838544172e-08), REAL_C(2.08767569878681e-09), REAL_C(1.6059043836821613e-10), REAL_C(1.1470745597729725e-11),
-    REAL_C(7.647163731819816e-13), REAL_C(4.779477332387385e-14), REAL_C(2.8114572543455206e-15), REAL_C(1.5619206968586225e-16), REAL_C(8.22063524662433e-18),
-    REAL_C(4.110317623312165e-19), REAL_C(1.9572941063391263e-20), REAL_C(8.896791392450574e-22), REAL_C(3.8681701706306835e-23), REAL_C(1.6117375710961184e-24),
+    REAL_C(0.008333333333333333), REAL_C(0.001388888888888889), REAL_C(0.0001984126984126984),
+    REAL_C(2.48015873015873e-05), REAL_C(2.7557319223985893e-06), REAL_C(2.755731922398589e-07),
+    REAL_C(2.505210838544172e-08), REAL_C(2.08767569878681e-09), REAL_C(1.6059043836821613e-10),
+    REAL_C(1.1470745597729725e-11), REAL_C(7.647163731819816e-13), REAL_C(4.779477332387385e-14),
+    REAL_C(2.8114572543455206e-15), REAL_C(1.5619206968586225e-16), REAL_C(8.22063524662433e-18),
+    REAL_C(4.110317623312165e-19), REAL_C(1.9572941063391263e-20), REAL_C(8.896791392450574e-22),
+    REAL_C(3.8681701706306835e-23), REAL_C(1.6117375710961184e-24),
 };
 /* clang-format on */
 

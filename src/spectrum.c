@@ -39,8 +39,8 @@ static void respond(const record *r, peaks_group *g, input_end *end)
     end->next = r->p[r->kind.n - 1];
 }
 
-/* A stiff oscillator without limit: no relative motion, and the mass goes with its base, from rest and to rest. The
-   base's velocity alone does not tell its acceleration's error. */
+/* A stiff oscillator without limit: no relative motion, and the mass goes with its base, from rest and to
+   rest. The base's velocity alone does not tell its acceleration's error. */
 static findings follow_base(const record *r)
 {
     const int moves = r->kind.quantity == RAMPWISE_TOTAL_ACCELERATION && r->when != RAMPWISE_RESIDUAL;

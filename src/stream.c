@@ -632,20 +632,17 @@ int PUBLIC(interval_make)(real_interval *interval, const real_coeffs *c, uint64_
 
 size_t PUBLIC(stream_saved_size)(const real_stream *stream)
 {
-    return stream != NULL ? rampwise_saved_size_(&kind, stream) : 0;
+    return rampwise_saved_size_(&kind, stream);
 }
 
 int PUBLIC(stream_save)(const real_stream *stream, void *bytes, size_t count)
 {
-    return stream != NULL && bytes != NULL ? rampwise_saved_write_(&kind, stream, bytes, count)
-                                           : RAMPWISE_ERROR_MISSING;
+    return rampwise_saved_write_(&kind, stream, bytes, count);
 }
 
 int PUBLIC(stream_resume)(real_stream *stream, const void *bytes, size_t count)
 {
     saved s;
-    if (stream == NULL || bytes == NULL)
-        return RAMPWISE_ERROR_MISSING;
     int status = rampwise_saved_open_(&kind, stream, bytes, count, &s);
     if (status != RAMPWISE_OK)
         return status;

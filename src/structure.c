@@ -2,6 +2,7 @@
 
 #include <math.h>
 #include <string.h>
+#include "complex_number.h"
 #include "modes_core.h"
 #include "rampwise/status.h"
 #include "twofold.h"
@@ -59,45 +60,26 @@ int rampwise_mass_share(const rampwise_modes_plan *plan, const double *mass, dou
     return RAMPWISE_OK;
 }
 
-typedef struct number {
-    double re, im;
-} number;
-
-static number sum_of(number a, number b)
+static complex_number conjugate(complex_number a)
 {
-    return (number){a.re + b.re, a.im + b.im};
+    return (complex_number){a.re, -a.im};
 }
 
-static number product_of(number a, number b)
-{
-    return (number){a.re * b.re - a.im * b.im, a.re * b.im + a.im * b.re};
-}
-
-static number times_real(number a, double b)
-{
-    return (number){a.re * b, a.im * b};
-}
-
-static number conjugate(number a)
-{
-    return (number){a.re, -a.im};
-}
-
-static double size_of(number a)
+static double size_of(complex_number a)
 {
     const double larger = fmax(fabs(a.re), fabs(a.im)), smaller = fmin(fabs(a.re), fabs(a.im));
     return larger > 0 ? larger * sqrt(1 + smaller / larger * (smaller / larger)) : larger;
 }
 
-static number inverse_of(number a)
+static complex_number inverse_of(complex_number a)
 {
     const double size = size_of(a);
-    return (number){a.re / size / size, -a.im / size / size};
+    return (complex_number){a.re / size / size, -a.im / size / size};
 }
 
-static number at(const double *x, size_t i)
+static complex_number at(const double *x, size_t i)
 {
-    return (number){x[2 * i], x[2 * i + 1]};
+    return (complex_number){x[2 * i], x[2 * i + 1]};
 }
 
 static const double *shape_of(const rampwise_roots *r, size_t k)
@@ -106,16 +88,16 @@ static const double *shape_of(const rampwise_roots *r, size_t k)
 }
 
 /* shape' (2 root M + C) shape, and the sum of the sizes of its terms. */
-static number norm_of(const rampwise_roots *r, size_t k, double *size)
+static complex_number norm_of(const rampwise_roots *r, size_t k, double *size)
 {
-    const number root = at(r->root, k);
-    number sum = {0, 0};
+    const complex_number root = at(r->root, k);
+    complex_number sum = {0, 0};
     *size = 0;
     for (size_t i = 0; i < r->bodies; ++i)
         for (size_t j = 0; j < r->bodies; ++j) {
             const double mass = r->mass[i * r->bodies + j], damper = r->damper[i * r->bodies + j];
-            const number shapes = product_of(at(shape_of(r, k), i), at(shape_of(r, k), j));
-            const number term = {2 * root.re * mass + damper, 2 * root.im * mass};
+            const complex_number shapes = product_of(at(shape_of(r, k), i), at(shape_of(r, k), j));
+            const complex_number term = {2 * root.re * mass + damper, 2 * root.im * mass};
             sum = sum_of(sum, product_of(shapes, term));
             *size += size_of(shapes) * (2 * size_of(root) * fabs(mass) + fabs(damper));
         }
@@ -123,31 +105,32 @@ static number norm_of(const rampwise_roots *r, size_t k, double *size)
 }
 
 /* The weights of output o on the shape: (on_displacement + root on_velocity) shape. */
-static number output_of(const rampwise_roots *r, size_t k, size_t o)
+static complex_number output_of(const rampwise_roots *r, size_t k, size_t o)
 {
-    number sum = {0, 0};
+    complex_number sum = {0, 0};
     for (size_t i = 0; i < r->bodies; ++i) {
-        number weight = {0, 0};
+        complex_number weight = {0, 0};
         if (r->on_displacement != NULL)
             weight.re = r->on_displacement[o * r->bodies + i];
         if (r->on_velocity != NULL)
-            weight = sum_of(weight, times_real(at(r->root, k), r->on_velocity[o * r->bodies + i]));
+            weight = sum_of(weight, scaled(r->on_velocity[o * r->bodies + i], at(r->root, k)));
         sum = sum_of(sum, product_of(weight, at(shape_of(r, k), i)));
     }
     return sum;
 }
 
 /* shape' force / norm */
-static number load_of(const rampwise_roots *r, size_t k, size_t in)
+static complex_number load_of(const rampwise_roots *r, size_t k, size_t in)
 {
     double size;
-    number sum = {0, 0};
+    complex_number sum = {0, 0};
     for (size_t i = 0; i < r->bodies; ++i)
-        sum = sum_of(sum, times_real(at(shape_of(r, k), i), r->force[in * r->bodies + i]));
+        sum = sum_of(sum, scaled(r->force[in * r->bodies + i], at(shape_of(r, k), i)));
     return product_of(sum, inverse_of(norm_of(r, k, &size)));
 }
 
-/* How far the residues in the displacements, shape shape'/norm, of two real roots cancel: 0 all, 1 nothing. */
+/* How far the residues in the displacements, shape shape'/norm, of two real roots
+   cancel: 0 all, 1 nothing. */
 static double left_of(const rampwise_roots *r, size_t k, size_t l)
 {
     double size, kk = 0, kl = 0, ll = 0;
@@ -172,19 +155,20 @@ static int is_taken(const rampwise_system *pairs, size_t found, size_t k)
     return 0;
 }
 
-static double from_conjugate(number a, number b)
+static double from_conjugate(complex_number a, complex_number b)
 {
-    return size_of((number){a.re - b.re, a.im + b.im});
+    return size_of((complex_number){a.re - b.re, a.im + b.im});
 }
 
-/* The partner of root k: of those that are left the nearest to its conjugate, or the real one that cancels best. */
+/* The partner of root k: of those that are left the nearest to its conjugate, or the
+   real one that cancels best. */
 static size_t partner_of(const rampwise_roots *r, const rampwise_system *pairs, size_t found, size_t k)
 {
-    const number root = at(r->root, k);
+    const complex_number root = at(r->root, k);
     size_t best = k;
     double least = INFINITY;
     for (size_t l = 0; l < 2 * r->bodies; ++l) {
-        const number other = at(r->root, l);
+        const complex_number other = at(r->root, l);
         const int opposite = root.im != 0 ? other.im * root.im < 0 : other.im == 0;
         if (l == k || !opposite || is_taken(pairs, found, l))
             continue;
@@ -217,7 +201,8 @@ static void find_pairs(const rampwise_roots *r, rampwise_system *pairs)
 }
 
 /* (R + Q) s - (R b + Q a) of one output */
-static void put_weights(number R, number Q, number a, number b, double *on_displacement, double *on_velocity)
+static void put_weights(complex_number R, complex_number Q, complex_number a, complex_number b,
+                        double *on_displacement, double *on_velocity)
 {
     *on_velocity = R.re + Q.re;
     *on_displacement = -(product_of(R, b).re + product_of(Q, a).re);
@@ -227,30 +212,30 @@ static void put_weights(number R, number Q, number a, number b, double *on_displ
 static void put_one(const rampwise_roots *r, size_t k, size_t l, double *load, double *on_displacement,
                     double *on_velocity)
 {
-    const number a = at(r->root, k), b = at(r->root, l);
-    const number k_load = load_of(r, k, 0), l_load = a.im != 0 ? conjugate(k_load) : load_of(r, l, 0);
+    const complex_number a = at(r->root, k), b = at(r->root, l);
+    const complex_number k_load = load_of(r, k, 0), l_load = a.im != 0 ? conjugate(k_load) : load_of(r, l, 0);
     *load = 1;
     for (size_t o = 0; o < r->outputs; ++o) {
-        const number R = product_of(output_of(r, k, o), k_load);
-        const number Q = a.im != 0 ? conjugate(R) : product_of(output_of(r, l, o), l_load);
+        const complex_number R = product_of(output_of(r, k, o), k_load);
+        const complex_number Q = a.im != 0 ? conjugate(R) : product_of(output_of(r, l, o), l_load);
         put_weights(R, Q, a, b, on_displacement + o, on_velocity + o);
     }
 }
 
-/* As two, under several: for complex roots under the real and the imaginary parts of the loads, for real ones under
-   the loads of either. */
+/* As two, under several: for complex roots under the real and the imaginary parts of the loads, for real ones
+   under the loads of either. */
 static void put_two(const rampwise_roots *r, size_t k, size_t l, double *load, double *on_displacement,
                     double *on_velocity)
 {
-    const number a = at(r->root, k), b = at(r->root, l), none = {0, 0}, turn = {0, 1};
+    const complex_number a = at(r->root, k), b = at(r->root, l), none = {0, 0}, turn = {0, 1};
     const int complex_pair = a.im != 0;
     for (size_t i = 0; i < r->inputs; ++i) {
-        const number k_load = load_of(r, k, i);
+        const complex_number k_load = load_of(r, k, i);
         load[i] = k_load.re;
         load[r->inputs + i] = complex_pair ? k_load.im : load_of(r, l, i).re;
     }
     for (size_t o = 0; o < r->outputs; ++o) {
-        const number R = output_of(r, k, o), turned = product_of(turn, R);
+        const complex_number R = output_of(r, k, o), turned = product_of(turn, R);
         put_weights(R, complex_pair ? conjugate(R) : none, a, b, on_displacement + o, on_velocity + o);
         put_weights(complex_pair ? turned : none, complex_pair ? conjugate(turned) : output_of(r, l, o), a, b,
                     on_displacement + r->outputs + o, on_velocity + r->outputs + o);
@@ -262,7 +247,7 @@ static int are_paired(const rampwise_roots *r)
 {
     size_t above = 0, below = 0;
     for (size_t k = 0; k < 2 * r->bodies; ++k) {
-        const number root = at(r->root, k);
+        const complex_number root = at(r->root, k);
         int met = root.im == 0;
         for (size_t l = 0; l < 2 * r->bodies && !met; ++l)
             met = from_conjugate(root, at(r->root, l)) <= 1e-6 * size_of(root) &&
@@ -312,7 +297,7 @@ static int check_roots(const rampwise_roots *r)
     const double largest = largest_root(r);
     for (size_t k = 0; k < 2 * r->bodies; ++k) {
         double size;
-        const number norm = norm_of(r, k, &size);
+        const complex_number norm = norm_of(r, k, &size);
         if (!isfinite(size))
             return RAMPWISE_ERROR_WEIGHT;
         if (size_of(norm) <= 1e-6 * size)
@@ -347,7 +332,7 @@ int rampwise_roots_to_modes(const rampwise_roots *roots, rampwise_system *sys, d
     /* From the last on: the pairs are kept where the first oscillators will be. */
     for (size_t n = roots->bodies; n-- > 0;) {
         const size_t k = (size_t)sys[n].mass, l = (size_t)sys[n].damper, first = n * each;
-        const number a = at(roots->root, k), b = a.im != 0 ? conjugate(a) : at(roots->root, l);
+        const complex_number a = at(roots->root, k), b = a.im != 0 ? conjugate(a) : at(roots->root, l);
         (each == 1 ? put_one : put_two)(roots, k, l, load + first * roots->inputs,
                                         on_displacement + first * roots->outputs,
                                         on_velocity + first * roots->outputs);

@@ -44,8 +44,8 @@ static inline int check_samples(size_t n, const real *p, size_t *bad)
     return wrong < n ? blame(RAMPWISE_ERROR_SAMPLE, wrong, bad) : RAMPWISE_OK;
 }
 
-/* What the sampling has cost can be estimated where the input is on a line and its kinks do not make the response
-   jump. */
+/* What the sampling has cost can be estimated where the input is on a line and its kinks do
+   not make the response jump. */
 static inline int check_estimable(int input, int between)
 {
     if (between != RAMPWISE_RAMP)

@@ -162,8 +162,8 @@ static void note(real_peak *peak, real_instant at)
         peak->low = at;
 }
 
-/* Where the series meets `edge` between low and high, over which it is monotone: Newton's steps, halving where
-   one leaves the bracket, and every other time when eight have not ended it. */
+/* Where the series meets `edge` between low and high, over which it is monotone: Newton's steps, halving
+   where one leaves the bracket, and every other time when eight have not ended it. */
 static real meeting(const series *s, real low, real high, real edge, int rising)
 {
     real x = (low + high) / 2, second;
@@ -647,13 +647,6 @@ int PUBLIC(watch_counts)(const real_watch *watch, uint64_t *lost, uint64_t *rese
 
 /* ---- saving ---- */
 
-static void pass_instant(saved *s, real_instant *x)
-{
-    saved_real(s, &x->value);
-    rampwise_saved_uint64_(s, &x->sample);
-    saved_real(s, &x->fraction);
-}
-
 static void pass_level(saved *s, level_state *level)
 {
     saved_real(s, &level->enter);
@@ -683,10 +676,8 @@ static void pass_members(saved *s, real_watch *w)
     saved_real(s, &w->step_);
     saved_real(s, &w->now_);
     rampwise_saved_uint64_(s, &w->sample_);
-    pass_instant(s, &w->since_start_.high);
-    pass_instant(s, &w->since_start_.low);
-    pass_instant(s, &w->since_reset_.high);
-    pass_instant(s, &w->since_reset_.low);
+    saved_peak(s, &w->since_start_);
+    saved_peak(s, &w->since_reset_);
     saved_size(s, &w->high_.first);
     saved_size(s, &w->high_.count);
     saved_size(s, &w->low_.first);
@@ -718,9 +709,9 @@ static void pass_event(saved *s, rampwise_event *event)
 static void pass_arrays(saved *s, real_watch *w)
 {
     for (size_t i = 0; i < w->window_steps_; ++i) {
-        pass_instant(s, &w->high_.place[i].at);
+        saved_instant(s, &w->high_.place[i].at);
         rampwise_saved_uint64_(s, &w->high_.place[i].begin);
-        pass_instant(s, &w->low_.place[i].at);
+        saved_instant(s, &w->low_.place[i].at);
         rampwise_saved_uint64_(s, &w->low_.place[i].begin);
     }
     for (size_t i = 0; i < w->event_capacity_; ++i)
@@ -748,13 +739,12 @@ void rampwise_watch_options_init(rampwise_watch_options *options)
 
 size_t PUBLIC(watch_saved_size)(const real_watch *watch)
 {
-    return watch != NULL ? rampwise_saved_size_(&kind, watch) : 0;
+    return rampwise_saved_size_(&kind, watch);
 }
 
 int PUBLIC(watch_save)(const real_watch *watch, void *bytes, size_t count)
 {
-    return watch != NULL && bytes != NULL ? rampwise_saved_write_(&kind, watch, bytes, count)
-                                          : RAMPWISE_ERROR_MISSING;
+    return rampwise_saved_write_(&kind, watch, bytes, count);
 }
 
 static int queue_is_right(const queue *q, size_t capacity)
@@ -775,8 +765,6 @@ static int may_become(const real_watch *read, const real_watch *watch)
 int PUBLIC(watch_resume)(real_watch *watch, const void *bytes, size_t count)
 {
     saved s;
-    if (watch == NULL || bytes == NULL)
-        return RAMPWISE_ERROR_MISSING;
     const int status = rampwise_saved_open_(&kind, watch, bytes, count, &s);
     if (status != RAMPWISE_OK)
         return status;

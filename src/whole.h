@@ -1,5 +1,5 @@
-/* Whole numbers of 64 bits from and to the precision of a file, in single precision too without double arithmetic, by
-   which compilers do it where there is no instruction for it. */
+/* Whole numbers of 64 bits from and to the precision of a file, in single precision too without double
+   arithmetic, by which compilers do it where there is no instruction for it. */
 #ifndef RAMPWISE_WHOLE_H
 #define RAMPWISE_WHOLE_H
 

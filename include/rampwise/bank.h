@@ -82,10 +82,9 @@ typedef struct rampwise_bank_wanted {
 RAMPWISE_API void rampwise_bank_wanted_init(rampwise_bank_wanted *wanted);
 
 /* The next n samples, one step each, for all; n = 1 is a live step. wanted may be NULL.
-   RAMPWISE_ERROR_MISSING, _SAMPLE (with the index in bad), _COUNT (a chosen number is N or more, or wanted was
-   not begun with its init):
-   nothing has changed. RAMPWISE_ERROR_OVERFLOW: an oscillator was stopped or a history ended during
-   this call, the earliest at sample bad; all others are complete. bad may be NULL. */
+   RAMPWISE_ERROR_MISSING, _SAMPLE (with the index in bad), _COUNT (a chosen number is N or more, or wanted
+   was not begun with its init): nothing has changed. RAMPWISE_ERROR_OVERFLOW: an oscillator was stopped or a
+   history ended during this call, the earliest at sample bad; all others are complete. bad may be NULL. */
 RAMPWISE_API int rampwise_bank_run(rampwise_bank *bank, size_t n, const double *p,
                                    const rampwise_bank_wanted *wanted, size_t *bad);
 
@@ -96,9 +95,9 @@ RAMPWISE_API size_t rampwise_bank_stopped(const rampwise_bank *bank, size_t *fir
    where wanted. Accelerations of a stopped oscillator are NaN. RAMPWISE_ERROR_MISSING. */
 RAMPWISE_API int rampwise_bank_read(const rampwise_bank *bank, const rampwise_history *now);
 
-/* All of a bank as bytes, coefficients and states; resumed, it goes on with the same bits, on any machine and set of
-   instructions. Resumed into a bank of as many oscillators, of any kind: everything is replaced. The bytes and the
-   errors are those of rampwise_stream_save and rampwise_stream_resume (stream.h). */
+/* All of a bank as bytes, coefficients and states; resumed, it goes on with the same bits, on any machine and
+   set of instructions. Resumed into a bank of as many oscillators, of any kind: everything is replaced. The
+   bytes and the errors are those of rampwise_stream_save and rampwise_stream_resume (stream.h). */
 RAMPWISE_API size_t rampwise_bank_saved_size(const rampwise_bank *bank);
 RAMPWISE_API int rampwise_bank_save(const rampwise_bank *bank, void *bytes, size_t count);
 RAMPWISE_API int rampwise_bank_resume(rampwise_bank *bank, const void *bytes, size_t count);

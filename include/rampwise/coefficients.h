@@ -103,10 +103,10 @@ RAMPWISE_API int rampwise_coeffs_make(rampwise_coeffs *c, const rampwise_system 
                                       int between);
 
 /* The same for single precision. Every member is the float nearest to the exact value for sys and dt as they
-   are given, rounded once (subnormal floats included); only where a free motion has decayed within the step may
-   it be off, by 2^-100 of its largest value over steps of length 0 to h. RAMPWISE_ERROR_COEFFICIENT also where
-   a member is larger than a float can hold. This is double arithmetic; where that is dear, let a host make
-   constants (tools/coefficients_as_source). Since 0.1. */
+   are given, rounded once (subnormal floats included); only where a free motion has decayed within the step
+   may it be off, by 2^-100 of its largest value over steps of length 0 to h. RAMPWISE_ERROR_COEFFICIENT also
+   where a member is larger than a float can hold. This is double arithmetic; where that is dear, let a host
+   make constants (tools/coefficients_as_source). Since 0.1. */
 RAMPWISE_API int rampwise_coeffs_make_f32(rampwise_coeffs_f32 *c, const rampwise_system *sys, double dt,
                                           int input, int between);
 

@@ -1,9 +1,9 @@
 /* rampwise/peaks.h: the largest responses of many oscillators under one input, fed in chunks.
 
    The engine of response spectra, for records of any length: memory, 2.6 KB an oscillator, does not grow with
-   the record, and a caller may stop, look and go on between chunks. Values are those of motion.h: between the samples they are
-   the true extremes of the exact response, at the samples they have the bits of rampwise_run. Where a
-   quantity jumps at a sample, both values count.
+   the record, and a caller may stop, look and go on between chunks. Values are those of motion.h: between the
+   samples they are the true extremes of the exact response, at the samples they have the bits of
+   rampwise_run. Where a quantity jumps at a sample, both values count.
 
    How. Inside a step the response is a line plus a free vibration (with the input on a line), so its second
    derivative is a free vibration too and its slope is monotone between the zeros of that; each zero of the
@@ -63,8 +63,8 @@ RAMPWISE_API int rampwise_peaks_run(rampwise_peaks *peaks, size_t n, const doubl
 /* The peaks so far, peak[n], of one of the object's quantities: flags is 0 (primary: from sample 0 to the
    last; with RAMPWISE_HOLD the last sample acts for one more dt), RAMPWISE_RESIDUAL (the free motion from
    there on, without limit of time: force and base acceleration are zero at once, the base then keeps its
-   velocity or place; under RAMPWISE_AT_SAMPLES too it is looked at everywhere), or RAMPWISE_MAXIMAX. The object
-   goes on unchanged. RAMPWISE_ERROR_MISSING, _QUANTITY, _FLAGS, _COUNT (nothing was fed yet). */
+   velocity or place; under RAMPWISE_AT_SAMPLES too it is looked at everywhere), or RAMPWISE_MAXIMAX. The
+   object goes on unchanged. RAMPWISE_ERROR_MISSING, _QUANTITY, _FLAGS, _COUNT (nothing was fed yet). */
 RAMPWISE_API int rampwise_peaks_get(const rampwise_peaks *peaks, int quantity, unsigned flags,
                                     rampwise_peak *peak);
 
@@ -73,9 +73,10 @@ RAMPWISE_API int rampwise_peaks_get(const rampwise_peaks *peaks, int quantity, u
 RAMPWISE_API int rampwise_peaks_evidence(const rampwise_peaks *peaks, int quantity, unsigned flags,
                                          rampwise_evidence *evidence);
 
-/* All of it as bytes; resumed, it goes on to the same peaks, on any machine and set of instructions. Resumed into an
-   object of as many oscillators for the same quantities and flags (RAMPWISE_ERROR_DIFFERENT); coefficients are
-   replaced. The bytes and the other errors are those of rampwise_stream_save and rampwise_stream_resume (stream.h). */
+/* All of it as bytes; resumed, it goes on to the same peaks, on any machine and set of instructions. Resumed
+   into an object of as many oscillators for the same quantities and flags (RAMPWISE_ERROR_DIFFERENT);
+   coefficients are replaced. The bytes and the other errors are those of rampwise_stream_save and
+   rampwise_stream_resume (stream.h). */
 RAMPWISE_API size_t rampwise_peaks_saved_size(const rampwise_peaks *peaks);
 RAMPWISE_API int rampwise_peaks_save(const rampwise_peaks *peaks, void *bytes, size_t count);
 RAMPWISE_API int rampwise_peaks_resume(rampwise_peaks *peaks, const void *bytes, size_t count);

@@ -22,21 +22,21 @@ RAMPWISE_BEGIN
             RAMPWISE_MAXIMAX: both times.
 
    An oscillator that overflows has an infinite peak (peaks.h). Residuals are looked at everywhere, also with
-   RAMPWISE_AT_SAMPLES. For several quantities in one pass, several kinds of start, held inputs, and records that
-   come in chunks: peaks.h.
+   RAMPWISE_AT_SAMPLES. For several quantities in one pass, several kinds of start, held inputs, and records
+   that come in chunks: peaks.h.
 
    RAMPWISE_ERROR_MISSING, _COUNT (n is 0), _INTERVAL, _INPUT, _QUANTITY, _FLAGS; _SAMPLE, with the sample's
-   index in bad; _FREQUENCY, _DAMPER, or another of rampwise_coeffs_make, with the oscillator's index in this call's
-   list. Nothing is written then. bad may be NULL.
+   index in bad; _FREQUENCY, _DAMPER, or another of rampwise_coeffs_make, with the oscillator's index in this
+   call's list. Nothing is written then. bad may be NULL.
    Threads: split the list of oscillators. Work: n n_osc steps at lane speed (peaks.h), so that lists are best
    handed over by 32 or more at a time; no allocation, 140 KiB of stack. */
 RAMPWISE_API int rampwise_spectrum(size_t n, double dt, const double *p, int input, size_t n_osc,
                                    const double *omega, const double *zeta, int quantity, unsigned flags,
                                    rampwise_peak *peak, size_t *bad);
 
-/* The same with evidence[n_osc] of what the sampling has cost (evidence.h), for force, base acceleration and base
-   velocity: RAMPWISE_ERROR_INPUT for base displacement, whose kinks make the response jump. Half as much
-   work again. */
+/* The same with evidence[n_osc] of what the sampling has cost (evidence.h), for force, base
+   acceleration and base velocity: RAMPWISE_ERROR_INPUT for base displacement, whose kinks make the
+   response jump. Half as much work again. */
 RAMPWISE_API int rampwise_spectrum_evidence(size_t n, double dt, const double *p, int input, size_t n_osc,
                                             const double *omega, const double *zeta, int quantity,
                                             unsigned flags, rampwise_peak *peak, rampwise_evidence *evidence,
@@ -51,8 +51,9 @@ RAMPWISE_API double rampwise_pseudo_acceleration(double omega, const rampwise_pe
 RAMPWISE_API double rampwise_dynamic_load_factor(const rampwise_system *sys,
                                                  const rampwise_peak *displacement, double p0);
 
-/* n values from first to last, both above 0 and either the larger, at equal ratios, list[n]: periods or frequencies
-   of a spectrum; n = 1 gives first. The ends are exact; those between are as good as the platform's pow. RAMPWISE_ERROR_MISSING, _FREQUENCY. */
+/* n values from first to last, both above 0 and either the larger, at equal ratios, list[n]: periods or
+   frequencies of a spectrum; n = 1 gives first. The ends are exact; those between are as good as the
+   platform's pow. RAMPWISE_ERROR_MISSING, _FREQUENCY. */
 RAMPWISE_API int rampwise_list_log(size_t n, double first, double last, double *list);
 
 /* The same with `per_octave` values to each doubling, from first upwards, last included if it is met (within

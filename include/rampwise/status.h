@@ -18,7 +18,7 @@ enum {
     RAMPWISE_ERROR_MISSING = -10,      /* a pointer that is needed is NULL */
     RAMPWISE_ERROR_INPUT = -12,        /* not a kind of input, or two arguments were swapped */
     RAMPWISE_ERROR_BETWEEN = -14,      /* not RAMPWISE_RAMP or RAMPWISE_HOLD, or two were swapped */
-    RAMPWISE_ERROR_IMPULSES = -16,     /* an input that would be made of impulses (coefficients.h, energy.h) */
+    RAMPWISE_ERROR_IMPULSES = -16,     /* an input would be made of impulses (coefficients.h, energy.h) */
     RAMPWISE_ERROR_FRAME = -17,        /* not RAMPWISE_RELATIVE or RAMPWISE_ABSOLUTE */
     RAMPWISE_ERROR_NOT_MADE = -18,     /* coefficients that rampwise_coeffs_make has not filled */
     RAMPWISE_ERROR_DIFFERENT = -20,    /* what oscillators must share differs */

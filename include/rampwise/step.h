@@ -24,9 +24,9 @@ typedef struct rampwise_state {
     double u, v, p, p_before;
 } rampwise_state;
 
-/* The same in single precision. u_low, v_low: what u and v had no room for when they were last rounded, so that
-   u + u_low and v + v_low are the better values (of the order of half an ulp of u and v; 0 at a start). A state
-   taken over by u, v, p and p_before alone, low words 0, is a good one too. Public, frozen. */
+/* The same in single precision. u_low, v_low: what u and v had no room for when they were last rounded, so
+   that u + u_low and v + v_low are the better values (of the order of half an ulp of u and v; 0 at a start).
+   A state taken over by u, v, p and p_before alone, low words 0, is a good one too. Public, frozen. */
 typedef struct rampwise_state_f32 {
     float u, v, p, p_before, u_low, v_low;
 } rampwise_state_f32;
@@ -148,8 +148,8 @@ static inline void rampwise_step(const rampwise_coeffs *c, rampwise_state *s, do
 #endif
 }
 
-/* Keeps a float rounded, and the compiler from seeing through it: -fassociative-math alone cannot be told from
-   the preprocessor, and would find the compensation below to be zero. Computes nothing. */
+/* Keeps a float rounded, and the compiler from seeing through it: -fassociative-math alone cannot be told
+   from the preprocessor, and would find the compensation below to be zero. Computes nothing. */
 #if defined(__GNUC__) && defined(__SSE2__)
 #define RAMPWISE_ROUNDED_(x) __asm__("" : "+x"(x))
 #elif defined(__GNUC__) && defined(__aarch64__)
@@ -163,8 +163,9 @@ static inline void rampwise_step(const rampwise_coeffs *c, rampwise_state *s, do
 #endif
 
 /* x, x_low and the change of x + x_low over a step: what the sum x + change loses is the new low word (T. J.
-   Dekker, Numer. Math. 18, 224-242, 1971; compensated summation after W. Kahan, Comm. ACM 8(1), 40, 1965). Where
-   the change is larger than x it is lost to half an ulp of the change, the size of the change's own rounding. */
+   Dekker, Numer. Math. 18, 224-242, 1971; compensated summation after W. Kahan, Comm. ACM 8(1),
+   40, 1965). Where the change is larger than x it is lost to half an ulp of the change, the size
+   of the change's own rounding. */
 static inline void rampwise_carry_f32_(float *x, float *x_low, float change)
 {
     float sum, gained;
@@ -221,8 +222,8 @@ static inline void rampwise_unless_spent_f32_(rampwise_state_f32 *s, int silent)
    Error against the exact response in units of its largest value, at every one of 2,000,000 samples of random
    load, w dt from 1e-6 to 3: 1e-7/zeta for zeta from 0.5 to 5 %, most of which is the rounding of the
    coefficients, a shift of frequency by some 1e-8 of itself; 1e-6 against exact arithmetic with the rounded
-   coefficients. Under a sine at resonance for ever the latter may reach 2e-6 for zeta = 0.5 % and w dt above 0.3.
-   rampwise_run_f32 is the exported twin, as for rampwise_step. Since 0.1. */
+   coefficients. Under a sine at resonance for ever the latter may reach 2e-6 for zeta = 0.5 % and w dt above
+   0.3. rampwise_run_f32 is the exported twin, as for rampwise_step. Since 0.1. */
 static inline void rampwise_step_f32(const rampwise_coeffs_f32 *c, rampwise_state_f32 *s, float p_next)
 {
 #ifdef RAMPWISE_STEP_BY_CALL

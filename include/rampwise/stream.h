@@ -1,17 +1,17 @@
 /* rampwise/stream.h: one oscillator on live data.
 
-   A stream takes samples as they come, one or a block at a time, in the caller's memory, and keeps what a live
-   signal needs beside the step: raw integers with scale and offset, rails, time stamps that jitter, samples
-   that are missing, a start by the first sample, outputs by name, watches (watch.h), saving.
+   A stream takes samples as they come, one or a block at a time, in the caller's memory, and keeps what a
+   live signal needs beside the step: raw integers with scale and offset, rails, time stamps that jitter,
+   samples that are missing, a start by the first sample, outputs by name, watches (watch.h), saving.
 
    - Samples are numbered from 0, or from what rampwise_stream_start says; missing ones have numbers too. At a
      fixed rate a stream has the bits of rampwise_run on the same samples, however they are cut into blocks.
    - Stamps are whole numbers of a tick, `ticks` of which make one dt: for nanoseconds and dt = 0.005 s, ticks
-     is 5,000,000. A step is as long as its two stamps say. Steps of exactly one dt have the fixed rate's bits;
-     others are dt d / ticks long for stamps d apart, rounded once, and have the bits of rampwise_run_at where
-     that sees the same intervals (outputs that contain p - p_before: up to the last digits).
-   - A sample is missing where it is NaN or infinite, where a raw one is missing_raw, where stamps are one and a
-     half dt apart or more (as many as fit, rounded), and where rampwise_stream_skip_to says so.
+     is 5,000,000. A step is as long as its two stamps say. Steps of exactly one dt have the fixed rate's
+     bits; others are dt d / ticks long for stamps d apart, rounded once, and have the bits of rampwise_run_at
+     where that sees the same intervals (outputs that contain p - p_before: up to the last digits).
+   - A sample is missing where it is NaN or infinite, where a raw one is missing_raw, where stamps are one and
+     a half dt apart or more (as many as fit, rounded), and where rampwise_stream_skip_to says so.
      RAMPWISE_GAP_BRIDGE: nothing happens until the next good sample, then one exact step over all of them
      under one straight (or held) load. A block's outputs and reads give the values of the last good sample.
      RAMPWISE_GAP_HOLD: each missing sample is a step under the last good load; outputs are that response.
@@ -25,9 +25,9 @@
    Errors: a call that reports one has changed nothing, but for RAMPWISE_ERROR_OVERFLOW, as in record.h: the
    samples before `bad` were taken, and the state is the last finite one.
 
-   Work a sample: at a fixed rate one step, 3 fused multiply-adds an output, the watches' work, and beside theirs
-   nothing that depends on the data. An interval of another length is looked for in the last one, then in the
-   caller's prepared table (one comparison an entry), and else costs one making of coefficients
+   Work a sample: at a fixed rate one step, 3 fused multiply-adds an output, the watches' work, and beside
+   theirs nothing that depends on the data. An interval of another length is looked for in the last one, then
+   in the caller's prepared table (one comparison an entry), and else costs one making of coefficients
    (coefficients.h). With RAMPWISE_GAP_HOLD a jump over k missing samples takes the smaller of k and `longest`
    steps. After a stream is made: no allocation, lock, system call or unbounded loop; the floating-point
    environment stays. Silence costs no more than sound (step.h).
@@ -52,7 +52,8 @@ enum {
 };
 
 /* Coefficients for one length of interval, prepared where making them takes too long. Filled by
-   rampwise_interval_make only, here or on a host that prints it as a constant (tools/coefficients_as_source). */
+   rampwise_interval_make only, here or on a host that prints it as a constant
+   (tools/coefficients_as_source). */
 typedef struct rampwise_interval {
     uint64_t ticks;
     rampwise_coeffs c;
@@ -67,8 +68,8 @@ typedef struct rampwise_stream_options {
     int32_t missing_raw; /* the raw integer that is no sample: INT32_MIN */
     uint64_t longest;    /* samples in a row that may be missing: 10 */
     uint64_t ticks;      /* ticks in one dt: 1 */
-    /* A raw integer is offset + scale raw, rounded once (both are rounded to single precision first there, and
-       raw integers above 2^24 too): 1 and 0. */
+    /* A raw integer is offset + scale raw, rounded once (both are rounded to single precision first there,
+       and raw integers above 2^24 too): 1 and 0. */
     double scale, offset;
     /* A sample at or beyond a rail, as it is put in (raw ones before scale and offset), is clipped: -INFINITY
        and INFINITY. */
@@ -161,10 +162,10 @@ RAMPWISE_API int rampwise_interval_make(rampwise_interval *interval, const rampw
 
 /* A stream under coefficients c, copied, that waits for its first sample, number 0.
    RAMPWISE_ERROR_MISSING, _NOT_MADE; _COUNT (options not begun with their init, output_count, or ticks 0 or
-   (longest + 1) ticks above 2^52); _FLAGS (start, missing, beyond or numbered); _QUANTITY, _COEFFICIENT (output.h);
-   _SAMPLE (scale, offset or a rail is NaN, or infinite where it must not be); _NO_REST (settled, and there is
-   no rest); _DIFFERENT (a prepared interval of another oscillator); or one of rampwise_coeffs_make for the
-   longest bridge, 2 (longest + 1) dt. */
+   (longest + 1) ticks above 2^52); _FLAGS (start, missing, beyond or numbered); _QUANTITY, _COEFFICIENT
+   (output.h); _SAMPLE (scale, offset or a rail is NaN, or infinite where it must not be); _NO_REST (settled,
+   and there is no rest); _DIFFERENT (a prepared interval of another oscillator); or one of
+   rampwise_coeffs_make for the longest bridge, 2 (longest + 1) dt. */
 RAMPWISE_API int rampwise_stream_init(rampwise_stream *stream, const rampwise_coeffs *c,
                                       const rampwise_stream_options *options);
 
@@ -195,8 +196,9 @@ RAMPWISE_API int rampwise_stream_put_raw_at(rampwise_stream *stream, size_t n, c
    RAMPWISE_ERROR_MISSING; _TIME (it lies before the expected one); _GAP (RAMPWISE_GAP_REFUSE); _OVERFLOW. */
 RAMPWISE_API int rampwise_stream_skip_to(rampwise_stream *stream, uint64_t number);
 
-/* The outputs as they stand, out[output_count], and their flags: either may be NULL. While samples are missing
-   those of the last good one, or the held load's. RAMPWISE_ERROR_MISSING; _COUNT (no good sample yet). */
+/* The outputs as they stand, out[output_count], and their flags: either may be NULL. While
+   samples are missing those of the last good one, or the held load's. RAMPWISE_ERROR_MISSING;
+   _COUNT (no good sample yet). */
 RAMPWISE_API int rampwise_stream_read(const rampwise_stream *stream, double *out, uint8_t *flags);
 
 /* The state and its sample's number (either may be NULL). RAMPWISE_ERROR_MISSING, _COUNT. */
@@ -204,28 +206,29 @@ RAMPWISE_API int rampwise_stream_state(const rampwise_stream *stream, rampwise_s
 
 RAMPWISE_API int rampwise_stream_count(const rampwise_stream *stream, rampwise_stream_counts *counts);
 
-/* Other coefficients of the same dt, input and between, from the next step on: displacement and velocity stay,
-   named outputs follow, and so do the watches. intervals and interval_count replace the prepared ones.
-   RAMPWISE_ERROR_MISSING, _NOT_MADE, _DIFFERENT, or others of rampwise_stream_init and rampwise_watch_init. */
+/* Other coefficients of the same dt, input and between, from the next step on: displacement and
+   velocity stay, named outputs follow, and so do the watches. intervals and interval_count replace
+   the prepared ones. RAMPWISE_ERROR_MISSING, _NOT_MADE, _DIFFERENT, or others of
+   rampwise_stream_init and rampwise_watch_init. */
 RAMPWISE_API int rampwise_stream_retune(rampwise_stream *stream, const rampwise_coeffs *c,
                                         const rampwise_interval *intervals, size_t interval_count);
 
-/* The watch is told every step from here on; it begins at the present state, or with the first sample. It must
-   have been made for the same dt, input and between (RAMPWISE_ERROR_DIFFERENT, or others of
-   rampwise_watch_init), and not be attached to another stream. NULL detaches all. RAMPWISE_ERROR_MISSING
-   (stream). */
+/* The watch is told every step from here on; it begins at the present state, or with the first sample.
+   It must have been made for the same dt, input and between (RAMPWISE_ERROR_DIFFERENT, or others of
+   rampwise_watch_init), and not be attached to another stream. NULL detaches all.
+   RAMPWISE_ERROR_MISSING (stream). */
 RAMPWISE_API int rampwise_stream_attach(rampwise_stream *stream, rampwise_watch *watch);
 
 /* All of a stream as bytes; it goes on with the same bits where they are resumed, on any machine. Watches are
-   saved by themselves. Bytes are little-endian, begin with a head that names object, version and edition of the
-   arithmetic, and end with a CRC-32 (ISO 3309).
+   saved by themselves. Bytes are little-endian, begin with a head that names object, version and edition of
+   the arithmetic, and end with a CRC-32 (ISO 3309).
 
    saved_size   the bytes it takes, always the same for a stream.
    save         RAMPWISE_ERROR_MISSING; _MEMORY (count is less than that).
    resume       into a stream that was made by rampwise_stream_init: everything is replaced, but its prepared
-                intervals and watches stay. count is exactly the size. RAMPWISE_ERROR_MISSING; _DAMAGED; _KIND (bytes of
-                another kind of object); _EDITION (of a version with other bits); _DIFFERENT (the prepared
-                intervals are another oscillator's). */
+                intervals and watches stay. count is exactly the size. RAMPWISE_ERROR_MISSING; _DAMAGED; _KIND
+                (bytes of another kind of object); _EDITION (of a version with other bits); _DIFFERENT (the
+                prepared intervals are another oscillator's). */
 RAMPWISE_API size_t rampwise_stream_saved_size(const rampwise_stream *stream);
 RAMPWISE_API int rampwise_stream_save(const rampwise_stream *stream, void *bytes, size_t count);
 RAMPWISE_API int rampwise_stream_resume(rampwise_stream *stream, const void *bytes, size_t count);

@@ -1,12 +1,12 @@
 /* rampwise/watch.h: what a live response does between its samples: greatest and least values, levels passed.
 
-   A watch looks at one output (output.h) of one oscillator and is told every step, by a stream (stream.h) that
-   it is attached to or by rampwise_watch_step. It keeps
+   A watch looks at one output (output.h) of one oscillator and is told every step, by a stream (stream.h)
+   that it is attached to or by rampwise_watch_step. It keeps
 
-   - the greatest and the least value since the start, since the last reset, and over the last whole steps (a bridge
-     that is longer counts as a whole);
-   - for up to four levels: whether the response is beyond, the crossings up and down with their exact instants,
-     a latch, and counts;
+   - the greatest and the least value since the start, since the last reset, and over the last whole steps (a
+     bridge that is longer counts as a whole);
+   - for up to four levels: whether the response is beyond, the crossings up and down with their exact
+     instants, a latch, and counts;
    - a queue of events in the caller's memory.
 
    Inside a step the response is a line plus a free vibration. A step is cut into pieces so short that the
@@ -17,14 +17,15 @@
    passed at that sample.
 
    Work a step: one piece for each radian of w dt or unit of c dt/m, whichever are more, as a power of two, 64
-   at most. A piece has at most two extremes and, for each level, three crossings; one of them costs at most 100
-   evaluations of a polynomial of degree 24, and most steps have none: some tens of operations. A window costs
-   4 log2(steps) comparisons and some. A step of another length than the coefficients' that needs more than one piece
-   costs one making of coefficients. A step that would need more than 64 pieces (a long gap in a stream) is
-   not looked into: the watch is reset, the reset is counted, and levels see the value at its end.
+   at most. A piece has at most two extremes and, for each level, three crossings; one of them costs at
+   most 100 evaluations of a polynomial of degree 24, and most steps have none: some tens of operations.
+   A window costs 4 log2(steps) comparisons and some. A step of another length than the coefficients'
+   that needs more than one piece costs one making of coefficients. A step that would need more than 64
+   pieces (a long gap in a stream) is not looked into: the watch is reset, the reset is counted, and
+   levels see the value at its end.
 
-   Threads: a watch belongs to one thread at a time, that of its stream. Nothing is allocated, locked or waited
-   for. All since 0.1. */
+   Threads: a watch belongs to one thread at a time, that of its stream. Nothing is allocated, locked or
+   waited for. All since 0.1. */
 #ifndef RAMPWISE_WATCH_H
 #define RAMPWISE_WATCH_H
 
@@ -51,8 +52,9 @@ enum {
     RAMPWISE_EVENT_RESET = 56  /* a step too long to be looked into has reset the watch */
 };
 
-/* What happened, when and where: at (sample + fraction) dt, 0 <= fraction < 1. In a stream of irregular stamps
-   the fraction is of the step as it was; a bridge over missing samples counts as many steps as it spans. */
+/* What happened, when and where: at (sample + fraction) dt, 0 <= fraction < 1. In a stream of
+   irregular stamps the fraction is of the step as it was; a bridge over missing samples counts
+   as many steps as it spans. */
 typedef struct rampwise_event {
     uint64_t sample;
     double fraction;
@@ -67,8 +69,8 @@ typedef struct rampwise_event {
 
 /* A level. With direction 1 the response is beyond it from the instant that it comes up to `value` (equal
    counts) until it falls below value - hysteresis; with direction -1, from the instant that it comes down to
-   `value` until it rises above value + hysteresis. The first value a watch sees counts as coming from the side
-   that is not beyond. */
+   `value` until it rises above value + hysteresis. The first value a watch sees counts as coming from
+   the side that is not beyond. */
 typedef struct rampwise_level {
     double value, hysteresis; /* hysteresis 0 or more */
     int32_t direction;        /* 1 or -1 */
@@ -198,9 +200,9 @@ RAMPWISE_API int rampwise_watch_init(rampwise_watch *watch, const rampwise_coeff
    RAMPWISE_ERROR_MISSING, _STATE. */
 RAMPWISE_API int rampwise_watch_start(rampwise_watch *watch, const rampwise_state *s, uint64_t sample);
 
-/* The step that took `before`, sample `sample`, to `after`, sample + samples, with coefficients c: for callers
-   who step by themselves. flags go into its events. A watch that was not started starts at `before`. Cannot
-   fail; nothing is checked. */
+/* The step that took `before`, sample `sample`, to `after`, sample + samples, with coefficients c: for
+   callers who step by themselves. flags go into its events. A watch that was not started starts at `before`.
+   Cannot fail; nothing is checked. */
 RAMPWISE_API void rampwise_watch_step(rampwise_watch *watch, const rampwise_coeffs *c,
                                       const rampwise_state *before, const rampwise_state *after,
                                       uint64_t sample, uint64_t samples, uint32_t flags);
@@ -225,15 +227,15 @@ RAMPWISE_API int rampwise_watch_level(const rampwise_watch *watch, size_t i, ram
    RAMPWISE_ERROR_MISSING, _COUNT. */
 RAMPWISE_API int rampwise_watch_release(rampwise_watch *watch, size_t i);
 
-/* Takes the oldest events out of the queue, up to capacity, into events; returns how many. Events come step by
-   step; those of one monotone stretch inside a step come level by level. */
+/* Takes the oldest events out of the queue, up to capacity, into events; returns how many. Events come step
+   by step; those of one monotone stretch inside a step come level by level. */
 RAMPWISE_API size_t rampwise_watch_events(rampwise_watch *watch, size_t capacity, rampwise_event *events);
 
 /* Events lost, and steps too long to be looked into. Either pointer may be NULL. RAMPWISE_ERROR_MISSING. */
 RAMPWISE_API int rampwise_watch_counts(const rampwise_watch *watch, uint64_t *lost, uint64_t *resets);
 
-/* All of a watch as bytes, its window and waiting events too (as in stream.h). It is resumed into a watch that was
-   made with the same capacities; the attachment to a stream stays. */
+/* All of a watch as bytes, its window and waiting events too (as in stream.h). It is resumed into a watch
+   that was made with the same capacities; the attachment to a stream stays. */
 RAMPWISE_API size_t rampwise_watch_saved_size(const rampwise_watch *watch);
 RAMPWISE_API int rampwise_watch_save(const rampwise_watch *watch, void *bytes, size_t count);
 RAMPWISE_API int rampwise_watch_resume(rampwise_watch *watch, const void *bytes, size_t count);

@@ -19,7 +19,8 @@
 #define SPENT 0x1p-960
 #endif
 
-/* Vectors in flight: enough to hide the latency of a step, few enough for the registers; a block may have fewer. */
+/* Vectors in flight: enough to hide the latency of a step, few enough for the
+   registers; a block may have fewer. */
 enum { MOST_IN_FLIGHT = 4, FLIGHT = LANES / WIDTH < MOST_IN_FLIGHT ? LANES / WIDTH : MOST_IN_FLIGHT };
 
 /* The same under two inputs, which are as much work each. */
@@ -141,8 +142,8 @@ static size_t first_not_finite(size_t n, const real *x)
     return i;
 }
 
-/* GCC would pack u and v of one oscillator into a vector and unpack it again in every step; and it would fetch
-   all coefficients of a block before the loop, only to put most of them on the stack. */
+/* GCC would pack u and v of one oscillator into a vector and unpack it again in every step; and it would
+   fetch all coefficients of a block before the loop, only to put most of them on the stack. */
 #if defined(__GNUC__) && !defined(__clang__)
 #pragma GCC push_options
 #pragma GCC optimize("no-tree-slp-vectorize", "no-tree-loop-im", "no-move-loop-invariants")
@@ -414,8 +415,8 @@ static inline __attribute__((always_inline)) void reach(moving_pair *m, int quan
     m->top = vector_larger(vector_fma(across, across, vector_product(along, along)), m->top);
 }
 
-/* Each step is taken under both inputs, one after the other, so that its coefficients are fetched once. flight and
-   quantity are constants where this is inlined. */
+/* Each step is taken under both inputs, one after the other, so that its coefficients are fetched once.
+   flight and quantity are constants where this is inlined. */
 static inline __attribute__((always_inline)) int
 two_inputs_at(lane_block *first, lane_block *second, size_t at, int flight, int quantity, real (*row)[LANES],
               real (*form)[LANES], const real *p_last, size_t n, const real *const *p, real *largest)
@@ -593,8 +594,8 @@ static int rows(real (*row)[LANES], size_t lanes, size_t n, real (*p)[LANES], la
 
 #ifndef SINGLE_PRECISION
 
-/* `samples` rows of y, `vectors` vectors wide: enough sums in flight to hide their latency, each weight fetched
-   once for all of them. Both are constants where this is inlined. */
+/* `samples` rows of y, `vectors` vectors wide: enough sums in flight to hide their latency, each weight
+   fetched once for all of them. Both are constants where this is inlined. */
 static inline __attribute__((always_inline)) void sums(int samples, int vectors, size_t count,
                                                        const double *x, size_t stride, const double *weight,
                                                        size_t width, double *y)
@@ -634,7 +635,8 @@ static void accumulate(size_t count, size_t n, const double *x, size_t stride, c
     }
 }
 
-/* As change_of_u and change_of_v, with what the load gives made before. A spent state whose gains are silent becomes +0. */
+/* As change_of_u and change_of_v, with what the load gives made before. A spent state whose
+   gains are silent becomes +0. */
 static void under_gains(size_t width, size_t n, const double *own, double *u, double *v, double *gain)
 {
     for (size_t lane = 0; lane < width; lane += WIDTH) {

@@ -1,10 +1,12 @@
 /* Banks in both precisions and peaks as bytes: what is resumed goes on with the same bits, on every set of
    instructions, stopped oscillators too; damaged bytes and those of other objects are refused and change
-   nothing. Streams and watches are in tests of their own. */
+   nothing, as do numbers that cannot be in modes and directions. The rest of those, streams and watches are
+   in tests of their own. */
 #include <math.h>
 #include <stdint.h>
 #include <string.h>
 #include "../support/oscillators.h"
+#include "../support/seal.h"
 #include "../support/suite.h"
 
 enum { MOST = 40, N = 200 };
@@ -233,12 +235,87 @@ START_TEST(evidence)
 }
 END_TEST
 
+/* The last number of all becomes NaN, under a right checksum. */
+static void check_nonsense(int (*resume)(void *object, const void *bytes, size_t count), void *object,
+                           unsigned char *bytes, size_t size)
+{
+    static const double nonsense = NAN;
+    memcpy(bytes + size - 4 - sizeof nonsense, &nonsense, sizeof nonsense);
+    seal(bytes, size);
+    ck_assert_int_eq(resume(object, bytes, size), RAMPWISE_ERROR_DAMAGED);
+}
+
+static int resume_modes(void *object, const void *bytes, size_t count)
+{
+    return rampwise_modes_resume(object, bytes, count);
+}
+
+static int resume_directions(void *object, const void *bytes, size_t count)
+{
+    return rampwise_directions_resume(object, bytes, count);
+}
+
+START_TEST(nonsense_in_modes)
+{
+    unsigned char bytes[300], before[300], after[300];
+    const double load[2] = {1, -2}, weight[2] = {1, 1}, p[3] = {1, -1, 3};
+    double output[3];
+    const rampwise_coeffs c[2] = {made(regime_system(1, 0.1, 0.01), 0.01, 0),
+                                  made(regime_system(2, 0.4, 0.01), 0.01, 0)};
+    rampwise_modes_plan plan;
+    rampwise_modes *modes, *other;
+    rampwise_modes_plan_init(&plan);
+    plan.modes = 2;
+    plan.inputs = plan.outputs = 1;
+    plan.c = c;
+    plan.load = load;
+    plan.on_displacement = weight;
+    ck_assert_int_eq(rampwise_modes_create(&plan, &modes), RAMPWISE_OK);
+    ck_assert_int_eq(rampwise_modes_create(&plan, &other), RAMPWISE_OK);
+    ck_assert_int_eq(rampwise_modes_run(modes, 3, p, output, NULL), RAMPWISE_OK);
+    const size_t size = rampwise_modes_saved_size(modes);
+    ck_assert(size <= sizeof bytes);
+    ck_assert_int_eq(rampwise_modes_save(modes, bytes, size), RAMPWISE_OK);
+    ck_assert_int_eq(rampwise_modes_save(other, before, size), RAMPWISE_OK);
+    check_nonsense(resume_modes, other, bytes, size);
+    ck_assert_int_eq(rampwise_modes_save(other, after, size), RAMPWISE_OK);
+    ck_assert_mem_eq(before, after, size);
+    rampwise_modes_free(modes);
+    rampwise_modes_free(other);
+}
+END_TEST
+
+START_TEST(nonsense_in_directions)
+{
+    static unsigned char bytes[4000], before[4000], after[4000];
+    const double p1[3] = {1, -1, 3}, p2[3] = {2, 5, -4};
+    const rampwise_coeffs c = made(regime_system(1, 0.1, 0.01), 0.01, 0);
+    rampwise_directions *d, *other;
+    ck_assert_int_eq(rampwise_directions_create(1, &c, RAMPWISE_DISPLACEMENT, 8, 0, RAMPWISE_FASTEST, &d),
+                     RAMPWISE_OK);
+    ck_assert_int_eq(rampwise_directions_create(1, &c, RAMPWISE_DISPLACEMENT, 8, 0, RAMPWISE_FASTEST, &other),
+                     RAMPWISE_OK);
+    ck_assert_int_eq(rampwise_directions_run(d, 3, p1, p2, NULL), RAMPWISE_OK);
+    const size_t size = rampwise_directions_saved_size(d);
+    ck_assert(size <= sizeof bytes);
+    ck_assert_int_eq(rampwise_directions_save(d, bytes, size), RAMPWISE_OK);
+    ck_assert_int_eq(rampwise_directions_save(other, before, size), RAMPWISE_OK);
+    check_nonsense(resume_directions, other, bytes, size);
+    ck_assert_int_eq(rampwise_directions_save(other, after, size), RAMPWISE_OK);
+    ck_assert_mem_eq(before, after, size);
+    rampwise_directions_free(d);
+    rampwise_directions_free(other);
+}
+END_TEST
+
 static void add_tests(TCase *tests)
 {
     tcase_add_test(tests, banks);
     tcase_add_test(tests, single_banks);
     tcase_add_test(tests, peaks);
     tcase_add_test(tests, evidence);
+    tcase_add_test(tests, nonsense_in_modes);
+    tcase_add_test(tests, nonsense_in_directions);
 }
 
 int main(void)

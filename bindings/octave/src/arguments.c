@@ -111,14 +111,8 @@ int answer(mxArray **out, int status, size_t fault)
 
 /* ---- both ---- */
 
-#define REAL double
-#define PRECISION(name) name
-#include "coefficients_body.h"
-#undef REAL
-#undef PRECISION
-#define REAL float
-#define PRECISION(name) name##_f32
-#include "coefficients_body.h"
+#define BODY "coefficients_body.h"
+#include "both_precisions.h"
 
 void want_histories(mxArray **out, const mxArray *wanted, int most, mxClassID class, size_t n, size_t columns)
 {

@@ -5,7 +5,7 @@ static void PRECISION(release_bank)(void *bank)
     PRECISION(rampwise_bank_free)(bank);
 }
 
-static const object_kind PRECISION(banks) = {WORD, PRECISION(release_bank)};
+static const object_kind PRECISION(banks) = {"bank" IN_WORDS, PRECISION(release_bank)};
 
 /* systems, dt, input, between -> object */
 void PRECISION(bank_make)(mxArray **out, const mxArray **in)

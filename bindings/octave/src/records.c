@@ -68,17 +68,8 @@ static int run_rest_f32(const rampwise_coeffs_f32 *c, rampwise_state_f32 *s, siz
     return rampwise_run_f32(c, s, n, p, out, bad);
 }
 
-#define REAL double
-#define CLASS mxDOUBLE_CLASS
-#define PRECISION(name) name
-#include "response_body.h"
-#undef REAL
-#undef CLASS
-#undef PRECISION
-#define REAL float
-#define CLASS mxSINGLE_CLASS
-#define PRECISION(name) name##_f32
-#include "response_body.h"
+#define BODY "response_body.h"
+#include "both_precisions.h"
 
 /* ---- peaks ---- */
 

@@ -73,17 +73,5 @@ static void put_instant(double *three, const rampwise_instant *at)
     three[2] = at->fraction;
 }
 
-#define REAL double
-#define CLASS mxDOUBLE_CLASS
-#define WORD "stream"
-#define PRECISION(name) name
-#include "streams_body.h"
-#undef REAL
-#undef CLASS
-#undef WORD
-#undef PRECISION
-#define REAL float
-#define CLASS mxSINGLE_CLASS
-#define WORD "stream of single precision"
-#define PRECISION(name) name##_f32
-#include "streams_body.h"
+#define BODY "streams_body.h"
+#include "both_precisions.h"

@@ -34,7 +34,7 @@ static void PRECISION(release_stream)(void *object)
     free(k);
 }
 
-static const object_kind PRECISION(streams) = {WORD, PRECISION(release_stream)};
+static const object_kind PRECISION(streams) = {"stream" IN_WORDS, PRECISION(release_stream)};
 
 /* system, dt, input, between; start, missing, beyond, longest, ticks, rails, outputs, raw -> object */
 void PRECISION(stream_make)(mxArray **out, const mxArray **in)

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import dataclasses
-from typing import Any, Dict
+from typing import Any, ClassVar, Dict, Tuple
 
 import numpy as np
 
@@ -34,3 +34,15 @@ def plain(value: Any) -> Any:
     if isinstance(value, (list, tuple)):
         return [plain(item) for item in value]
     return value
+
+
+class Result:
+    """A result as dictionaries, with what is derived from its fields."""
+
+    _derived: ClassVar[Tuple[str, ...]] = ()
+
+    def to_dict(self) -> Dict[str, Any]:
+        """Everything as plain dictionaries, lists, numbers and texts, as ``json.dumps`` takes them."""
+        result: Dict[str, Any] = plain(self)
+        result.update((name, plain(getattr(self, name))) for name in self._derived)
+        return result

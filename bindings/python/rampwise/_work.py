@@ -23,6 +23,11 @@ def watched(items: Iterable[Task], total: int, progress: bool) -> Iterable[Task]
     return bar
 
 
+def blocks(count: int, size: int) -> List[slice]:
+    """So many things as blocks of at most `size`."""
+    return [slice(first, first + size) for first in range(0, count, size)]
+
+
 def spread(
     work: Callable[[Task], Result], tasks: List[Task], threads: int = 1, progress: bool = False
 ) -> List[Result]:

@@ -10,17 +10,17 @@ from numpy.typing import ArrayLike
 
 from . import _arrays, _library
 from ._arrays import Doubles
-from ._provenance import plain, provenance
-from ._work import spread
+from ._grid import Grid, GridResult
+from ._provenance import provenance
+from ._work import blocks, spread
 from .peaks import AT_SAMPLES, QUANTITIES, Quantity
-from .spectrum import Oscillators
-from .system import Input, choice, damping_ratio, kinds, one_of
+from .system import Input, choice, kinds
 
 _A_TASK = 64  # oscillators: two groups, 1 MB
 
 
 @dataclasses.dataclass(frozen=True, eq=False)
-class DirectionalSpectrum:
+class DirectionalSpectrum(GridResult):
     """Percentiles over the direction, for a grid of damping ratios and periods.
 
     Attributes
@@ -39,10 +39,6 @@ class DirectionalSpectrum:
         Version, edition of the arithmetic, options.
     """
 
-    period: Doubles
-    frequency: Doubles
-    omega: Doubles
-    damping: Doubles
     percent: Doubles
     quantity: str
     value: Doubles
@@ -54,11 +50,6 @@ class DirectionalSpectrum:
         if self.quantity != "displacement":
             raise ValueError("quantity: pseudo-acceleration is made of displacement")
         return np.asarray(self.omega * (self.omega * self.value))
-
-    def to_dict(self) -> Dict[str, Any]:
-        """Everything as plain dictionaries, lists, numbers and texts, as ``json.dumps`` takes them."""
-        result: Dict[str, Any] = plain(self)
-        return result
 
 
 def _pair(first: ArrayLike, second: ArrayLike) -> Tuple[Doubles, Doubles]:
@@ -131,34 +122,28 @@ def directional_spectrum(
     >>> bool(abs(both.value / rampwise.response_spectrum(line, dt=0.02, period=0.7).SD - 1) < 1e-6)
     True
     """
-    name, given = one_of(period=period, frequency=frequency, omega=omega)
-    ratio = damping_ratio(damping, allow_strong_damping)
-    oscillators = Oscillators.make(name, given, ratio)
+    grid = Grid.make(damping, allow_strong_damping, period=period, frequency=frequency, omega=omega)
     x, y = _pair(first, second)
     step = _arrays.double(dt, "dt")
     percents = _arrays.in_order(_arrays.doubles(percent, "percent"))
     input_number, _ = kinds(input, "ramp")
     number = choice(quantity, QUANTITIES, "quantity")
-    value = np.zeros((oscillators.omega.size, percents.size))
+    value = np.zeros((grid.omega.size, percents.size))
 
     def work(block: slice) -> None:
-        circular, damped = (np.ascontiguousarray(a[block]) for a in (oscillators.omega, oscillators.damping))
-        found, bad = np.zeros((circular.size, percents.size)), np.zeros(1, np.uintp)
+        bad = np.zeros(1, np.uintp)
         status = _library.call("spectrum_directions", x.size, step, _library.address(x), _library.address(y),
-                               input_number, circular.size, _library.address(circular), _library.address(damped),
-                               number, AT_SAMPLES if at_samples else 0, percents.size, _library.address(percents),
-                               _library.address(found), _library.address(bad))  # fmt: skip
-        _library.check(status, f"number {bad[0]}", sample="first or second", frequency=name, damper="damping")
-        value[block] = found
+                               input_number, *grid.places(block), number, AT_SAMPLES if at_samples else 0,
+                               percents.size, _library.address(percents), _library.address(value[block]),
+                               _library.address(bad))  # fmt: skip
+        _library.check(status, f"number {bad[0]}", sample="first or second", frequency=grid.name, damper="damping")
 
-    blocks = [slice(at, at + _A_TASK) for at in range(0, len(value), _A_TASK)]
-    spread(work, blocks, threads, progress)
+    spread(work, blocks(len(value), _A_TASK), threads, progress)
     return DirectionalSpectrum(
-        *oscillators.lists,
-        ratio,
+        *grid.lists,
         percents,
         quantity,
-        np.moveaxis(value, -1, 0).reshape(percents.shape + oscillators.shape),
+        np.moveaxis(value, -1, 0).reshape(percents.shape + grid.shape),
         provenance(dt=step, input=input, at_samples=bool(at_samples), threads=threads),
     )
 

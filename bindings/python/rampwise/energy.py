@@ -10,11 +10,11 @@ from numpy.typing import ArrayLike, NDArray
 
 from . import _arrays, _library
 from ._arrays import Doubles
-from ._provenance import plain, provenance
-from ._work import spread
+from ._grid import Grid, GridResult
+from ._provenance import Result, provenance
+from ._work import blocks, spread
 from .response import chosen_system
-from .spectrum import Oscillators
-from .system import Between, Input, System, choice, coefficients, damping_ratio, kinds, one_of
+from .system import Between, Input, System, choice, coefficients, kinds
 
 Frame = Literal["relative", "absolute"]
 
@@ -45,7 +45,7 @@ class Energies:
 
 
 @dataclasses.dataclass(frozen=True, eq=False)
-class EnergyHistory(Energies):
+class EnergyHistory(Energies, Result):
     """Energies at every sample, shape (..., n).
 
     Attributes
@@ -65,14 +65,9 @@ class EnergyHistory(Energies):
         stored = self.kinetic + self.strain
         return np.asarray(self.input - (stored + self.dissipated - stored[..., :1]))
 
-    def to_dict(self) -> Dict[str, Any]:
-        """Everything as plain dictionaries, lists, numbers and texts, as ``json.dumps`` takes them."""
-        result: Dict[str, Any] = plain(self)
-        return result
-
 
 @dataclasses.dataclass(frozen=True, eq=False)
-class EnergySpectrum:
+class EnergySpectrum(GridResult):
     """Energy spectra per unit mass, over a grid of damping ratios and periods.
 
     Attributes
@@ -89,10 +84,6 @@ class EnergySpectrum:
         Version, edition of the arithmetic, options.
     """
 
-    period: Doubles
-    frequency: Doubles
-    omega: Doubles
-    damping: Doubles
     last: Energies
     greatest: Doubles
     provenance: Dict[str, Any]
@@ -101,11 +92,6 @@ class EnergySpectrum:
     def equivalent_velocity(self) -> Doubles:
         """sqrt(2 E) of the greatest input energy E per unit mass."""
         return np.asarray(np.sqrt(2 * self.greatest))
-
-    def to_dict(self) -> Dict[str, Any]:
-        """Everything as plain dictionaries, lists, numbers and texts, as ``json.dumps`` takes them."""
-        result: Dict[str, Any] = plain(self)
-        return result
 
 
 def energies(
@@ -224,32 +210,26 @@ def energy_spectrum(
     -------
     EnergySpectrum
     """
-    name, given = one_of(period=period, frequency=frequency, omega=omega)
-    ratio = damping_ratio(damping, allow_strong_damping)
-    oscillators = Oscillators.make(name, given, ratio)
+    grid = Grid.make(damping, allow_strong_damping, period=period, frequency=frequency, omega=omega)
     input_number, _ = kinds(input, "ramp")
     number = choice(frame, _FRAMES, "frame")
     step = _arrays.double(dt, "dt")
     samples = _arrays.records(record, "record")
     if samples.ndim != 1:
         raise ValueError(f"record: shape {samples.shape}, where one axis is needed")
-    last = np.zeros(oscillators.omega.size, _library.ENERGY)
-    greatest = np.zeros(oscillators.omega.size)
+    last, greatest = np.zeros(grid.omega.size, _library.ENERGY), np.zeros(grid.omega.size)
 
     def work(block: slice) -> None:
-        circular, damped = (np.ascontiguousarray(a[block]) for a in (oscillators.omega, oscillators.damping))
         bad = np.zeros(1, np.uintp)
         status = _library.call("energy_spectrum", samples.size, step, _library.address(samples), input_number, number,
-                               circular.size, _library.address(circular), _library.address(damped),
-                               _library.address(last[block]), _library.address(greatest[block]),
-                               _library.address(bad))  # fmt: skip
-        _library.check(status, f"number {bad[0]}", frequency=name, damper="damping", impulses="frame")
+                               *grid.places(block), _library.address(last[block]),
+                               _library.address(greatest[block]), _library.address(bad))  # fmt: skip
+        _library.check(status, f"number {bad[0]}", frequency=grid.name, damper="damping", impulses="frame")
 
-    spread(work, [slice(at, at + _A_TASK) for at in range(0, last.size, _A_TASK)], threads, progress)
+    spread(work, blocks(last.size, _A_TASK), threads, progress)
     return EnergySpectrum(
-        *oscillators.lists,
-        ratio,
-        Energies._read(last.reshape(oscillators.shape)),
-        greatest.reshape(oscillators.shape),
+        *grid.lists,
+        Energies._read(last.reshape(grid.shape)),
+        greatest.reshape(grid.shape),
         provenance(dt=step, input=input, frame=frame, threads=threads),
     )

@@ -3,26 +3,27 @@
 from __future__ import annotations
 
 import dataclasses
-from typing import Any, Dict, List, Literal, Mapping, Optional, Tuple
+from typing import Any, ClassVar, Dict, List, Literal, Mapping, Optional, Tuple
 
 import numpy as np
 from numpy.typing import ArrayLike
 
 from . import _arrays
 from ._arrays import Doubles
-from ._provenance import plain, provenance
-from ._work import spread
+from ._grid import Grid, GridResult
+from ._provenance import provenance
+from ._work import blocks, spread
 from .live_structure import Equipment
 from .peaks import Peaks
-from .spectrum import Oscillators, Spectrum, response_spectrum
+from .spectrum import Spectrum, response_spectrum
 from .structure import Row, Structure
-from .system import System, damping_ratio, one_of
+from .system import System
 
 _A_TASK = 64  # pieces of equipment
 
 
 @dataclasses.dataclass(frozen=True, eq=False)
-class FloorSpectrum:
+class FloorSpectrum(GridResult):
     """Largest motions of light equipment on points of a structure, over a grid of damping ratios and periods.
 
     Attributes
@@ -45,10 +46,8 @@ class FloorSpectrum:
         Version, edition of the arithmetic, options.
     """
 
-    period: Doubles
-    frequency: Doubles
-    omega: Doubles
-    damping: Doubles
+    _derived: ClassVar[Tuple[str, ...]] = ("SD", "SA", "PSA", "sampled_error")
+
     points: Tuple[str, ...]
     displacement: Peaks
     total_acceleration: Peaks
@@ -75,13 +74,6 @@ class FloorSpectrum:
     def sampled_error(self) -> Doubles:
         """By which share the usual way's SA is off: negative where it is too small."""
         return np.asarray(self.sampled.SA / self.SA - 1)
-
-    def to_dict(self) -> Dict[str, Any]:
-        """Everything as plain dictionaries, lists, numbers and texts, as ``json.dumps`` takes them."""
-        result: Dict[str, Any] = plain(self)
-        for name in ("SD", "SA", "PSA", "sampled_error"):
-            result[name] = plain(getattr(self, name))
-        return result
 
 
 def floor_spectrum(
@@ -150,27 +142,22 @@ def floor_spectrum(
     >>> bool(abs(floors.sampled_error).max() < 0.01)
     True
     """
-    name, given = one_of(period=period, frequency=frequency, omega=omega)
-    ratio = damping_ratio(damping, allow_strong_damping)
-    grid = Oscillators.make(name, given, ratio)
+    grid = Grid.make(damping, allow_strong_damping, period=period, frequency=frequency, omega=omega)
     if not np.all(np.isfinite(grid.omega) & (grid.omega > 0)):
-        raise ValueError(f"{name}: equipment is neither rigid nor free")
-    natural: Dict[str, Any] = {grid.name: grid.given}
-    systems = System.natural(damping=grid.damping, allow_strong_damping=True, **natural)
+        raise ValueError(f"{grid.name}: equipment is neither rigid nor free")
+    systems = [grid.systems(block) for block in blocks(grid.omega.size, _A_TASK)]
     if part not in ("primary", "maximax"):
         raise ValueError(f"part: {part!r} is neither 'primary' nor 'maximax'")
     step = _arrays.double(dt, "dt")
     floors = structure.respond(record, step, points, part=part, modes=modes)
 
-    def work(task: Tuple[str, slice]) -> Tuple[Peaks, Peaks]:
-        point, block = task
-        pieces = System(systems.mass[block], systems.damper[block], systems.stiffness[block])
+    def work(task: Tuple[str, System]) -> Tuple[Peaks, Peaks]:
+        point, pieces = task
         live = structure.live(step, {point: points[point]}, modes=modes, equipment={"pieces": Equipment(point, pieces)})
         live.put(record)
         return live.equipment_displacement(part)["pieces"], live.equipment_acceleration(part)["pieces"]
 
-    blocks = [slice(first, first + _A_TASK) for first in range(0, grid.omega.size, _A_TASK)]
-    found = spread(work, [(point, block) for point in points for block in blocks], threads, progress)
+    found = spread(work, [(point, pieces) for point in points for pieces in systems], threads, progress)
     shape = (len(points),) + grid.shape
     displacement = _joined([pair[0] for pair in found], shape)
     total_acceleration = _joined([pair[1] for pair in found], shape)
@@ -178,11 +165,10 @@ def floor_spectrum(
     if part == "maximax":
         live = structure.live(step, points, modes=modes, peaks=False)
         histories = live.put(_longer(record, step, (displacement, total_acceleration))).values
-    sampled = response_spectrum(histories.T, step, period=period, frequency=frequency, omega=omega, damping=ratio,
+    sampled = response_spectrum(histories.T, step, period=period, frequency=frequency, omega=omega, damping=damping,
                                 allow_strong_damping=True, threads=threads)  # fmt: skip
     return FloorSpectrum(
         *grid.lists,
-        ratio,
         floors.outputs,
         displacement,
         total_acceleration,

@@ -10,7 +10,7 @@ from numpy.typing import ArrayLike, NDArray
 
 from . import _arrays, _library
 from ._arrays import Doubles
-from ._provenance import plain, provenance
+from ._provenance import Result, provenance
 from .bank import Histories
 from .peaks import Part, Peaks, part_number
 from .system import Between, System, coefficients
@@ -73,7 +73,7 @@ class StructureBlock(NamedTuple):
 
 
 @dataclasses.dataclass(frozen=True, eq=False)
-class StructureResponse:
+class StructureResponse(Result):
     """Histories and true peaks of a structure's outputs under a record; ``response["roof"]`` is one history.
 
     Attributes
@@ -108,11 +108,6 @@ class StructureResponse:
         if name not in self.outputs:
             raise KeyError(f"{name!r} is none of the outputs {', '.join(map(repr, self.outputs))}")
         return self.values[:, self.outputs.index(name)]
-
-    def to_dict(self) -> Dict[str, Any]:
-        """Everything as plain dictionaries, lists, numbers and texts, as ``json.dumps`` takes them."""
-        result: Dict[str, Any] = plain(self)
-        return result
 
 
 class LiveStructure:

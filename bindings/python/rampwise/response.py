@@ -11,7 +11,7 @@ from numpy.typing import ArrayLike, NDArray
 from . import _arrays, _library
 from ._arrays import Doubles
 from ._precision import Arithmetic, Precision, arithmetic
-from ._provenance import plain, provenance
+from ._provenance import Result, provenance
 from ._work import spread
 from .bank import Histories
 from .system import Between, Input, System, coefficients
@@ -26,7 +26,7 @@ _SAMPLES_A_TASK = 1 << 17  # enough that handing over a task costs nothing besid
 
 
 @dataclasses.dataclass(frozen=True, eq=False)
-class Response:
+class Response(Result):
     """The response of systems to records, one value a sample along the last axis.
 
     Attributes
@@ -156,11 +156,6 @@ class Response:
     @staticmethod
     def _times(values: Doubles, history: Reals) -> Reals:
         return np.asarray(values[..., np.newaxis].astype(history.dtype) * history)
-
-    def to_dict(self) -> Dict[str, Any]:
-        """Everything as plain dictionaries, lists, numbers and texts, as ``json.dumps`` takes them."""
-        result: Dict[str, Any] = plain(self)
-        return result
 
 
 def _inside(

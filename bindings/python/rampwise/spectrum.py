@@ -3,24 +3,25 @@
 from __future__ import annotations
 
 import dataclasses
-from typing import Any, Dict, List, NamedTuple, Optional, Tuple
+from typing import Any, ClassVar, Dict, List, NamedTuple, Optional, Tuple
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from . import _arrays, _library
 from ._arrays import Doubles
-from ._provenance import plain, provenance
-from ._work import spread
+from ._grid import Grid, GridResult
+from ._provenance import provenance
+from ._work import blocks, spread
 from .peaks import AT_SAMPLES, QUANTITIES, Part, Peaks, PeaksObject, part_number
-from .system import Between, Input, System, choice, coefficients, damping_ratio, kinds, one_of
+from .system import Between, Input, choice, coefficients, kinds
 
 _ABRUPT_START, _ABRUPT_END = _library.constant("ABRUPT_START"), _library.constant("ABRUPT_END")
 _A_TASK = 64  # oscillators: two blocks of lanes, 170 KB
 
 
 @dataclasses.dataclass(frozen=True, eq=False)
-class Spectrum:
+class Spectrum(GridResult):
     """Response spectra over a grid of damping ratios and periods.
 
     Attributes
@@ -39,10 +40,8 @@ class Spectrum:
         Version, edition of the arithmetic, options.
     """
 
-    period: Doubles
-    frequency: Doubles
-    omega: Doubles
-    damping: Doubles
+    _derived: ClassVar[Tuple[str, ...]] = ("SD", "SV", "SA", "PSV", "PSA")
+
     displacement: Peaks
     velocity: Peaks
     total_acceleration: Peaks
@@ -107,40 +106,6 @@ class Spectrum:
     def _times_omega(self, values: Doubles) -> Doubles:
         finite = np.where(np.isinf(self.omega), 0.0, self.omega)  # rigid oscillators do not move
         return np.asarray(finite * values)
-
-    def to_dict(self) -> Dict[str, Any]:
-        """Everything as plain dictionaries, lists, numbers and texts, as ``json.dumps`` takes them."""
-        result: Dict[str, Any] = plain(self)
-        for name in ("SD", "SV", "SA", "PSV", "PSA"):
-            result[name] = plain(getattr(self, name))
-        return result
-
-
-class Oscillators(NamedTuple):
-    """The grid of a spectrum, flat: damping by damping, and in it period by period."""
-
-    name: str
-    given: Doubles
-    omega: Doubles
-    damping: Doubles
-    lists: Tuple[Doubles, Doubles, Doubles]  # period, frequency, omega, as they were shaped
-    shape: Tuple[int, ...]
-
-    @classmethod
-    def make(cls, name: str, given: Doubles, ratio: Doubles) -> "Oscillators":
-        with np.errstate(divide="ignore"):
-            omega = given if name == "omega" else 2 * np.pi * given if name == "frequency" else 2 * np.pi / given
-            lists = (
-                given if name == "period" else np.asarray(2 * np.pi / omega),
-                given if name == "frequency" else np.asarray(omega / (2 * np.pi)),
-                np.asarray(omega),
-            )
-        flat = [np.tile(array.reshape(-1), ratio.size) for array in (given, lists[2])]
-        return cls(name, flat[0], flat[1], np.repeat(ratio.reshape(-1), given.size), lists, ratio.shape + given.shape)
-
-    @property
-    def rigid(self) -> NDArray[np.bool_]:
-        return np.asarray(self.given == (0.0 if self.name == "period" else np.inf))
 
 
 def response_spectrum(
@@ -222,21 +187,18 @@ def response_spectrum(
     >>> spectrum.total_acceleration.time.round(9)
     array([0.25, 0.5 ])
     """
-    name, given = one_of(period=period, frequency=frequency, omega=omega)
-    ratio = damping_ratio(damping, allow_strong_damping)
+    grid = Grid.make(damping, allow_strong_damping, period=period, frequency=frequency, omega=omega)
     samples = _arrays.records(record, "record")
     rows = _Records(samples, _arrays.double(dt, "dt"), input, between, part, at_samples, evidence)
-    oscillators = Oscillators.make(name, given, ratio)
-    shape = samples.shape[:-1] + oscillators.shape
-    found, errors = rows.peaks(oscillators, threads, progress)
+    shape = samples.shape[:-1] + grid.shape
+    found, errors = rows.peaks(grid, threads, progress)
     peaks = [
         Peaks._read(found[i].reshape(shape), rows.dt, errors[i].reshape(shape) if evidence else None)
         for i in range(len(QUANTITIES))
     ]
-    abrupt = errors[0]["abrupt"][:, 0].reshape(samples.shape[:-1]) if evidence and given.size and ratio.size else None
+    abrupt = errors[0]["abrupt"][:, 0].reshape(samples.shape[:-1]) if evidence and grid.omega.size else None
     return Spectrum(
-        *oscillators.lists,
-        ratio,
+        *grid.lists,
         peaks[0],
         peaks[1],
         peaks[2],
@@ -283,19 +245,13 @@ class _Records:
         self.n = samples.shape[-1]
         self.at = _library.addresses(samples[..., 0])
 
-    def peaks(self, oscillators: Oscillators, threads: int, progress: bool) -> _Found:
+    def peaks(self, grid: Grid, threads: int, progress: bool) -> _Found:
         """[records, oscillators] for each quantity."""
-        rigid = oscillators.rigid
+        rigid = grid.rigid
         moving = np.flatnonzero(~rigid)
-        natural: Dict[str, Any] = {oscillators.name: oscillators.given[moving]}
-        systems = System.natural(damping=oscillators.damping[moving], allow_strong_damping=True, **natural)
-        made = coefficients(systems, self.dt, input=self.input, between=self.between)
+        made = coefficients(grid.systems(moving), self.dt, input=self.input, between=self.between)
         result = _nothing((self.at.size, rigid.size))
-        tasks = [
-            (row, slice(first, first + _A_TASK))
-            for row in range(self.at.size)
-            for first in range(0, moving.size, _A_TASK)
-        ]
+        tasks = [(row, block) for row in range(self.at.size) for block in blocks(moving.size, _A_TASK)]
 
         def work(task: Tuple[int, slice]) -> None:
             row, block = task
@@ -304,7 +260,7 @@ class _Records:
                 whole[row, moving[block]] = part
 
         spread(work, tasks, threads, progress)
-        self._follow_base(result, np.flatnonzero(rigid), oscillators.damping)
+        self._follow_base(result, np.flatnonzero(rigid), grid.damping)
         return result
 
     def _block(self, row: int, made: NDArray[np.void]) -> _Found:
