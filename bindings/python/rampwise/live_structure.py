@@ -246,7 +246,7 @@ class LiveStructure:
             first = last
         return found
 
-    def peaks(self, part: Part = "primary", *, samples: int = 1_000_000) -> Dict[str, Peaks]:
+    def peaks(self, part: Part = "primary", *, samples: int = 100_000) -> Dict[str, Peaks]:
         """The peaks of the outputs, true between the samples, by name; the structure goes on unchanged.
 
         Parameters
@@ -260,7 +260,7 @@ class LiveStructure:
         flat = self._parts("modes", (), len(self.outputs), part, samples)
         return {name: flat._at(i) for i, name in enumerate(self.outputs)}
 
-    def equipment_displacement(self, part: Part = "primary", *, samples: int = 1_000_000) -> Dict[str, Peaks]:
+    def equipment_displacement(self, part: Part = "primary", *, samples: int = 100_000) -> Dict[str, Peaks]:
         """Peaks of the stretch between point and equipment, by name, of the shape of each system.
 
         Parameters
@@ -271,7 +271,7 @@ class LiveStructure:
         """
         return self._equipment_peaks(_DISPLACEMENT, part, samples)
 
-    def equipment_acceleration(self, part: Part = "primary", *, samples: int = 1_000_000) -> Dict[str, Peaks]:
+    def equipment_acceleration(self, part: Part = "primary", *, samples: int = 100_000) -> Dict[str, Peaks]:
         """Peaks of the total acceleration of equipment, by name, of the shape of each system.
 
         Parameters
