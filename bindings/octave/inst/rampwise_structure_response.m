@@ -51,9 +51,10 @@ function r = rampwise_structure_response (b, p, dt, varargin)
     error ("rampwise:argument", "%s: P holds no samples", caller);
   endif
   s = make_structure (caller, b, dt, parse (caller, structure_options (), varargin), 1:4);
-  [r, status, fault] = push_structure (caller, s, p, true);
-  check (caller, status, fault, [rows(r.displacement), s.inputs]);
-  r.time = (0:rows (r.displacement) - 1).' * dt;
+  [h, status, fault] = push_structure (caller, s, p, true);
+  n = rows (h.displacement);
+  check (caller, status, fault, [n, s.inputs]);
+  r = cell2struct ([{(0:n - 1).' * dt}; struct2cell(h)], [{"time"}; fieldnames(h)]);
   if (s.peaks)
     now = read_structure (caller, s);
     r.peaks = now.peaks;
