@@ -2,7 +2,7 @@
 ## Every command is tried; random cases print their seed, RAMPWISE_SEED repeats it.
 1;
 
-function c = good_calls (bank, single_bank, stream)
+function c = good_calls (bank, single_bank, stream, structure)
   s = [1; 0.1; 9];
   p = sin (1:7).';
   force = 11;
@@ -14,7 +14,10 @@ function c = good_calls (bank, single_bank, stream)
        {"bank_set_f32", single_bank, ones(6, 2, "single")}, {"bank_start_f32", single_bank, 1}, ...
        {"coefficients", [s, s], 0.1, force, ramp}, {"directions", 0.1, p, p + 1, force, [1, 2], [0, 0.1], 31, 0, [50; 100]}, ...
        {"energies", [s, s], 0.1, force, ramp, 71, [0, 1], [1, 0], p}, {"energy_spectrum", 0.1, p, force, 72, [1, 2], [0, 0.1]}, {"constant", "RAMPWISE_RAMP"}, {"combine", "complete quadratic", p, p, p, 0.3}, ...
-       {"structure", [s, s], 0.1, force, ramp, ones(1, 2), ones(3, 2), ones(3, 2), ones(3, 2), ones(3, 1), p.', 1}, ...
+       {"structure_make", [s, s], 0.1, force, ramp, ones(1, 2), ones(3, 2), ones(3, 2), ones(3, 2), ones(3, 1), 1, [s, s, s], [1, 3, 2], [0, 1], [2, 0]}, ...
+       {"structure_run", structure, [p, p].', 1}, {"structure_read", structure}, {"structure_save", structure}, {"structure_start", structure}, ...
+       {"structure_resume", structure, saved_bytes("structure_save", structure)}, {"mass_share", [s, s], 0.1, force, ramp, ones(2, 2), [3, 4]}, ...
+       {"static_correction", [s, s], 0.1, force, ramp, ones(1, 2), ones(3, 2), ones(3, 1)}, ...
        {"roots_to_modes", 1, 2, [-1, -1; 3, -3], [1, 1; 0, 0], 1, 1, 0}, {"list_log", 1, 2, 5}, ...
        {"list_octaves", 1, 9, 3}, {"objects"}, {"peaks", [s, s], 0.1, force, ramp, [p, p], 0, 4}, {"percentiles_over_angle", p, p + 1, [0, 50]}, ...
        {"response", s, 0.1, force, ramp, 0, [1, 2], [1, 2], [p, p], ones(1, 8), []}, ...
@@ -23,7 +26,7 @@ function c = good_calls (bank, single_bank, stream)
        {"rigid_peaks", 0.1, force, p, 0, 1}, {"status_text", -10}, ...
        {"stream_make", s, 0.1, force, ramp, 61, 65, 68, 10, 1, [-Inf, Inf], [31, 38; 0, 1; 0, 2; 0, 3; 0, 4], [1, 0, 9]}, {"stream_put", stream, p, []}, {"stream_put", stream, int32(p), []}, {"stream_retune", stream, s, 0.1, force, ramp}, ...
        {"stream_put", stream, p, int64(1:7) + intmax("int64") - 8}, {"stream_read", stream}, {"stream_save", stream}, ...
-       {"stream_resume", stream, saved_bytes(stream)}, {"stream_skip", stream, 3}, {"stream_start", stream, [1, 2, 3, 4], 9}, ...
+       {"stream_resume", stream, saved_bytes("stream_save", stream)}, {"stream_skip", stream, 3}, {"stream_start", stream, [1, 2, 3, 4], 9}, ...
        {"stream_watch", stream, [31; 0; 0; 0; 0], [1; 0.1; 1; 1], 3, 4}, {"watch_events", stream, 1}, ...
        {"watch_read", stream, 1}, {"watch_release", stream, 1, 1}, {"watch_reset", stream, 1}, ...
        {"system", "period", [1, 2], [0, 0.1]}, {"version"}};
@@ -39,8 +42,8 @@ function c = single_calls (stream)
        {"watch_events_f32", stream, 1}, {"watch_read_f32", stream, 1}, {"watch_release_f32", stream, 1, 1}, {"watch_reset_f32", stream, 1}};
 endfunction
 
-function bytes = saved_bytes (stream)
-  [status, fault, bytes] = __rampwise__ ("stream_save", stream);
+function bytes = saved_bytes (command, object)
+  [status, fault, bytes] = __rampwise__ (command, object);
 endfunction
 
 ## One watch, as before a call that may have made more: those would slow down what comes.
@@ -48,6 +51,14 @@ function stream = new_stream (ending)
   [status, fault, stream] = __rampwise__ (["stream_make" ending], [1; 0.1; 9], 0.1, 11, 21, 61, 65, 68, 10, 1, ...
                                           [-Inf, Inf], [31, 33; zeros(4, 2)], [1, 0, 9]);
   __rampwise__ (["stream_watch" ending], stream, [31; 0; 0; 0; 0], [1, -1; 0, 0; 1, -1; 0, 1], 5, 5);
+endfunction
+
+## Of two inputs, with equipment, and after a sample.
+function structure = new_structure ()
+  s = [1; 0.1; 9];
+  [status, fault, structure] = __rampwise__ ("structure_make", [s, s], 0.1, 11, 21, ones (2, 2), ones (3, 2), ones (3, 2), ...
+                                             ones (3, 2), ones (3, 2), 1, [s, s], [1, 3], [0, 1], [2, 0]);
+  __rampwise__ ("structure_run", structure, [1; 2], 0);
 endfunction
 
 function junk = nonsense ()
@@ -83,7 +94,8 @@ before = __rampwise__ ("objects");
 [status, fault, single_bank] = __rampwise__ ("bank_make_f32", [1, 1; 0, 0; 4, 9], 0.1, 11, 21);
 stream = new_stream ("");
 single_stream = new_stream ("_f32");
-calls = [good_calls(bank, single_bank, stream), single_calls(single_stream)];
+structure = new_structure ();
+calls = [good_calls(bank, single_bank, stream, structure), single_calls(single_stream)];
 junk = nonsense ();
 for call = calls
   try
@@ -101,7 +113,9 @@ for repeat = 1:2000
     __rampwise__ ("object_free", single_stream);
     stream = new_stream ("");
     single_stream = new_stream ("_f32");
-    calls = [good_calls(bank, single_bank, stream), single_calls(single_stream)];
+    __rampwise__ ("object_free", structure);
+    structure = new_structure ();
+    calls = [good_calls(bank, single_bank, stream, structure), single_calls(single_stream)];
   endif
   call = calls{randi(numel (calls))};
   for i = 1:randi (2)

@@ -114,19 +114,14 @@ endfunction
 
 ## SIX is {larger, its time, high, its time, low, its time} x periods x dampings x quantities x channels.
 function s = results (s, six, rigid)
-  pick = @(k, q) reshape (six(k,:,:,q,:), size (six)([2, 3, 5:end]));
   quantities = {"displacement", "SD"; "velocity", "SV"; "total_acceleration", "SA"};
   for q = 1:3
-    s.(quantities{q,2}) = abs (pick (1, q));
+    [s.(quantities{q,1}), s.(quantities{q,2})] = peak_pages (reshape (six(:,:,:,q,:), size (six)([1, 2, 3, 5:end])));
   endfor
   s.PSV = s.omega .* s.SD;
   s.PSA = s.omega .* s.PSV;
   s.PSV(rigid,:,:) = 0;
   s.PSA(rigid,:,:) = s.SA(rigid,:,:);
-  for q = 1:3
-    s.(quantities{q,1}) = struct ("sign", sign (pick (1, q)), "time", pick (2, q), "high", pick (3, q), "high_time",
-                                  pick (4, q), "low", pick (5, q), "low_time", pick (6, q));
-  endfor
 endfunction
 
 ## THREE is {error of high, of low, abrupt} beside SIX.

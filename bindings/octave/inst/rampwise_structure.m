@@ -24,7 +24,8 @@
 ## of the damped structure; @code{classical}, true or false; and @code{provenance} and what the package needs.
 ##
 ## Results support, and never replace, the governing code and a licensed engineer's judgement.
-## @seealso{rampwise_structure_response, rampwise_combine}
+## @seealso{rampwise_structure_response, rampwise_participation, rampwise_floor_spectrum, rampwise_live_structure,
+## rampwise_combine}
 ## @end deftypefn
 
 function b = rampwise_structure (M, C, K, varargin)

@@ -44,6 +44,13 @@ const double *doubles(const mxArray *a, size_t count)
     return mxGetPr(a);
 }
 
+const double *of_size(const mxArray *a, size_t rows, size_t columns)
+{
+    if (mxGetM(real_double(a)) != rows || mxGetN(a) != columns)
+        refuse("a matrix has the wrong size");
+    return mxGetPr(a);
+}
+
 const char *text(const mxArray *a)
 {
     if (!mxIsChar(a))

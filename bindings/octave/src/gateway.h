@@ -27,7 +27,8 @@ double scalar(const mxArray *a);
 int integer(const mxArray *a);
 size_t whole_number(const mxArray *a);                 /* 0 to 2^31 - 1 */
 const double *doubles(const mxArray *a, size_t count); /* a vector or matrix of so many elements */
-const char *text(const mxArray *a);                    /* valid until the call ends */
+const double *of_size(const mxArray *a, size_t rows, size_t columns);
+const char *text(const mxArray *a); /* valid until the call ends */
 size_t count_systems(const mxArray *a);
 
 /* Aligned, and freed when the call ends. */
@@ -79,7 +80,8 @@ void objects_clear(void);
 typedef void command_call(mxArray **out, const mxArray **in);
 command_call coefficients, system_from, response, response_f32, peaks, rigid_peaks, list_log, list_octaves;
 command_call energies, energy_spectrum, directions, percentiles_over_angle;
-command_call structure, roots_to_modes, combine;
+command_call roots_to_modes, static_correction, mass_share, combine;
+command_call structure_make, structure_start, structure_run, structure_read, structure_save, structure_resume;
 command_call object_free, objects;
 command_call bank_make, bank_start, bank_run, bank_read, bank_set, bank_retune, bank_count;
 command_call bank_make_f32, bank_start_f32, bank_run_f32, bank_read_f32, bank_set_f32, bank_retune_f32,

@@ -1,13 +1,5 @@
-/* Whole structures by their modes, and the combination of modes' peaks. */
-#include <math.h>
+/* From a structure to its modes, what modes left out still do, and the combination of modes' peaks. */
 #include "gateway.h"
-
-static const double *of_size(const mxArray *a, size_t rows, size_t columns)
-{
-    if (mxGetM(real_double(a)) != rows || mxGetN(a) != columns)
-        refuse("a matrix has the wrong size");
-    return mxGetPr(a);
-}
 
 /* bodies x bodies: mass, damper; roots as columns {real; imaginary}, their shapes as columns of such pairs, forces for a
    unit of each input (bodies x inputs), weights of each output on displacement and on velocity (bodies x outputs)
@@ -49,61 +41,50 @@ void roots_to_modes(mxArray **out, const mxArray **in)
     out[5] = on_velocity;
 }
 
-/* Sample 0 at rest under it, and the others; the outputs of all. */
-static int run_modes(rampwise_modes *modes, size_t n, size_t inputs, const double *input, double *output,
-                     size_t outputs, size_t *bad)
-{
-    *bad = 0;
-    int status = rampwise_modes_start(modes, input);
-    if (status == RAMPWISE_OK)
-        status = rampwise_modes_read(modes, output);
-    if (status == RAMPWISE_OK) {
-        status = rampwise_modes_run(modes, n - 1, input + inputs, output + outputs, bad);
-        *bad += status != RAMPWISE_OK;
-    }
-    return status;
-}
-
-/* systems, dt, input, between; load (inputs x modes); weights of outputs on displacement, velocity and acceleration
-   (outputs x modes) and on inputs (outputs x inputs); samples (inputs x samples); whether peaks are wanted
-   -> outputs (outputs x samples), peaks (6 x outputs, or empty) */
-void structure(mxArray **out, const mxArray **in)
+/* load (inputs x modes) of systems, dt, input, between, from in[0] to in[4], in a plan of so many outputs. Its
+   coefficients are NULL, with the answer given, where they cannot be made. */
+static rampwise_modes_plan plan_of(mxArray **out, const mxArray **in, size_t outputs)
 {
     rampwise_modes_plan plan;
     rampwise_modes_plan_init(&plan);
     plan.modes = count_systems(in[0]);
-    plan.inputs = mxGetM(real_double(in[9]));
-    plan.outputs = mxGetM(real_double(in[5]));
+    plan.inputs = mxGetM(real_double(in[4]));
+    plan.outputs = outputs;
     plan.load = of_size(in[4], plan.inputs, plan.modes);
-    plan.on_displacement = of_size(in[5], plan.outputs, plan.modes);
-    plan.on_velocity = of_size(in[6], plan.outputs, plan.modes);
-    plan.on_acceleration = of_size(in[7], plan.outputs, plan.modes);
-    plan.on_input = of_size(in[8], plan.outputs, plan.inputs);
-    plan.peaks = integer(in[10]) != 0;
-    const size_t n = mxGetN(in[9]);
-    if (n == 0 || plan.inputs == 0)
-        refuse("there are no samples");
     plan.c = make_coefficients(out, in);
+    return plan;
+}
+
+/* systems, dt, input, between; load; weights of outputs on displacement (outputs x modes); outputs settled under a
+   unit of each input (outputs x inputs) -> weights of outputs on inputs (outputs x inputs) */
+void static_correction(mxArray **out, const mxArray **in)
+{
+    const size_t outputs = mxGetM(real_double(in[5]));
+    rampwise_modes_plan plan = plan_of(out, in, outputs);
     if (plan.c == NULL)
         return;
-    const size_t bytes = rampwise_modes_size(&plan);
-    mxArray *const output = matrix(plan.outputs, n);
-    rampwise_modes *modes = NULL;
-    size_t bad = 0;
-    int status = rampwise_modes_init(memory(bytes + 1, rampwise_modes_alignment()), bytes, &plan, &modes);
-    if (status == RAMPWISE_OK)
-        status = run_modes(modes, n, plan.inputs, mxGetPr(in[9]), mxGetPr(output), plan.outputs, &bad);
-    if (answer(out, status, bad + 1) != RAMPWISE_OK)
+    plan.on_displacement = of_size(in[5], outputs, plan.modes);
+    const double *const settled = of_size(in[6], outputs, plan.inputs);
+    mxArray *const on_input = matrix(outputs, plan.inputs);
+    if (answer(out, rampwise_static_correction(&plan, settled, mxGetPr(on_input)), 0) == RAMPWISE_OK)
+        out[2] = on_input;
+}
+
+/* systems, dt, input, between; load; mass that moves under each input -> the share of it that the first 1, 2, .. modes
+   take (inputs x modes) */
+void mass_share(mxArray **out, const mxArray **in)
+{
+    rampwise_modes_plan plan = plan_of(out, in, 1);
+    if (plan.c == NULL)
         return;
-    out[2] = output;
-    if (!plan.peaks)
-        return;
-    rampwise_peak *const peak = mxCalloc(plan.outputs, sizeof *peak);
-    out[3] = matrix(6, plan.outputs);
-    if (rampwise_modes_peaks(modes, peak) != RAMPWISE_OK)
-        refuse("peaks cannot be read");
-    for (size_t i = 0; i < plan.outputs; ++i)
-        put_peak(mxGetPr(out[3]) + 6 * i, &peak[i], scalar(in[1]));
+    const size_t modes = plan.modes;
+    const double *const mass = doubles(in[5], plan.inputs);
+    mxArray *const share = matrix(plan.inputs, modes);
+    int status = RAMPWISE_OK;
+    for (plan.modes = 1; status == RAMPWISE_OK && plan.modes <= modes; ++plan.modes)
+        status = rampwise_mass_share(&plan, mass, mxGetPr(share) + (plan.modes - 1) * plan.inputs);
+    if (answer(out, status, 0) == RAMPWISE_OK)
+        out[2] = share;
 }
 
 /* rule, peaks of modes (a column), omegas, damping ratios (as many), share -> their combination */

@@ -18,20 +18,9 @@ function s = systems (caller, options)
 endfunction
 
 function s = of_struct (caller, options)
-  s = options.system;
   if (! isempty ([options.period(:); options.frequency(:); options.omega(:); options.damping(:)])
       || ! isequal (options.mass, 1))
     error ("rampwise:option", "%s: give either 'system' or a description of one", caller);
   endif
-  if (! isstruct (s) || ! isscalar (s) || ! all (isfield (s, {"mass", "damper", "stiffness"})))
-    error ("rampwise:argument", "%s: 'system' must be a struct of mass, damper and stiffness", caller);
-  endif
-  m = numbers (caller, "mass", s.mass)(:).';
-  c = numbers (caller, "damper", s.damper)(:).';
-  k = numbers (caller, "stiffness", s.stiffness)(:).';
-  n = max ([numel(m), numel(c), numel(k)]);
-  if (any ([numel(m), numel(c), numel(k)] != n & [numel(m), numel(c), numel(k)] != 1) || isempty (m))
-    error ("rampwise:argument", "%s: mass, damper and stiffness must have as many elements, or one", caller);
-  endif
-  s = [m .* ones(1, n); c .* ones(1, n); k .* ones(1, n)];
+  s = columns_of (caller, "'system'", options.system);
 endfunction
