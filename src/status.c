@@ -46,7 +46,8 @@ const char *rampwise_status_text(int status)
     case RAMPWISE_ERROR_INTERVAL:
         return "The sample interval is not a finite number above zero";
     case RAMPWISE_ERROR_STEP_LENGTH:
-        return "The step is too long for this oscillator: no digits would be left";
+        return "The step is too long for an oscillator: no digits would be left, or there is no looking "
+               "between its samples";
     case RAMPWISE_ERROR_COEFFICIENT:
         return "A coefficient of the step overflows";
     case RAMPWISE_ERROR_FRACTION:

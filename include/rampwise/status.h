@@ -35,7 +35,7 @@ enum {
     RAMPWISE_ERROR_STIFFNESS = -34,   /* stiffness is not finite */
     RAMPWISE_ERROR_FREQUENCY = -36,   /* frequency negative, period not above 0, or either extreme */
     RAMPWISE_ERROR_INTERVAL = -38,    /* dt is not a finite number above 0 */
-    RAMPWISE_ERROR_STEP_LENGTH = -40, /* the step is too long for the oscillator to keep digits */
+    RAMPWISE_ERROR_STEP_LENGTH = -40, /* the step is too long for an oscillator */
     RAMPWISE_ERROR_COEFFICIENT = -42, /* a coefficient overflows */
     RAMPWISE_ERROR_FRACTION = -44,    /* a fraction of a step that is not from 0 to 1 */
     RAMPWISE_ERROR_PERCENT = -45,     /* a percentile that is not from 0 to 100 */
