@@ -12,11 +12,11 @@ enum { MANY = 40, MOST = 2000, LONG = 1000000 };
 
 static const int frames[2] = {RAMPWISE_RELATIVE, RAMPWISE_ABSOLUTE};
 
-/* RAMPWISE_POINTS=x asks for x thousandths of the usual number of cases, from 1000 up. */
+/* RAMPWISE_POINTS=x asks for x/2000 of the usual number of cases, from 2000 up. */
 static int cases(int usual)
 {
     const char *const given = getenv("RAMPWISE_POINTS");
-    const double times = given != NULL ? fmax(1, strtod(given, NULL) / 1000) : 1;
+    const double times = given != NULL ? fmax(1, strtod(given, NULL) / 2000) : 1;
     return (int)(usual * times);
 }
 

@@ -1,8 +1,9 @@
 #include "quad_response.h"
 
 #include <math.h>
+#include <string.h>
 
-enum { TERMS = 44 };
+enum { TERMS = 32 }; /* of a quarter radian: the rest is below 1e-50 */
 
 /* Relative motion y'' + damping y' + stiffness y = f + f_slope t inside a step; the base's acceleration is
    -f - f_slope t for a moving base. */
@@ -20,16 +21,27 @@ static quad size_of(quad a)
     return a < 0 ? -a : a;
 }
 
-static quad derivative_at(const quad *power, int order, quad x)
+static quad value_at(const quad *power, quad x)
 {
     quad sum = 0;
-    for (int n = TERMS - 1; n >= order; --n) {
-        quad factor = 1;
-        for (int k = 0; k < order; ++k)
-            factor *= n - k;
-        sum = sum * x + factor * power[n];
-    }
+    for (int n = TERMS - 1; n >= 0; --n)
+        sum = sum * x + power[n];
     return sum;
+}
+
+/* Its last term is zero. */
+static void derive(const quad *power, quad *derivative)
+{
+    for (int n = 0; n + 1 < TERMS; ++n)
+        derivative[n] = (n + 1) * power[n + 1];
+    derivative[TERMS - 1] = 0;
+}
+
+static quad slope_at_end(const quad *power)
+{
+    quad slope[TERMS];
+    derive(power, slope);
+    return value_at(slope, 1);
 }
 
 static void series_of(const rampwise_coeffs *c, int quantity, const motion *m, quad length, series *s)
@@ -74,12 +86,12 @@ static void note(quad_peaks *peaks, quad value, quad time, quad sharp)
 }
 
 /* Bisection to a hundred bits: slow and certain. */
-static quad zero_between(const quad *power, int order, quad low, quad high)
+static quad zero_between(const quad *power, quad low, quad high)
 {
-    const int rising = derivative_at(power, order, low) < 0;
+    const int rising = value_at(power, low) < 0;
     for (int i = 0; i < 104; ++i) {
         const quad middle = (low + high) / 2;
-        if ((derivative_at(power, order, middle) < 0) == rising)
+        if ((value_at(power, middle) < 0) == rising)
             low = middle;
         else
             high = middle;
@@ -87,25 +99,33 @@ static quad zero_between(const quad *power, int order, quad low, quad high)
     return (low + high) / 2;
 }
 
-static void scan_part(const series *s, quad low, quad high, quad begin, quad length, quad_peaks *peaks)
+/* A quantity inside a piece, its first and its second derivative */
+typedef struct shape {
+    quad z[TERMS], slope[TERMS], bend[TERMS];
+} shape;
+
+static void scan_part(const shape *s, quad low, quad high, quad begin, quad length, quad_peaks *peaks)
 {
-    const quad a = derivative_at(s->z, 1, low), b = derivative_at(s->z, 1, high);
+    const quad a = value_at(s->slope, low), b = value_at(s->slope, high);
     if ((a < 0 && b > 0) || (a > 0 && b < 0)) {
-        const quad x = zero_between(s->z, 1, low, high);
-        note(peaks, derivative_at(s->z, 0, x), begin + x * length,
-             size_of(derivative_at(s->z, 2, x)) / (length * length));
+        const quad x = zero_between(s->slope, low, high);
+        note(peaks, value_at(s->z, x), begin + x * length, size_of(value_at(s->bend, x)) / (length * length));
     }
 }
 
-static void scan_piece(const series *s, quad begin, quad length, quad_peaks *peaks)
+static void scan_piece(const quad *z, quad begin, quad length, quad_peaks *peaks)
 {
-    const quad a = derivative_at(s->z, 2, 0), b = derivative_at(s->z, 2, 1);
+    shape s;
+    memcpy(s.z, z, sizeof s.z);
+    derive(s.z, s.slope);
+    derive(s.slope, s.bend);
+    const quad a = value_at(s.bend, 0), b = value_at(s.bend, 1);
     if ((a < 0 && b > 0) || (a > 0 && b < 0)) {
-        const quad turn = zero_between(s->z, 2, 0, 1);
-        scan_part(s, 0, turn, begin, length, peaks);
-        scan_part(s, turn, 1, begin, length, peaks);
+        const quad turn = zero_between(s.bend, 0, 1);
+        scan_part(&s, 0, turn, begin, length, peaks);
+        scan_part(&s, turn, 1, begin, length, peaks);
     } else {
-        scan_part(s, 0, 1, begin, length, peaks);
+        scan_part(&s, 0, 1, begin, length, peaks);
     }
 }
 
@@ -180,13 +200,13 @@ static quad go(const rampwise_coeffs *c, double u0, double v0, size_t n, const d
             series_of(c, quantity, &m, length * (quad)c->dt, &s);
             if (peaks != NULL) {
                 note(peaks, s.z[0], begin, 0);
-                scan_piece(&s, begin, length, peaks);
-                note(peaks, derivative_at(s.z, 0, 1), begin + length, 0);
+                scan_piece(s.z, begin, length, peaks);
+                note(peaks, value_at(s.z, 1), begin + length, 0);
             } else if (time < begin + length || (i + 2 == n && k + 1 == pieces)) {
-                return derivative_at(s.z, 0, (time - begin) / length);
+                return value_at(s.z, (time - begin) / length);
             }
-            m.y = derivative_at(s.y, 0, 1);
-            m.w = derivative_at(s.y, 1, 1) / (length * (quad)c->dt);
+            m.y = value_at(s.y, 1);
+            m.w = slope_at_end(s.y) / (length * (quad)c->dt);
             m.f += m.f_slope * length * (quad)c->dt;
         }
         if (c->input == RAMPWISE_BASE_DISPLACEMENT && c->between == RAMPWISE_HOLD)
@@ -291,8 +311,8 @@ void quad_energies(const rampwise_coeffs *c, int frame_kind, double u0, double v
             const quad_energy before = now;
             add_piece(c, &frame, &m, length, slope, &now);
             series_of(c, RAMPWISE_DISPLACEMENT, &m, h, &s);
-            m.y = derivative_at(s.y, 0, 1);
-            m.w = derivative_at(s.y, 1, 1) / h;
+            m.y = value_at(s.y, 1);
+            m.w = slope_at_end(s.y) / h;
             m.f += m.f_slope * h;
             note_motion(c, &frame, &m, slope, &now);
             take_changes(&before, &now, moved_inside, &now.moved_inside);
