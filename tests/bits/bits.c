@@ -427,7 +427,8 @@ static void structures(const char *name, size_t part)
     uint64_t hash = empty;
     state = 99;
     for (int kind = 0; kind < 4; ++kind) {
-        rampwise_peak peak[OUTPUTS + PIECES];
+        rampwise_peak peak[OUTPUTS + PIECES], after[PIECES];
+        double later[PIECES];
         rampwise_modes *const modes = make_structure(kind);
         for (int i = 0; i < SHORT; ++i)
             p[i] = signed_number(range(-4, 0));
@@ -440,6 +441,8 @@ static void structures(const char *name, size_t part)
         (void)rampwise_equipment_peaks(modes, RAMPWISE_TOTAL_ACCELERATION, peak + OUTPUTS);
         hash = hashed(hashed(hash, output, sizeof output), x, sizeof x);
         hash = hashed_peaks(hash, peak, OUTPUTS + PIECES);
+        (void)rampwise_equipment_residual(modes, RAMPWISE_DISPLACEMENT, SHORT, after, later);
+        hash = hashed(hashed_peaks(hash, after, PIECES), later, sizeof later);
         rampwise_modes_free(modes);
     }
     printf("structures.%s %016" PRIx64 "\n", name, hash);
