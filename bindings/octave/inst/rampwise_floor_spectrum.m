@@ -34,7 +34,8 @@
 ## @item @code{sampled}
 ## what the usual way finds, by @code{rampwise_spectrum}: the points' accelerations at the samples taken for straight in
 ## between, which they are not. It loses @code{1 - (sin (x) / x)^2}, @code{x = pi/N}, in a motion of N samples a
-## cycle: 3.2 % of one of ten. For "maximax" it goes over zeros after the record, to the last instant of a peak;
+## cycle: 3.2 % of one of ten. For "maximax" it goes over zeros after the record, to the last instant of a peak; where the
+## record does not end with a zero, the line down to the first of them is one more difference;
 ## @item @code{sampled_error}
 ## by which share SA of the usual way is off, negative where it is too small;
 ## @item @code{provenance}
