@@ -14,6 +14,9 @@
 ## The points, a row of weights on the masses each: the unit matrix, every mass, unless given.
 ## @item "input", "on", "modes"
 ## as in @code{rampwise_structure_response}, but that "input" is "base acceleration" unless given.
+## @item "part"
+## "primary" (default): from the first to the last sample. "maximax": in the free motion of structure and equipment after it
+## too, as in @code{rampwise_live_structure_read}.
 ## @end table
 ##
 ## @var{s} is a struct:
@@ -24,13 +27,15 @@
 ## @item @code{SD}, @code{SA}, @code{PSA}
 ## its largest displacement against its point and its largest total acceleration, in size; and omega^2 SD;
 ## @item @code{displacement}, @code{total_acceleration}
-## structs of what lies behind SD and SA, as in @code{rampwise_spectrum};
+## structs of what lies behind SD and SA, as in @code{rampwise_spectrum}; of "maximax" with a field @code{later} as in
+## @code{rampwise_live_structure_read};
 ## @item @code{floor}
 ## the peaks of the points' own total acceleration, as in @code{rampwise_structure_response};
 ## @item @code{sampled}
 ## what the usual way finds, by @code{rampwise_spectrum}: the points' accelerations at the samples taken for straight in
 ## between, which they are not. It loses @code{1 - (sin (x) / x)^2}, @code{x = pi/N}, in a motion of N samples a
-## cycle: 3.2 % of one of ten;
+## cycle: 3.2 % of one of ten. For "maximax" it goes over zeros after the record, to the last instant of a peak; where the
+## record does not end with a zero, the line down to the first of them is one more difference;
 ## @item @code{sampled_error}
 ## by which share SA of the usual way is off, negative where it is too small;
 ## @item @code{provenance}
@@ -53,6 +58,7 @@ function s = rampwise_floor_spectrum (b, p, dt, varargin)
   if (! all (s.omega > 0 & isfinite (s.omega)))
     error ("rampwise:frequency", "%s: option '%s' must be finite and above 0: equipment is neither rigid nor free", caller, way);
   endif
+  part = part_number (caller, options.part, {"primary", "maximax"});
   live = equipped (caller, b, dt, options, way, value, zeta);
   [h, status, fault] = push_structure (caller, live, p, false);
   n = rows (h.total_acceleration);
@@ -60,21 +66,26 @@ function s = rampwise_floor_spectrum (b, p, dt, varargin)
   if (n < 2)
     error ("rampwise:argument", "%s: P must hold two samples or more", caller);
   endif
-  [status, fault, ~, ~, ~, six, of_displacement, of_total] = __rampwise__ ("structure_read", live.object);
+  [status, fault, ~, ~, ~, of_floor, of_displacement, of_total] = ...
+    __rampwise__ ("structure_read", live.object, part, free_steps ());
   check (caller, status, fault);
-  pages = @(six) reshape (six, 6, numel (value), numel (zeta), live.rows);
+  pages = @(peaks) reshape (peaks, rows (peaks), numel (value), numel (zeta), live.rows);
   [s.displacement, s.SD] = peak_pages (pages (of_displacement));
   [s.total_acceleration, s.SA] = peak_pages (pages (of_total));
   s.PSA = s.omega .* (s.omega .* s.SD);
-  s.floor = peak_rows (six);
-  s.sampled = rampwise_spectrum (h.total_acceleration, dt, way, value, "damping", zeta, "allow_strong_damping", true);
+  s.floor = peak_rows (of_floor);
+  floors = h.total_acceleration;
+  if (part != 0)
+    floors = [floors; over_zeros(caller, live, last_sample (s, dt) + 1 - n)];
+  endif
+  s.sampled = rampwise_spectrum (floors, dt, way, value, "damping", zeta, "allow_strong_damping", true);
   s.sampled_error = s.sampled.SA ./ s.SA - 1;
   s.provenance = provenance ();
 endfunction
 
 function options = defaults ()
   options = struct ("period", [], "frequency", [], "omega", [], "damping", 0.05, "allow_strong_damping", false, "input",
-                    "base acceleration", "on", [], "rows", [], "modes", []);
+                    "base acceleration", "on", [], "rows", [], "modes", [], "part", "primary");
 endfunction
 
 ## The structure with a piece of equipment for each period, damping ratio and point, in this order.
@@ -91,6 +102,20 @@ function s = equipped (caller, b, dt, options, way, value, zeta)
   whole.point = on(:);
   whole.equipment = rampwise_system (way, v(:), "damping", z(:), "allow_strong_damping", true);
   s = make_structure (caller, b, dt, whole, 4);
+endfunction
+
+## The first sample that no peak of the equipment comes after, but for those that are never reached.
+function last = last_sample (s, dt)
+  instants_of = @(peaks) [peaks.high_time(:); peaks.low_time(:)];
+  instants = [instants_of(s.displacement); instants_of(s.total_acceleration)];
+  last = ceil (max ([0; instants(isfinite (instants))]) / dt);
+endfunction
+
+## The floors' accelerations under so many zeros more.
+function a = over_zeros (caller, live, count)
+  [h, status, fault] = push_structure (caller, live, zeros (max (count, 0), live.inputs), false);
+  check (caller, status, fault);
+  a = h.total_acceleration;
 endfunction
 
 %!demo
@@ -137,6 +162,25 @@ endfunction
 %! r = rampwise_structure_response (b, [p, cos(p)], dt, "input", "force", "on", [0, 1; 2, 0; 0, -3], "modes", 2, ...
 %!                                  "equipment", rampwise_system ("omega", 7, "damping", 0.05), "point", 3);
 %! assert (f.SA, abs (r.equipment.peaks.total_acceleration.largest));
+%!test # maximax: those of pieces in a list, bit for bit
+%! q = [p(1:61); 0]; g = {"rows", [0, 0, 1], "part", "maximax"};
+%! f = rampwise_floor_spectrum (b, q, dt, o{:}, g{:}); first = rampwise_floor_spectrum (b, q, dt, o{:}, g{1:2});
+%! e = rampwise_system ("period", [0.3, 0.8, 0.3, 0.8, 0.3, 0.8], "damping", [0.02, 0.02, 0.1, 0.1, 0.5, 0.5]);
+%! x = rampwise_structure_response (b, q, dt, "input", "base acceleration", "equipment", e, "point", 3, "part", "maximax");
+%! for name = {"displacement", "total_acceleration"}
+%!   for field = {"high", "low", "time", "later"}
+%!     assert (f.(name{1}).(field{1})(:).', x.equipment.peaks.(name{1}).(field{1}));
+%!   endfor
+%! endfor
+%! assert (f.floor.high, x.peaks.total_acceleration.high(3));
+%! assert (all (f.SA(:) >= first.SA(:)));
+%! assert (! isfield (first.displacement, "later"));
+%!test # a floor that swings on for ever: tuned equipment comes to the steady state, sqrt (1 + 4 zeta^2) / (2 zeta) of it, the usual way too
+%! f = rampwise_floor_spectrum (rampwise_structure (1, 0, (2 * pi / 10) ^ 2), [0; 1; 0], 1, "period", 10, "damping", 0.02, "part", "maximax");
+%! assert (f.SA, f.floor.high * sqrt (1 + 4 * 0.02 ^ 2) / (2 * 0.02), -1e-10);
+%! assert (f.sampled_error, (sin (pi / 10) / (pi / 10)) ^ 2 - 1, 2e-4);
+%! assert (f.SA <= f.total_acceleration.later * (1 + 1e-11));
+%!error <'part' must be one of: primary, maximax> rampwise_floor_spectrum (b, p, dt, o{:}, "part", "residual")
 %!error <Invalid call> rampwise_floor_spectrum (b, p)
 %!error <B must come from> rampwise_floor_spectrum (1, p, dt, o{:})
 %!error <exactly one of> rampwise_floor_spectrum (b, p, dt)

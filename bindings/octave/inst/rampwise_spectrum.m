@@ -64,8 +64,7 @@ function s = rampwise_spectrum (p, dt, varargin)
   dt = scalar (caller, "DT", dt);
   [s, way, value, zeta] = grid_of (caller, options);
   [input, between] = kinds (caller, options);
-  parts = {"primary", "residual", "maximax"};
-  part = [0, constant("RESIDUAL"), constant("MAXIMAX")](choice (caller, "part", options.part, parts));
+  part = part_number (caller, options.part);
   at_samples = truth (caller, "at_samples", options.at_samples) * constant ("AT_SAMPLES");
   evidence = truth (caller, "evidence", options.evidence);
 

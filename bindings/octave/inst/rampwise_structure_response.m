@@ -29,14 +29,16 @@
 ## for tuned equipment too.
 ## @item "peaks"
 ## true (default) or false: find the peaks between the samples too.
+## @item "part"
+## Of which time the peaks are: "primary" (default), "residual" or "maximax", as in @code{rampwise_live_structure_read}.
 ## @end table
 ##
 ## @var{r} is a struct of @code{time}, a column; matrices @code{displacement}, @code{velocity}, @code{acceleration} and
 ## @code{total_acceleration} (against a fixed frame), a row each sample and a column each row of "rows"; @code{peaks}, a
 ## struct of the four names, with structs of rows @code{largest} (in size, with its sign), @code{time}, @code{high},
-## @code{high_time}, @code{low} and @code{low_time}; where there is equipment @code{equipment}, a struct of the same four
-## motions, against its point but for the total acceleration, a column each piece, and @code{peaks} of its displacement and
-## total acceleration; and @code{provenance}.
+## @code{high_time}, @code{low}, @code{low_time} and, but for "primary", @code{later}; where there is equipment
+## @code{equipment}, a struct of the same four motions, against its point but for the total acceleration, a column each
+## piece, and @code{peaks} of its displacement and total acceleration; and @code{provenance}.
 ##
 ## Results support, and never replace, the governing code and a licensed engineer's judgement.
 ## @seealso{rampwise_structure, rampwise_live_structure, rampwise_floor_spectrum, rampwise_combine}
@@ -50,13 +52,17 @@ function r = rampwise_structure_response (b, p, dt, varargin)
   if (isempty (p))
     error ("rampwise:argument", "%s: P holds no samples", caller);
   endif
-  s = make_structure (caller, b, dt, parse (caller, structure_options (), varargin), 1:4);
+  options = structure_options ();
+  options.part = "primary";
+  options = parse (caller, options, varargin);
+  part = part_number (caller, options.part);
+  s = make_structure (caller, b, dt, options, 1:4);
   [h, status, fault] = push_structure (caller, s, p, true);
   n = rows (h.displacement);
   check (caller, status, fault, [n, s.inputs]);
   r = cell2struct ([{(0:n - 1).' * dt}; struct2cell(h)], [{"time"}; fieldnames(h)]);
   if (s.peaks)
-    now = read_structure (caller, s);
+    now = read_structure (caller, s, part, free_steps ());
     r.peaks = now.peaks;
     if (s.pieces > 0)
       r.equipment.peaks = now.equipment.peaks;
@@ -224,8 +230,18 @@ endfunction
 %!   r = rampwise_response (p, dt, "system", struct ("mass", 1, "damper", 0.6, "stiffness", 9), o{:});
 %!   assert (s.displacement, r.displacement);
 %! endfor
+%!test # parts of the time: those of the live structure; the histories are the same
+%! b = rampwise_structure (M, C, K); e = rampwise_system ("omega", 7, "damping", 0.05);
+%! o = {"input", "base acceleration", "equipment", e, "point", 3};
+%! s = rampwise_live_structure (b, dt, o{:}); h = rampwise_live_structure_push (s, p);
+%! for part = {"primary", "residual", "maximax"}
+%!   r = rampwise_structure_response (b, p, dt, o{:}, "part", part{1});
+%!   now = rampwise_live_structure_read (s, "part", part{1});
+%!   assert ({r.displacement, r.peaks, r.equipment.peaks}, {h.displacement, now.peaks, now.equipment.peaks});
+%! endfor
 %!shared b
 %! b = rampwise_structure (eye (2), [], [2, -1; -1, 1], "damping", 0.05);
+%!error <'part' must be one of> rampwise_structure_response (b, 1, 1, "input", "base acceleration", "part", "after")
 %!error <Invalid call> rampwise_structure_response (b, 1)
 %!error <B must come from> rampwise_structure_response (1, 1, 1, "input", "force")
 %!error <a column for each of the 1 of option 'on'> rampwise_structure_response (b, ones (2, 3), 1, "input", "force", "on", [1; 1])

@@ -69,6 +69,14 @@ size_t whole_number(const mxArray *a)
     return (size_t)n;
 }
 
+uint64_t sample_number(const mxArray *a)
+{
+    const double x = scalar(a);
+    if (!(x >= 0 && x <= 9007199254740992.0) || x != floor(x))
+        refuse("a number of samples is whole, and not negative");
+    return (uint64_t)x;
+}
+
 size_t count_systems(const mxArray *a)
 {
     if (mxGetM(real_double(a)) != 3)

@@ -82,7 +82,7 @@ static const struct command {
     {"stream_watch", 5, 3, stream_watch},
     {"stream_watch_f32", 5, 3, stream_watch_f32},
     {"structure_make", 14, 3, structure_make},
-    {"structure_read", 1, 8, structure_read},
+    {"structure_read", 3, 8, structure_read},
     {"structure_resume", 2, 2, structure_resume},
     {"structure_run", 3, 7, structure_run},
     {"structure_save", 1, 3, structure_save},

@@ -26,6 +26,7 @@ const mxArray *real_double(const mxArray *a);
 double scalar(const mxArray *a);
 int integer(const mxArray *a);
 size_t whole_number(const mxArray *a);                 /* 0 to 2^31 - 1 */
+uint64_t sample_number(const mxArray *a);              /* 0 to 2^53 */
 const double *doubles(const mxArray *a, size_t count); /* a vector or matrix of so many elements */
 const double *of_size(const mxArray *a, size_t rows, size_t columns);
 const char *text(const mxArray *a); /* valid until the call ends */

@@ -187,41 +187,89 @@ void structure_run(mxArray **out, const mxArray **in)
     mxGetPr(out[1])[0] = status == RAMPWISE_OK ? 0 : (double)bad + 1;
 }
 
-static mxArray *peaks_of(const rampwise_peak *peak, size_t n, double dt)
+/* Which peaks: part is 0 (from sample 0 to the present), RAMPWISE_RESIDUAL or RAMPWISE_MAXIMAX; samples is how many of the
+   free motion are looked at, at most. */
+typedef struct peaks_question {
+    int part;
+    uint64_t samples;
+} peaks_question;
+
+static peaks_question question_from(const mxArray **in)
 {
-    mxArray *const a = matrix(6, n);
-    for (size_t i = 0; i < n; ++i)
-        put_peak(mxGetPr(a) + 6 * i, &peak[i], dt);
-    return a;
+    const peaks_question question = {integer(in[0]), sample_number(in[1])};
+    if (question.part != 0 && question.part != RAMPWISE_RESIDUAL && question.part != RAMPWISE_MAXIMAX)
+        refuse("there is no such part of the time");
+    return question;
 }
 
-/* out[5] to out[7] */
-static int read_peaks(const kept_structure *k, mxArray **out)
+enum { OF_OUTPUTS = 0 }; /* beside the quantities of equipment */
+
+static int peaks_before(const kept_structure *k, int quantity, rampwise_peak *peak)
 {
-    static const int quantities[2] = {RAMPWISE_DISPLACEMENT, RAMPWISE_TOTAL_ACCELERATION};
-    rampwise_peak *const peak = mxCalloc(k->outputs + k->pieces, sizeof *peak);
-    int status = rampwise_modes_peaks(k->modes, peak);
-    if (status == RAMPWISE_OK)
-        out[5] = peaks_of(peak, k->outputs, k->dt);
-    for (int i = 0; status == RAMPWISE_OK && k->pieces > 0 && i < 2; ++i) {
-        status = rampwise_equipment_peaks(k->modes, quantities[i], peak);
-        out[6 + i] = peaks_of(peak, k->pieces, k->dt);
+    return quantity == OF_OUTPUTS ? rampwise_modes_peaks(k->modes, peak)
+                                  : rampwise_equipment_peaks(k->modes, quantity, peak);
+}
+
+static int peaks_after(const kept_structure *k, int quantity, uint64_t samples, rampwise_peak *peak,
+                       double *later)
+{
+    return quantity == OF_OUTPUTS ? rampwise_modes_residual(k->modes, samples, peak, later)
+                                  : rampwise_equipment_residual(k->modes, quantity, samples, peak, later);
+}
+
+static rampwise_peak of_both_times(const rampwise_peak *before, const rampwise_peak *after)
+{
+    return (rampwise_peak){after->high.value > before->high.value ? after->high : before->high,
+                           after->low.value < before->low.value ? after->low : before->low};
+}
+
+/* A column for each of n outputs or pieces: six of put_peak and, but for part 0, what no value after the samples that
+   were looked at exceeds in size. */
+static int read_peaks(const kept_structure *k, int quantity, size_t n, const peaks_question *question,
+                      mxArray **out)
+{
+    const int part = question->part;
+    const size_t rows = part == 0 ? 6 : 7;
+    rampwise_peak *const before = mxCalloc(n, sizeof *before), *const after = mxCalloc(n, sizeof *after);
+    double *const later = mxCalloc(n, sizeof *later);
+    int status = part == RAMPWISE_RESIDUAL ? RAMPWISE_OK : peaks_before(k, quantity, before);
+    if (status == RAMPWISE_OK && part != 0)
+        status = peaks_after(k, quantity, question->samples, after, later);
+    *out = matrix(rows, n);
+    for (size_t i = 0; i < n; ++i) {
+        double *const to = mxGetPr(*out) + rows * i;
+        const rampwise_peak both = of_both_times(&before[i], &after[i]);
+        put_peak(to, part == 0 ? &before[i] : part == RAMPWISE_RESIDUAL ? &after[i] : &both, k->dt);
+        if (part != 0)
+            to[6] = later[i];
     }
     return status;
 }
 
-/* object -> outputs at the present sample, u and v of equipment, peaks (6 x outputs), those of the displacement and of
-   the total acceleration of equipment (6 x pieces), empty where there are none. RAMPWISE_ERROR_NOT_MADE before sample 0 */
+/* out[5] to out[7] */
+static int read_all_peaks(const kept_structure *k, const peaks_question *question, mxArray **out)
+{
+    static const int quantities[2] = {RAMPWISE_DISPLACEMENT, RAMPWISE_TOTAL_ACCELERATION};
+    int status = read_peaks(k, OF_OUTPUTS, k->outputs, question, &out[5]);
+    for (int i = 0; status == RAMPWISE_OK && k->pieces > 0 && i < 2; ++i)
+        status = read_peaks(k, quantities[i], k->pieces, question, &out[6 + i]);
+    return status;
+}
+
+/* object, part of the time, samples of free motion -> outputs at the present sample, u and v of equipment, peaks (6 or 7
+   x outputs), those of the displacement and of the total acceleration of equipment (6 or 7 x pieces), empty where there
+   are none. RAMPWISE_ERROR_NOT_MADE before sample 0 */
 void structure_read(mxArray **out, const mxArray **in)
 {
     const kept_structure *const k = object_find(in[0], &structures);
+    const peaks_question question = question_from(in + 1);
     if (answer(out, k->started ? RAMPWISE_OK : RAMPWISE_ERROR_NOT_MADE, 0) != RAMPWISE_OK)
         return;
     for (int i = 2; i < 5; ++i)
         out[i] = matrix(i == 2 ? k->outputs : k->pieces, 1);
     if (rampwise_modes_read(k->modes, mxGetPr(out[2])) != RAMPWISE_OK ||
         rampwise_equipment_get(k->modes, mxGetPr(out[3]), mxGetPr(out[4])) != RAMPWISE_OK ||
-        (k->peaks && read_peaks(k, out) != RAMPWISE_OK))
+        (k->peaks && read_all_peaks(k, &question, out) != RAMPWISE_OK))
         refuse("a structure cannot be read");
 }
 

@@ -4,14 +4,6 @@
 #include <string.h>
 #include "gateway.h"
 
-static uint64_t sample_number(const mxArray *a)
-{
-    const double x = scalar(a);
-    if (!(x >= 0 && x <= 9007199254740992.0) || x != floor(x))
-        refuse("a sample's number is whole, and not negative");
-    return (uint64_t)x;
-}
-
 /* UINT64_MAX is the library's "none". */
 static double from_number(uint64_t x)
 {
