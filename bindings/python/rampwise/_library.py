@@ -207,7 +207,7 @@ _PROTOTYPES: Dict[str, Any] = {  # the result first
     "rampwise_modes_size": (_SIZE, _POINTER),
     "rampwise_modes_alignment": (_SIZE,),
     "rampwise_modes_init": (_INT, _POINTER, _SIZE, _POINTER, _POINTER),
-    "rampwise_modes_start": (_INT, _POINTER, _POINTER),
+    "rampwise_modes_set": (_INT, _POINTER, _POINTER, _POINTER, _POINTER),
     "rampwise_modes_read": (_INT, _POINTER, _POINTER),
     "rampwise_modes_peaks": (_INT, _POINTER, _POINTER),
     "rampwise_modes_residual": (_INT, _POINTER, ctypes.c_uint64, _POINTER, _POINTER),

@@ -35,7 +35,7 @@ class Equipment(NamedTuple):
 
 
 class Oscillators(NamedTuple):
-    """A structure as oscillators under forces: the arrays of the library's plan."""
+    """A structure as oscillators under forces: the arrays of the library's plan, and where they begin."""
 
     system: System  # (modes,)
     load: Doubles  # (modes, inputs)
@@ -43,6 +43,7 @@ class Oscillators(NamedTuple):
     on_velocity: Doubles
     on_acceleration: Doubles
     on_input: Doubles  # (inputs, outputs)
+    begin: Doubles  # (2, modes): displacements, velocities at sample 0
 
     def plan(self, coeffs: NDArray[np.void]) -> NDArray[np.void]:
         """The library's struct; it holds while this tuple and the coefficients live."""
@@ -51,7 +52,7 @@ class Oscillators(NamedTuple):
         plan["modes"], plan["inputs"] = self.load.shape
         plan["outputs"] = self.on_input.shape[1]
         plan["c"] = _library.address(coeffs)
-        for name in self._fields[1:]:
+        for name in self._fields[1:-1]:
             plan[name] = _library.address(getattr(self, name))
         return plan
 
@@ -113,8 +114,8 @@ class StructureResponse(Result):
 class LiveStructure:
     """A structure on samples as they come, made by `Structure.live`.
 
-    It begins at rest under the first sample. However a record is cut into blocks, the bits are the same. It belongs to
-    one thread at a time; it can be pickled, and goes on where it was with the same bits.
+    Sample 0 is the first. However a record is cut into blocks, the bits are the same. It belongs to one thread at a
+    time; it can be pickled, and goes on where it was with the same bits.
     """
 
     def __init__(
@@ -129,6 +130,8 @@ class LiveStructure:
         for name, piece in equipment.items():
             if piece.on not in outputs:
                 raise ValueError(f"equipment: {name!r} stands on {piece.on!r}, which is none of the outputs")
+        if not np.isfinite(oscillators.begin).all():
+            _library.check(_library.constant("ERROR_STATE"), state="displacement, velocity")
         made = coefficients(oscillators.system, _arrays.double(dt, "dt"), input="force", between=between)
         options = {"dt": float(dt), "between": between, "peaks": bool(peaks), "outputs": list(outputs)}
         self._make(oscillators, made, options, dict(equipment))
@@ -171,7 +174,7 @@ class LiveStructure:
         return provenance(**self._options)
 
     def start(self) -> None:
-        """Begins anew: at rest under the next sample, which is sample 0."""
+        """Begins anew under the next sample, which is sample 0: at rest, or as `Structure.live` was told."""
         self._started = False
 
     def put(self, samples: ArrayLike, *, equipment_histories: bool = False) -> StructureBlock:
@@ -228,7 +231,8 @@ class LiveStructure:
         if wrong.size > 0:
             status = _library.constant("ERROR_SAMPLE")
             _library.check(status, f"at sample {wrong[0]} of this block", sample="samples")
-        status = _library.call("modes_start", self._at, _library.address(block))
+        places = [_library.address(array) for array in (*self._oscillators.begin, block)]
+        status = _library.call("modes_set", self._at, *places)
         _library.check(status, "at sample 0 of this block", overflow="samples")
         _library.check(_library.call("modes_read", self._at, _library.address(values)))
         if histories is not None:  # at rest against its point

@@ -137,6 +137,27 @@ class _Rows(NamedTuple):
     input: Doubles  # (outputs, inputs)
 
 
+def _oscillators_of_roots(
+    damper: Doubles, squares: Doubles, load: Doubles, on_displacement: Doubles, on_velocity: Doubles
+) -> Tuple[System, Doubles, Doubles, Doubles]:
+    """By rampwise_roots_to_modes: oscillators, their loads and weights, from those of bodies of mass 1 [body][...]."""
+    found, shapes = damped_roots(squares, damper)
+    held = {"mass": np.eye(len(load)), "damper": damper, "root": found, "shape": shapes,
+            "force": np.ascontiguousarray(load.T), "on_displacement": np.ascontiguousarray(on_displacement.T),
+            "on_velocity": np.ascontiguousarray(on_velocity.T)}  # fmt: skip
+    roots = np.zeros(1, _library.ROOTS)
+    _library.call("roots_init", _library.address(roots))
+    (roots["bodies"], roots["inputs"]), roots["outputs"] = load.shape, on_velocity.shape[1]
+    for name, array in held.items():
+        roots[name] = _library.address(array)
+    modes = _library.call("roots_modes", _library.address(roots))
+    systems = np.zeros(modes, _library.SYSTEM)
+    made = [np.zeros((modes, given.shape[1])) for given in (load, on_displacement, on_velocity)]
+    places = [_library.address(array) for array in (roots, systems, *made)]
+    _library.check(_library.call("roots_to_modes", *places), weight="outputs, displacement or velocity")
+    return System(systems["mass"], systems["damper"], systems["stiffness"]), made[0], made[1], made[2]
+
+
 class Structure:
     """M u'' + C u' + K u = sum of force vectors times inputs, with u relative to a moving base.
 
@@ -288,7 +309,8 @@ class Structure:
         nothing = np.zeros((len(shapes), 1))
         system = System(1.0, 0.0, self._squares[: len(shapes)])
         load = np.ascontiguousarray(shapes @ self._force[:directions].T)
-        bare = Oscillators(system, load, nothing, nothing, nothing, np.zeros((directions, 1)))
+        weights = (nothing, nothing, nothing, np.zeros((directions, 1)))
+        bare = Oscillators(system, load, *weights, begin=np.zeros((2, len(shapes))))
         coeffs = coefficients(system, 1 / (self.omega.max() or 1.0), input="force")  # of any step
         whole = np.einsum("in,nm,im->i", self._direction, self._mass, self._direction)
         places = [_library.address(array) for array in (bare.plan(coeffs), whole, share)]
@@ -374,7 +396,19 @@ class Structure:
                 raise TypeError(f"outputs: {name!r} is no row of this structure")
         return _Rows(*(np.stack(parts) for parts in zip(*(row._parts() for row in outputs.values()))))
 
-    def _classical_oscillators(self, count: int, rows: _Rows) -> Oscillators:
+    def _state(self, **given: ArrayLike) -> Doubles:
+        """Displacements and velocities of the undamped modes, shape' M u of each: [2][n]."""
+        n = len(self.omega)
+        state = np.zeros((2, n))
+        for part, (name, values) in zip(state, given.items()):
+            motion = _arrays.doubles(values, name)
+            if motion.shape not in ((), (n,)) or not np.isfinite(motion).all():
+                raise ValueError(f"{name}: one finite number, or {n}, are needed, not shape {motion.shape}")
+            with np.errstate(over="ignore", invalid="ignore"):  # a LiveStructure refuses what is not finite
+                part[:] = self.shapes @ (self._mass @ np.broadcast_to(motion, n))
+        return state
+
+    def _classical_oscillators(self, count: int, rows: _Rows, state: Doubles) -> Oscillators:
         shapes = self.shapes[:count]
         dampers = self._modal_damper.diagonal()[:count]
         return Oscillators(
@@ -384,13 +418,14 @@ class Structure:
             np.ascontiguousarray(shapes @ rows.velocity.T),
             np.ascontiguousarray(shapes @ rows.acceleration.T),
             np.ascontiguousarray(rows.input.T),
+            np.ascontiguousarray(state[:, :count]),
         )
 
-    def _paired_oscillators(self, rows: _Rows) -> Oscillators:
+    def _paired_oscillators(self, rows: _Rows, state: Doubles) -> Oscillators:
         """Undamped rigid bodies as they are; pairs of roots of all that the damper ties together."""
         free = (self._squares == 0) & (np.abs(self._modal_damper) <= self._zero_damper).all(axis=1)
         tied = np.flatnonzero(~free)
-        whole = self._classical_oscillators(len(self.omega), rows)
+        whole = self._classical_oscillators(len(self.omega), rows, state)
         pairs = self._pairs(tied, whole)
         none = np.zeros(int(free.sum()))
         return Oscillators(
@@ -400,32 +435,31 @@ class Structure:
             np.concatenate((whole.on_velocity[free], pairs.on_velocity)),
             np.concatenate((whole.on_acceleration[free], pairs.on_acceleration)),
             pairs.on_input,
+            np.ascontiguousarray(np.hstack((whole.begin[:, free], pairs.begin))),
         )
 
     def _pairs(self, tied: NDArray[np.intp], whole: Oscillators) -> Oscillators:
-        """By rampwise_roots_to_modes, in the coordinates of the undamped modes: q'' = -C q' - omega^2 q + load."""
-        accelerations, load = whole.on_acceleration[tied], whole.load[tied]
+        """In the coordinates of the undamped modes: q'' = -C q' - omega^2 q + load.
+
+        From q and q' they go on as from rest after the derivative of an impulse q, and an impulse C q + q': two inputs
+        more. An oscillator z'' + c z' + k z = L p is at z, z' = L, -c L after the one, at 0, L after the other.
+        """
+        accelerations, load, q = whole.on_acceleration[tied], whole.load[tied], whole.begin[:, tied]
         damper = np.ascontiguousarray(self._modal_damper[np.ix_(tied, tied)])
         on_displacement = whole.on_displacement[tied] - self._squares[tied, np.newaxis] * accelerations
         on_velocity = whole.on_velocity[tied] - damper @ accelerations
-        found, shapes = damped_roots(self._squares[tied], damper)
-        held = {"mass": np.eye(tied.size), "damper": damper, "root": found, "shape": shapes,
-                "force": np.ascontiguousarray(load.T), "on_displacement": np.ascontiguousarray(on_displacement.T),
-                "on_velocity": np.ascontiguousarray(on_velocity.T)}  # fmt: skip
-        roots = np.zeros(1, _library.ROOTS)
-        _library.call("roots_init", _library.address(roots))
-        inputs, outputs = whole.on_input.shape
-        roots["bodies"], roots["inputs"], roots["outputs"] = tied.size, inputs, outputs
-        for name, array in held.items():
-            roots[name] = _library.address(array)
-        modes = _library.call("roots_modes", _library.address(roots))
-        systems = np.zeros(modes, _library.SYSTEM)
-        made = [np.zeros((modes, width)) for width in (inputs, outputs, outputs)]
-        places = [_library.address(array) for array in (roots, systems, *made)]
-        _library.check(_library.call("roots_to_modes", *places))
-        system = System(systems["mass"], systems["damper"], systems["stiffness"])
+        impulses = np.stack((q[0], damper @ q[0] + q[1]), axis=1) if q.any() else np.zeros((tied.size, 0))
+        system, loads, on_displacement, on_velocity = _oscillators_of_roots(
+            damper, self._squares[tied], np.hstack((load, impulses)), on_displacement, on_velocity
+        )
+        begin = np.zeros((2, len(loads)))
+        if q.any():
+            begin[0] = loads[:, -2]
+            begin[1] = loads[:, -1] - system.damper * begin[0]
+        loads = np.ascontiguousarray(loads[:, : load.shape[1]])
         on_input = whole.on_input + load.T @ accelerations
-        return Oscillators(system, made[0], made[1], made[2], np.zeros((modes, outputs)), on_input)
+        none = np.zeros_like(on_displacement)
+        return Oscillators(system, loads, on_displacement, on_velocity, none, on_input, begin)
 
     def _corrected(self, oscillators: Oscillators, rows: _Rows, dt: float, between: Between) -> Oscillators:
         """With weights on the inputs for what modes left out still do.
@@ -448,6 +482,8 @@ class Structure:
         outputs: Mapping[str, Row],
         *,
         between: Between = "ramp",
+        displacement: ArrayLike = 0.0,
+        velocity: ArrayLike = 0.0,
         modes: Optional[int] = None,
         static_correction: bool = False,
         peaks: bool = True,
@@ -463,15 +499,21 @@ class Structure:
             What is wanted, by names: ``{"roof": frame.total_acceleration(2)}``.
         between : {'ramp', 'hold'}
             What the inputs do between samples.
+        displacement, velocity : array_like, shape () or (n,)
+            Initial values of the degrees of freedom, against the base at the first sample: one for all, or one each.
+            Where damping is not classical and there is one input, they double the oscillators.
         modes : int, optional
-            How many modes are kept, from the slowest on; all where not given. For classical damping.
+            How many modes are kept, from the slowest on; all where not given. For classical damping. What those left
+            out hold of `displacement` and `velocity` is left out with them, as of the load: shape' M u of those kept
+            stays, which comes as near to u as their shapes can, by u' M u (of a velocity, twice the kinetic energy).
         static_correction : bool
             The outputs settle where the whole structure does, although modes are left out (residual mode, missing
             mass).
         peaks : bool
             Looks for peaks, true between the samples. Without them a sample is cheaper.
         equipment : dict of Equipment, optional
-            Light equipment by names, exact for the sampled inputs, tuned to the structure or not.
+            Light equipment by names, exact for the sampled inputs, tuned to the structure or not. It begins at rest
+            against its point.
 
         Returns
         -------
@@ -479,12 +521,13 @@ class Structure:
         """
         rows = self._rows(outputs)
         count = self._count(modes)
+        state = self._state(displacement=displacement, velocity=velocity)
         if self.classical:
-            oscillators = self._classical_oscillators(count, rows)
+            oscillators = self._classical_oscillators(count, rows, state)
         elif count < len(self.omega) or static_correction:
             raise ValueError("modes: they can be left out, and corrected, for classical damping only")
         else:
-            oscillators = self._paired_oscillators(rows)
+            oscillators = self._paired_oscillators(rows, state)
         if static_correction:
             oscillators = self._corrected(oscillators, rows, _arrays.double(dt, "dt"), between)
         return LiveStructure(oscillators, dt, tuple(outputs), between, peaks, equipment or {})
@@ -496,30 +539,43 @@ class Structure:
         outputs: Mapping[str, Row],
         *,
         between: Between = "ramp",
+        displacement: ArrayLike = 0.0,
+        velocity: ArrayLike = 0.0,
         modes: Optional[int] = None,
         static_correction: bool = False,
         peaks: bool = True,
         part: Part = "primary",
         equipment: Optional[Mapping[str, Equipment]] = None,
     ) -> StructureResponse:
-        """The response to a whole record, from rest under its first sample.
+        """The response to a whole record, from its first sample on.
 
         Parameters
         ----------
         record : array_like, shape (n,) or (n, inputs)
             Instants along the first axis; (n,) where there is one input.
-        dt, outputs, between, modes, static_correction, peaks, equipment
+        dt, outputs, between, displacement, velocity, modes, static_correction, peaks, equipment
             As in `live`.
         part : {'primary', 'residual', 'maximax'}
-            Whether the peaks are those of the record, of the free motion after it, or both: as in `LiveStructure.peaks`.
+            Whether the peaks are those of the record, of the free motion after it, or both: as in
+            `LiveStructure.peaks`.
 
         Returns
         -------
         StructureResponse
             Exact for inputs that are straight (or held) between the samples.
+
+        Examples
+        --------
+        Pulled along its first mode and let go, a frame is on the other side half a period later.
+
+        >>> import numpy, rampwise
+        >>> frame = rampwise.Structure([2.0, 1.0], [[3.0, -1.0], [-1.0, 1.0]], damping=0.0, force=[0.0, 1.0])
+        >>> half, top = numpy.pi / frame.omega[0], {"top": frame.displacement(1)}
+        >>> frame.respond(numpy.zeros(2), half, top, displacement=[1.0, 2.0])["top"].round(12)
+        array([ 2., -2.])
         """
-        live = self.live(dt, outputs, between=between, modes=modes, static_correction=static_correction, peaks=peaks,
-                         equipment=equipment)  # fmt: skip
+        live = self.live(dt, outputs, between=between, displacement=displacement, velocity=velocity, modes=modes,
+                         static_correction=static_correction, peaks=peaks, equipment=equipment)  # fmt: skip
         block = live.put(record, equipment_histories=bool(equipment))
         return StructureResponse(
             np.arange(len(block.values)) * float(dt),
