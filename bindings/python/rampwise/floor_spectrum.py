@@ -110,8 +110,8 @@ def floor_spectrum(
         Ratios to critical damping. Every ratio meets every period.
     part : {'primary', 'maximax'}
         From the first to the last sample, or in the free motion of structure and equipment after it too, as in
-        `LiveStructure.peaks`. The usual way then goes over zeros to the last instant of a peak; where the record does not
-        end with a zero, the line down to the first of them is one more difference.
+        `LiveStructure.peaks`. The usual way then goes over zeros to the last instant of a peak; where the record does
+        not end with a zero, the line down to the first of them is one more difference.
     modes : int, optional
         How many modes of the structure are kept, as in `Structure.live`.
     allow_strong_damping : bool

@@ -50,8 +50,8 @@ class Peaks:
         Where evidence was asked for: estimates of what the sampling of the record has cost each. ``high - high_error``
         is closer to the response to the smooth load.
     later : ndarray or None
-        Of a structure's free motion: no value after the steps that were looked at is larger in size. Where that is above
-        the smaller of ``high`` and ``-low``, a peak after them may be larger than the one found.
+        Of a structure's free motion: no value after the steps that were looked at is larger in size. Where that is
+        above the smaller of ``high`` and ``-low``, a peak after them may be larger than the one found.
     """
 
     high: Doubles
