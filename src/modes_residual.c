@@ -169,8 +169,8 @@ static void later_of_piece(const rampwise_modes *m, size_t i, double later[QUANT
     later[0] += largest_of(&rest);
     later[1] += largest_of(&force);
     if (driven > 0) {
-        later[0] += driven / sqrt(k);
-        later[1] += driven * sqrt(k + c * c);
+        later[0] += k > 0 ? driven / sqrt(k) : INFINITY;
+        later[1] += k > 0 ? driven * sqrt(k + c * c) : k < 0 || c != 0 ? INFINITY : 0;
     }
 }
 

@@ -194,6 +194,46 @@ START_TEST(what_comes_later)
 }
 END_TEST
 
+/* Rigid bodies, masses on dampers, motions that grow: a bound or none, but always an answer, that later motion keeps. */
+START_TEST(every_regime)
+{
+    gsl_rng *const r = random_make("every_regime");
+    static const double zeta[2] = {0.02, 0.02};
+    int bounded = 0, endless = 0;
+    for (int i = 0; i < cases(60); ++i) {
+        static scene s;
+        rampwise_peak first[VALUES], all[VALUES];
+        double later[VALUES], still_later[VALUES];
+        make(&s, r, zeta, 0.01);
+        for (int j = 0; j < MODES; ++j) {
+            const rampwise_system sys = regime_system((int)gsl_rng_uniform_int(r, i % 3 == 0 ? REGIMES : 5),
+                                                      random_log(r, 0.02, 0.5), 0.01);
+            ck_assert_int_eq(
+                rampwise_coeffs_make(&s.c[j], &sys, 0.01, RAMPWISE_BASE_ACCELERATION, RAMPWISE_RAMP),
+                RAMPWISE_OK);
+        }
+        for (int j = 0; j < PIECES; ++j)
+            s.equipment[j] =
+                j < 2 ? s.c[j].system
+                      : regime_system((int)gsl_rng_uniform_int(r, REGIMES), random_log(r, 0.02, 0.5), 0.01);
+        rampwise_modes *const modes = run(&s);
+        residuals_of(modes, 500, first, later);
+        residuals_of(modes, 2000, all, still_later);
+        for (int k = 0; k < VALUES; ++k) {
+            const double rounding = 1e-11 * size_of(&all[k]);
+            ck_assert(!isnan(later[k]) && !isnan(still_later[k]));
+            ck_assert(all[k].high.value <= fmax(first[k].high.value, later[k]) + rounding);
+            ck_assert(-all[k].low.value <= fmax(-first[k].low.value, later[k]) + rounding);
+            bounded += later[k] < INFINITY;
+            endless += later[k] == INFINITY;
+        }
+        rampwise_modes_free(modes);
+    }
+    ck_assert(bounded > 0 && endless > 0);
+    gsl_rng_free(r);
+}
+END_TEST
+
 /* One mode: the closed form of peaks.h, instants too; equipment on ground that does not move is an oscillator in free
    motion as well. Undamped ones are final at once. */
 START_TEST(closed_form)
@@ -326,6 +366,7 @@ static void add_tests(TCase *tests)
 {
     tcase_add_test(tests, as_a_run_over_zeros);
     tcase_add_test(tests, what_comes_later);
+    tcase_add_test(tests, every_regime);
     tcase_add_test(tests, closed_form);
     tcase_add_test(tests, beats);
     tcase_add_test(tests, refusals);
