@@ -166,7 +166,7 @@ START_TEST(what_comes_later)
         rampwise_modes *const modes = run(&s);
         const uint64_t samples = 1 + gsl_rng_uniform_int(r, 2000);
         residuals_of(modes, samples, first, later);
-        residuals_of(modes, 5000, all, still_later);
+        residuals_of(modes, 3000, all, still_later);
         for (int k = 0; k < VALUES; ++k) {
             const int tuned =
                 zetas[i % 6][0] == 0 && zetas[i % 6][1] == 0 && k >= OUTPUTS && (k - OUTPUTS) % PIECES == 0;
@@ -200,7 +200,7 @@ START_TEST(every_regime)
     gsl_rng *const r = random_make("every_regime");
     static const double zeta[2] = {0.02, 0.02};
     int bounded = 0, endless = 0;
-    for (int i = 0; i < cases(60); ++i) {
+    for (int i = 0; i < cases(24); ++i) {
         static scene s;
         rampwise_peak first[VALUES], all[VALUES];
         double later[VALUES], still_later[VALUES];
@@ -217,8 +217,8 @@ START_TEST(every_regime)
                 j < 2 ? s.c[j].system
                       : regime_system((int)gsl_rng_uniform_int(r, REGIMES), random_log(r, 0.02, 0.5), 0.01);
         rampwise_modes *const modes = run(&s);
-        residuals_of(modes, 500, first, later);
-        residuals_of(modes, 2000, all, still_later);
+        residuals_of(modes, 300, first, later);
+        residuals_of(modes, 1000, all, still_later);
         for (int k = 0; k < VALUES; ++k) {
             const double rounding = 1e-11 * size_of(&all[k]);
             ck_assert(!isnan(later[k]) && !isnan(still_later[k]));
