@@ -94,7 +94,7 @@ void rampwise_modes_note_(rampwise_peak *peak, double value, uint64_t sample, do
 void rampwise_modes_curve_(const double *series, double floor_high, double floor_low, uint64_t sample,
                            size_t piece, size_t pieces, rampwise_peak *peak);
 
-/* equipment.c: as the functions above; only where there is equipment */
+/* equipment.c and equipment_peaks.c: as the functions above; only where there is equipment */
 void rampwise_equipment_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r);
 int rampwise_equipment_check_(const rampwise_modes_plan *plan);
 int rampwise_equipment_fill_(rampwise_modes *m, const rampwise_modes_plan *plan);
