@@ -7,6 +7,16 @@
 #include "rampwise/status.h"
 #include "valid.h"
 
+void rampwise_equipment_steps_take_(const rampwise_modes *m, equipment_steps *steps, size_t count, room *r)
+{
+    const size_t rows = 2 * padded(count) * sizeof(double);
+    steps->c = rampwise_room_take_(r, count, sizeof *steps->c);
+    steps->from_u = rampwise_room_take_(r, m->groups * LANES, rows);
+    steps->from_v = rampwise_room_take_(r, m->groups * LANES, rows);
+    steps->from_before = rampwise_room_take_(r, m->inputs, rows);
+    steps->from_now = rampwise_room_take_(r, m->inputs, rows);
+}
+
 void rampwise_equipment_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r)
 {
     equipment_core counted;
@@ -17,16 +27,12 @@ void rampwise_equipment_take_(rampwise_modes *m, const rampwise_modes_plan *plan
     e->count = count;
     e->width = width;
     e->point = rampwise_room_take_(r, count, sizeof *e->point);
-    e->c = rampwise_room_take_(r, count, sizeof *e->c);
+    rampwise_equipment_steps_take_(m, &e->steps, count, r);
     e->own = rampwise_room_take_(r, 4, row);
     e->u = rampwise_room_take_(r, 1, row);
     e->v = rampwise_room_take_(r, 1, row);
     e->u_begin = rampwise_room_take_(r, 1, row);
     e->v_begin = rampwise_room_take_(r, 1, row);
-    e->from_u = rampwise_room_take_(r, m->groups * LANES, 2 * row);
-    e->from_v = rampwise_room_take_(r, m->groups * LANES, 2 * row);
-    e->from_before = rampwise_room_take_(r, m->inputs, 2 * row);
-    e->from_now = rampwise_room_take_(r, m->inputs, 2 * row);
     e->gain = rampwise_room_take_(r, SEGMENT, 2 * row);
     e->sums = rampwise_room_take_(r, m->inputs, 4 * sizeof *e->sums);
     e->peaks = plan->peaks ? rampwise_equipment_peaks_take_(m, count, r) : NULL;
@@ -50,24 +56,23 @@ int rampwise_equipment_check_(const rampwise_modes_plan *plan)
 
 /* What the inputs at the two ends of a step do to piece i: directly, and as the loads of all modes. It cancels much
    of itself, as the direct weight of the point does. */
-static void fill_inputs(const rampwise_modes *m, size_t i)
+static void fill_inputs(const rampwise_modes *m, const equipment_steps *steps, size_t i)
 {
-    const equipment_core *const e = m->equipment;
+    const size_t width = m->equipment->width;
     for (size_t in = 0; in < m->inputs; ++in) {
-        const twofold *const sum = e->sums + 4 * in;
-        double *const before = e->from_before + 2 * in * e->width, *const now =
-                                                                       e->from_now + 2 * in * e->width;
+        const twofold *const sum = m->equipment->sums + 4 * in;
+        double *const before = steps->from_before + 2 * in * width;
+        double *const now = steps->from_now + 2 * in * width;
         before[i] = sum[0].hi;
-        before[e->width + i] = sum[1].hi;
+        before[width + i] = sum[1].hi;
         now[i] = sum[2].hi;
-        now[e->width + i] = sum[3].hi;
+        now[width + i] = sum[3].hi;
     }
 }
 
-static void begin_inputs(const rampwise_modes *m, size_t i)
+static void begin_inputs(const rampwise_modes *m, const rampwise_coeffs *c, size_t i)
 {
     const equipment_core *const e = m->equipment;
-    const rampwise_coeffs *const c = &e->c[i];
     const double direct[4] = {c->C, c->Cp, c->D, c->Dp};
     for (size_t in = 0; in < m->inputs; ++in)
         for (size_t k = 0; k < 4; ++k)
@@ -86,31 +91,40 @@ static void add_inputs(const rampwise_modes *m, size_t j, const cascade *row)
     }
 }
 
+int rampwise_equipment_steps_fill_(rampwise_modes *m, const rampwise_modes_plan *plan, equipment_steps *steps,
+                                   double dt, size_t i)
+{
+    const size_t point = m->equipment->point[i], width = m->equipment->width;
+    int status =
+        rampwise_coeffs_make(&steps->c[i], &plan->equipment[i], dt, RAMPWISE_BASE_ACCELERATION, m->between);
+    begin_inputs(m, &steps->c[i], i);
+    for (size_t j = 0; status == RAMPWISE_OK && j < m->modes; ++j) {
+        cascade row;
+        rampwise_coeffs mode = plan->c[j];
+        const size_t weight = j * m->width + point, to = 2 * j * width + i;
+        mode.dt = dt;
+        status = rampwise_cascade_make_(&row, &mode, &plan->equipment[i], m->weight_u[weight],
+                                        m->weight_v != NULL ? m->weight_v[weight] : 0);
+        steps->from_u[to] = row.displacement[0];
+        steps->from_u[to + width] = row.velocity[0];
+        steps->from_v[to] = row.displacement[1];
+        steps->from_v[to + width] = row.velocity[1];
+        add_inputs(m, j, &row);
+    }
+    fill_inputs(m, steps, i);
+    return status;
+}
+
 static int fill_piece(rampwise_modes *m, const rampwise_modes_plan *plan, size_t i)
 {
     equipment_core *const e = m->equipment;
-    rampwise_coeffs *const c = &e->c[i];
-    int status = rampwise_coeffs_make(c, &plan->equipment[i], m->dt, RAMPWISE_BASE_ACCELERATION, m->between);
+    const rampwise_coeffs *const c = &e->steps.c[i];
     e->point[i] = plan->point[i];
+    const int status = rampwise_equipment_steps_fill_(m, plan, &e->steps, m->dt, i);
     const double own[4] = {c->A_minus_1, c->B, c->Ap, c->Bp_minus_1};
     for (size_t k = 0; k < 4; ++k)
         e->own[k * e->width + i] = own[k];
-    begin_inputs(m, i);
-    for (size_t j = 0; status == RAMPWISE_OK && j < m->modes; ++j) {
-        cascade row;
-        const size_t weight = j * m->width + e->point[i], to = 2 * j * e->width + i;
-        status = rampwise_cascade_make_(&row, &plan->c[j], &plan->equipment[i], m->weight_u[weight],
-                                        m->weight_v != NULL ? m->weight_v[weight] : 0);
-        e->from_u[to] = row.displacement[0];
-        e->from_u[to + e->width] = row.velocity[0];
-        e->from_v[to] = row.displacement[1];
-        e->from_v[to + e->width] = row.velocity[1];
-        add_inputs(m, j, &row);
-    }
-    fill_inputs(m, i);
-    if (e->peaks != NULL)
-        rampwise_equipment_peaks_fill_(m, plan, i);
-    return status;
+    return status == RAMPWISE_OK && e->peaks != NULL ? rampwise_equipment_peaks_fill_(m, plan, i) : status;
 }
 
 int rampwise_equipment_fill_(rampwise_modes *m, const rampwise_modes_plan *plan)
@@ -138,8 +152,8 @@ void rampwise_equipment_begin_(rampwise_modes *m, size_t n)
     memcpy(e->u_begin, e->u, e->width * sizeof *e->u);
     memcpy(e->v_begin, e->v, e->width * sizeof *e->v);
     memset(e->gain, 0, 2 * n * e->width * sizeof *e->gain);
-    m->k->accumulate(m->inputs, n, m->input, m->inputs, e->from_before, 2 * e->width, e->gain);
-    m->k->accumulate(m->inputs, n, m->input + m->inputs, m->inputs, e->from_now, 2 * e->width, e->gain);
+    m->k->accumulate(m->inputs, n, m->input, m->inputs, e->steps.from_before, 2 * e->width, e->gain);
+    m->k->accumulate(m->inputs, n, m->input + m->inputs, m->inputs, e->steps.from_now, 2 * e->width, e->gain);
 }
 
 void rampwise_equipment_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, mode_tile *tile)
@@ -147,8 +161,8 @@ void rampwise_equipment_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, m
     equipment_core *const e = m->equipment;
     const size_t at = 2 * g * LANES * e->width;
     double *const gain = e->gain + 2 * t * TILE * e->width;
-    m->k->accumulate(modes_in(m, g), n, tile->u[0], LANES, e->from_u + at, 2 * e->width, gain);
-    m->k->accumulate(modes_in(m, g), n, tile->v[0], LANES, e->from_v + at, 2 * e->width, gain);
+    m->k->accumulate(modes_in(m, g), n, tile->u[0], LANES, e->steps.from_u + at, 2 * e->width, gain);
+    m->k->accumulate(modes_in(m, g), n, tile->v[0], LANES, e->steps.from_v + at, 2 * e->width, gain);
 }
 
 int rampwise_equipment_end_(rampwise_modes *m, size_t n)
@@ -181,9 +195,9 @@ void rampwise_equipment_put_(const rampwise_modes *m, size_t n, const rampwise_h
             if (out->v != NULL)
                 out->v[to] = v;
             if (out->a != NULL)
-                out->a[to] = total_of(&e->c[i], u, v) - m->output[k * m->width + e->point[i]];
+                out->a[to] = total_of(&e->steps.c[i], u, v) - m->output[k * m->width + e->point[i]];
             if (out->total != NULL)
-                out->total[to] = total_of(&e->c[i], u, v);
+                out->total[to] = total_of(&e->steps.c[i], u, v);
         }
 }
 

@@ -3,27 +3,45 @@
 #include <string.h>
 #include "equipment_core.h"
 
-/* Of a piece with a spring and no negative damper: frequency, damping rate over it, 1/stiffness, and what its free
-   vibration of size 1 is as a total acceleration. */
+/* Of a piece with a spring and no negative damper: frequency, damping rate over it, and 1/stiffness. */
 typedef struct envelope {
-    double omega, ratio, per_stiffness, as_total;
+    double omega, ratio, per_stiffness;
 } envelope;
 
-/* Bounds of displacement and total acceleration over one step. */
+/* By how much a quantity exceeds its values at the ends of a stretch (limits_of), for one of |x| there, of the rise of x,
+   of |y| with its excess, of the rise of y, and of the excess of y. */
+typedef struct curvature {
+    double by_u, by_rise, by_y, by_y_rise, by_y_excess;
+} curvature;
+
+/* What bounds a piece in stretches of one length. */
+typedef struct limits {
+    int is_short, swings;       /* which of the two below are there */
+    curvature of[LOOKED_AT];    /* short */
+    envelope to;                /* swings */
+    double as_total, per_angle; /* a free vibration of size 1 as a total acceleration; 1/(omega h) */
+    double on_u, on_v;          /* the total acceleration */
+} limits;
+
+/* Bounds of displacement and total acceleration over a stretch. */
 typedef struct reach {
     double high[LOOKED_AT], low[LOOKED_AT];
 } reach;
 
 struct equipment_peaks {
-    rampwise_peak *peak[LOOKED_AT]; /* [count] */
-    double *floor_high[LOOKED_AT], *floor_low[LOOKED_AT];
-    envelope *envelope;                          /* [count]; omega is 0 where there is none */
-    double *rest_weight, *rest_tile, *rest_step; /* [groups][LANES][width], [TILES][width], [TILE][width] */
-    uint32_t *tiles[LOOKED_AT];                  /* [count]: bits of those that may hold a peak */
-    uint32_t *first[LOOKED_AT];                  /* [count]: the step that promises most */
-    unsigned char *wanted;       /* [count]: bits of quantities that are looked at in a step */
-    double *u_inside, *v_inside; /* [count]: where the next piece of it begins */
-    uint32_t first_tiles;        /* bits of those where pieces have it */
+    rampwise_peak *peak[LOOKED_AT];                       /* [count] */
+    double *floor_high[LOOKED_AT], *floor_low[LOOKED_AT]; /* as those of outputs */
+    limits *step, *part;                                  /* [count] */
+    double *step_weight, *part_weight; /* [groups][LANES][width]: of the rest in a step and in a part */
+    double *rest_tile, *rest_step, *rest_part; /* [TILES][width], [TILE][width] and again */
+    equipment_steps by_part;                   /* steps as long as a part */
+    /* of a step that is looked at: */
+    unsigned char *wanted;       /* [count]: bits of quantities that may have a peak */
+    size_t *which;               /* [count][2]: columns of the pieces that are looked at */
+    size_t pieces;               /* how many these are */
+    double *inside;              /* [count][2][PARTS]: gains, then states at the ends of the parts */
+    uint32_t *spans[LOOKED_AT];  /* [count]: bits of those that may hold a peak */
+    double *u_inside, *v_inside; /* [count]: where the next piece of a span begins */
 };
 
 equipment_peaks *rampwise_equipment_peaks_take_(const rampwise_modes *m, size_t count, room *r)
@@ -37,13 +55,18 @@ equipment_peaks *rampwise_equipment_peaks_take_(const rampwise_modes *m, size_t 
         x->peak[q] = rampwise_room_take_(r, count, sizeof(rampwise_peak));
         x->floor_high[q] = rampwise_room_take_(r, 1, row);
         x->floor_low[q] = rampwise_room_take_(r, 1, row);
-        x->tiles[q] = rampwise_room_take_(r, count, sizeof(uint32_t));
-        x->first[q] = rampwise_room_take_(r, count, sizeof(uint32_t));
+        x->spans[q] = rampwise_room_take_(r, count, sizeof(uint32_t));
     }
-    x->envelope = rampwise_room_take_(r, count, sizeof *x->envelope);
-    x->rest_weight = rampwise_room_take_(r, m->groups * LANES, row);
+    x->step = rampwise_room_take_(r, count, sizeof *x->step);
+    x->part = rampwise_room_take_(r, count, sizeof *x->part);
+    x->step_weight = rampwise_room_take_(r, m->groups * LANES, row);
+    x->part_weight = rampwise_room_take_(r, m->groups * LANES, row);
     x->rest_tile = rampwise_room_take_(r, TILES, row);
     x->rest_step = rampwise_room_take_(r, TILE, row);
+    x->rest_part = rampwise_room_take_(r, TILE, row);
+    rampwise_equipment_steps_take_(m, &x->by_part, count, r);
+    x->which = rampwise_room_take_(r, count, 2 * sizeof *x->which);
+    x->inside = rampwise_room_take_(r, count, (size_t)2 * PARTS * sizeof(double));
     x->wanted = rampwise_room_take_(r, count, 1);
     x->u_inside = rampwise_room_take_(r, 1, row);
     x->v_inside = rampwise_room_take_(r, 1, row);
@@ -77,16 +100,16 @@ static double detuned(const swing *mode, const envelope *to, double h, double en
     return fmin(by_e, beside * k + ends);
 }
 
-/* What a free vibration of mode j, with the energy bound 1 of its q'', can do to a piece within one step, beyond what
-   the values of y at its ends tell; envelope_of below says how. The smallest of several bounds. */
-static double rest_of(const rampwise_modes *m, const envelope *to, const rampwise_coeffs *mode, double on_u,
-                      double on_v)
+/* What a free vibration of a mode, with the energy bound 1 of its q'' in a step, can do to a piece within a stretch of
+   length h inside, beyond what the values of y at its ends tell; envelope_of below says how. The smallest of several
+   bounds. */
+static double rest_of(const envelope *to, const rampwise_coeffs *mode, double h, double on_u, double on_v)
 {
-    const double h = m->dt, angle = to->omega * h, S = to->ratio * to->omega;
+    const double angle = to->omega * h, S = to->ratio * to->omega;
     const double stiffness = -mode->acceleration[0], damping = -mode->acceleration[1];
-    const double w = sqrt(fmax(stiffness, 0.25 / (h * h)));
+    const double slowest = 0.25 / (mode->dt * mode->dt), w = sqrt(fmax(stiffness, slowest));
     const double slow = (on_u + on_v * w) * to->per_stiffness * h / to->omega * (1.5 + S * h + to->ratio);
-    if (!(stiffness >= 0.25 / (h * h) && damping >= 0))
+    if (!(stiffness >= slowest && damping >= 0))
         return slow;
     const swing swinging = {w, 0.5 * damping / w, w / to->omega};
     const double inverse = rampwise_modes_inverse_(stiffness, damping), turned = sqrt(inverse) * stiffness;
@@ -97,21 +120,48 @@ static double rest_of(const rampwise_modes *m, const envelope *to, const rampwis
     return fmin(slow, (on_u + on_v * turned) * inverse * to->per_stiffness * size);
 }
 
-void rampwise_equipment_peaks_fill_(rampwise_modes *m, const rampwise_modes_plan *plan, size_t i)
+static envelope envelope_made(const rampwise_coeffs *c)
 {
-    equipment_core *const e = m->equipment;
-    const double k = -e->c[i].total[0], damping = -e->c[i].total[1];
-    envelope *const to = &e->peaks->envelope[i];
+    const double k = -c->total[0], damping = -c->total[1];
     if (!(k > 0 && damping >= 0))
-        return;
-    const double omega = sqrt(k), ratio = damping / omega;
-    *to = (envelope){omega, ratio, 1 / k, k * size_of(1, ratio)};
-    for (size_t j = 0; j < m->modes; ++j) {
-        const size_t weight = j * m->width + e->point[i];
+        return (envelope){0, 0, 0};
+    return (envelope){sqrt(k), damping / sqrt(k), 1 / k};
+}
+
+/* What a stretch can hold of a quantity beyond its ends: x'' = -k x - c x' - y, so with M the largest |x''|, |x| is at
+   most its ends' and h^2/8 M, |x'| at most the rise of x over h and h M, and M (1 - K/8 - S) is at most k |x| + c rise/h
+   + |y|. The second derivative of the total acceleration -(c x' + k x) is -(c x''' + k x''), and x''' follows from y',
+   which is at most the rise of y over h and h y'' = 8/h of the excess of y. Per mass. */
+static limits limits_of(const rampwise_coeffs *c, double h)
+{
+    const double k = fabs(c->total[0]), damping = fabs(c->total[1]), rest = 1 - k * h * h / 8 - damping * h;
+    const double curved = 1.0001 * h * h / 8, by_most = k + damping * (k * h + damping);
+    limits l = {.is_short = rest > 0.25, .to = envelope_made(c), .on_u = c->total[0], .on_v = c->total[1]};
+    const curvature most = {k / rest, damping / h / rest, 1 / rest, 0, 0};
+    l.of[0] = (curvature){curved * most.by_u, curved * most.by_rise, curved * most.by_y, 0, 0};
+    l.of[1] = (curvature){curved * by_most * most.by_u, curved * (by_most * most.by_rise + damping * k / h),
+                          curved * by_most * most.by_y, curved * damping / h, curved * damping * 8 / h};
+    l.swings = l.to.omega > 0;
+    l.as_total = k * size_of(1, l.to.ratio);
+    l.per_angle = l.swings ? 1 / (l.to.omega * h) : 0;
+    return l;
+}
+
+int rampwise_equipment_peaks_fill_(rampwise_modes *m, const rampwise_modes_plan *plan, size_t i)
+{
+    const equipment_core *const e = m->equipment;
+    equipment_peaks *const x = e->peaks;
+    x->step[i] = limits_of(&e->steps.c[i], m->dt);
+    x->part[i] = limits_of(&e->steps.c[i], m->dt / PARTS);
+    const envelope *const to = &x->step[i].to;
+    for (size_t j = 0; x->step[i].swings && j < m->modes; ++j) {
+        const size_t weight = j * m->width + e->point[i], at = j * e->width + i;
+        const double on_u = fabs(m->weight_u[weight]);
         const double on_v = m->weight_v != NULL ? fabs(m->weight_v[weight]) : 0;
-        e->peaks->rest_weight[j * e->width + i] =
-            1.0001 * rest_of(m, to, &plan->c[j], fabs(m->weight_u[weight]), on_v);
+        x->step_weight[at] = 1.0001 * rest_of(to, &plan->c[j], m->dt, on_u, on_v);
+        x->part_weight[at] = 1.0001 * rest_of(to, &plan->c[j], m->dt / PARTS, on_u, on_v);
     }
+    return rampwise_equipment_steps_fill_(m, plan, &x->by_part, m->dt / PARTS, i);
 }
 
 void rampwise_equipment_peaks_start_(rampwise_modes *m)
@@ -121,27 +171,11 @@ void rampwise_equipment_peaks_start_(rampwise_modes *m)
         memset(e->peaks->peak[q], 0, e->count * sizeof(rampwise_peak));
 }
 
-/* What a stretch of steps can hold of a quantity z beyond its samples: x'' = -k x - c x' - y, so with M the largest
-   |x''|, |x| is at most its samples' and h^2/8 M, |x'| at most the rise of x over h and h M, and M (1 - K/8 - S) is at
-   most k |x| + c rise/h + |y|. The second derivative of the total acceleration -(c x' + k x) is -(c x''' + k x''), and
-   x''' follows from y', which is at most the rise of y over h and h y'' = 8/h of the excess of y. Per mass. */
-typedef struct stretch_bound {
-    double u, u_rise, y, y_rise, y_excess;
-} stretch_bound;
-
-static double excess_of(const rampwise_coeffs *c, int q, const stretch_bound *b)
-{
-    const double h = c->dt, k = fabs(c->total[0]), damping = fabs(c->total[1]);
-    const double rest = 1 - k * h * h / 8 - damping * h, y = b->y + b->y_excess;
-    if (!(rest > 0.25))
-        return INFINITY;
-    const double most = (k * b->u + damping * b->u_rise / h + y) / rest;
-    if (q == 0)
-        return h * h / 8 * most;
-    const double third =
-        k * (b->u_rise / h + h * most) + damping * most + b->y_rise / h + 8 / h * b->y_excess;
-    return h * h / 8 * (damping * third + k * most);
-}
+/* A step, or a part of one: a piece's states and its point's acceleration y at the two ends; how much y exceeds those
+   in between; the jump of y that is part of it; and what else modes do (rest_of). */
+typedef struct stretch {
+    double u[2], v[2], y[2], excess, jump, rest;
+} stretch;
 
 static double looked_at(const rampwise_coeffs *c, int q, double u, double v)
 {
@@ -156,209 +190,307 @@ static double looked_at(const rampwise_coeffs *c, int q, double u, double v)
    is taken as it is: it drives x' + F, and x, to no more than 2 h (omega + c) |F|, and e differs from that by y/k and
    the free motion from y/k and its mean slope. Or the motion under a mode off tune is known. In the end x = e - y/k,
    and the total acceleration is y - (k e + c e') + c y'/k. */
-static void envelope_of(const rampwise_modes *m, size_t i, size_t k, double u, double v, double excess,
-                        double rest, reach *r)
+static reach envelope_of(const limits *l, const stretch *s)
 {
-    const equipment_core *const e = m->equipment;
-    const envelope *const to = &e->peaks->envelope[i];
-    const double now = m->output[k * m->width + e->point[i]],
-                 next = m->output[(k + 1) * m->width + e->point[i]];
-    const double high = (now > next ? now : next) + excess, low = (now < next ? now : next) - excess;
+    const envelope *const to = &l->to;
+    const double high = larger(s->y[0], s->y[1]) + s->excess, low = smaller(s->y[0], s->y[1]) - s->excess;
     /* a jump is part of the excess, not of the rise */
-    const double jump = m->between == RAMPWISE_HOLD ? excess : 0, rise = fabs(next - now) + jump;
-    const double angle = to->omega * m->dt, slope = (next - now) * to->per_stiffness / m->dt;
-    const double from_u = u + now * to->per_stiffness, from_v = (v + slope) / to->omega;
-    const double driven = rise * to->ratio + jump / angle;
-    const double size = 1.0001 * (size_of(from_u, from_v) + driven * to->per_stiffness) + rest;
-    const double total = size * to->as_total + 1.0001 * to->ratio * rise / angle;
-    *r = (reach){{size - low * to->per_stiffness, total + high},
-                 {-size - high * to->per_stiffness, low - total}};
+    const double change = s->y[1] - s->y[0], rise = fabs(change) + s->jump;
+    const double from_u = s->u[0] + s->y[0] * to->per_stiffness;
+    const double from_v = s->v[0] * to->omega * to->per_stiffness + change * to->per_stiffness * l->per_angle;
+    const double driven = rise * to->ratio + s->jump * l->per_angle;
+    const double size = 1.0001 * (size_of(from_u, from_v) + driven * to->per_stiffness) + s->rest;
+    const double total = size * l->as_total + 1.0001 * to->ratio * rise * l->per_angle;
+    return (reach){{size - low * to->per_stiffness, total + high},
+                   {-size - high * to->per_stiffness, low - total}};
 }
 
-/* One piece in the step after k; by the bounds of its tile, or, in a tile that is looked at, by its own. */
-static void reach_of(const rampwise_modes *m, size_t i, size_t k, int looking, reach *r)
+/* By dt^2/8 of the largest second derivative. */
+static reach curvature_of(const limits *l, const stretch *s)
 {
-    const equipment_core *const e = m->equipment;
-    const rampwise_coeffs *const c = &e->c[i];
-    double u[2], v[2];
-    const double excess_of_y = looking ? rampwise_modes_step_excess_(m, k % TILE, e->point[i])
-                                       : rampwise_modes_tile_excess_(m, k / TILE, e->point[i]);
-    const double rest =
-        looking ? e->peaks->rest_step[k % TILE * e->width + i] : e->peaks->rest_tile[k / TILE * e->width + i];
-    state_at(e, i, k, &u[0], &v[0]);
-    state_at(e, i, k + 1, &u[1], &v[1]);
-    *r = (reach){{INFINITY, INFINITY}, {-INFINITY, -INFINITY}};
-    if (e->peaks->envelope[i].omega > 0)
-        envelope_of(m, i, k, u[0], v[0], excess_of_y, rest, r);
-    const double y[2] = {m->output[k * m->width + e->point[i]], m->output[(k + 1) * m->width + e->point[i]]};
-    const stretch_bound b = {fmax(fabs(u[0]), fabs(u[1])), fabs(u[1] - u[0]), fmax(fabs(y[0]), fabs(y[1])),
-                             fabs(y[1] - y[0]), excess_of_y};
+    reach r;
+    const double u = larger(fabs(s->u[0]), fabs(s->u[1])), rise = fabs(s->u[1] - s->u[0]);
+    const double y = larger(fabs(s->y[0]), fabs(s->y[1])) + s->excess, y_rise = fabs(s->y[1] - s->y[0]);
     for (int q = 0; q < LOOKED_AT; ++q) {
-        const double excess = 1.0001 * excess_of(c, q, &b);
-        const double z[2] = {looked_at(c, q, u[0], v[0]), looked_at(c, q, u[1], v[1])};
-        r->high[q] = fmin(r->high[q], fmax(z[0], z[1]) + excess);
-        r->low[q] = fmax(r->low[q], fmin(z[0], z[1]) - excess);
+        const curvature *const of = &l->of[q];
+        const double begin = q == 0 ? s->u[0] : l->on_u * s->u[0] + l->on_v * s->v[0];
+        const double end = q == 0 ? s->u[1] : l->on_u * s->u[1] + l->on_v * s->v[1];
+        const double excess = of->by_u * u + of->by_rise * rise + of->by_y * y + of->by_y_rise * y_rise +
+                              of->by_y_excess * s->excess;
+        r.high[q] = larger(begin, end) + excess;
+        r.low[q] = smaller(begin, end) - excess;
     }
+    return r;
 }
 
-static int may_count(const equipment_core *e, size_t i, int q, const reach *r)
+/* Bits of the quantities of piece i that need not stay below what must be exceeded. */
+static int exceeding(const equipment_peaks *x, size_t i, reach r)
 {
-    return !(r->high[q] <= fmax(e->peaks->floor_high[q][i], e->peaks->peak[q][i].high.value) &&
-             r->low[q] >= fmin(e->peaks->floor_low[q][i], e->peaks->peak[q][i].low.value));
+    int bits = 0;
+    for (int q = 0; q < LOOKED_AT; ++q)
+        bits |= !(r.high[q] <= x->floor_high[q][i] && r.low[q] >= x->floor_low[q][i]) << q;
+    return bits;
 }
 
-static void bound_rest(const rampwise_modes *m, size_t g, size_t n, const double *largest, double *rest)
+/* Bits of the quantities of piece i that may have a peak in a stretch: by the quicker bound first. */
+static unsigned char may_count(const equipment_peaks *x, size_t i, const limits *l, const stretch *s)
+{
+    int bits = (1 << LOOKED_AT) - 1;
+    if (l->is_short)
+        bits &= exceeding(x, i, curvature_of(l, s));
+    if (bits != 0 && l->swings)
+        bits &= exceeding(x, i, envelope_of(l, s));
+    return (unsigned char)bits;
+}
+
+/* In the step after k; by the bounds of its tile, or, in a tile that is looked at, by its own. */
+static unsigned char may_count_in_step(const rampwise_modes *m, size_t i, size_t k, int looking)
 {
     const equipment_core *const e = m->equipment;
+    const equipment_peaks *const x = e->peaks;
+    const double *const y = m->output + k * m->width + e->point[i];
+    stretch s = {.y = {y[0], y[m->width]}};
+    state_at(e, i, k, &s.u[0], &s.v[0]);
+    state_at(e, i, k + 1, &s.u[1], &s.v[1]);
+    s.excess = looking ? rampwise_modes_step_excess_(m, k % TILE, e->point[i])
+                       : rampwise_modes_tile_excess_(m, k / TILE, e->point[i]);
+    s.jump = m->between == RAMPWISE_HOLD ? s.excess : 0;
+    s.rest = looking ? x->rest_step[k % TILE * e->width + i] : x->rest_tile[k / TILE * e->width + i];
+    return may_count(x, i, &x->step[i], &s);
+}
+
+static void bound_rest(const rampwise_modes *m, size_t g, size_t n, const double *largest,
+                       const double *weight, double *rest)
+{
+    const size_t width = m->equipment->width;
     if (g == 0)
-        memset(rest, 0, n * e->width * sizeof *rest);
-    m->k->accumulate(modes_in(m, g), n, largest, LANES, e->peaks->rest_weight + g * LANES * e->width,
-                     e->width, rest);
+        memset(rest, 0, n * width * sizeof *rest);
+    m->k->accumulate(modes_in(m, g), n, largest, LANES, weight + g * LANES * width, width, rest);
 }
 
 void rampwise_equipment_bound_group_(rampwise_modes *m, size_t g, size_t tiles, const double *largest)
 {
-    bound_rest(m, g, tiles, largest, m->equipment->peaks->rest_tile);
+    const equipment_peaks *const x = m->equipment->peaks;
+    bound_rest(m, g, tiles, largest, x->step_weight, x->rest_tile);
 }
 
 void rampwise_equipment_bound_steps_(rampwise_modes *m, size_t g, size_t n, const double *largest)
 {
-    bound_rest(m, g, n, largest, m->equipment->peaks->rest_step);
+    const equipment_peaks *const x = m->equipment->peaks;
+    bound_rest(m, g, n, largest, x->step_weight, x->rest_step);
+    bound_rest(m, g, n, largest, x->part_weight, x->rest_part);
 }
 
-static void raise_floors(const rampwise_modes *m, size_t n, size_t i, int q)
+/* The samples of a piece. */
+static void note_samples(const rampwise_modes *m, size_t n, size_t i, int q)
 {
-    equipment_core *const e = m->equipment;
-    double high = e->peaks->peak[q][i].high.value, low = e->peaks->peak[q][i].low.value;
+    const equipment_core *const e = m->equipment;
+    equipment_peaks *const x = e->peaks;
+    rampwise_peak *const peak = &x->peak[q][i];
     for (size_t k = 1; k <= n; ++k) {
         double u, v;
         state_at(e, i, k, &u, &v);
-        const double z = looked_at(&e->c[i], q, u, v);
-        high = z > high ? z : high;
-        low = z < low ? z : low;
+        const double z = looked_at(&e->steps.c[i], q, u, v);
+        if (z >= peak->high.value || z <= peak->low.value)
+            rampwise_modes_note_(peak, z, m->sample + k, 0);
     }
-    e->peaks->floor_high[q][i] = high;
-    e->peaks->floor_low[q][i] = low;
-}
-
-static void prepare_piece(rampwise_modes *m, size_t n, size_t i)
-{
-    equipment_core *const e = m->equipment;
-    double most[LOOKED_AT] = {-INFINITY, -INFINITY};
-    for (int q = 0; q < LOOKED_AT; ++q) {
-        raise_floors(m, n, i, q);
-        e->peaks->tiles[q][i] = 0;
-    }
-    for (size_t k = 0; k < n; ++k) {
-        reach r;
-        reach_of(m, i, k, 0, &r);
-        for (int q = 0; q < LOOKED_AT; ++q) {
-            if (!may_count(e, i, q, &r))
-                continue;
-            e->peaks->tiles[q][i] |= (uint32_t)1 << k / TILE;
-            if (most[q] < fmax(r.high[q], -r.low[q])) {
-                most[q] = fmax(r.high[q], -r.low[q]);
-                e->peaks->first[q][i] = (uint32_t)k;
-            }
-        }
-    }
-    for (int q = 0; q < LOOKED_AT; ++q)
-        if (e->peaks->tiles[q][i] != 0)
-            e->peaks->first_tiles |= (uint32_t)1 << e->peaks->first[q][i] / TILE;
-}
-
-void rampwise_equipment_prepare_(rampwise_modes *m, size_t n)
-{
-    m->equipment->peaks->first_tiles = 0;
-    for (size_t i = 0; i < m->equipment->count; ++i)
-        prepare_piece(m, n, i);
-}
-
-/* Whether piece i may count for q in the step after k, in this pass. */
-static int is_wanted(const rampwise_modes *m, size_t i, int q, size_t k, int pass, int looking)
-{
-    const equipment_core *const e = m->equipment;
-    reach r;
-    if ((e->peaks->tiles[q][i] >> k / TILE & 1) == 0 || (e->peaks->first[q][i] == k) != (pass == 0))
-        return 0;
-    reach_of(m, i, k, looking, &r);
-    return may_count(e, i, q, &r);
-}
-
-int rampwise_equipment_may_count_(const rampwise_modes *m, size_t t, size_t n, int pass)
-{
-    const equipment_core *const e = m->equipment;
-    if (pass == 0)
-        return (int)(e->peaks->first_tiles >> t & 1);
-    for (size_t i = 0; i < e->count; ++i)
-        for (int q = 0; q < LOOKED_AT; ++q)
-            for (size_t k = t * TILE; k < t * TILE + n; ++k)
-                if (is_wanted(m, i, q, k, pass, 0))
-                    return 1;
-    return 0;
-}
-
-int rampwise_equipment_want_(rampwise_modes *m, size_t k, int pass)
-{
-    equipment_core *const e = m->equipment;
-    int any = 0;
-    for (size_t i = 0; i < e->count; ++i) {
-        e->peaks->wanted[i] = 0;
-        for (int q = 0; q < LOOKED_AT; ++q)
-            e->peaks->wanted[i] |= (unsigned char)(is_wanted(m, i, q, k, pass, 1) << q);
-        state_at(e, i, k, &e->peaks->u_inside[i], &e->peaks->v_inside[i]);
-        any |= e->peaks->wanted[i];
-    }
-    return any;
-}
-
-/* The power series of x and of its total acceleration from that of y:
-   (n + 1)(n + 2) a[n + 2] = -S (n + 1) a[n + 1] - K a[n] - y[n] d^2, d the length of a piece of the step. */
-static void look_at_piece(rampwise_modes *m, size_t i, size_t k, size_t piece, size_t pieces,
-                          const double *series)
-{
-    equipment_core *const e = m->equipment;
-    const rampwise_coeffs *const c = &e->c[i];
-    const double d = m->dt / (double)pieces, K = -c->total[0] * d * d, S = -c->total[1] * d;
-    double u = e->peaks->u_inside[i], v = e->peaks->v_inside[i] * d, z[MODES_POWERS + 1];
-    double a[MODES_POWERS + 3] = {u, v};
-    for (size_t n = 0; n <= MODES_POWERS; ++n)
-        a[n + 2] = (-S * (double)(n + 1) * a[n + 1] - K * a[n] - series[n * m->width + e->point[i]] * d * d) *
-                   rampwise_modes_per_term_[n];
-    u = v = 0;
-    for (size_t n = MODES_POWERS + 2; n > 0; --n) {
-        u += a[n];
-        v += (double)n * a[n];
-    }
-    e->peaks->u_inside[i] = u + a[0];
-    e->peaks->v_inside[i] = v / d;
-    for (int q = 0; q < LOOKED_AT; ++q) {
-        if ((e->peaks->wanted[i] >> q & 1) == 0)
-            continue;
-        for (size_t n = 0; n <= MODES_POWERS; ++n)
-            z[n] = q == 0 ? a[n] : c->total[0] * a[n] + c->total[1] / d * ((double)(n + 1) * a[n + 1]);
-        rampwise_modes_curve_(z, e->peaks->floor_high[q][i], e->peaks->floor_low[q][i], m->sample + k, piece,
-                              pieces, &e->peaks->peak[q][i]);
-    }
-}
-
-void rampwise_equipment_look_(rampwise_modes *m, size_t k, size_t piece, size_t pieces, const double *series)
-{
-    for (size_t i = 0; i < m->equipment->count; ++i)
-        if (m->equipment->peaks->wanted[i] != 0)
-            look_at_piece(m, i, k, piece, pieces, series);
+    x->floor_high[q][i] = peak->high.value;
+    x->floor_low[q][i] = peak->low.value;
 }
 
 void rampwise_equipment_note_(rampwise_modes *m, size_t n)
 {
+    for (size_t i = 0; i < m->equipment->count; ++i)
+        for (int q = 0; q < LOOKED_AT; ++q)
+            note_samples(m, n, i, q);
+}
+
+int rampwise_equipment_may_count_(const rampwise_modes *m, size_t t, size_t n)
+{
+    for (size_t i = 0; i < m->equipment->count; ++i)
+        for (size_t k = t * TILE; k < t * TILE + n; ++k)
+            if (may_count_in_step(m, i, k, 0))
+                return 1;
+    return 0;
+}
+
+int rampwise_equipment_want_(rampwise_modes *m, size_t k)
+{
     equipment_core *const e = m->equipment;
-    for (size_t k = 1; k <= n; ++k)
-        for (size_t i = 0; i < e->count; ++i)
-            for (int q = 0; q < LOOKED_AT; ++q) {
-                double u, v;
-                state_at(e, i, k, &u, &v);
-                rampwise_modes_note_(&e->peaks->peak[q][i], looked_at(&e->c[i], q, u, v), m->sample + k, 0);
-            }
+    equipment_peaks *const x = e->peaks;
+    x->pieces = 0;
+    for (size_t i = 0; i < e->count; ++i) {
+        x->wanted[i] = may_count_in_step(m, i, k, 1);
+        if (x->wanted[i] == 0)
+            continue;
+        rampwise_modes_ask_(m, e->point[i]);
+        x->which[2 * x->pieces] = i;
+        x->which[2 * x->pieces + 1] = e->width + i;
+        ++x->pieces;
+    }
+    return x->pieces > 0;
+}
+
+/* From what drives a piece in each part, u[PARTS] and v[PARTS], to its states at their ends. */
+static void walk(const rampwise_coeffs *c, double u_now, double v_now, double *u, double *v)
+{
+    for (size_t part = 0; part < PARTS; ++part) {
+        const double u_before = u_now;
+        u_now += c->A_minus_1 * u_before + (c->B * v_now + u[part]);
+        v_now += c->Ap * u_before + (c->Bp_minus_1 * v_now + v[part]);
+        u[part] = u_now;
+        v[part] = v_now;
+    }
+}
+
+/* All pieces that are looked at, through the step after k. */
+static void walk_inside(rampwise_modes *m, size_t k)
+{
+    const equipment_core *const e = m->equipment;
+    equipment_peaks *const x = e->peaks;
+    const equipment_steps *const by = &x->by_part;
+    const chosen c = {2 * x->pieces, x->which, 2 * e->width, by->from_u, by->from_v};
+    const double *const input = rampwise_modes_part_input_(m);
+    memset(x->inside, 0, c.count * PARTS * sizeof *x->inside);
+    for (size_t i = 0; i < c.count; ++i)
+        for (size_t in = 0; in < m->inputs; ++in) {
+            const size_t at = in * c.width + c.which[i];
+            for (size_t part = 0; part < PARTS; ++part)
+                x->inside[i * PARTS + part] += by->from_before[at] * input[part * m->inputs + in] +
+                                               by->from_now[at] * input[(part + 1) * m->inputs + in];
+        }
+    rampwise_modes_at_parts_(m, &c, x->inside);
+    for (size_t r = 0; r < x->pieces; ++r) {
+        const size_t i = x->which[2 * r];
+        double *const u_inside = x->inside + 2 * r * PARTS, u, v;
+        state_at(e, i, k, &u, &v);
+        walk(&by->c[i], u, v, u_inside, u_inside + PARTS);
+    }
+}
+
+/* Piece which[2 r] where a part of the step after k begins. */
+static void state_inside(const equipment_core *e, size_t r, size_t k, size_t part, double *u, double *v)
+{
+    const double *const ends = e->peaks->inside + 2 * r * PARTS;
+    if (part == 0) {
+        state_at(e, e->peaks->which[2 * r], k, u, v);
+        return;
+    }
+    *u = ends[part - 1];
+    *v = ends[PARTS + part - 1];
+}
+
+static unsigned char may_count_in_part(const rampwise_modes *m, size_t r, size_t k, size_t part)
+{
+    const equipment_core *const e = m->equipment;
+    const equipment_peaks *const x = e->peaks;
+    const size_t i = x->which[2 * r];
+    const double *const y = rampwise_modes_points_of_(m, e->point[i]) + part;
+    stretch s = {.y = {y[0], y[1]},
+                 .excess = rampwise_modes_part_excess_(m, k % TILE, e->point[i]),
+                 .rest = x->rest_part[k % TILE * e->width + i]};
+    state_inside(e, r, k, part, &s.u[0], &s.v[0]);
+    state_inside(e, r, k, part + 1, &s.u[1], &s.v[1]);
+    return x->wanted[i] & may_count(x, i, &x->part[i], &s);
+}
+
+static void raise_inside(const rampwise_modes *m, size_t r, size_t k, int q)
+{
+    const equipment_core *const e = m->equipment;
+    equipment_peaks *const x = e->peaks;
+    const size_t i = x->which[2 * r];
+    for (size_t part = 0; part <= PARTS; ++part) {
+        double u, v;
+        state_inside(e, r, k, part, &u, &v);
+        const double z = q == 0 ? u : x->part[i].on_u * u + x->part[i].on_v * v;
+        raise_floors(z, &x->floor_high[q][i], &x->floor_low[q][i]);
+    }
+}
+
+/* In which spans of the step after k a piece may have a peak. */
+static uint32_t spans_of(const rampwise_modes *m, size_t r, size_t k)
+{
+    equipment_peaks *const x = m->equipment->peaks;
+    const size_t i = x->which[2 * r], parts = PARTS / rampwise_modes_spans_(m);
+    for (int q = 0; q < LOOKED_AT; ++q) {
+        x->spans[q][i] = 0;
+        if (x->wanted[i] >> q & 1)
+            raise_inside(m, r, k, q);
+    }
+    for (size_t part = 0; part < PARTS; ++part) {
+        const uint32_t bits = may_count_in_part(m, r, k, part);
+        for (int q = 0; q < LOOKED_AT; ++q)
+            x->spans[q][i] |= (bits >> q & 1) << part / parts;
+    }
+    return x->spans[0][i] | x->spans[1][i];
+}
+
+uint32_t rampwise_equipment_spans_(rampwise_modes *m, size_t k)
+{
+    uint32_t spans = 0;
+    walk_inside(m, k);
+    for (size_t r = 0; r < m->equipment->peaks->pieces; ++r)
+        spans |= spans_of(m, r, k);
+    return spans;
+}
+
+static int is_in_span(const equipment_peaks *x, size_t i, size_t span)
+{
+    return (int)((x->spans[0][i] | x->spans[1][i]) >> span & 1);
+}
+
+void rampwise_equipment_begin_span_(rampwise_modes *m, size_t k, size_t span)
+{
+    const equipment_core *const e = m->equipment;
+    equipment_peaks *const x = e->peaks;
+    const size_t parts = PARTS / rampwise_modes_spans_(m);
+    for (size_t r = 0; r < x->pieces; ++r) {
+        const size_t i = x->which[2 * r];
+        if (!is_in_span(x, i, span))
+            continue;
+        rampwise_modes_ask_(m, e->point[i]);
+        state_inside(e, r, k, span * parts, &x->u_inside[i], &x->v_inside[i]);
+    }
+}
+
+/* The power series of x and of its total acceleration from that of y, on a piece of length d of a step:
+   (n + 1)(n + 2) a[n + 2] = -S (n + 1) a[n + 1] - K a[n] - y[n] d^2. */
+static void look_at_piece(rampwise_modes *m, size_t i, size_t k, size_t span, size_t piece)
+{
+    const equipment_core *const e = m->equipment;
+    equipment_peaks *const x = e->peaks;
+    const rampwise_coeffs *const c = &e->steps.c[i];
+    const size_t pieces = rampwise_modes_pieces_(m);
+    const double d = m->dt / (double)pieces, K = -c->total[0] * d * d, S = -c->total[1] * d;
+    const double *const y = rampwise_modes_series_of_(m, e->point[i]);
+    double u = x->u_inside[i], v = x->v_inside[i] * d, z[MODES_TERMS];
+    double a[MODES_TERMS + 2] = {u, v};
+    for (size_t n = 0; n < MODES_TERMS; ++n)
+        a[n + 2] = (-S * (double)(n + 1) * a[n + 1] - K * a[n] - y[n] * d * d) * rampwise_modes_per_term_[n];
+    u = v = 0;
+    for (size_t n = MODES_TERMS + 1; n > 0; --n) {
+        u += a[n];
+        v += (double)n * a[n];
+    }
+    x->u_inside[i] = u + a[0];
+    x->v_inside[i] = v / d;
+    for (int q = 0; q < LOOKED_AT; ++q) {
+        if ((x->spans[q][i] >> span & 1) == 0)
+            continue;
+        for (size_t n = 0; n < MODES_TERMS; ++n)
+            z[n] = q == 0 ? a[n] : c->total[0] * a[n] + c->total[1] / d * ((double)(n + 1) * a[n + 1]);
+        rampwise_modes_curve_(z, m->sample + k, piece, pieces, &x->peak[q][i]);
+    }
+}
+
+void rampwise_equipment_look_(rampwise_modes *m, size_t k, size_t span, size_t piece)
+{
+    const equipment_peaks *const x = m->equipment->peaks;
+    for (size_t r = 0; r < x->pieces; ++r) {
+        const size_t i = x->which[2 * r];
+        if (is_in_span(x, i, span))
+            look_at_piece(m, i, k, span, piece);
+    }
 }
 
 rampwise_peak *rampwise_equipment_peak_(const rampwise_modes *m, size_t i, int q)
