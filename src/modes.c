@@ -206,10 +206,9 @@ static int fill(rampwise_modes *m, const rampwise_modes_plan *plan)
     if (!are_finite(m->weight_u, m->groups * LANES, m->width) ||
         !are_finite(m->weight_v, m->groups * LANES, m->width) || !are_finite(m->direct, m->inputs, m->width))
         return RAMPWISE_ERROR_WEIGHT;
-    if (m->peaks != NULL)
-        rampwise_modes_peaks_fill_(m, plan);
     m->plan = number_of(m, plan);
-    return m->equipment != NULL ? rampwise_equipment_fill_(m, plan) : RAMPWISE_OK;
+    const int status = m->peaks != NULL ? rampwise_modes_peaks_fill_(m, plan) : RAMPWISE_OK;
+    return status == RAMPWISE_OK && m->equipment != NULL ? rampwise_equipment_fill_(m, plan) : status;
 }
 
 size_t rampwise_modes_size(const rampwise_modes_plan *plan)

@@ -1,7 +1,8 @@
-/* A structure's modes on their way through a record: what modes.c and equipment.c share. */
+/* A structure's modes on their way through a record: what modes*.c and equipment*.c share. */
 #ifndef RAMPWISE_MODES_CORE_H
 #define RAMPWISE_MODES_CORE_H
 
+#include <math.h>
 #include <stdint.h>
 #include "lanes.h"
 #include "rampwise/modes.h"
@@ -25,6 +26,7 @@ typedef struct mode_tile {
 } mode_tile;
 
 typedef struct modes_peaks modes_peaks;
+typedef struct modes_parts modes_parts;
 typedef struct equipment_core equipment_core;
 
 struct rampwise_modes {
@@ -41,6 +43,7 @@ struct rampwise_modes {
     double *input;             /* [SEGMENT + 1][inputs]; row 0 is the present sample */
     double *output;            /* [SEGMENT + 1][width]; likewise */
     modes_peaks *peaks;        /* NULL where not wanted */
+    modes_parts *parts;        /* likewise */
     equipment_core *equipment; /* NULL where there is none */
     char *kept;                /* room for all that moves, where peaks are wanted */
 };
@@ -79,10 +82,38 @@ int rampwise_modes_go_on_(rampwise_modes *m, size_t n);
 
 /* modes_residual.c */
 size_t rampwise_modes_kept_size_(const rampwise_modes *m, size_t pieces);
+/* modes_parts.c: a step in equal parts, where values are made; and in equal pieces, as many as power series need. A span
+   is one part or one piece, whichever is longer. Only for peaks. */
+enum { PARTS = 16, MODES_TERMS = 24 };
+extern const double rampwise_modes_per_term_[MODES_TERMS]; /* 1/((n + 1)(n + 2)) */
+
+/* Weighted sums over all modes: columns which[count] of on_u, [groups][LANES][width], and of on_v, which may be NULL. */
+typedef struct chosen {
+    size_t count;
+    const size_t *which;
+    size_t width;
+    const double *on_u, *on_v;
+} chosen;
+
+void rampwise_modes_parts_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r);
+int rampwise_modes_parts_fill_(rampwise_modes *m, const rampwise_modes_plan *plan);
+/* The step between rows 0 and 1 of input[2][inputs], and then each group's states where it begins. */
+void rampwise_modes_parts_begin_(rampwise_modes *m, const double *input);
+void rampwise_modes_parts_group_(rampwise_modes *m, size_t g, const double *u, const double *v);
+/* Inputs at the ends of the parts, [PARTS + 1][inputs]. */
+const double *rampwise_modes_part_input_(const rampwise_modes *m);
+/* Pieces of a step, and spans. */
+size_t rampwise_modes_pieces_(const rampwise_modes *m);
+size_t rampwise_modes_spans_(const rampwise_modes *m);
+/* Sums where the parts begin are added to y[count][PARTS]. */
+void rampwise_modes_at_parts_(const rampwise_modes *m, const chosen *c, double *y);
+/* A span of the step; then the series of sums on its pieces, one after the other, added to y[count][MODES_TERMS]. */
+void rampwise_modes_begin_span_(rampwise_modes *m, size_t span);
+void rampwise_modes_series_(rampwise_modes *m, const chosen *c, double *y);
 
 /* modes_peaks.c */
 void rampwise_modes_peaks_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r);
-void rampwise_modes_peaks_fill_(rampwise_modes *m, const rampwise_modes_plan *plan);
+int rampwise_modes_peaks_fill_(rampwise_modes *m, const rampwise_modes_plan *plan);
 void rampwise_modes_peaks_start_(rampwise_modes *m);
 /* Bounds of tile t of a segment. */
 void rampwise_modes_peaks_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, mode_tile *tile);
@@ -92,19 +123,42 @@ void rampwise_modes_peaks_group_(rampwise_modes *m, size_t g, size_t tiles);
 void rampwise_modes_peaks_segment_(rampwise_modes *m, size_t n);
 rampwise_peak *rampwise_modes_peak_(const rampwise_modes *m);
 
-/* For equipment: how much output o can exceed the samples in tile t of a segment, or in step i of the tile that is being
-   looked at; the energy bound of a free vibration
-   by that of its second derivative; and the extremes of a series, noted where they exceed floors and peak. */
-enum { MODES_POWERS = 24 };
-extern const double rampwise_modes_per_term_[MODES_POWERS + 1]; /* 1/((n + 1)(n + 2)) */
+/* For equipment: an output that it needs in the step or span that is to be looked into, its values at the ends of the
+   parts, [PARTS + 1], and its series on a piece; how much it can exceed its values at the ends of a step in tile t
+   of a segment, of step i of the tile that is being looked at, or of a part of that; the energy bound of a free
+   vibration by that of its second derivative. */
+void rampwise_modes_ask_(rampwise_modes *m, size_t o);
+const double *rampwise_modes_points_of_(const rampwise_modes *m, size_t o);
+const double *rampwise_modes_series_of_(const rampwise_modes *m, size_t o);
 double rampwise_modes_tile_excess_(const rampwise_modes *m, size_t t, size_t o);
 double rampwise_modes_step_excess_(const rampwise_modes *m, size_t i, size_t o);
+double rampwise_modes_part_excess_(const rampwise_modes *m, size_t i, size_t o);
 double rampwise_modes_inverse_(double stiffness, double damping);
-void rampwise_modes_note_(rampwise_peak *peak, double value, uint64_t sample, double fraction);
-void rampwise_modes_curve_(const double *series, double floor_high, double floor_low, uint64_t sample,
-                           size_t piece, size_t pieces, rampwise_peak *peak);
 
-/* equipment.c: as the functions above; only where there is equipment */
+/* The extremes of a series on piece `piece` of a step of so many pieces, noted where they exceed the peak. */
+void rampwise_modes_note_(rampwise_peak *peak, double value, uint64_t sample, double fraction);
+void rampwise_modes_curve_(const double *series, uint64_t sample, size_t piece, size_t pieces,
+                           rampwise_peak *peak);
+
+static inline double larger(double a, double b)
+{
+    return a > b ? a : b;
+}
+
+static inline double smaller(double a, double b)
+{
+    return a < b ? a : b;
+}
+
+/* A value inside a step that the series there will find again, with other rounding: so floors stay a little behind. */
+static inline void raise_floors(double value, double *high, double *low)
+{
+    const double margin = 0x1p-30 * fabs(value);
+    *high = larger(value - margin, *high);
+    *low = smaller(value + margin, *low);
+}
+
+/* equipment.c and equipment_peaks.c: as the functions above; only where there is equipment */
 void rampwise_equipment_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r);
 int rampwise_equipment_check_(const rampwise_modes_plan *plan);
 int rampwise_equipment_fill_(rampwise_modes *m, const rampwise_modes_plan *plan);
@@ -116,25 +170,19 @@ void rampwise_equipment_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, m
 int rampwise_equipment_end_(rampwise_modes *m, size_t n);
 void rampwise_equipment_go_back_(rampwise_modes *m);
 /* Peaks of a segment: bounds by a group's tiles, largest[tiles][LANES] of q'', or by the steps of a tile that is looked
-   at; floors and what may count; whether anything may in a tile, and in the step after k; their curves on a piece of
-   that step, by the series of the outputs, [MODES_POWERS + 1][width]; the samples. Pass 0 is for the step that promises
-   most, pass 1 for all others. */
+   at; the samples; whether something may exceed them in a tile, and in the step after k; in which spans of
+   it, as bits; what is asked for in such a span, and curves on a piece of it. */
 void rampwise_equipment_bound_group_(rampwise_modes *m, size_t g, size_t tiles, const double *largest);
 void rampwise_equipment_bound_steps_(rampwise_modes *m, size_t g, size_t n, const double *largest);
-void rampwise_equipment_prepare_(rampwise_modes *m, size_t n);
-int rampwise_equipment_may_count_(const rampwise_modes *m, size_t t, size_t n, int pass);
-int rampwise_equipment_want_(rampwise_modes *m, size_t k, int pass);
-void rampwise_equipment_look_(rampwise_modes *m, size_t k, size_t piece, size_t pieces, const double *series);
 void rampwise_equipment_note_(rampwise_modes *m, size_t n);
+int rampwise_equipment_may_count_(const rampwise_modes *m, size_t t, size_t n);
+int rampwise_equipment_want_(rampwise_modes *m, size_t k);
+uint32_t rampwise_equipment_spans_(rampwise_modes *m, size_t k);
+void rampwise_equipment_begin_span_(rampwise_modes *m, size_t k, size_t span);
+void rampwise_equipment_look_(rampwise_modes *m, size_t k, size_t span, size_t piece);
 void rampwise_equipment_put_(const rampwise_modes *m, size_t n, const rampwise_history *out);
 size_t rampwise_equipment_count_(const rampwise_modes *m);
 double *rampwise_equipment_state_(const rampwise_modes *m, size_t i, int velocity);
 rampwise_peak *rampwise_equipment_peak_(const rampwise_modes *m, size_t i, int q);
-
-/* The row of weights of the point of piece i, what the piece's total acceleration takes from x and x', and
-   its present displacement (q = 0) or total acceleration. */
-size_t rampwise_equipment_point_(const rampwise_modes *m, size_t i);
-const double *rampwise_equipment_total_(const rampwise_modes *m, size_t i);
-double rampwise_equipment_value_(const rampwise_modes *m, size_t i, int q);
 
 #endif

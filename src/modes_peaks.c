@@ -3,9 +3,6 @@
 #include <string.h>
 #include "modes_core.h"
 
-/* Powers of a series on a piece with w h and c h/m up to 1: the next are below 2^-60 of the first. */
-enum { POWERS = MODES_POWERS };
-
 /* What bounds q'' = z over a step from its beginning. z'' + (c/m) z' + (k/m) z = 0 there, so with K the larger of
    k/m and 1/(4 dt^2) the energy z'^2 + K z^2 grows by no more than e^(1/2) in a step, and not at all where K = k/m:
    |z| <= growth sqrt(z^2 + z'^2/K), |z'| <= sqrt(K) times that. No bound where k or c is negative. */
@@ -14,35 +11,26 @@ typedef struct bound {
     double per_slope[LANES]; /* 1/sqrt(K) */
 } bound;
 
-/* A group on its way through the pieces of a step: its state, per piece of time, and its load and load's change. */
-typedef struct walk {
-    double u[LANES], v[LANES], load[LANES], change[LANES];
-} walk;
-
 struct modes_peaks {
-    rampwise_peak *peak;               /* [outputs] */
-    double *floor_high, *floor_low;    /* [outputs]: of the peak so far and the segment's samples */
-    bound *bounds;                     /* [groups] */
-    double *excess_weight;             /* [groups][LANES][width] */
-    double *begin;                     /* [groups][TILES][2][LANES] */
-    double (*largest)[LANES];          /* [TILES]: of the present group */
-    double *excess_tile, *excess_step; /* [TILES][width], [TILE][width] */
-    mode_tile *trace;                  /* [groups]: of a tile that is looked at */
-    walk *at;                          /* [groups]: inside a step that is looked into */
-    double *series;                    /* [POWERS + 1][width]: of all outputs on one piece of it */
-    unsigned char *first;              /* [outputs]: the tile of the segment that promises most */
-    unsigned char *wanted;             /* [outputs]: those to be looked at in a step */
-    size_t pieces;
+    rampwise_peak *peak; /* [outputs] */
+    /* [outputs]: what must be exceeded: the peak after a segment's samples, then points inside its steps too */
+    double *floor_high, *floor_low;
+    bound *bounds; /* [groups] */
+    /* [groups][LANES][width]: of the excess over the ends of a step and of a part */
+    double *step_weight, *part_weight;
+    double *begin;                                   /* [groups][TILES][2][LANES] */
+    double (*largest)[LANES];                        /* [TILES]: of the present group */
+    double *excess_tile, *excess_step, *excess_part; /* [TILES][width], [TILE][width] and again */
+    mode_tile *trace;                                /* [groups]: of a tile that is looked at */
+    unsigned char *marked;                           /* [SEGMENT]: steps in which there may be a peak */
+    /* of a step that is looked at: */
+    unsigned char *wanted; /* [outputs]: bits: those that may have a peak, those that equipment asks for */
+    size_t *which, *row;   /* [outputs]: these together, and where an output is among them */
+    size_t count;          /* of them */
+    double *points, *ends; /* [outputs][PARTS], where the parts begin; [outputs][PARTS + 1] */
+    uint32_t *spans;       /* [outputs]: bits of those that may hold a peak */
+    double *series;        /* [outputs][MODES_TERMS]: on a piece */
 };
-
-/* At least so many pieces of a step that w h and c h/m are at most 1 on each. */
-static size_t pieces_for(size_t pieces, const rampwise_system *sys, double h)
-{
-    const double S = fabs(sys->damper / sys->mass) * h, K = fabs(sys->stiffness / sys->mass) * h * h;
-    while (pieces < 1024 && (S > (double)pieces || K > (double)pieces * (double)pieces))
-        pieces *= 2;
-    return pieces;
-}
 
 void rampwise_modes_peaks_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r)
 {
@@ -50,25 +38,27 @@ void rampwise_modes_peaks_take_(rampwise_modes *m, const rampwise_modes_plan *pl
     modes_peaks *const made = rampwise_room_take_(r, 1, sizeof counted), *const x =
                                                                              made != NULL ? made : &counted;
     m->peaks = made;
-    x->pieces = 1;
-    for (size_t j = 0; j < plan->modes; ++j)
-        x->pieces = pieces_for(x->pieces, &plan->c[j].system, plan->c->dt);
-    for (size_t i = 0; i < plan->equipment_count; ++i)
-        x->pieces = pieces_for(x->pieces, &plan->equipment[i], plan->c->dt);
+    rampwise_modes_parts_take_(m, plan, r);
     x->peak = rampwise_room_take_(r, m->outputs, sizeof *x->peak);
     x->floor_high = rampwise_room_take_(r, m->width, sizeof(double));
     x->floor_low = rampwise_room_take_(r, m->width, sizeof(double));
     x->bounds = rampwise_room_take_(r, m->groups, sizeof *x->bounds);
-    x->excess_weight = rampwise_room_take_(r, m->groups, LANES * m->width * sizeof(double));
+    x->step_weight = rampwise_room_take_(r, m->groups, LANES * m->width * sizeof(double));
+    x->part_weight = rampwise_room_take_(r, m->groups, LANES * m->width * sizeof(double));
     x->begin = rampwise_room_take_(r, m->groups, (size_t)TILES * 2 * LANES * sizeof(double));
     x->largest = rampwise_room_take_(r, TILES, sizeof *x->largest);
     x->excess_tile = rampwise_room_take_(r, m->width, TILES * sizeof(double));
     x->excess_step = rampwise_room_take_(r, m->width, TILE * sizeof(double));
+    x->excess_part = rampwise_room_take_(r, m->width, TILE * sizeof(double));
     x->trace = rampwise_room_take_(r, m->groups, sizeof *x->trace);
-    x->at = rampwise_room_take_(r, m->groups, sizeof *x->at);
-    x->series = rampwise_room_take_(r, m->width, (POWERS + 1) * sizeof(double));
-    x->first = rampwise_room_take_(r, m->outputs, 1);
     x->wanted = rampwise_room_take_(r, m->outputs, 1);
+    x->which = rampwise_room_take_(r, m->outputs, sizeof *x->which);
+    x->row = rampwise_room_take_(r, m->outputs, sizeof *x->row);
+    x->points = rampwise_room_take_(r, m->outputs, PARTS * sizeof(double));
+    x->ends = rampwise_room_take_(r, m->outputs, (PARTS + 1) * sizeof(double));
+    x->spans = rampwise_room_take_(r, m->outputs, sizeof *x->spans);
+    x->marked = rampwise_room_take_(r, SEGMENT, 1);
+    x->series = rampwise_room_take_(r, m->outputs, MODES_TERMS * sizeof(double));
 }
 
 double rampwise_modes_inverse_(double stiffness, double damping)
@@ -77,33 +67,38 @@ double rampwise_modes_inverse_(double stiffness, double damping)
     return inverse * inverse / stiffness;
 }
 
-/* By how much a free vibration with the energy bound 1 of its second derivative exceeds its values at the ends of a
-   step: h^2/8; but at most twice its own energy bound, whatever the step. */
-static double excess_unit(double stiffness, double damping, double h)
+/* By how much a free vibration with the energy bound 1 of its second derivative in a step of length h exceeds its
+   values at the ends of a stretch of length d inside: d^2/8; but at most twice its own energy bound, whatever the
+   length. */
+static double excess_unit(double stiffness, double damping, double h, double d)
 {
-    const double curved = h * h / 8;
+    const double curved = d * d / 8;
     if (!(stiffness >= 0.25 / (h * h) && damping >= 0))
         return curved;
     return fmin(curved, 2 * rampwise_modes_inverse_(stiffness, damping));
 }
 
-void rampwise_modes_peaks_fill_(rampwise_modes *m, const rampwise_modes_plan *plan)
+int rampwise_modes_peaks_fill_(rampwise_modes *m, const rampwise_modes_plan *plan)
 {
     modes_peaks *const x = m->peaks;
     const double h = m->dt, root_e_half = 1.2841;
     for (size_t j = 0; j < m->modes; ++j) {
         const double stiffness = -plan->c[j].acceleration[0], damping = -plan->c[j].acceleration[1];
-        const double K = fmax(stiffness, 0.25 / (h * h)), unit = 1.0001 * excess_unit(stiffness, damping, h);
+        const double K = fmax(stiffness, 0.25 / (h * h));
+        const double of_step = 1.0001 * excess_unit(stiffness, damping, h, h);
+        const double of_part = 1.0001 * excess_unit(stiffness, damping, h, h / PARTS);
         bound *const b = &x->bounds[j / LANES];
         b->growth[j % LANES] = stiffness < 0 || damping < 0 ? INFINITY : stiffness < K ? root_e_half : 1;
         b->per_slope[j % LANES] = 1 / sqrt(K);
         for (size_t o = 0; o < m->outputs; ++o) {
             const size_t at = j * m->width + o;
             const double moving = m->weight_v != NULL ? fabs(m->weight_v[at]) * sqrt(K) : 0;
-            x->excess_weight[at] = unit * (fabs(m->weight_u[at]) + moving);
+            x->step_weight[at] = of_step * (fabs(m->weight_u[at]) + moving);
+            x->part_weight[at] = of_part * (fabs(m->weight_u[at]) + moving);
         }
     }
     rampwise_modes_peaks_start_(m);
+    return rampwise_modes_parts_fill_(m, plan);
 }
 
 rampwise_peak *rampwise_modes_peak_(const rampwise_modes *m)
@@ -146,108 +141,10 @@ void rampwise_modes_peaks_group_(rampwise_modes *m, size_t g, size_t tiles)
     modes_peaks *const x = m->peaks;
     if (g == 0)
         memset(x->excess_tile, 0, tiles * m->width * sizeof *x->excess_tile);
-    m->k->accumulate(modes_in(m, g), tiles, x->largest[0], LANES, x->excess_weight + g * LANES * m->width,
+    m->k->accumulate(modes_in(m, g), tiles, x->largest[0], LANES, x->step_weight + g * LANES * m->width,
                      m->width, x->excess_tile);
     if (m->equipment != NULL)
         rampwise_equipment_bound_group_(m, g, tiles, x->largest[0]);
-}
-
-#define PER(n) 1.0 / (((n) + 1) * ((n) + 2))
-#define PER_FIVE(n) PER(n), PER((n) + 1), PER((n) + 2), PER((n) + 3), PER((n) + 4)
-const double rampwise_modes_per_term_[POWERS + 1] = {PER_FIVE(0), PER_FIVE(5), PER_FIVE(10), PER_FIVE(15),
-                                                     PER_FIVE(20)};
-#undef PER
-#undef PER_FIVE
-
-/* All groups where the step from row i of a tile begins. */
-static void begin_walk(const rampwise_modes *m, size_t i)
-{
-    modes_peaks *const x = m->peaks;
-    const double d = m->dt / (double)x->pieces;
-    for (size_t g = 0; g < m->groups; ++g) {
-        const mode_tile *const from = &x->trace[g];
-        walk *const at = &x->at[g];
-        for (size_t j = 0; j < LANES; ++j) {
-            const double per_load = m->group[g].row[2][j] * d * d;
-            const double change = m->between == RAMPWISE_RAMP ? from->p[i + 1][j] - from->p[i][j] : 0;
-            at->u[j] = from->u[i][j];
-            at->v[j] = from->v[i][j] * d;
-            at->load[j] = per_load * from->p[i][j];
-            at->change[j] = per_load * change / (double)x->pieces;
-        }
-    }
-}
-
-/* a[n + 2] of all lanes; answers whether all of row n + 1 and n + 2 are below 2^-60. */
-static int next_row(const walk *at, const double *S, const double *K, size_t n, double (*a)[LANES])
-{
-    int ended = n >= 2;
-    for (size_t j = 0; j < LANES; ++j) {
-        const double load = n == 0 ? at->load[j] : n == 1 ? at->change[j] : 0;
-        a[n + 2][j] =
-            (load - S[j] * ((double)(n + 1) * a[n + 1][j]) - K[j] * a[n][j]) * rampwise_modes_per_term_[n];
-    }
-    for (size_t j = 0; ended && j < LANES; ++j) {
-        const double size = fabs(at->u[j]) + fabs(at->v[j]) + fabs(at->load[j]) + fabs(at->change[j]);
-        ended = fabs(a[n + 2][j]) + fabs(a[n + 1][j]) <= 0x1p-60 * size;
-    }
-    return ended;
-}
-
-/* The series of one group on the present piece, q = sum of a[n] x^n with x the time in pieces:
-   (n + 1)(n + 2) a[n + 2] = f[n] - S (n + 1) a[n + 1] - K a[n]. Goes on to the next piece; answers how many terms. */
-static size_t group_series(const rampwise_modes *m, size_t g, double (*a)[LANES])
-{
-    walk *const at = &m->peaks->at[g];
-    const double d = m->dt / (double)m->peaks->pieces;
-    double S[LANES], K[LANES];
-    for (size_t j = 0; j < LANES; ++j) {
-        K[j] = -m->group[g].row[0][j] * d * d;
-        S[j] = -m->group[g].row[1][j] * d;
-    }
-    memcpy(a[0], at->u, sizeof at->u);
-    memcpy(a[1], at->v, sizeof at->v);
-    size_t n = 0;
-    while (n + 2 <= POWERS && !next_row(at, S, K, n, a))
-        ++n;
-    const size_t last = n + 2 <= POWERS ? n + 2 : POWERS;
-    memset(at->u, 0, sizeof at->u);
-    memset(at->v, 0, sizeof at->v);
-    for (size_t k = last + 1; k-- > 0;)
-        for (size_t j = 0; j < LANES; ++j) {
-            at->u[j] += a[k][j];
-            at->v[j] += (double)k * a[k][j];
-        }
-    for (size_t j = 0; j < LANES; ++j)
-        at->load[j] += at->change[j];
-    return last + 1;
-}
-
-/* The series of all outputs on a piece of the step from row i of a tile, whose inputs begin at `input`. */
-static void make_series(const rampwise_modes *m, const double *input, size_t i, size_t piece)
-{
-    modes_peaks *const x = m->peaks;
-    const double pieces = (double)x->pieces, per_piece = pieces / m->dt;
-    memset(x->series, 0, (POWERS + 1) * m->width * sizeof *x->series);
-    for (size_t in = 0; in < m->inputs; ++in) {
-        const double now = input[i * m->inputs + in];
-        const double change = m->between == RAMPWISE_RAMP ? input[(i + 1) * m->inputs + in] - now : 0;
-        for (size_t o = 0; o < m->width; ++o) {
-            const double weight = m->direct[in * m->width + o];
-            x->series[o] += weight * (now + change * ((double)piece / pieces));
-            x->series[m->width + o] += weight * (change / pieces);
-        }
-    }
-    for (size_t g = 0; g < m->groups; ++g) {
-        double a[POWERS + 1][LANES];
-        const size_t terms = group_series(m, g, a), at = g * LANES * m->width;
-        m->k->accumulate(modes_in(m, g), terms, a[0], LANES, m->weight_u + at, m->width, x->series);
-        for (size_t n = 1; m->weight_v != NULL && n < terms; ++n)
-            for (size_t j = 0; j < LANES; ++j)
-                a[n - 1][j] = (double)n * a[n][j] * per_piece;
-        if (m->weight_v != NULL)
-            m->k->accumulate(modes_in(m, g), terms - 1, a[0], LANES, m->weight_v + at, m->width, x->series);
-    }
 }
 
 /* One piece: its polynomial over [0, 1], bounds of the second and third derivative, and what must be exceeded. */
@@ -262,7 +159,7 @@ typedef struct curve {
 static double value_at(const curve *c, double x, double *slope, double *second)
 {
     double value = 0, first = 0, half = 0;
-    for (size_t n = POWERS + 1; n-- > 0;) {
+    for (size_t n = MODES_TERMS; n-- > 0;) {
         half = half * x + first;
         first = first * x + value;
         value = value * x + c->a[n];
@@ -341,13 +238,12 @@ static void search(const curve *c, double low, double high, int depth)
     search(c, middle, high, depth - 1);
 }
 
-void rampwise_modes_curve_(const double *a, double floor_high, double floor_low, uint64_t sample,
-                           size_t piece, size_t pieces, rampwise_peak *peak)
+void rampwise_modes_curve_(const double *a, uint64_t sample, size_t piece, size_t pieces, rampwise_peak *peak)
 {
-    const double high = fmax(floor_high, peak->high.value), low = fmin(floor_low, peak->low.value);
+    const double high = peak->high.value, low = peak->low.value;
     curve c = {a, 0, 0, fabs(a[0]) + fabs(a[1]), high, low, sample, piece, pieces, peak};
     double end = a[0] + a[1];
-    for (size_t n = 2; n <= POWERS; ++n) {
+    for (size_t n = 2; n < MODES_TERMS; ++n) {
         end += a[n];
         c.noise += fabs(a[n]);
         c.second += (double)(n * (n - 1)) * fabs(a[n]);
@@ -376,8 +272,7 @@ static void add_jumps(const rampwise_modes *m, const double *input, size_t i, do
 
 static int may_count(const modes_peaks *x, size_t o, double high, double low, double excess)
 {
-    return !(high + excess <= fmax(x->floor_high[o], x->peak[o].high.value) &&
-             low - excess >= fmin(x->floor_low[o], x->peak[o].low.value));
+    return !(high + excess <= x->floor_high[o] && low - excess >= x->floor_low[o]);
 }
 
 /* And the bounds of each step. */
@@ -386,15 +281,17 @@ static void trace(rampwise_modes *m, size_t t, size_t n)
     modes_peaks *const x = m->peaks;
     const double *const input = m->input + t * TILE * m->inputs;
     memset(x->excess_step, 0, n * m->width * sizeof *x->excess_step);
+    memset(x->excess_part, 0, n * m->width * sizeof *x->excess_part);
     for (size_t g = 0; g < m->groups; ++g) {
+        const size_t modes = modes_in(m, g), at = g * LANES * m->width;
         lane_block lanes = m->group[g].lanes;
         double most[TILE][LANES];
         memcpy(lanes.u, x->begin + (g * TILES + t) * 2 * LANES, sizeof lanes.u);
         memcpy(lanes.v, x->begin + ((g * TILES + t) * 2 + 1) * LANES, sizeof lanes.v);
         (void)rampwise_modes_tile_(m, g, &lanes, n, input, &x->trace[g]);
         bound_steps(m, g, n, &x->trace[g], most);
-        m->k->accumulate(modes_in(m, g), n, most[0], LANES, x->excess_weight + g * LANES * m->width, m->width,
-                         x->excess_step);
+        m->k->accumulate(modes, n, most[0], LANES, x->step_weight + at, m->width, x->excess_step);
+        m->k->accumulate(modes, n, most[0], LANES, x->part_weight + at, m->width, x->excess_part);
         if (m->equipment != NULL)
             rampwise_equipment_bound_steps_(m, g, n, most[0]);
     }
@@ -402,52 +299,150 @@ static void trace(rampwise_modes *m, size_t t, size_t n)
         add_jumps(m, input, i, x->excess_step + i * m->width);
 }
 
+enum { MAY_COUNT = 1, ASKED_FOR = 2 };
+
 /* Which outputs may have a peak in step i of tile t; answers whether one does. */
-static int want_in_step(const rampwise_modes *m, size_t t, size_t i, int pass)
+static int want_in_step(const rampwise_modes *m, size_t t, size_t i)
 {
     modes_peaks *const x = m->peaks;
     const double *const before = m->output + (t * TILE + i) * m->width, *const after = before + m->width;
+    const double *const excess = x->excess_step + i * m->width;
     int any = 0;
     for (size_t o = 0; o < m->outputs; ++o) {
-        x->wanted[o] = (x->first[o] == t) == (pass == 0) &&
-                       may_count(x, o, fmax(before[o], after[o]), fmin(before[o], after[o]),
-                                 x->excess_step[i * m->width + o]);
+        x->wanted[o] = (unsigned char)may_count(x, o, larger(before[o], after[o]),
+                                                smaller(before[o], after[o]), excess[o]);
         any |= x->wanted[o];
     }
     return any;
 }
 
+void rampwise_modes_ask_(rampwise_modes *m, size_t o)
+{
+    m->peaks->wanted[o] |= ASKED_FOR;
+}
+
+static chosen choose(rampwise_modes *m)
+{
+    modes_peaks *const x = m->peaks;
+    x->count = 0;
+    for (size_t o = 0; o < m->outputs; ++o)
+        if (x->wanted[o] != 0) {
+            x->row[o] = x->count;
+            x->which[x->count++] = o;
+        }
+    return (chosen){x->count, x->which, m->width, m->weight_u, m->weight_v};
+}
+
+/* The chosen outputs at the ends of the parts of step k: where each begins, and where the step ends, before what
+   held inputs make it jump by. */
+static void make_points(rampwise_modes *m, size_t k)
+{
+    modes_peaks *const x = m->peaks;
+    const chosen c = choose(m);
+    const double *const input = rampwise_modes_part_input_(m), *const next = m->input + (k + 1) * m->inputs;
+    memset(x->points, 0, c.count * PARTS * sizeof *x->points);
+    for (size_t i = 0; i < c.count; ++i)
+        for (size_t in = 0; in < m->inputs; ++in)
+            for (size_t part = 0; part < PARTS; ++part)
+                x->points[i * PARTS + part] +=
+                    m->direct[in * m->width + c.which[i]] * input[part * m->inputs + in];
+    rampwise_modes_at_parts_(m, &c, x->points);
+    for (size_t i = 0; i < c.count; ++i) {
+        double *const points = x->ends + i * (PARTS + 1);
+        memcpy(points, x->points + i * PARTS, PARTS * sizeof *points);
+        points[PARTS] = m->output[(k + 1) * m->width + c.which[i]];
+        for (size_t in = 0; in < m->inputs; ++in)
+            points[PARTS] +=
+                m->direct[in * m->width + c.which[i]] * (input[PARTS * m->inputs + in] - next[in]);
+    }
+}
+
+/* In which spans of step i of a tile output o may have a peak, its floors raised by its values at the ends of parts. */
+static uint32_t spans_of(const rampwise_modes *m, size_t o, size_t i)
+{
+    modes_peaks *const x = m->peaks;
+    const size_t parts = PARTS / rampwise_modes_spans_(m);
+    const double *const y = rampwise_modes_points_of_(m, o), excess = x->excess_part[i * m->width + o];
+    uint32_t spans = 0;
+    for (size_t part = 0; part <= PARTS; ++part)
+        raise_floors(y[part], &x->floor_high[o], &x->floor_low[o]);
+    for (size_t part = 0; part < PARTS; ++part)
+        if (may_count(x, o, larger(y[part], y[part + 1]), smaller(y[part], y[part + 1]), excess))
+            spans |= (uint32_t)1 << part / parts;
+    return spans;
+}
+
+/* The series of the chosen outputs on the next piece of a span, which is `piece` of the step. */
+static void make_series(rampwise_modes *m, const chosen *c, size_t piece)
+{
+    modes_peaks *const x = m->peaks;
+    const double begin = (double)piece / (double)rampwise_modes_pieces_(m);
+    const double end = (double)(piece + 1) / (double)rampwise_modes_pieces_(m);
+    const double *const input = rampwise_modes_part_input_(m), *const last = input + PARTS * m->inputs;
+    memset(x->series, 0, c->count * MODES_TERMS * sizeof *x->series);
+    for (size_t i = 0; i < c->count; ++i)
+        for (size_t in = 0; in < m->inputs; ++in) {
+            const double weight = m->direct[in * m->width + c->which[i]], change = last[in] - input[in];
+            x->series[i * MODES_TERMS] += weight * (input[in] + change * begin);
+            x->series[i * MODES_TERMS + 1] += weight * (change * (end - begin));
+        }
+    rampwise_modes_series_(m, c, x->series);
+}
+
 static void look_at_piece(const rampwise_modes *m, size_t o, uint64_t sample, size_t piece)
 {
     modes_peaks *const x = m->peaks;
-    double series[POWERS + 1], sum = 0;
-    for (size_t n = POWERS + 1; n-- > 0;) {
-        series[n] = x->series[n * m->width + o];
-        sum += series[n];
-    }
-    rampwise_modes_curve_(series, x->floor_high[o], x->floor_low[o], sample, piece, x->pieces, &x->peak[o]);
-    if (m->between == RAMPWISE_HOLD && piece + 1 == x->pieces) /* where it jumps, the value before */
+    const size_t pieces = rampwise_modes_pieces_(m);
+    const double *const series = rampwise_modes_series_of_(m, o);
+    rampwise_modes_curve_(series, sample, piece, pieces, &x->peak[o]);
+    if (m->between == RAMPWISE_HOLD && piece + 1 == pieces) { /* where it jumps, the value before */
+        double sum = 0;
+        for (size_t n = MODES_TERMS; n-- > 0;)
+            sum += series[n];
         rampwise_modes_note_(&x->peak[o], sum, sample + 1, 0);
+    }
 }
 
-static void look_at_step(rampwise_modes *m, size_t t, size_t i, const double *input, int pass)
+static void look_at_span(rampwise_modes *m, size_t k, size_t span)
+{
+    modes_peaks *const x = m->peaks;
+    const size_t pieces = rampwise_modes_pieces_(m) / rampwise_modes_spans_(m);
+    for (size_t o = 0; o < m->outputs; ++o)
+        x->wanted[o] = x->spans[o] >> span & MAY_COUNT;
+    if (m->equipment != NULL)
+        rampwise_equipment_begin_span_(m, k, span);
+    const chosen c = choose(m);
+    rampwise_modes_begin_span_(m, span);
+    for (size_t piece = span * pieces; piece < (span + 1) * pieces; ++piece) {
+        make_series(m, &c, piece);
+        for (size_t i = 0; i < c.count; ++i)
+            if (x->wanted[c.which[i]] & MAY_COUNT)
+                look_at_piece(m, c.which[i], m->sample + k, piece);
+        if (m->equipment != NULL)
+            rampwise_equipment_look_(m, k, span, piece);
+    }
+}
+
+/* The points inside step i of tile t, and in which spans of it something may have a peak. */
+static uint32_t points_of_step(rampwise_modes *m, size_t t, size_t i)
 {
     modes_peaks *const x = m->peaks;
     const size_t k = t * TILE + i;
-    int any = want_in_step(m, t, i, pass);
+    uint32_t spans = 0;
+    int any = want_in_step(m, t, i);
     if (m->equipment != NULL)
-        any |= rampwise_equipment_want_(m, k, pass);
+        any |= rampwise_equipment_want_(m, k);
     if (!any)
-        return;
-    begin_walk(m, i);
-    for (size_t piece = 0; piece < x->pieces; ++piece) {
-        make_series(m, input, i, piece);
-        for (size_t o = 0; o < m->outputs; ++o)
-            if (x->wanted[o])
-                look_at_piece(m, o, m->sample + k, piece);
-        if (m->equipment != NULL)
-            rampwise_equipment_look_(m, k, piece, x->pieces, x->series);
+        return 0;
+    rampwise_modes_parts_begin_(m, m->input + k * m->inputs);
+    for (size_t g = 0; g < m->groups; ++g)
+        rampwise_modes_parts_group_(m, g, x->trace[g].u[i], x->trace[g].v[i]);
+    make_points(m, k);
+    for (size_t o = 0; o < m->outputs; ++o) {
+        x->spans[o] = x->wanted[o] & MAY_COUNT ? spans_of(m, o, i) : 0;
+        spans |= x->spans[o];
     }
+    return m->equipment != NULL ? spans | rampwise_equipment_spans_(m, k) : spans;
 }
 
 /* The greatest and least samples of an output in tile t of n steps. */
@@ -461,13 +456,24 @@ static void range_of(const rampwise_modes *m, size_t t, size_t n, size_t o, doub
     }
 }
 
-static int output_may_count(const rampwise_modes *m, size_t t, size_t n, int pass)
+/* The samples of an output. */
+static void note_samples(const rampwise_modes *m, size_t n, size_t o)
+{
+    modes_peaks *const x = m->peaks;
+    for (size_t k = 1; k <= n; ++k) {
+        const double y = m->output[k * m->width + o];
+        if (y >= x->peak[o].high.value || y <= x->peak[o].low.value)
+            rampwise_modes_note_(&x->peak[o], y, m->sample + k, 0);
+    }
+    x->floor_high[o] = x->peak[o].high.value;
+    x->floor_low[o] = x->peak[o].low.value;
+}
+
+static int output_may_count(const rampwise_modes *m, size_t t, size_t n)
 {
     const modes_peaks *const x = m->peaks;
     for (size_t o = 0; o < m->outputs; ++o) {
         double high, low;
-        if ((x->first[o] == t) != (pass == 0))
-            continue;
         range_of(m, t, n, o, &high, &low);
         if (may_count(x, o, high, low, x->excess_tile[t * m->width + o]))
             return 1;
@@ -475,61 +481,61 @@ static int output_may_count(const rampwise_modes *m, size_t t, size_t n, int pas
     return 0;
 }
 
+/* Points inside the n steps of tile t; marks the steps in which there may be a peak. */
+static void raise_in_tile(rampwise_modes *m, size_t t, size_t n)
+{
+    unsigned char *const marked = m->peaks->marked + t * TILE;
+    memset(marked, 0, n);
+    if (!output_may_count(m, t, n) && !(m->equipment != NULL && rampwise_equipment_may_count_(m, t, n)))
+        return;
+    trace(m, t, n);
+    for (size_t i = 0; i < n; ++i)
+        marked[i] = points_of_step(m, t, i) != 0;
+}
+
+static void look_at_tile(rampwise_modes *m, size_t t, size_t n)
+{
+    const unsigned char *const marked = m->peaks->marked + t * TILE;
+    if (memchr(marked, 1, n) == NULL)
+        return;
+    trace(m, t, n);
+    for (size_t i = 0; i < n; ++i) {
+        const uint32_t spans = marked[i] ? points_of_step(m, t, i) : 0;
+        for (size_t span = 0; span < PARTS; ++span)
+            if (spans >> span & 1)
+                look_at_span(m, t * TILE + i, span);
+    }
+}
+
 static size_t steps_of(size_t t, size_t n)
 {
     return n - t * TILE < TILE ? n - t * TILE : TILE;
 }
 
-/* Floors that the samples raise, and the tile that can exceed them most. */
-static void prepare(const rampwise_modes *m, size_t n, size_t o)
-{
-    modes_peaks *const x = m->peaks;
-    double most = -INFINITY;
-    x->floor_high[o] = x->peak[o].high.value;
-    x->floor_low[o] = x->peak[o].low.value;
-    x->first[o] = 0;
-    for (size_t t = 0; t * TILE < n; ++t) {
-        double high, low;
-        range_of(m, t, steps_of(t, n), o, &high, &low);
-        x->floor_high[o] = fmax(x->floor_high[o], high);
-        x->floor_low[o] = fmin(x->floor_low[o], low);
-        const double size = fmax(high, -low) + x->excess_tile[t * m->width + o];
-        if (size > most) {
-            most = size;
-            x->first[o] = (unsigned char)t;
-        }
-    }
-}
-
-static void look_at_tile(rampwise_modes *m, size_t t, size_t n, int pass)
-{
-    const double *const input = m->input + t * TILE * m->inputs;
-    if (!output_may_count(m, t, n, pass) &&
-        !(m->equipment != NULL && rampwise_equipment_may_count_(m, t, n, pass)))
-        return;
-    trace(m, t, n);
-    for (size_t i = 0; i < n; ++i)
-        look_at_step(m, t, i, input, pass);
-}
-
-/* First what promises most, so that the rest is outdone. */
+/* Samples and points first, so that most else is outdone. */
 void rampwise_modes_peaks_segment_(rampwise_modes *m, size_t n)
 {
     modes_peaks *const x = m->peaks;
     for (size_t k = 0; k < n; ++k)
         add_jumps(m, m->input, k, x->excess_tile + k / TILE * m->width);
     for (size_t o = 0; o < m->outputs; ++o)
-        prepare(m, n, o);
-    if (m->equipment != NULL)
-        rampwise_equipment_prepare_(m, n);
-    for (int pass = 0; pass < 2; ++pass)
-        for (size_t t = 0; t * TILE < n; ++t)
-            look_at_tile(m, t, steps_of(t, n), pass);
-    for (size_t k = 1; k <= n; ++k)
-        for (size_t o = 0; o < m->outputs; ++o)
-            rampwise_modes_note_(&x->peak[o], m->output[k * m->width + o], m->sample + k, 0);
+        note_samples(m, n, o);
     if (m->equipment != NULL)
         rampwise_equipment_note_(m, n);
+    for (size_t t = 0; t * TILE < n; ++t)
+        raise_in_tile(m, t, steps_of(t, n));
+    for (size_t t = 0; t * TILE < n; ++t)
+        look_at_tile(m, t, steps_of(t, n));
+}
+
+const double *rampwise_modes_points_of_(const rampwise_modes *m, size_t o)
+{
+    return m->peaks->ends + m->peaks->row[o] * (PARTS + 1);
+}
+
+const double *rampwise_modes_series_of_(const rampwise_modes *m, size_t o)
+{
+    return m->peaks->series + m->peaks->row[o] * MODES_TERMS;
 }
 
 double rampwise_modes_tile_excess_(const rampwise_modes *m, size_t t, size_t o)
@@ -540,4 +546,9 @@ double rampwise_modes_tile_excess_(const rampwise_modes *m, size_t t, size_t o)
 double rampwise_modes_step_excess_(const rampwise_modes *m, size_t i, size_t o)
 {
     return m->peaks->excess_step[i * m->width + o];
+}
+
+double rampwise_modes_part_excess_(const rampwise_modes *m, size_t i, size_t o)
+{
+    return m->peaks->excess_part[i * m->width + o];
 }

@@ -2,11 +2,9 @@
 #include <float.h>
 #include <math.h>
 #include <string.h>
-#include "modes_core.h"
+#include "equipment_core.h"
 #include "rampwise/equipment.h"
 #include "rampwise/status.h"
-
-enum { QUANTITIES = 2 }; /* of equipment: displacement and total acceleration */
 
 /* What of an object moves, in one piece of memory. */
 typedef struct keeping {
@@ -27,7 +25,7 @@ size_t rampwise_modes_kept_size_(const rampwise_modes *m, size_t pieces)
 {
     const size_t doubles = m->inputs + m->width + 2 * LANES * m->groups, peaks = sizeof(rampwise_peak);
     return sizeof m->sample + doubles * sizeof(double) + m->outputs * peaks +
-           pieces * (2 * sizeof(double) + QUANTITIES * peaks);
+           pieces * (2 * sizeof(double) + LOOKED_AT * peaks);
 }
 
 static void keep_all(rampwise_modes *m, int back)
@@ -44,7 +42,7 @@ static void keep_all(rampwise_modes *m, int back)
     for (size_t i = 0; i < rampwise_equipment_count_(m); ++i) {
         for (int velocity = 0; velocity < 2; ++velocity)
             keep(&k, rampwise_equipment_state_(m, i, velocity), sizeof(double));
-        for (int q = 0; q < QUANTITIES; ++q)
+        for (int q = 0; q < LOOKED_AT; ++q)
             keep(&k, rampwise_equipment_peak_(m, i, q), sizeof(rampwise_peak));
     }
 }
@@ -143,15 +141,15 @@ static free_motion following(const free_motion *y, double k, double c)
 /* What later displacements and total accelerations of piece i do not exceed in size. x is the sum of the motions that
    follow the modes, and of a free motion. Near a mode's own frequency the two are large and cancel; there the
    mode drives the piece instead: that adds to the root of its energy no more than the integral of |y|. */
-static void later_of_piece(const rampwise_modes *m, size_t i, double later[QUANTITIES])
+static void later_of_piece(const rampwise_modes *m, size_t i, double later[LOOKED_AT])
 {
-    const double *const total = rampwise_equipment_total_(m, i);
-    const double k = -total[0], c = -total[1];
-    free_motion rest = {k, c, *rampwise_equipment_state_(m, i, 0), *rampwise_equipment_state_(m, i, 1)};
+    const equipment_core *const e = m->equipment;
+    const double k = -e->steps.c[i].total[0], c = -e->steps.c[i].total[1];
+    free_motion rest = {k, c, e->u[i], e->v[i]};
     double driven = 0;
     later[0] = later[1] = 0;
     for (size_t j = 0; j < m->modes; ++j) {
-        const free_motion y = seen_at(m, j, rampwise_equipment_point_(m, i));
+        const free_motion y = seen_at(m, j, e->point[i]);
         if (y.z == 0 && y.slope == 0)
             continue;
         const free_motion x = following(&y, k, c), force = force_of(&x, k, c);
@@ -177,9 +175,10 @@ static void later_of_piece(const rampwise_modes *m, size_t i, double later[QUANT
 /* Undamped equipment on an undamped mode of its own frequency that moves. */
 static int grows_for_ever(const rampwise_modes *m, size_t i)
 {
-    const double *const total = rampwise_equipment_total_(m, i);
+    const equipment_core *const e = m->equipment;
+    const double *const total = e->steps.c[i].total;
     for (size_t j = 0; j < m->modes && total[0] < 0 && total[1] == 0; ++j) {
-        const free_motion y = seen_at(m, j, rampwise_equipment_point_(m, i));
+        const free_motion y = seen_at(m, j, e->point[i]);
         if (y.stiffness == -total[0] && y.damping == 0 && !(y.z == 0 && y.slope == 0))
             return 1;
     }
@@ -199,7 +198,7 @@ static rampwise_peak *peak_of(const rampwise_modes *m, const asked *a, size_t i)
 
 static double later_of(const rampwise_modes *m, const asked *a, size_t i)
 {
-    double later[QUANTITIES];
+    double later[LOOKED_AT];
     if (!a->equipment)
         return later_of_output(m, i);
     later_of_piece(m, i, later);
@@ -237,8 +236,10 @@ static void begin_peaks(rampwise_modes *m)
         rampwise_modes_peak_(m)[o] = (rampwise_peak){now, now};
     }
     for (size_t i = 0; i < rampwise_equipment_count_(m); ++i)
-        for (int q = 0; q < QUANTITIES; ++q) {
-            const rampwise_instant now = {rampwise_equipment_value_(m, i, q), m->sample, 0};
+        for (int q = 0; q < LOOKED_AT; ++q) {
+            const equipment_core *const e = m->equipment;
+            const double value = q == 0 ? e->u[i] : total_of(&e->steps.c[i], e->u[i], e->v[i]);
+            const rampwise_instant now = {value, m->sample, 0};
             *rampwise_equipment_peak_(m, i, q) = (rampwise_peak){now, now};
         }
 }
