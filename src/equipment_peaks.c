@@ -131,7 +131,10 @@ static envelope envelope_made(const rampwise_coeffs *c)
 /* What a stretch can hold of a quantity beyond its ends: x'' = -k x - c x' - y, so with M the largest |x''|, |x| is at
    most its ends' and h^2/8 M, |x'| at most the rise of x over h and h M, and M (1 - K/8 - S) is at most k |x| + c rise/h
    + |y|. The second derivative of the total acceleration -(c x' + k x) is -(c x''' + k x''), and x''' follows from y',
-   which is at most the rise of y over h and h y'' = 8/h of the excess of y. Per mass. */
+   which is at most the rise of y over h and h y'' = 8/h of the excess of y. Where a mode turns by more than 4 radians in
+   h, its slope may be more, its excess being twice its size A; but it comes to and fro in x' by A/omega alone, so that
+   the total acceleration exceeds its ends by 2 c A/omega < c h A/2, which is less than the 2 c h A that are counted. Per
+   mass. */
 static limits limits_of(const rampwise_coeffs *c, double h)
 {
     const double k = fabs(c->total[0]), damping = fabs(c->total[1]), rest = 1 - k * h * h / 8 - damping * h;
