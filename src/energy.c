@@ -190,7 +190,8 @@ int rampwise_meter_read(const rampwise_meter *meter, const rampwise_state *s, ra
     return RAMPWISE_OK;
 }
 
-/* n samples in blocks, their energies into energy[n] where it is not NULL; how many went by before one overflows. */
+/* n samples in blocks, their energies into energy[n] where it is not NULL; how many went by before one
+   overflows. */
 static size_t advance(const rampwise_meter *meter, rampwise_state *s, energy_sums *so_far, size_t n,
                       const double *p, rampwise_energy *energy)
 {

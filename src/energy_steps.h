@@ -1,5 +1,5 @@
-/* The energies of one oscillator step by step: energy.c makes the coefficients, and the kernels (kernels/body.h) run
-   this with the fused multiply-add that they have. */
+/* The energies of one oscillator step by step: energy.c makes the coefficients, and the kernels
+   (kernels/body.h) run this with the fused multiply-add that they have. */
 #ifndef RAMPWISE_ENERGY_STEPS_H
 #define RAMPWISE_ENERGY_STEPS_H
 
@@ -13,8 +13,9 @@ typedef struct energy_sums {
     twofold input, dissipated, base_velocity;
 } energy_sums;
 
-/* What acts in one step. The load is first + change x, x from 0 to 1, mean in the middle; the base's velocity is
-   base[0] + base[1] (x - 1/2) + base[2] (x - 1/2)^2/2 where its work is asked for, and base_shift its way. */
+/* What acts in one step. The load is first + change x, x from 0 to 1, mean in the middle; the base's velocity
+   is base[0] + base[1] (x - 1/2) + base[2] (x - 1/2)^2/2 where its work is asked for, and base_shift its way.
+   */
 typedef struct course {
     double y, w; /* relative displacement and velocity at the beginning */
     double first, mean, change;

@@ -88,8 +88,8 @@ typedef struct kernels {
        (A - 1, B, A', B' - 1); they become the states after the step. */
     void (*under_gains)(size_t width, size_t n, const double *own, double *u, double *v, double *gain);
 
-    /* One oscillator and its energies (energy_steps.h) after each of n samples; stops before the one that overflows
-       and answers how many went by. */
+    /* One oscillator and its energies (energy_steps.h) after each of n samples; stops before the one that
+       overflows and answers how many went by. */
     size_t (*energies)(const struct rampwise_meter *meter, rampwise_state *s, struct energy_sums *so_far,
                        size_t n, const double *p, struct rampwise_energy *energy);
 #endif
