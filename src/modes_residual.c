@@ -123,19 +123,32 @@ static free_motion force_of(const free_motion *z, double k, double c)
 
 /* The motion alpha y + beta y' that a piece x'' + c x' + k x = -y can follow the free motion y in. With a = c - damping
    and b = k - stiffness of y: (a D + b) (alpha + beta D) y = -y, so beta = a/D and alpha = (a damping - b)/D with
-   D = b^2 - a b damping + a^2 stiffness. Infinite where k and c are y's own, or D is out of range. */
+   D = b^2 - a b damping + a^2 stiffness. Infinite where the two have a root in
+   common, or nearly, or D is out of range. */
 static free_motion following(const free_motion *y, double k, double c)
 {
     const double a = c - y->damping, difference = k - y->stiffness;
     const double rounding = 0x1p-51 * (k + y->stiffness);
     const double b = copysign(fmax(fabs(difference) - rounding, 0), difference);
-    const double D = b * b - a * b * y->damping + a * a * y->stiffness;
-    if (!(D >= DBL_MIN && D <= DBL_MAX))
+    const double terms[3] = {b * b, -a * b * y->damping, a * a * y->stiffness};
+    const double D = terms[0] + terms[1] + terms[2];
+    const double lost = 1e-10 * (fabs(terms[0]) + fabs(terms[1]) + fabs(terms[2]));
+    if (!(fabs(D) > lost && fabs(D) >= DBL_MIN))
         return (free_motion){y->stiffness, y->damping, INFINITY, INFINITY};
     const double alpha = (a * y->damping - b) / D, beta = a / D;
     const double second = -y->damping * y->slope - y->stiffness * y->z;
     return (free_motion){y->stiffness, y->damping, alpha * y->z + beta * y->slope,
                          alpha * y->slope + beta * second};
+}
+
+/* Whether a piece is better off following a mode than driven by it, by a motion of the mode of size 1. The choice does not
+   change along the way, so that bounds fall. */
+static int follows(const free_motion *y, double k, double c)
+{
+    const free_motion unit = {y->stiffness, y->damping, 1, sqrt(fabs(y->stiffness))},
+                      x = following(&unit, k, c);
+    const double followed = largest_of(&x);
+    return followed < INFINITY && !(k > 0 && 2 * followed * sqrt(k) > integral_of(&unit));
 }
 
 /* What later displacements and total accelerations of piece i do not exceed in size. x is the sum of the motions that
@@ -152,16 +165,15 @@ static void later_of_piece(const rampwise_modes *m, size_t i, double later[LOOKE
         const free_motion y = seen_at(m, j, e->point[i]);
         if (y.z == 0 && y.slope == 0)
             continue;
-        const free_motion x = following(&y, k, c), force = force_of(&x, k, c);
-        const double followed = largest_of(&x), integral = k > 0 ? integral_of(&y) : INFINITY;
-        if (2 * followed * sqrt(k) <= integral && followed < INFINITY) {
-            rest.z -= x.z;
-            rest.slope -= x.slope;
-            later[0] += followed;
-            later[1] += largest_of(&force);
-        } else {
-            driven += integral;
+        if (!follows(&y, k, c)) {
+            driven += k > 0 ? integral_of(&y) : INFINITY;
+            continue;
         }
+        const free_motion x = following(&y, k, c), force = force_of(&x, k, c);
+        rest.z -= x.z;
+        rest.slope -= x.slope;
+        later[0] += largest_of(&x);
+        later[1] += largest_of(&force);
     }
     const free_motion force = force_of(&rest, k, c);
     later[0] += largest_of(&rest);
