@@ -94,8 +94,8 @@ RAMPWISE_API size_t rampwise_modes_alignment(void);
    the plan is 0 or too large, a point is not an output, or it was not begun with its init); _NOT_MADE;
    _DIFFERENT; _INPUT (neither force nor base acceleration); _WEIGHT (a load factor or weight is not finite,
    or an acceleration's overflows); _INSTRUCTIONS; _MEMORY; _STEP_LENGTH (peaks are wanted, and a mode or
-   piece of equipment has w dt or c dt/m above 1024); for equipment, and with
-   peaks for steps of dt/16, also what rampwise_coeffs_make refuses. */
+   piece of equipment has w dt or c dt/m above 1024); for equipment, and with peaks for steps of dt/16, also
+   what rampwise_coeffs_make refuses. */
 RAMPWISE_API int rampwise_modes_init(void *memory, size_t bytes, const rampwise_modes_plan *plan,
                                      rampwise_modes **modes);
 
