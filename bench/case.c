@@ -34,6 +34,13 @@ static void make_record(double *p)
     }
 }
 
+void case_white(double *p)
+{
+    uint64_t generator = CASE_SEED + 1;
+    for (size_t i = 0; i < CASE_SAMPLES; ++i)
+        p[i] = noise(&generator);
+}
+
 static void make_oscillators(bench_case *in)
 {
     for (size_t j = 0; j < CASE_OSCILLATORS; ++j) {

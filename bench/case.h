@@ -30,6 +30,9 @@ typedef struct bench_case {
 
 void case_make(bench_case *in, size_t stretch);
 
+/* White noise instead of the record, p[CASE_SAMPLES]: no sample knows of the one before. */
+void case_white(double *p);
+
 /* Number k of `count` oscillators spread evenly over all, both ends among them. */
 size_t case_spread(size_t k, size_t count);
 

@@ -8,7 +8,7 @@
 #include <string.h>
 #include "methods.h"
 
-enum { OUTPUTS = 50, MOST = 10000 };
+enum { OUTPUTS = 50, MOST = 10000, PIECES = 100 };
 static const double pi = 3.14159265358979323846;
 
 /* Masses of 1 on springs k, fixed at the foot, the slowest period 1 s; all modes damped 5 %. Closed forms:
@@ -16,9 +16,15 @@ static const double pi = 3.14159265358979323846;
 typedef struct building {
     size_t n, outputs;
     rampwise_modes *modes;
-    const bench_case *in;
+    const double *p;
     double *output; /* [CASE_SAMPLES][outputs] */
 } building;
+
+/* What is asked of it: outputs are displacements or total accelerations; equipment stands on all of these in turn. */
+typedef struct wish {
+    size_t n, outputs;
+    int peaks, accelerations, pieces;
+} wish;
 
 static double angle(size_t j, size_t n)
 {
@@ -58,17 +64,49 @@ static void make_plan(const building *b, rampwise_modes_plan *plan, rampwise_coe
     plan->on_displacement = weight;
 }
 
-static building *make(const bench_case *in, size_t n, size_t outputs, int peaks)
+/* Total accelerations instead of displacements. */
+static void ask_accelerations(rampwise_modes_plan *plan)
+{
+    double *const on_input = case_memory(plan->outputs * sizeof *on_input);
+    for (size_t o = 0; o < plan->outputs; ++o)
+        on_input[o] = 1;
+    plan->on_acceleration = plan->on_displacement;
+    plan->on_displacement = NULL;
+    plan->on_input = on_input;
+}
+
+/* Equipment of every period from the building's fastest to ten times its slowest. */
+static void add_pieces(const building *b, rampwise_modes_plan *plan, size_t pieces)
+{
+    rampwise_system *const system = case_memory(pieces * sizeof *system);
+    size_t *const point = case_memory(pieces * sizeof *point);
+    const double fastest = pi / sqrt(spring(b->n)), slowest = 10;
+    for (size_t i = 0; i < pieces; ++i) {
+        const double period = fastest * pow(slowest / fastest, (double)i / (double)(pieces - 1));
+        (void)rampwise_system_period(&system[i], period, CASE_ZETA);
+        point[i] = i % plan->outputs;
+    }
+    plan->equipment_count = pieces;
+    plan->equipment = system;
+    plan->point = point;
+}
+
+static building *make(const double *p, const wish *w)
 {
     building *const b = case_memory(sizeof *b);
+    const size_t n = w->n, outputs = w->outputs;
     rampwise_modes_plan plan;
     b->n = n;
     b->outputs = outputs;
-    b->in = in;
+    b->p = p;
     b->output = case_memory(CASE_SAMPLES * outputs * sizeof *b->output);
     make_plan(b, &plan, case_memory(n * sizeof(rampwise_coeffs)), case_memory(n * sizeof(double)),
               case_memory(n * outputs * sizeof(double)));
-    plan.peaks = peaks;
+    if (w->accelerations)
+        ask_accelerations(&plan);
+    if (w->pieces > 0)
+        add_pieces(b, &plan, (size_t)w->pieces);
+    plan.peaks = w->peaks;
     if (rampwise_modes_create(&plan, &b->modes) != RAMPWISE_OK)
         fprintf(stderr, "bench: no modes\n");
     return b;
@@ -78,7 +116,7 @@ static void once(void *self)
 {
     building *const b = self;
     (void)rampwise_modes_start(b->modes, NULL);
-    (void)rampwise_modes_run(b->modes, CASE_SAMPLES, b->in->p, b->output, NULL);
+    (void)rampwise_modes_run(b->modes, CASE_SAMPLES, b->p, b->output, NULL);
 }
 
 /* Newmark's average acceleration on the full matrices, C from all modes' damping; u of the top. */
@@ -207,29 +245,46 @@ static void add_direct(task_list *list, const bench_case *in, building *b, doubl
                           .error_known = 1});
 }
 
-static building *add(task_list *list, const bench_case *in, const char *id, const char *name, size_t n,
-                     size_t outputs, int peaks)
+static building *add(task_list *list, const double *p, const char *id, const char *name, wish w)
 {
-    building *const b = make(in, n, outputs, peaks);
+    building *const b = make(p, &w);
     task_add(list, (task){.kind = TASK_PART,
                           .id = id,
                           .name = name,
-                          .gives = "outputs",
-                          .units = (double)n * CASE_SAMPLES,
+                          .gives = w.pieces > 0 ? "outputs, equipment" : "outputs",
+                          .units = (double)w.n * CASE_SAMPLES,
                           .self = b,
                           .once = once,
-                          .slow = n >= 1000});
+                          .slow = w.n >= 1000});
     return b;
+}
+
+/* Peaks where they are dear: total accelerations, and equipment, under the case's record and under white noise. */
+static void add_dear(task_list *list, const double *p, const double *white)
+{
+    (void)add(list, p, "modes_100_total", "100 modes, 50 total accelerations", (wish){100, OUTPUTS, 0, 1, 0});
+    (void)add(list, p, "modes_100_total_peaks", "the same and peaks", (wish){100, OUTPUTS, 1, 1, 0});
+    (void)add(list, white, "modes_100_total_white", "the same and peaks, white noise",
+              (wish){100, OUTPUTS, 1, 1, 0});
+    (void)add(list, p, "equipment_100", "100 modes, 10 floors, 100 pieces", (wish){100, 10, 0, 1, PIECES});
+    (void)add(list, p, "equipment_100_peaks", "the same and peaks", (wish){100, 10, 1, 1, PIECES});
+    (void)add(list, white, "equipment_100_white", "the same and peaks, white noise",
+              (wish){100, 10, 1, 1, PIECES});
 }
 
 void ours_modes_tasks(task_list *list, const bench_case *in)
 {
-    building *const ten = add(list, in, "modes_10", "10 modes, 50 outputs", 10, OUTPUTS, 0);
-    building *const hundred = add(list, in, "modes_100", "100 modes, 50 outputs", 100, OUTPUTS, 0);
-    (void)add(list, in, "modes_1000", "1,000 modes, 50 outputs", 1000, OUTPUTS, 0);
-    (void)add(list, in, "modes_10000", "10,000 modes, 50 outputs", MOST, OUTPUTS, 0);
-    (void)add(list, in, "modes_1000_one", "1,000 modes, 1 output", 1000, 1, 0);
-    (void)add(list, in, "modes_100_peaks", "100 modes, 50 outputs and peaks", 100, OUTPUTS, 1);
+    double *const white = case_memory(CASE_SAMPLES * sizeof *white);
+    case_white(white);
+    building *const ten = add(list, in->p, "modes_10", "10 modes, 50 outputs", (wish){10, OUTPUTS, 0, 0, 0});
+    building *const hundred =
+        add(list, in->p, "modes_100", "100 modes, 50 outputs", (wish){100, OUTPUTS, 0, 0, 0});
+    (void)add(list, in->p, "modes_1000", "1,000 modes, 50 outputs", (wish){1000, OUTPUTS, 0, 0, 0});
+    (void)add(list, in->p, "modes_10000", "10,000 modes, 50 outputs", (wish){MOST, OUTPUTS, 0, 0, 0});
+    (void)add(list, in->p, "modes_1000_one", "1,000 modes, 1 output", (wish){1000, 1, 0, 0, 0});
+    (void)add(list, in->p, "modes_100_peaks", "100 modes, 50 outputs and peaks",
+              (wish){100, OUTPUTS, 1, 0, 0});
+    add_dear(list, in->p, white);
     add_direct(list, in, ten, 1e-3, "newmark_10", "Newmark on full matrices, 10 masses, error 1e-3");
     add_direct(list, in, ten, 1e-4, "newmark_10_fine", "Newmark on full matrices, 10 masses, error 1e-4");
     add_direct(list, in, hundred, 1e-3, "newmark_100", "Newmark on full matrices, 100 masses, error 1e-3");

@@ -127,6 +127,15 @@ static void of_modes(readings *all)
     add(all, "modes_peaks", times(all, "modes_100_peaks", "modes_100"), AT_MOST, NAN,
         "100 modes, 50 outputs: with true peaks / without");
     static const struct {
+        const char *with, *without, *name;
+    } peaks[] = {{"modes_100_total_peaks", "modes_100_total", "100 modes, 50 total accelerations"},
+                 {"modes_100_total_white", "modes_100_total", "the same, white noise"},
+                 {"equipment_100_peaks", "equipment_100", "100 modes, 10 floors, 100 pieces of equipment"},
+                 {"equipment_100_white", "equipment_100", "the same, white noise"}};
+    for (size_t i = 0; i < sizeof peaks / sizeof *peaks; ++i)
+        add(all, peaks[i].with, times(all, peaks[i].with, peaks[i].without), AT_MOST, NAN,
+            "%s: with true peaks / without", peaks[i].name);
+    static const struct {
         const char *direct, *modes, *name;
     } pairs[] = {{"newmark_10", "modes_10", "10"},
                  {"newmark_10_fine", "modes_10", "10"},
