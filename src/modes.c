@@ -6,6 +6,7 @@
 #include "entry.h"
 #include "rampwise/equipment.h"
 #include "rampwise/status.h"
+#include "samples.h"
 #include "saved.h"
 #include "twofold.h"
 #include "valid.h"
