@@ -2,6 +2,7 @@
 #include <math.h>
 #include <string.h>
 #include "equipment_core.h"
+#include "modes_peaks_core.h"
 
 /* Of a piece with a spring and no negative damper: frequency, damping rate over it, and 1/stiffness. */
 typedef struct envelope {
@@ -112,7 +113,7 @@ static double rest_of(const envelope *to, const rampwise_coeffs *mode, double h,
     if (!(stiffness >= slowest && damping >= 0))
         return slow;
     const swing swinging = {w, 0.5 * damping / w, w / to->omega};
-    const double inverse = rampwise_modes_inverse_(stiffness, damping), turned = sqrt(inverse) * stiffness;
+    const double inverse = inverse_of(stiffness, damping), turned = sqrt(inverse) * stiffness;
     const double ends = 2 + 2 / angle + to->ratio * (2 + swinging.ratio + 2 / angle);
     double size = 2 * angle / swinging.ratio * (1 + to->ratio) * (1 + 2 * swinging.zeta) + ends;
     if (swinging.zeta < 1)
@@ -255,8 +256,7 @@ static unsigned char may_count_in_step(const rampwise_modes *m, size_t i, size_t
     stretch s = {.y = {y[0], y[m->width]}};
     state_at(e, i, k, &s.u[0], &s.v[0]);
     state_at(e, i, k + 1, &s.u[1], &s.v[1]);
-    s.excess = looking ? rampwise_modes_step_excess_(m, k % TILE, e->point[i])
-                       : rampwise_modes_tile_excess_(m, k / TILE, e->point[i]);
+    s.excess = looking ? step_excess(m, k % TILE, e->point[i]) : tile_excess(m, k / TILE, e->point[i]);
     s.jump = m->between == RAMPWISE_HOLD ? s.excess : 0;
     s.rest = looking ? x->rest_step[k % TILE * e->width + i] : x->rest_tile[k / TILE * e->width + i];
     return may_count(x, i, &x->step[i], &s);
@@ -326,7 +326,7 @@ int rampwise_equipment_want_(rampwise_modes *m, size_t k)
         x->wanted[i] = may_count_in_step(m, i, k, 1);
         if (x->wanted[i] == 0)
             continue;
-        rampwise_modes_ask_(m, e->point[i]);
+        ask_for(m, e->point[i]);
         x->which[2 * x->pieces] = i;
         x->which[2 * x->pieces + 1] = e->width + i;
         ++x->pieces;
@@ -388,9 +388,9 @@ static unsigned char may_count_in_part(const rampwise_modes *m, size_t r, size_t
     const equipment_core *const e = m->equipment;
     const equipment_peaks *const x = e->peaks;
     const size_t i = x->which[2 * r];
-    const double *const y = rampwise_modes_points_of_(m, e->point[i]) + part;
+    const double *const y = points_of(m, e->point[i]) + part;
     stretch s = {.y = {y[0], y[1]},
-                 .excess = rampwise_modes_part_excess_(m, k % TILE, e->point[i]),
+                 .excess = part_excess(m, k % TILE, e->point[i]),
                  .rest = x->rest_part[k % TILE * e->width + i]};
     state_inside(e, r, k, part, &s.u[0], &s.v[0]);
     state_inside(e, r, k, part + 1, &s.u[1], &s.v[1]);
@@ -451,7 +451,7 @@ void rampwise_equipment_begin_span_(rampwise_modes *m, size_t k, size_t span)
         const size_t i = x->which[2 * r];
         if (!is_in_span(x, i, span))
             continue;
-        rampwise_modes_ask_(m, e->point[i]);
+        ask_for(m, e->point[i]);
         state_inside(e, r, k, span * parts, &x->u_inside[i], &x->v_inside[i]);
     }
 }
@@ -465,7 +465,7 @@ static void look_at_piece(rampwise_modes *m, size_t i, size_t k, size_t span, si
     const rampwise_coeffs *const c = &e->steps.c[i];
     const size_t pieces = rampwise_modes_pieces_(m);
     const double d = m->dt / (double)pieces, K = -c->total[0] * d * d, S = -c->total[1] * d;
-    const double *const y = rampwise_modes_series_of_(m, e->point[i]);
+    const double *const y = series_of(m, e->point[i]);
     double u = x->u_inside[i], v = x->v_inside[i] * d, z[MODES_TERMS];
     double a[MODES_TERMS + 2] = {u, v};
     for (size_t n = 0; n < MODES_TERMS; ++n)

@@ -21,13 +21,6 @@ static void keep(keeping *k, void *x, size_t bytes)
     k->at += bytes;
 }
 
-size_t rampwise_modes_kept_size_(const rampwise_modes *m, size_t pieces)
-{
-    const size_t doubles = m->inputs + m->width + 2 * LANES * m->groups, peaks = sizeof(rampwise_peak);
-    return sizeof m->sample + doubles * sizeof(double) + m->outputs * peaks +
-           pieces * (2 * sizeof(double) + LOOKED_AT * peaks);
-}
-
 static void keep_all(rampwise_modes *m, int back)
 {
     keeping k = {m->kept, back};
