@@ -9,6 +9,7 @@
 #include "precision.h"
 #include "rampwise/motion.h"
 #include "rampwise/status.h"
+#include "samples.h"
 #include "saved.h"
 #include "valid.h"
 

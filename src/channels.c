@@ -3,6 +3,7 @@
 #include "entry.h"
 #include "lanes.h"
 #include "rampwise/status.h"
+#include "samples.h"
 #include "valid.h"
 
 /* Channel j under c[j c_step], everything checked; returns the smallest index at fault, or channels n. */

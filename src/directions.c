@@ -7,6 +7,7 @@
 #include "directions_group.h"
 #include "lanes.h"
 #include "rampwise/status.h"
+#include "samples.h"
 #include "saved.h"
 #include "spectrum_list.h"
 #include "valid.h"

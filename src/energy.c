@@ -7,6 +7,7 @@
 #include "rampwise/status.h"
 #include "energy_steps.h"
 #include "one_step.h"
+#include "samples.h"
 #include "spectrum_list.h"
 #include "valid.h"
 

@@ -1,12 +1,9 @@
-/* Light equipment on a structure: what equipment.c and equipment_peaks.c share. */
+/* Light equipment on a structure: what equipment*.c share. */
 #ifndef RAMPWISE_EQUIPMENT_CORE_H
 #define RAMPWISE_EQUIPMENT_CORE_H
 
 #include "modes_core.h"
 #include "twofold.h"
-
-/* Displacement and total acceleration. */
-enum { LOOKED_AT = 2 };
 
 typedef struct equipment_peaks equipment_peaks;
 
@@ -41,7 +38,7 @@ static inline void state_at(const equipment_core *e, size_t i, size_t k, double 
     *v = k > 0 ? row[e->width + i] : e->v_begin[i];
 }
 
-/* Steps of length dt: their memory, and what piece i needs of the plan. */
+/* equipment_steps.c: steps of length dt, their memory, and what piece i needs of the plan. */
 void rampwise_equipment_steps_take_(const rampwise_modes *m, equipment_steps *steps, size_t count, room *r);
 int rampwise_equipment_steps_fill_(rampwise_modes *m, const rampwise_modes_plan *plan, equipment_steps *steps,
                                    double dt, size_t i);

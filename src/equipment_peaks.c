@@ -2,14 +2,15 @@
 #include <math.h>
 #include <string.h>
 #include "equipment_core.h"
+#include "modes_peaks_core.h"
 
 /* Of a piece with a spring and no negative damper: frequency, damping rate over it, and 1/stiffness. */
 typedef struct envelope {
     double omega, ratio, per_stiffness;
 } envelope;
 
-/* By how much a quantity exceeds its values at the ends of a stretch (limits_of), for one of |x| there, of the rise of x,
-   of |y| with its excess, of the rise of y, and of the excess of y. */
+/* By how much a quantity exceeds its values at the ends of a stretch (limits_of), for one of |x| there, of
+   the rise of x, of |y| with its excess, of the rise of y, and of the excess of y. */
 typedef struct curvature {
     double by_u, by_rise, by_y, by_y_rise, by_y_excess;
 } curvature;
@@ -85,8 +86,8 @@ static double size_of(double a, double b)
 }
 
 /* Its motion y = Re(Y exp(s t)) has |Y| at most 1/sqrt(1 - zeta) of its energy bound, and the piece a motion
-   Re(-Y exp(s t)/D) under it, D = s^2 + c s + k: k e (envelope_of) moves with s (s + c)/D, and k x with k/D. Beside it
-   goes the free motion that makes the sum begin at rest. */
+   Re(-Y exp(s t)/D) under it, D = s^2 + c s + k: k e (envelope_of) moves with s (s + c)/D, and k x with k/D.
+   Beside it goes the free motion that makes the sum begin at rest. */
 static double detuned(const swing *mode, const envelope *to, double h, double ends)
 {
     const double w = mode->w, zeta = mode->zeta, root = sqrt(1 - zeta * zeta);
@@ -100,9 +101,9 @@ static double detuned(const swing *mode, const envelope *to, double h, double en
     return fmin(by_e, beside * k + ends);
 }
 
-/* What a free vibration of a mode, with the energy bound 1 of its q'' in a step, can do to a piece within a stretch of
-   length h inside, beyond what the values of y at its ends tell; envelope_of below says how. The smallest of several
-   bounds. */
+/* What a free vibration of a mode, with the energy bound 1 of its q'' in a step, can do to a piece within a
+   stretch of length h inside, beyond what the values of y at its ends tell; envelope_of below says how. The
+   smallest of several bounds. */
 static double rest_of(const envelope *to, const rampwise_coeffs *mode, double h, double on_u, double on_v)
 {
     const double angle = to->omega * h, S = to->ratio * to->omega;
@@ -112,7 +113,7 @@ static double rest_of(const envelope *to, const rampwise_coeffs *mode, double h,
     if (!(stiffness >= slowest && damping >= 0))
         return slow;
     const swing swinging = {w, 0.5 * damping / w, w / to->omega};
-    const double inverse = rampwise_modes_inverse_(stiffness, damping), turned = sqrt(inverse) * stiffness;
+    const double inverse = inverse_of(stiffness, damping), turned = sqrt(inverse) * stiffness;
     const double ends = 2 + 2 / angle + to->ratio * (2 + swinging.ratio + 2 / angle);
     double size = 2 * angle / swinging.ratio * (1 + to->ratio) * (1 + 2 * swinging.zeta) + ends;
     if (swinging.zeta < 1)
@@ -128,13 +129,13 @@ static envelope envelope_made(const rampwise_coeffs *c)
     return (envelope){sqrt(k), damping / sqrt(k), 1 / k};
 }
 
-/* What a stretch can hold of a quantity beyond its ends: x'' = -k x - c x' - y, so with M the largest |x''|, |x| is at
-   most its ends' and h^2/8 M, |x'| at most the rise of x over h and h M, and M (1 - K/8 - S) is at most k |x| + c rise/h
-   + |y|. The second derivative of the total acceleration -(c x' + k x) is -(c x''' + k x''), and x''' follows from y',
-   which is at most the rise of y over h and h y'' = 8/h of the excess of y. Where a mode turns by more than 4 radians in
-   h, its slope may be more, its excess being twice its size A; but it comes to and fro in x' by A/omega alone, so that
-   the total acceleration exceeds its ends by 2 c A/omega < c h A/2, which is less than the 2 c h A that are counted. Per
-   mass. */
+/* What a stretch can hold of a quantity beyond its ends: x'' = -k x - c x' - y, so with M the largest |x''|,
+   |x| is at most its ends' and h^2/8 M, |x'| at most the rise of x over h and h M, and M (1 - K/8 - S) is at
+   most k |x| + c rise/h + |y|. The second derivative of the total acceleration -(c x' + k x) is -(c x''' + k
+   x''), and x''' follows from y', which is at most the rise of y over h and h y'' = 8/h of the excess of y.
+   Where a mode turns by more than 4 radians in h, its slope may be more, its excess being twice its size A;
+   but it comes to and fro in x' by A/omega alone, so that the total acceleration exceeds its ends by 2 c
+   A/omega < c h A/2, which is less than the 2 c h A that are counted. Per mass. */
 static limits limits_of(const rampwise_coeffs *c, double h)
 {
     const double k = fabs(c->total[0]), damping = fabs(c->total[1]), rest = 1 - k * h * h / 8 - damping * h;
@@ -174,8 +175,8 @@ void rampwise_equipment_peaks_start_(rampwise_modes *m)
         memset(e->peaks->peak[q], 0, e->count * sizeof(rampwise_peak));
 }
 
-/* A step, or a part of one: a piece's states and its point's acceleration y at the two ends; how much y exceeds those
-   in between; the jump of y that is part of it; and what else modes do (rest_of). */
+/* A step, or a part of one: a piece's states and its point's acceleration y at the two ends; how much y
+   exceeds those in between; the jump of y that is part of it; and what else modes do (rest_of). */
 typedef struct stretch {
     double u[2], v[2], y[2], excess, jump, rest;
 } stretch;
@@ -185,14 +186,15 @@ static double looked_at(const rampwise_coeffs *c, int q, double u, double v)
     return q == 0 ? u : total_of(c, u, v);
 }
 
-/* The envelope. e = x + y/k swings by itself: e'' + c e' + k e = (y'' + c y')/k. The root of the energy e'^2 + k e^2 of
-   a free motion never grows, and a driven one's by no more than the time integral of what drives it; over omega, that is
-   the size sqrt(e^2 + e'^2/k). e begins with x + y/k, and e' with x' + y'/k, y' being the rise of y in the step over h
-   and a part of each mode; the rise drives it too. What else a mode does (rest_of, detuned) has three bounds. Either h
-   |q''| bounds its y' less the mean, and the integral of its y''. Or y = F' with |F| at most (1 + 2 zeta) |y|/omega_j
-   is taken as it is: it drives x' + F, and x, to no more than 2 h (omega + c) |F|, and e differs from that by y/k and
-   the free motion from y/k and its mean slope. Or the motion under a mode off tune is known. In the end x = e - y/k,
-   and the total acceleration is y - (k e + c e') + c y'/k. */
+/* The envelope. e = x + y/k swings by itself: e'' + c e' + k e = (y'' + c y')/k. The root of the energy e'^2
+   + k e^2 of a free motion never grows, and a driven one's by no more than the time integral of what drives
+   it; over omega, that is the size sqrt(e^2 + e'^2/k). e begins with x + y/k, and e' with x' + y'/k, y' being
+   the rise of y in the step over h and a part of each mode; the rise drives it too. What else a mode does
+   (rest_of, detuned) has three bounds. Either h |q''| bounds its y' less the mean, and the integral of its
+   y''. Or y = F' with |F| at most (1 + 2 zeta) |y|/omega_j is taken as it is: it drives x' + F, and x, to no
+   more than 2 h (omega + c) |F|, and e differs from that by y/k and the free motion from y/k and its mean
+   slope. Or the motion under a mode off tune is known. In the end x = e - y/k, and the total acceleration is
+   y - (k e + c e') + c y'/k. */
 static reach envelope_of(const limits *l, const stretch *s)
 {
     const envelope *const to = &l->to;
@@ -255,8 +257,7 @@ static unsigned char may_count_in_step(const rampwise_modes *m, size_t i, size_t
     stretch s = {.y = {y[0], y[m->width]}};
     state_at(e, i, k, &s.u[0], &s.v[0]);
     state_at(e, i, k + 1, &s.u[1], &s.v[1]);
-    s.excess = looking ? rampwise_modes_step_excess_(m, k % TILE, e->point[i])
-                       : rampwise_modes_tile_excess_(m, k / TILE, e->point[i]);
+    s.excess = looking ? step_excess(m, k % TILE, e->point[i]) : tile_excess(m, k / TILE, e->point[i]);
     s.jump = m->between == RAMPWISE_HOLD ? s.excess : 0;
     s.rest = looking ? x->rest_step[k % TILE * e->width + i] : x->rest_tile[k / TILE * e->width + i];
     return may_count(x, i, &x->step[i], &s);
@@ -326,7 +327,7 @@ int rampwise_equipment_want_(rampwise_modes *m, size_t k)
         x->wanted[i] = may_count_in_step(m, i, k, 1);
         if (x->wanted[i] == 0)
             continue;
-        rampwise_modes_ask_(m, e->point[i]);
+        ask_for(m, e->point[i]);
         x->which[2 * x->pieces] = i;
         x->which[2 * x->pieces + 1] = e->width + i;
         ++x->pieces;
@@ -388,9 +389,9 @@ static unsigned char may_count_in_part(const rampwise_modes *m, size_t r, size_t
     const equipment_core *const e = m->equipment;
     const equipment_peaks *const x = e->peaks;
     const size_t i = x->which[2 * r];
-    const double *const y = rampwise_modes_points_of_(m, e->point[i]) + part;
+    const double *const y = points_of(m, e->point[i]) + part;
     stretch s = {.y = {y[0], y[1]},
-                 .excess = rampwise_modes_part_excess_(m, k % TILE, e->point[i]),
+                 .excess = part_excess(m, k % TILE, e->point[i]),
                  .rest = x->rest_part[k % TILE * e->width + i]};
     state_inside(e, r, k, part, &s.u[0], &s.v[0]);
     state_inside(e, r, k, part + 1, &s.u[1], &s.v[1]);
@@ -451,7 +452,7 @@ void rampwise_equipment_begin_span_(rampwise_modes *m, size_t k, size_t span)
         const size_t i = x->which[2 * r];
         if (!is_in_span(x, i, span))
             continue;
-        rampwise_modes_ask_(m, e->point[i]);
+        ask_for(m, e->point[i]);
         state_inside(e, r, k, span * parts, &x->u_inside[i], &x->v_inside[i]);
     }
 }
@@ -465,7 +466,7 @@ static void look_at_piece(rampwise_modes *m, size_t i, size_t k, size_t span, si
     const rampwise_coeffs *const c = &e->steps.c[i];
     const size_t pieces = rampwise_modes_pieces_(m);
     const double d = m->dt / (double)pieces, K = -c->total[0] * d * d, S = -c->total[1] * d;
-    const double *const y = rampwise_modes_series_of_(m, e->point[i]);
+    const double *const y = series_of(m, e->point[i]);
     double u = x->u_inside[i], v = x->v_inside[i] * d, z[MODES_TERMS];
     double a[MODES_TERMS + 2] = {u, v};
     for (size_t n = 0; n < MODES_TERMS; ++n)

@@ -3,7 +3,7 @@
 #include <math.h>
 #include "ends.h"
 #include "rampwise/status.h"
-#include "valid.h"
+#include "samples.h"
 
 int rampwise_evidence_input(size_t n, const double *p, double *d, size_t *bad)
 {

@@ -6,6 +6,7 @@
 #include "entry.h"
 #include "rampwise/equipment.h"
 #include "rampwise/status.h"
+#include "samples.h"
 #include "saved.h"
 #include "twofold.h"
 #include "valid.h"
@@ -15,18 +16,6 @@ void rampwise_modes_plan_init(rampwise_modes_plan *plan)
     memset(plan, 0, sizeof *plan);
     plan->size = sizeof *plan;
     plan->instructions = RAMPWISE_FASTEST;
-}
-
-void *rampwise_room_take_(room *r, size_t count, size_t each)
-{
-    const size_t left = SIZE_MAX - r->size;
-    char *const piece = r->begin != NULL ? r->begin + r->size : NULL;
-    if (left < LANE_ALIGNMENT || count > (left - LANE_ALIGNMENT) / each) {
-        r->size = SIZE_MAX;
-        return NULL;
-    }
-    r->size += (count * each + LANE_ALIGNMENT - 1) / LANE_ALIGNMENT * LANE_ALIGNMENT;
-    return piece;
 }
 
 /* a b, or SIZE_MAX where that is too large to be a number of anything */
@@ -57,7 +46,7 @@ static void take_memory(rampwise_modes *m, const rampwise_modes_plan *plan, room
     if (plan->equipment_count > 0)
         rampwise_equipment_take_(m, plan, r);
     if (plan->peaks)
-        m->kept = rampwise_room_take_(r, rampwise_modes_kept_size_(m, plan->equipment_count), 1);
+        m->kept = rampwise_room_take_(r, kept_size(m, plan->equipment_count), 1);
 }
 
 static int counts_fit(const rampwise_modes_plan *plan)
@@ -272,23 +261,6 @@ void rampwise_modes_free(rampwise_modes *modes)
 size_t rampwise_modes_count(const rampwise_modes *modes)
 {
     return modes != NULL ? modes->modes : 0;
-}
-
-/* At n + 1 samples. */
-static void loads_of_group(const rampwise_modes *m, size_t g, size_t n, const double *input,
-                           double (*p)[LANES])
-{
-    memset(p, 0, (n + 1) * sizeof *p);
-    m->k->accumulate(m->inputs, n + 1, input, m->inputs, m->load + g * m->inputs * LANES, LANES, p[0]);
-}
-
-int rampwise_modes_tile_(const rampwise_modes *m, size_t g, lane_block *lanes, size_t n, const double *input,
-                         mode_tile *tile)
-{
-    memcpy(tile->u[0], lanes->u, sizeof lanes->u);
-    memcpy(tile->v[0], lanes->v, sizeof lanes->v);
-    loads_of_group(m, g, n, input, tile->p);
-    return m->k->under_own_inputs(lanes, modes_in(m, g), n, tile->p, tile->u + 1, tile->v + 1);
 }
 
 /* What n states of one group add to n rows of outputs. */
@@ -565,7 +537,7 @@ static void pass_modes(saved *s, void *object)
     for (size_t i = 0; i < rampwise_equipment_count_(m); ++i) {
         pass_doubles(s, rampwise_equipment_state_(m, i, 0), 1);
         pass_doubles(s, rampwise_equipment_state_(m, i, 1), 1);
-        for (int q = 0; peak != NULL && q < 2; ++q)
+        for (int q = 0; peak != NULL && q < LOOKED_AT; ++q)
             pass_peak(s, rampwise_equipment_peak_(m, i, q));
     }
 }

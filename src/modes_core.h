@@ -2,13 +2,15 @@
 #ifndef RAMPWISE_MODES_CORE_H
 #define RAMPWISE_MODES_CORE_H
 
-#include <math.h>
 #include <stdint.h>
 #include "lanes.h"
 #include "rampwise/modes.h"
 
 /* Samples that all groups pass before the outputs are finished. */
 enum { TILES = 16, SEGMENT = TILE * TILES };
+
+/* Displacement and total acceleration: equipment has peaks of these. */
+enum { LOOKED_AT = 2 };
 
 /* Row 0 is the sample before a tile. */
 typedef double states_tile[TILE + 1][LANES];
@@ -48,8 +50,17 @@ struct rampwise_modes {
     char *kept;                /* room for all that moves, where peaks are wanted */
 };
 
-/* Memory handed out piece by piece, each aligned; counted only where begin is NULL. size is SIZE_MAX once it does
-   not fit a size_t. */
+/* Bytes of all that moves, with so many pieces of equipment: in the order of modes_residual.c, which keeps
+   it. */
+static inline size_t kept_size(const rampwise_modes *m, size_t pieces)
+{
+    const size_t doubles = m->inputs + m->width + 2 * LANES * m->groups, peaks = sizeof(rampwise_peak);
+    return sizeof m->sample + doubles * sizeof(double) + m->outputs * peaks +
+           pieces * (2 * sizeof(double) + LOOKED_AT * peaks);
+}
+
+/* Memory handed out piece by piece, each aligned; counted only where begin is NULL. size is SIZE_MAX once it
+   does not fit a size_t. */
 typedef struct room {
     char *begin;
     size_t size;
@@ -67,27 +78,27 @@ static inline size_t modes_in(const rampwise_modes *m, size_t g)
     return m->modes - g * LANES < LANES ? m->modes - g * LANES : LANES;
 }
 
-/* What a plan can be refused for, but for memory. */
-int rampwise_modes_check_(const rampwise_modes_plan *plan);
+static inline double larger(double a, double b)
+{
+    return a > b ? a : b;
+}
+
+static inline double smaller(double a, double b)
+{
+    return a < b ? a : b;
+}
 
 /* One group over a tile from its lanes' states on; answers whether one is not finite any more. */
 int rampwise_modes_tile_(const rampwise_modes *m, size_t g, lane_block *lanes, size_t n, const double *input,
                          mode_tile *tile);
 
-/* The base comes to rest, or the forces go, at once: outputs begin with the free motion. */
-void rampwise_modes_release_(rampwise_modes *m);
-
-/* n <= SEGMENT samples without input; 0 where something would not be finite any more: nothing has changed. */
-int rampwise_modes_go_on_(rampwise_modes *m, size_t n);
-
-/* modes_residual.c */
-size_t rampwise_modes_kept_size_(const rampwise_modes *m, size_t pieces);
-/* modes_parts.c: a step in equal parts, where values are made; and in equal pieces, as many as power series need. A span
-   is one part or one piece, whichever is longer. Only for peaks. */
+/* modes_parts.c: a step in equal parts, where values are made; and in equal pieces, as many as power series
+   need. A span is one part or one piece, whichever is longer. Only for peaks. */
 enum { PARTS = 16, MODES_TERMS = 24 };
 extern const double rampwise_modes_per_term_[MODES_TERMS]; /* 1/((n + 1)(n + 2)) */
 
-/* Weighted sums over all modes: columns which[count] of on_u, [groups][LANES][width], and of on_v, which may be NULL. */
+/* Weighted sums over all modes: columns which[count] of on_u, [groups][LANES][width], and of on_v, which may
+   be NULL. */
 typedef struct chosen {
     size_t count;
     const size_t *which;
@@ -107,9 +118,16 @@ size_t rampwise_modes_pieces_(const rampwise_modes *m);
 size_t rampwise_modes_spans_(const rampwise_modes *m);
 /* Sums where the parts begin are added to y[count][PARTS]. */
 void rampwise_modes_at_parts_(const rampwise_modes *m, const chosen *c, double *y);
-/* A span of the step; then the series of sums on its pieces, one after the other, added to y[count][MODES_TERMS]. */
+/* A span of the step; then the series of sums on its pieces, one after the other, added to
+   y[count][MODES_TERMS]. */
 void rampwise_modes_begin_span_(rampwise_modes *m, size_t span);
 void rampwise_modes_series_(rampwise_modes *m, const chosen *c, double *y);
+
+/* modes_curve.c: one value, or the extremes of a series on piece `piece` of a step of so many pieces, noted
+   where they exceed the peak. */
+void rampwise_modes_note_(rampwise_peak *peak, double value, uint64_t sample, double fraction);
+void rampwise_modes_curve_(const double *series, uint64_t sample, size_t piece, size_t pieces,
+                           rampwise_peak *peak);
 
 /* modes_peaks.c */
 void rampwise_modes_peaks_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r);
@@ -123,55 +141,20 @@ void rampwise_modes_peaks_group_(rampwise_modes *m, size_t g, size_t tiles);
 void rampwise_modes_peaks_segment_(rampwise_modes *m, size_t n);
 rampwise_peak *rampwise_modes_peak_(const rampwise_modes *m);
 
-/* For equipment: an output that it needs in the step or span that is to be looked into, its values at the ends of the
-   parts, [PARTS + 1], and its series on a piece; how much it can exceed its values at the ends of a step in tile t
-   of a segment, of step i of the tile that is being looked at, or of a part of that; the energy bound of a free
-   vibration by that of its second derivative. */
-void rampwise_modes_ask_(rampwise_modes *m, size_t o);
-const double *rampwise_modes_points_of_(const rampwise_modes *m, size_t o);
-const double *rampwise_modes_series_of_(const rampwise_modes *m, size_t o);
-double rampwise_modes_tile_excess_(const rampwise_modes *m, size_t t, size_t o);
-double rampwise_modes_step_excess_(const rampwise_modes *m, size_t i, size_t o);
-double rampwise_modes_part_excess_(const rampwise_modes *m, size_t i, size_t o);
-double rampwise_modes_inverse_(double stiffness, double damping);
-
-/* The extremes of a series on piece `piece` of a step of so many pieces, noted where they exceed the peak. */
-void rampwise_modes_note_(rampwise_peak *peak, double value, uint64_t sample, double fraction);
-void rampwise_modes_curve_(const double *series, uint64_t sample, size_t piece, size_t pieces,
-                           rampwise_peak *peak);
-
-static inline double larger(double a, double b)
-{
-    return a > b ? a : b;
-}
-
-static inline double smaller(double a, double b)
-{
-    return a < b ? a : b;
-}
-
-/* A value inside a step that the series there will find again, with other rounding: so floors stay a little behind. */
-static inline void raise_floors(double value, double *high, double *low)
-{
-    const double margin = 0x1p-30 * fabs(value);
-    *high = larger(value - margin, *high);
-    *low = smaller(value + margin, *low);
-}
-
 /* equipment.c and equipment_peaks.c: as the functions above; only where there is equipment */
 void rampwise_equipment_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r);
 int rampwise_equipment_check_(const rampwise_modes_plan *plan);
 int rampwise_equipment_fill_(rampwise_modes *m, const rampwise_modes_plan *plan);
 void rampwise_equipment_start_(rampwise_modes *m);
-/* Along a segment of n samples: before its modes, a tile of them, after them (whether something is not finite any
-   more), and back to where it began. */
+/* Along a segment of n samples: before its modes, a tile of them, after them (whether something is not finite
+   any more), and back to where it began. */
 void rampwise_equipment_begin_(rampwise_modes *m, size_t n);
 void rampwise_equipment_tile_(rampwise_modes *m, size_t g, size_t t, size_t n, mode_tile *tile);
 int rampwise_equipment_end_(rampwise_modes *m, size_t n);
 void rampwise_equipment_go_back_(rampwise_modes *m);
-/* Peaks of a segment: bounds by a group's tiles, largest[tiles][LANES] of q'', or by the steps of a tile that is looked
-   at; the samples; whether something may exceed them in a tile, and in the step after k; in which spans of
-   it, as bits; what is asked for in such a span, and curves on a piece of it. */
+/* Peaks of a segment: bounds by a group's tiles, largest[tiles][LANES] of q'', or by the steps of a tile that
+   is looked at; the samples; whether something may exceed them in a tile, and in the step after k; in which
+   spans of it, as bits; what is asked for in such a span, and curves on a piece of it. */
 void rampwise_equipment_bound_group_(rampwise_modes *m, size_t g, size_t tiles, const double *largest);
 void rampwise_equipment_bound_steps_(rampwise_modes *m, size_t g, size_t n, const double *largest);
 void rampwise_equipment_note_(rampwise_modes *m, size_t n);
@@ -184,5 +167,14 @@ void rampwise_equipment_put_(const rampwise_modes *m, size_t n, const rampwise_h
 size_t rampwise_equipment_count_(const rampwise_modes *m);
 double *rampwise_equipment_state_(const rampwise_modes *m, size_t i, int velocity);
 rampwise_peak *rampwise_equipment_peak_(const rampwise_modes *m, size_t i, int q);
+
+/* modes.c: what a plan can be refused for, but for memory. */
+int rampwise_modes_check_(const rampwise_modes_plan *plan);
+
+/* The base comes to rest, or the forces go, at once: outputs begin with the free motion. */
+void rampwise_modes_release_(rampwise_modes *m);
+
+/* n <= SEGMENT samples without input; 0 where something would not be finite any more: nothing has changed. */
+int rampwise_modes_go_on_(rampwise_modes *m, size_t n);
 
 #endif

@@ -1,11 +1,12 @@
-/* Inside a step of a structure's modes: where they are at the beginnings of its parts, their power series there, and
-   weighted sums of either. */
+/* Inside a step of a structure's modes: where they are at the beginnings of its parts, their power series
+   there, and weighted sums of either. */
 #include <math.h>
 #include <string.h>
 #include "modes_core.h"
 #include "rampwise/status.h"
 
-/* A group on its way through the pieces of a span: its state, per piece of time, and its load and load's change. */
+/* A group on its way through the pieces of a span: its state, per piece of time, and its load and load's
+   change. */
 typedef struct walk {
     double u[LANES], v[LANES], load[LANES], change[LANES];
 } walk;
@@ -53,8 +54,8 @@ const double rampwise_modes_per_term_[MODES_TERMS] = {PER_SIX(0), PER_SIX(6), PE
 #undef PER
 #undef PER_SIX
 
-/* How many terms a series needs of which S and K are at most these, where no beginning is larger than 1: until two in a
-   row are below 2^-60. All there is room for leave 2^-61 of it, with S and K up to 1. */
+/* How many terms a series needs of which S and K are at most these, where no beginning is larger than 1:
+   until two in a row are below 2^-60. All there is room for leave 2^-61 of it, with S and K up to 1. */
 static size_t terms_for(double S, double K)
 {
     double a[MODES_TERMS] = {1, 1};
@@ -131,8 +132,8 @@ void rampwise_modes_parts_group_(rampwise_modes *m, size_t g, const double *u, c
     m->k->scatter(x->v + to, PARTS, LANES, PARTS, tile.v);
 }
 
-/* What one group adds to the chosen sums, x[LANES][columns] being what is summed. Weights are gathered for as many
-   sums as the kernel takes together. */
+/* What one group adds to the chosen sums, x[LANES][columns] being what is summed. Weights are gathered for as
+   many sums as the kernel takes together. */
 static void add_sums(const rampwise_modes *m, size_t g, const chosen *c, const double *weights,
                      const double *x, size_t columns, double *y)
 {

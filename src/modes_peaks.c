@@ -1,35 +1,15 @@
 /* Peaks of sums of modes, between the samples too: modes.h says how. */
 #include <math.h>
 #include <string.h>
-#include "modes_core.h"
+#include "modes_peaks_core.h"
 
-/* What bounds q'' = z over a step from its beginning. z'' + (c/m) z' + (k/m) z = 0 there, so with K the larger of
-   k/m and 1/(4 dt^2) the energy z'^2 + K z^2 grows by no more than e^(1/2) in a step, and not at all where K = k/m:
-   |z| <= growth sqrt(z^2 + z'^2/K), |z'| <= sqrt(K) times that. No bound where k or c is negative. */
-typedef struct bound {
+/* What bounds q'' = z over a step from its beginning. z'' + (c/m) z' + (k/m) z = 0 there, so with K the
+   larger of k/m and 1/(4 dt^2) the energy z'^2 + K z^2 grows by no more than e^(1/2) in a step, and not at
+   all where K = k/m: |z| <= growth sqrt(z^2 + z'^2/K), |z'| <= sqrt(K) times that. No bound where k or c is
+   negative. */
+struct bound {
     _Alignas(LANE_ALIGNMENT) double growth[LANES];
     double per_slope[LANES]; /* 1/sqrt(K) */
-} bound;
-
-struct modes_peaks {
-    rampwise_peak *peak; /* [outputs] */
-    /* [outputs]: what must be exceeded: the peak after a segment's samples, then points inside its steps too */
-    double *floor_high, *floor_low;
-    bound *bounds; /* [groups] */
-    /* [groups][LANES][width]: of the excess over the ends of a step and of a part */
-    double *step_weight, *part_weight;
-    double *begin;                                   /* [groups][TILES][2][LANES] */
-    double (*largest)[LANES];                        /* [TILES]: of the present group */
-    double *excess_tile, *excess_step, *excess_part; /* [TILES][width], [TILE][width] and again */
-    mode_tile *trace;                                /* [groups]: of a tile that is looked at */
-    unsigned char *marked;                           /* [SEGMENT]: steps in which there may be a peak */
-    /* of a step that is looked at: */
-    unsigned char *wanted; /* [outputs]: bits: those that may have a peak, those that equipment asks for */
-    size_t *which, *row;   /* [outputs]: these together, and where an output is among them */
-    size_t count;          /* of them */
-    double *points, *ends; /* [outputs][PARTS], where the parts begin; [outputs][PARTS + 1] */
-    uint32_t *spans;       /* [outputs]: bits of those that may hold a peak */
-    double *series;        /* [outputs][MODES_TERMS]: on a piece */
 };
 
 void rampwise_modes_peaks_take_(rampwise_modes *m, const rampwise_modes_plan *plan, room *r)
@@ -61,21 +41,15 @@ void rampwise_modes_peaks_take_(rampwise_modes *m, const rampwise_modes_plan *pl
     x->series = rampwise_room_take_(r, m->outputs, MODES_TERMS * sizeof(double));
 }
 
-double rampwise_modes_inverse_(double stiffness, double damping)
-{
-    const double ratio = 0.5 * damping / sqrt(stiffness), inverse = ratio + sqrt(1 + ratio * ratio);
-    return inverse * inverse / stiffness;
-}
-
-/* By how much a free vibration with the energy bound 1 of its second derivative in a step of length h exceeds its
-   values at the ends of a stretch of length d inside: d^2/8; but at most twice its own energy bound, whatever the
-   length. */
+/* By how much a free vibration with the energy bound 1 of its second derivative in a step of length h exceeds
+   its values at the ends of a stretch of length d inside: d^2/8; but at most twice its own energy bound,
+   whatever the length. */
 static double excess_unit(double stiffness, double damping, double h, double d)
 {
     const double curved = d * d / 8;
     if (!(stiffness >= 0.25 / (h * h) && damping >= 0))
         return curved;
-    return fmin(curved, 2 * rampwise_modes_inverse_(stiffness, damping));
+    return fmin(curved, 2 * inverse_of(stiffness, damping));
 }
 
 int rampwise_modes_peaks_fill_(rampwise_modes *m, const rampwise_modes_plan *plan)
@@ -147,119 +121,6 @@ void rampwise_modes_peaks_group_(rampwise_modes *m, size_t g, size_t tiles)
         rampwise_equipment_bound_group_(m, g, tiles, x->largest[0]);
 }
 
-/* One piece: its polynomial over [0, 1], bounds of the second and third derivative, and what must be exceeded. */
-typedef struct curve {
-    const double *a;
-    double second, third, noise, floor_high, floor_low;
-    uint64_t sample;
-    size_t piece, pieces;
-    rampwise_peak *peak;
-} curve;
-
-static double value_at(const curve *c, double x, double *slope, double *second)
-{
-    double value = 0, first = 0, half = 0;
-    for (size_t n = MODES_TERMS; n-- > 0;) {
-        half = half * x + first;
-        first = first * x + value;
-        value = value * x + c->a[n];
-    }
-    *slope = first;
-    *second = 2 * half;
-    return value;
-}
-
-static int is_earlier(const rampwise_instant *a, const rampwise_instant *b)
-{
-    return a->sample < b->sample || (a->sample == b->sample && a->fraction < b->fraction);
-}
-
-/* Steps are not looked into in their order. */
-void rampwise_modes_note_(rampwise_peak *peak, double value, uint64_t sample, double fraction)
-{
-    const rampwise_instant at = {value, sample, fraction};
-    if (value > peak->high.value || (value == peak->high.value && is_earlier(&at, &peak->high)))
-        peak->high = at;
-    if (value < peak->low.value || (value == peak->low.value && is_earlier(&at, &peak->low)))
-        peak->low = at;
-}
-
-static void note_on(const curve *c, double value, double x)
-{
-    const double fraction = ((double)c->piece + x) / (double)c->pieces;
-    if (fraction < 1)
-        rampwise_modes_note_(c->peak, value, c->sample, fraction);
-    else
-        rampwise_modes_note_(c->peak, value, c->sample + 1, 0);
-}
-
-/* The extreme between low and high, where the slope has opposite signs and is monotone: Newton's steps, halving
-   where one leaves the bracket. */
-static void note_extreme(const curve *c, double low, double high, int rising)
-{
-    double x = 0.5 * (low + high), slope, second, value = value_at(c, x, &slope, &second);
-    for (int i = 0; i < 100 && slope != 0; ++i) {
-        if ((slope < 0) == rising)
-            low = x;
-        else
-            high = x;
-        double next = x - slope / second;
-        if (!(next > low && next < high))
-            next = 0.5 * (low + high);
-        if (fabs(next - x) <= 0x1p-50)
-            break;
-        x = next;
-        value = value_at(c, x, &slope, &second);
-    }
-    note_on(c, value, x);
-}
-
-/* All extremes between low and high that can count. */
-static void search(const curve *c, double low, double high, int depth)
-{
-    double at_low, at_high, in_middle, second;
-    const double width = high - low, middle = 0.5 * (low + high);
-    const double first = value_at(c, low, &at_low, &second), last = value_at(c, high, &at_high, &second);
-    const double value = value_at(c, middle, &in_middle, &second);
-    if (fabs(second) > 0.5 * width * c->third) {
-        if ((at_low < 0 && at_high > 0) || (at_low > 0 && at_high < 0))
-            note_extreme(c, low, high, at_low < 0);
-        return;
-    }
-    const double most = width * width / 8 * c->second;
-    if (fmax(first, last) + most <= c->floor_high + c->noise &&
-        fmin(first, last) - most >= c->floor_low - c->noise)
-        return;
-    if (depth == 0) {
-        note_on(c, value, middle);
-        return;
-    }
-    search(c, low, middle, depth - 1);
-    search(c, middle, high, depth - 1);
-}
-
-void rampwise_modes_curve_(const double *a, uint64_t sample, size_t piece, size_t pieces, rampwise_peak *peak)
-{
-    const double high = peak->high.value, low = peak->low.value;
-    curve c = {a, 0, 0, fabs(a[0]) + fabs(a[1]), high, low, sample, piece, pieces, peak};
-    double end = a[0] + a[1];
-    for (size_t n = 2; n < MODES_TERMS; ++n) {
-        end += a[n];
-        c.noise += fabs(a[n]);
-        c.second += (double)(n * (n - 1)) * fabs(a[n]);
-        c.third += (double)(n * (n - 1) * (n - 2)) * fabs(a[n]);
-    }
-    c.noise *= 0x1p-44;
-    const double excess = c.second / 8 + c.noise;
-    if (fmax(a[0], end) + excess <= high && fmin(a[0], end) - excess >= low)
-        return;
-    search(&c, 0, 1, 12);
-    /* An extreme may lie on the end of a piece. */
-    double slope, second;
-    if (piece + 1 < pieces)
-        note_on(&c, value_at(&c, 1, &slope, &second), 1);
-}
-
 /* Held inputs make an output jump where a step ends, by no more than this. */
 static void add_jumps(const rampwise_modes *m, const double *input, size_t i, double *excess)
 {
@@ -299,8 +160,6 @@ static void trace(rampwise_modes *m, size_t t, size_t n)
         add_jumps(m, input, i, x->excess_step + i * m->width);
 }
 
-enum { MAY_COUNT = 1, ASKED_FOR = 2 };
-
 /* Which outputs may have a peak in step i of tile t; answers whether one does. */
 static int want_in_step(const rampwise_modes *m, size_t t, size_t i)
 {
@@ -316,11 +175,6 @@ static int want_in_step(const rampwise_modes *m, size_t t, size_t i)
     return any;
 }
 
-void rampwise_modes_ask_(rampwise_modes *m, size_t o)
-{
-    m->peaks->wanted[o] |= ASKED_FOR;
-}
-
 static chosen choose(rampwise_modes *m)
 {
     modes_peaks *const x = m->peaks;
@@ -333,8 +187,8 @@ static chosen choose(rampwise_modes *m)
     return (chosen){x->count, x->which, m->width, m->weight_u, m->weight_v};
 }
 
-/* The chosen outputs at the ends of the parts of step k: where each begins, and where the step ends, before what
-   held inputs make it jump by. */
+/* The chosen outputs at the ends of the parts of step k: where each begins, and where the step ends, before
+   what held inputs make it jump by. */
 static void make_points(rampwise_modes *m, size_t k)
 {
     modes_peaks *const x = m->peaks;
@@ -357,12 +211,13 @@ static void make_points(rampwise_modes *m, size_t k)
     }
 }
 
-/* In which spans of step i of a tile output o may have a peak, its floors raised by its values at the ends of parts. */
+/* In which spans of step i of a tile output o may have a peak, its floors raised by its values at the ends of
+   parts. */
 static uint32_t spans_of(const rampwise_modes *m, size_t o, size_t i)
 {
     modes_peaks *const x = m->peaks;
     const size_t parts = PARTS / rampwise_modes_spans_(m);
-    const double *const y = rampwise_modes_points_of_(m, o), excess = x->excess_part[i * m->width + o];
+    const double *const y = points_of(m, o), excess = x->excess_part[i * m->width + o];
     uint32_t spans = 0;
     for (size_t part = 0; part <= PARTS; ++part)
         raise_floors(y[part], &x->floor_high[o], &x->floor_low[o]);
@@ -393,7 +248,7 @@ static void look_at_piece(const rampwise_modes *m, size_t o, uint64_t sample, si
 {
     modes_peaks *const x = m->peaks;
     const size_t pieces = rampwise_modes_pieces_(m);
-    const double *const series = rampwise_modes_series_of_(m, o);
+    const double *const series = series_of(m, o);
     rampwise_modes_curve_(series, sample, piece, pieces, &x->peak[o]);
     if (m->between == RAMPWISE_HOLD && piece + 1 == pieces) { /* where it jumps, the value before */
         double sum = 0;
@@ -526,29 +381,4 @@ void rampwise_modes_peaks_segment_(rampwise_modes *m, size_t n)
         raise_in_tile(m, t, steps_of(t, n));
     for (size_t t = 0; t * TILE < n; ++t)
         look_at_tile(m, t, steps_of(t, n));
-}
-
-const double *rampwise_modes_points_of_(const rampwise_modes *m, size_t o)
-{
-    return m->peaks->ends + m->peaks->row[o] * (PARTS + 1);
-}
-
-const double *rampwise_modes_series_of_(const rampwise_modes *m, size_t o)
-{
-    return m->peaks->series + m->peaks->row[o] * MODES_TERMS;
-}
-
-double rampwise_modes_tile_excess_(const rampwise_modes *m, size_t t, size_t o)
-{
-    return m->peaks->excess_tile[t * m->width + o];
-}
-
-double rampwise_modes_step_excess_(const rampwise_modes *m, size_t i, size_t o)
-{
-    return m->peaks->excess_step[i * m->width + o];
-}
-
-double rampwise_modes_part_excess_(const rampwise_modes *m, size_t i, size_t o)
-{
-    return m->peaks->excess_part[i * m->width + o];
 }

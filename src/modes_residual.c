@@ -21,13 +21,6 @@ static void keep(keeping *k, void *x, size_t bytes)
     k->at += bytes;
 }
 
-size_t rampwise_modes_kept_size_(const rampwise_modes *m, size_t pieces)
-{
-    const size_t doubles = m->inputs + m->width + 2 * LANES * m->groups, peaks = sizeof(rampwise_peak);
-    return sizeof m->sample + doubles * sizeof(double) + m->outputs * peaks +
-           pieces * (2 * sizeof(double) + LOOKED_AT * peaks);
-}
-
 static void keep_all(rampwise_modes *m, int back)
 {
     keeping k = {m->kept, back};
@@ -59,7 +52,8 @@ static double size_of(double a, double b)
     return larger > 0 ? larger * sqrt(1 + smaller / larger * (smaller / larger)) : 0;
 }
 
-/* A bound of |z| from now on: its energy z'^2 + stiffness z^2 never grows. Without a spring z goes one way. */
+/* A bound of |z| from now on: its energy z'^2 + stiffness z^2 never grows. Without a spring z goes one way.
+   */
 static double largest_of(const free_motion *f)
 {
     if (f->z == 0 && f->slope == 0)
@@ -71,9 +65,9 @@ static double largest_of(const free_motion *f)
     return f->stiffness == 0 && f->damping == 0 && f->slope == 0 ? fabs(f->z) : INFINITY;
 }
 
-/* A bound of the integral of |z| from now on. With real roots -s and -S, s the smaller in size,
-   z = z0 exp(-s t) + (z0' + s z0) (exp(-s t) - exp(-S t))/(S - s), and the last factor's integral is 1/(s S). With
-   complex ones z is below an envelope that falls with r = damping/2, and also |z0| + |z0' + r z0| t below that. */
+/* A bound of the integral of |z| from now on. With real roots -s and -S, s the smaller in size, z = z0 exp(-s
+   t) + (z0' + s z0) (exp(-s t) - exp(-S t))/(S - s), and the last factor's integral is 1/(s S). With complex
+   ones z is below an envelope that falls with r = damping/2, and also |z0| + |z0' + r z0| t below that. */
 static double integral_of(const free_motion *f)
 {
     const double r = 0.5 * f->damping, square = r * r - f->stiffness;
@@ -121,10 +115,10 @@ static free_motion force_of(const free_motion *z, double k, double c)
     return (free_motion){z->stiffness, z->damping, k * z->z + c * z->slope, k * z->slope + c * second};
 }
 
-/* The motion alpha y + beta y' that a piece x'' + c x' + k x = -y can follow the free motion y in. With a = c - damping
-   and b = k - stiffness of y: (a D + b) (alpha + beta D) y = -y, so beta = a/D and alpha = (a damping - b)/D with
-   D = b^2 - a b damping + a^2 stiffness. Infinite where the two have a root in
-   common, or nearly, or D is out of range. */
+/* The motion alpha y + beta y' that a piece x'' + c x' + k x = -y can follow the free motion y in. With a = c
+   - damping and b = k - stiffness of y: (a D + b) (alpha + beta D) y = -y, so beta = a/D and alpha = (a
+   damping - b)/D with D = b^2 - a b damping + a^2 stiffness. Infinite where the two have a root in common, or
+   nearly, or D is out of range. */
 static free_motion following(const free_motion *y, double k, double c)
 {
     const double a = c - y->damping, difference = k - y->stiffness;
@@ -141,8 +135,8 @@ static free_motion following(const free_motion *y, double k, double c)
                          alpha * y->slope + beta * second};
 }
 
-/* Whether a piece is better off following a mode than driven by it, by a motion of the mode of size 1. The choice does not
-   change along the way, so that bounds fall. */
+/* Whether a piece is better off following a mode than driven by it, by a motion of the mode of size 1. The
+   choice does not change along the way, so that bounds fall. */
 static int follows(const free_motion *y, double k, double c)
 {
     const free_motion unit = {y->stiffness, y->damping, 1, sqrt(fabs(y->stiffness))},
@@ -151,9 +145,10 @@ static int follows(const free_motion *y, double k, double c)
     return followed < INFINITY && !(k > 0 && 2 * followed * sqrt(k) > integral_of(&unit));
 }
 
-/* What later displacements and total accelerations of piece i do not exceed in size. x is the sum of the motions that
-   follow the modes, and of a free motion. Near a mode's own frequency the two are large and cancel; there the
-   mode drives the piece instead: that adds to the root of its energy no more than the integral of |y|. */
+/* What later displacements and total accelerations of piece i do not exceed in size. x is the sum of the
+   motions that follow the modes, and of a free motion. Near a mode's own frequency the two are large and
+   cancel; there the mode drives the piece instead: that adds to the root of its energy no more than the
+   integral of |y|. */
 static void later_of_piece(const rampwise_modes *m, size_t i, double later[LOOKED_AT])
 {
     const equipment_core *const e = m->equipment;
@@ -217,14 +212,16 @@ static double later_of(const rampwise_modes *m, const asked *a, size_t i)
     return later[a->q];
 }
 
-/* Whether nothing later exceeds the peak on either side by more than 1e-11 of the larger: the rounding of both. */
+/* Whether nothing later exceeds the peak on either side by more than 1e-11 of the larger: the rounding of
+   both. */
 static int is_final(const rampwise_peak *peak, double later)
 {
     const double high = peak->high.value, low = -peak->low.value;
     return later <= fmin(high, low) + 1e-11 * fmax(high, low);
 }
 
-/* Walks on until all are final, so many samples at most. The first that is not is asked again after each segment. */
+/* Walks on until all are final, so many samples at most. The first that is not is asked again after each
+   segment. */
 static void walk(rampwise_modes *m, const asked *a, uint64_t samples)
 {
     size_t i = 0;

@@ -9,6 +9,7 @@
 #include "lanes.h"
 #include "peaks_group.h"
 #include "rampwise/status.h"
+#include "samples.h"
 #include "saved.h"
 #include "valid.h"
 

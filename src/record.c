@@ -3,6 +3,7 @@
 #include "rampwise/status.h"
 #include "entry.h"
 #include "kernels/kernels.h"
+#include "samples.h"
 #include "valid.h"
 
 int PUBLIC(run)(const real_coeffs *c, real_state *s, size_t n, const real *p, const real_history *out,

@@ -5,6 +5,7 @@
 #include "rampwise/status.h"
 #include "entry.h"
 #include "kernels/kernels.h"
+#include "samples.h"
 #include "valid.h"
 
 /* Coefficients for the intervals met last, on the caller's stack. */

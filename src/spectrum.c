@@ -6,6 +6,7 @@
 #include "lanes.h"
 #include "peaks_group.h"
 #include "rampwise/status.h"
+#include "samples.h"
 #include "spectrum_list.h"
 #include "valid.h"
 

@@ -4,7 +4,6 @@
 
 #include <math.h>
 #include <string.h>
-#include "kernels/kernels.h"
 #include "precision.h"
 #include "rampwise/status.h"
 
@@ -36,12 +35,6 @@ static inline int blame(int status, size_t index, size_t *bad)
     if (bad != NULL)
         *bad = index;
     return status;
-}
-
-static inline int check_samples(size_t n, const real *p, size_t *bad)
-{
-    const size_t wrong = PRIVATE(kernels)(RAMPWISE_FASTEST)->first_not_finite(n, p);
-    return wrong < n ? blame(RAMPWISE_ERROR_SAMPLE, wrong, bad) : RAMPWISE_OK;
 }
 
 /* What the sampling has cost can be estimated where the input is on a line and its kinks do
