@@ -4,8 +4,10 @@
 ## @deftypefnx {} {@var{b} =} rampwise_structure (@var{M}, [], @var{K}, "rayleigh", [@var{f1}, @var{zeta1}; @var{f2}, @var{zeta2}])
 ## The modes of the structure @code{M u'' + C u' + K u = forces}, for @code{rampwise_structure_response}.
 ##
-## @var{M}, @var{C} and @var{K} are symmetric, @var{M} positive definite, @var{K} without negative eigenvalues. The damping
-## is the matrix @var{C}; or, where that is empty, one of
+## @var{M}, @var{C} and @var{K} are symmetric, @var{M} positive definite, @var{K} without negative eigenvalues. As many modes
+## are rigid bodies as K, scaled to ones on its diagonal, has eigenvalues within 4 n eps of 0, of n masses. Where a rounding
+## of K moves an @code{omega^2} by more than 1e-6 of it, that is refused: condense the structure, or soften its stiffest
+## spring. The damping is the matrix @var{C}; or, where that is empty, one of
 ##
 ## @table @asis
 ## @item "damping"
@@ -40,7 +42,7 @@ function b = rampwise_structure (M, C, K, varargin)
   if (sum (given) != 1)
     error ("rampwise:option", "%s: give exactly one of C, 'damping' and 'rayleigh'", caller);
   endif
-  [shapes, k] = undamped (caller, M, K);
+  [shapes, k] = undamped_modes (caller, M, K);
   if (given(1))
     D = shapes.' * symmetric (caller, "C", C, rows (M)) * shapes;
   elseif (given(2))
@@ -73,23 +75,6 @@ function A = symmetric (caller, name, A, n)
     error ("rampwise:argument", "%s: %s must be finite and symmetric", caller, name);
   endif
   A = (A + A.') / 2;
-endfunction
-
-## Shapes of unit modal mass, and the squares of omega; what rounding cannot tell from 0 is 0.
-function [shapes, k] = undamped (caller, M, K)
-  [R, failed] = chol (M);
-  if (failed)
-    error ("rampwise:argument", "%s: M must be positive definite", caller);
-  endif
-  B = R.' \ K / R;
-  [V, k] = eig ((B + B.') / 2, "vector");
-  [k, order] = sort (k);
-  shapes = R \ V(:,order);
-  lost = 16 * numel (k) * eps * max (abs (k));
-  k(abs (k) <= lost) = 0;
-  if (any (k < 0))
-    error ("rampwise:argument", "%s: K must have no negative eigenvalue", caller);
-  endif
 endfunction
 
 ## Where frequencies coincide shapes are free to turn, and are turned to what the damping does not tie.
@@ -179,6 +164,35 @@ endfunction
 %! b = rampwise_structure (eye (2), [1, -1; -1, 1], 9 * [1, -1; -1, 1]);
 %! assert (b.omega, [0; sqrt(18)], 1e-14);
 %! assert (isnan (b.damping), [true; false]);
+%!function [M, K] = beam (n)
+%!  ## n elements of cubic shapes, length 1, bending stiffness 1, mass 1: deflection and slope of each node.
+%!  l = 1 / n; [M, K] = deal (zeros (2 * n + 2));
+%!  k = [12, 6*l, -12, 6*l; 6*l, 4*l^2, -6*l, 2*l^2; -12, -6*l, 12, -6*l; 6*l, 2*l^2, -6*l, 4*l^2] / l^3;
+%!  m = [156, 22*l, 54, -13*l; 22*l, 4*l^2, 13*l, -3*l^2; 54, 13*l, 156, -22*l; -13*l, -3*l^2, -22*l, 4*l^2] * l / 420;
+%!  for i = 1:2:2 * n
+%!    K(i:i+3,i:i+3) += k; M(i:i+3,i:i+3) += m;
+%!  endfor
+%!endfunction
+%!test # beams, free and clamped at one end: sqrt (omega) are the zeros of cosh x cos x = 1 and -1. Elements of length l are
+%! # too stiff by (x l)^4/720 of omega^2; 1e-6 is what roundings may move
+%! for n = [4, 50, 200]
+%!   [A, S] = beam (n);
+%!   x = fzero (@(x) cos (x) - 1 / cosh (x), [4.5, 5]); y = fzero (@(x) cos (x) + 1 / cosh (x), [1.5, 2]);
+%!   b = rampwise_structure (A, [], S, "damping", 0.02);
+%!   assert (sum (b.omega == 0), 2);
+%!   assert (b.omega(3), x ^ 2, -(x / n) ^ 4 / 300 - 1e-6);
+%!   assert (b.shapes.' * A * b.shapes, eye (2 * n + 2), 1e-12);
+%!   b = rampwise_structure (A(3:end,3:end), [], S(3:end,3:end), "damping", 0.02);
+%!   assert (b.omega(1), y ^ 2, -(y / n) ^ 4 / 300 - 1e-6);
+%! endfor
+%!test # a chain on a support by a stiff spring: omega^2 = 2 k/m (1 - cos ((2 j - 1) pi / (2 n - 1))) where that is rigid
+%! n = 20; S = 100 * (2 * eye (n) - diag (ones (n - 1, 1), 1) - diag (ones (n - 1, 1), -1)); S(end,end) = 100; S(1,1) += 1e16;
+%! b = rampwise_structure (eye (n), [], S, "damping", 0.02);
+%! assert (b.omega(1:n-1) .^ 2, 200 * (1 - cos ((1:2:2*n-3).' * pi / (2 * n - 1))), -1e-12);
+%!test # what is left between two springs of 1e10 and one of 1 is known to 1e-6 only
+%! fail ('rampwise_structure (eye (2), [], [1e10 + 1, -1e10; -1e10, 1e10], "damping", 0)', "soften its stiffest spring");
+%! b = rampwise_structure (eye (2), [], [1e8 + 1, -1e8; -1e8, 1e8], "damping", 0);
+%! assert (b.omega(1) ^ 2, 0.5, 1e-7);
 %!error <Invalid call> rampwise_structure (M, M)
 %!error <exactly one of> rampwise_structure (M, M, K, "damping", 0.1)
 %!error <exactly one of> rampwise_structure (M, [], K)
