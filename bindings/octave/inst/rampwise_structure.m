@@ -19,7 +19,8 @@
 ##
 ## Modes are those without damping. A mode that the damping ties to no other one is an ordinary oscillator; where all are,
 ## damping is classical. The others go by the complex pairs of roots and shapes that they have together. What ties is an
-## element of the modal damping matrix, off its diagonal, above 1e-10 of the largest.
+## element of the modal damping matrix @code{shapes' C shapes}, off its diagonal. It is 0 within 32 n eps of the largest;
+## among modes of omega^2 below 1e-6 of the largest, of @code{abs (shapes)' abs (C) abs (shapes)}.
 ##
 ## @var{b} is a struct of columns, slowest mode first, @code{omega}, @code{frequency}, @code{period} and @code{damping} (that
 ## of the diagonal, NaN for a rigid-body mode, which has omega 0); @code{shapes}, a column each, of modal mass 1; @code{roots},
@@ -42,19 +43,16 @@ function b = rampwise_structure (M, C, K, varargin)
   if (sum (given) != 1)
     error ("rampwise:option", "%s: give exactly one of C, 'damping' and 'rayleigh'", caller);
   endif
-  [shapes, k] = undamped_modes (caller, M, K);
+  [shapes, k, slow] = undamped_modes (caller, M, K);
   if (given(1))
-    D = shapes.' * symmetric (caller, "C", C, rows (M)) * shapes;
+    [shapes, D] = modal_dampers (shapes, k, slow, symmetric (caller, "C", C, rows (M)));
   elseif (given(2))
     D = diag (2 * ratios (caller, options.damping, k) .* sqrt (k));
   else
     ab = rayleigh (caller, options.rayleigh);
     D = diag (ab(1) + ab(2) * k);
   endif
-  [shapes, D] = settle_groups (shapes, k, (D + D.') / 2);
-  off = abs (D - diag (diag (D))) > 1e-10 * max (abs (D(:)));
-  D(! off & ! eye (rows (D))) = 0;
-  coupled = any (off, 2);
+  coupled = any (D != 0 & ! eye (rows (D)), 2);
   omega = sqrt (k);
   zeta = diag (D) ./ (2 * omega);
   zeta(k == 0) = NaN;
@@ -77,23 +75,28 @@ function A = symmetric (caller, name, A, n)
   A = (A + A.') / 2;
 endfunction
 
-## Where frequencies coincide shapes are free to turn, and are turned to what the damping does not tie.
-function [shapes, D] = settle_groups (shapes, k, D)
+## The modal damping matrix, 0 where roundings may have left what it is; and shapes of coinciding frequencies, which are
+## free to turn, turned to what C does not tie. Those of slow modes bring no more roundings than C has where they move.
+function [shapes, D] = modal_dampers (shapes, k, slow, C)
   n = numel (k);
-  first = 1;
-  for last = 1:n
-    if (last == n || k(last + 1) - k(last) > 1e-9 * max (k))
-      if (last > first)
-        g = first:last;
-        [V, ~] = eig (D(g,g));
-        shapes(:,g) = shapes(:,g) * V;
-        D(g,:) = V.' * D(g,:);
-        D(:,g) = D(:,g) * V;
-        D = (D + D.') / 2;
-      endif
-      first = last + 1;
+  D = shapes.' * C * shapes;
+  D = (D + D.') / 2;
+  groups = cumsum ([1; diff(k) > min(32 * n * eps * max (k), 1e-9 * k(2:end))]);
+  for group = 1:groups(end)
+    g = groups == group;
+    if (sum (g) > 1)
+      [V, own] = eig (D(g,g));
+      shapes(:,g) = shapes(:,g) * V;
+      D(g,:) = V.' * D(g,:);
+      D(:,g) = D(:,g) * V;
+      D(g,g) = own;
     endif
   endfor
+  lost = max (abs (D(:))) * ones (n);
+  X = abs (shapes(:,1:slow));
+  lost(1:slow,1:slow) = X.' * abs (C) * X;
+  D = (D + D.') / 2;
+  D(abs (D) <= 32 * n * eps * lost) = 0;
 endfunction
 
 function z = ratios (caller, z, k)
@@ -189,6 +192,24 @@ endfunction
 %! n = 20; S = 100 * (2 * eye (n) - diag (ones (n - 1, 1), 1) - diag (ones (n - 1, 1), -1)); S(end,end) = 100; S(1,1) += 1e16;
 %! b = rampwise_structure (eye (n), [], S, "damping", 0.02);
 %! assert (b.omega(1:n-1) .^ 2, 200 * (1 - cos ((1:2:2*n-3).' * pi / (2 * n - 1))), -1e-12);
+%!test # dashpots of soft modes stay beside a stiff spring: roots are those of the two masses that it leaves free, to 1/stiff
+%! for stiff = [1e8, 3e9, 1e12, 1e16]
+%!   for c = [0, 0.01]
+%!     S = [2, -1, 0; -1, 2, -1; 0, -1, 1 + stiff]; C = c * S; C(1,1) += 0.5;
+%!     b = rampwise_structure (eye (3), C, S);
+%!     assert (b.coupled, [true; true; false]);
+%!     x = rampwise_structure (eye (2), C(1:2,1:2), S(1:2,1:2)).roots;
+%!     assert (cplxpair (b.coupled_roots, 1e-12), cplxpair (x, 1e-12), 4 / stiff + 1e-14);
+%!   endfor
+%! endfor
+%!test # but damping by K alone is classical, of fine meshes and of rigid bodies, which it leaves undamped
+%! [A, S] = beam (100);
+%! b = rampwise_structure (A, 1e-6 * S, S);
+%! assert (b.classical);
+%! assert (diag (b.modal_damper)(1:2), [0; 0]);
+%! assert (b.damping(3:end), b.omega(3:end) * 5e-7, -1e-6);
+%! F = [50, -50, 0; -50, 120, -70; 0, -70, 70];
+%! assert (rampwise_structure (diag ([1.3, 1.7, 1.1]), 0.01 * F, F).modal_damper(1,1), 0);
 %!test # what is left between two springs of 1e10 and one of 1 is known to 1e-6 only
 %! fail ('rampwise_structure (eye (2), [], [1e10 + 1, -1e10; -1e10, 1e10], "damping", 0)', "soften its stiffest spring");
 %! b = rampwise_structure (eye (2), [], [1e8 + 1, -1e8; -1e8, 1e8], "damping", 0);

@@ -1,7 +1,7 @@
-## undamped_modes (CALLER, M, K): shapes of unit modal mass, a column each, and the squares of omega, slowest first.
-## A solver's roundings are some eps of the largest omega^2: more than all of the lowest, where elements are short or
+## undamped_modes (CALLER, M, K): shapes of unit modal mass, a column each, and the squares of omega, slowest first;
+## and how many of them are slow. A solver's roundings are some eps of the largest omega^2: more than all of the lowest, where elements are short or
 ## stiffnesses differ much. Rigid bodies are therefore counted by K scaled to a unit diagonal, and slow modes found once more.
-function [shapes, k] = undamped_modes (caller, M, K)
+function [shapes, k, count] = undamped_modes (caller, M, K)
   [R, failed] = chol (M);
   if (failed)
     error ("rampwise:argument", "%s: M must be positive definite", caller);
@@ -13,7 +13,8 @@ function [shapes, k] = undamped_modes (caller, M, K)
   d = sqrt (abs (diag (K)));
   d(d == 0) = 1;
   rigid = rigid_bodies (caller, M, K, d);
-  slow = 1:max (columns (rigid), sum (k <= 1e-6 * max (k))); # of the others roundings are 1e-9 or so
+  count = max (columns (rigid), sum (k <= 1e-6 * max (k))); # of the others roundings are 1e-9 or so
+  slow = 1:count;
   [~, ~, V] = svd (rigid.' * M * shapes(:,slow));
   [elastic, lowest] = inverse_iteration (caller, M, K, rigid, d, shapes(:,slow) * V(:,columns (rigid)+1:end));
   shapes(:,slow) = [rigid, elastic];
