@@ -30,7 +30,8 @@
 ## @item "peaks"
 ## true (default) or false: find the peaks between the samples too.
 ## @item "part"
-## Of which time the peaks are: "primary" (default), "residual" or "maximax", as in @code{rampwise_live_structure_read}.
+## Of which time the peaks are: "primary" (default), "residual" or "maximax", as in @code{rampwise_live_structure_read}; but
+## where "between" is "hold" the last sample acts for one @var{dt} before the free motion begins.
 ## @end table
 ##
 ## @var{r} is a struct of @code{time}, a column; matrices @code{displacement}, @code{velocity}, @code{acceleration} and
@@ -62,6 +63,10 @@ function r = rampwise_structure_response (b, p, dt, varargin)
   check (caller, status, fault, [n, s.inputs]);
   r = cell2struct ([{(0:n - 1).' * dt}; struct2cell(h)], [{"time"}; fieldnames(h)]);
   if (s.peaks)
+    if (part != 0 && strcmpi (options.between, "hold")) # the last sample acts for DT
+      [~, status] = push_structure (caller, s, zeros (1, s.inputs), false);
+      check (caller, status, n, [n, s.inputs]);
+    endif
     now = read_structure (caller, s, part, free_steps ());
     r.peaks = now.peaks;
     if (s.pieces > 0)
@@ -229,6 +234,18 @@ endfunction
 %!   s = rampwise_structure_response (rampwise_structure (1, 0.6, 9), p, dt, o{:}, "on", 1);
 %!   r = rampwise_response (p, dt, "system", struct ("mass", 1, "damper", 0.6, "stiffness", 9), o{:});
 %!   assert (s.displacement, r.displacement);
+%! endfor
+%!test # and so are its peaks with those after the record; a held last sample acts for its step
+%! q = [p(1:39); 5]; w = 0.7; x = {"omega", w / dt, "damping", 0.05}; b = rampwise_structure (1, [], (w / dt) ^ 2, "damping", 0.05);
+%! for between = {"ramp", "hold"}
+%!   for part = {"residual", "maximax"}
+%!     o = {"between", between{1}, "part", part{1}};
+%!     s = rampwise_spectrum (q, dt, x{:}, o{:});
+%!     r = rampwise_structure_response (b, q, dt, "input", "base acceleration", o{:});
+%!     assert (abs (r.peaks.displacement.largest), s.SD, -1e-13);
+%!     assert (abs (r.peaks.total_acceleration.largest), s.SA, -1e-13);
+%!     assert (rows (r.displacement), 40);
+%!   endfor
 %! endfor
 %!test # parts of the time: those of the live structure; the histories are the same
 %! b = rampwise_structure (M, C, K); e = rampwise_system ("omega", 7, "damping", 0.05);
