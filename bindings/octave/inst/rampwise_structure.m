@@ -21,6 +21,8 @@
 ## damping is classical. The others go by the complex pairs of roots and shapes that they have together. What ties is an
 ## element of the modal damping matrix @code{shapes' C shapes}, off its diagonal. It is 0 within 32 n eps of the largest;
 ## among modes of omega^2 below 1e-6 of the largest, of @code{abs (shapes)' abs (C) abs (shapes)}.
+## Where two of the roots coincide without a shape of their own each, as in critical damping, responses are refused: move a
+## damper by 1e-7 of it. Within 1e-6 of that, responses lose digits.
 ##
 ## @var{b} is a struct of columns, slowest mode first, @code{omega}, @code{frequency}, @code{period} and @code{damping} (that
 ## of the diagonal, NaN for a rigid-body mode, which has omega 0); @code{shapes}, a column each, of modal mass 1; @code{roots},

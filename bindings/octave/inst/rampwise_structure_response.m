@@ -24,8 +24,9 @@
 ## true: displacements settle where the whole structure does, although modes are left out (residual mode, missing mass).
 ## Default: false. For classical damping.
 ## @item "equipment", "point"
-## Light equipment, which the structure does not feel: oscillators as from @code{rampwise_system}, and for each (or one for
-## all) the row of "rows" on whose total acceleration it stands. It begins at rest against its point. The answer is exact,
+## Light equipment, which the structure does not feel: oscillators as from @code{rampwise_system}, and for each the row of
+## "rows" on whose total acceleration it stands. Several pieces may have one point, and one piece several points, as a
+## piece each. It begins at rest against its point. The answer is exact,
 ## for tuned equipment too.
 ## @item "peaks"
 ## true (default) or false: find the peaks between the samples too.
@@ -201,6 +202,12 @@ endfunction
 %!   assert (all ([high - max(f), min(f) - low] > -1e-10 * max (abs ([f, f]))));
 %!   assert ([high; -low], [max(f); -min(f)], -4e-4); # (90 dt / 64)^2 / 8 = 4e-4
 %! endfor
+%!test # one piece on several points is as many pieces
+%! b = rampwise_structure (M, C, K); o = {"input", "base acceleration", "equipment"}; e = {"omega", 7, "damping", 0.05};
+%! r = rampwise_structure_response (b, p, dt, o{:}, rampwise_system (e{:}), "point", [3, 1]);
+%! x = rampwise_structure_response (b, p, dt, o{:}, rampwise_system (e{:}, "mass", [1, 1]), "point", [3, 1]);
+%! assert (columns (r.equipment.displacement), 2);
+%! assert (r.equipment, x.equipment);
 %!test # modes left out: those that stay, in one matrix exponential
 %! b = rampwise_structure (M, C, K); s = b.shapes(:,1:2);
 %! r = rampwise_structure_response (b, p, dt, "input", "base acceleration", "modes", 2);
@@ -268,6 +275,7 @@ endfunction
 %!error <P.3,2.> rampwise_structure_response (b, [1, 1; 2, 2; 3, NaN], 1, "input", "force", "on", eye (2))
 %!error <P.1.> rampwise_structure_response (b, Inf, 1, "input", "base acceleration")
 %!error id=rampwise:interval rampwise_structure_response (b, 1, 0, "input", "base acceleration")
-%!error <must be force or base> rampwise_structure_response (b, 1, 1, "input", "base velocity")
+%!error <'input' must be one of: force, base acceleration$> rampwise_structure_response (b, 1, 1, "input", "base velocity")
+%!error <'input' is needed, one of: force, base acceleration$> rampwise_structure_response (b, 1, 1)
 %!error <P holds no samples> rampwise_structure_response (b, [], 1, "input", "base acceleration")
 %!error <'peaks' must be true or false> rampwise_structure_response (b, 1, 1, "input", "base acceleration", "peaks", "no")
