@@ -1,19 +1,19 @@
 ## -*- texinfo -*-
 ## @deftypefn  {} {@var{b} =} rampwise_structure (@var{M}, @var{C}, @var{K})
-## @deftypefnx {} {@var{b} =} rampwise_structure (@var{M}, [], @var{K}, "damping", @var{zeta})
-## @deftypefnx {} {@var{b} =} rampwise_structure (@var{M}, [], @var{K}, "rayleigh", [@var{f1}, @var{zeta1}; @var{f2}, @var{zeta2}])
+## @deftypefnx {} {@var{b} =} rampwise_structure (@var{M}, @var{C}, @var{K}, "damping", @var{zeta})
+## @deftypefnx {} {@var{b} =} rampwise_structure (@var{M}, @var{C}, @var{K}, "rayleigh", [@var{f1}, @var{zeta1}; @var{f2}, @var{zeta2}])
 ## The modes of the structure @code{M u'' + C u' + K u = forces}, for @code{rampwise_structure_response}.
 ##
 ## @var{M}, @var{C} and @var{K} are symmetric, @var{M} positive definite, @var{K} without negative eigenvalues. As many modes
 ## are rigid bodies as K, scaled to ones on its diagonal, has eigenvalues within 4 n eps of 0, of n masses. Where a rounding
 ## of K moves an @code{omega^2} by more than 1e-6 of it, that is refused: condense the structure, or soften its stiffest
-## spring. The damping is the matrix @var{C}; or, where that is empty, one of
+## spring. The damping is the matrix @var{C}; one of the following, where that is empty; or both, added:
 ##
 ## @table @asis
 ## @item "damping"
 ## damping ratios of the modes, one for all or one each, slowest first; rigid-body modes have none;
 ## @item "rayleigh"
-## @code{C = a M + b K} with damping ratios @var{zeta1} and @var{zeta2} at the frequencies @var{f1} and @var{f2}, in
+## @code{a M + b K} with damping ratios @var{zeta1} and @var{zeta2} at the frequencies @var{f1} and @var{f2}, in
 ## cycles. A negative @code{a} or @code{b} is refused.
 ## @end table
 ##
@@ -21,8 +21,9 @@
 ## damping is classical. The others go by the complex pairs of roots and shapes that they have together. What ties is an
 ## element of the modal damping matrix @code{shapes' C shapes}, off its diagonal. It is 0 within 32 n eps of the largest;
 ## among modes of omega^2 below 1e-6 of the largest, of @code{abs (shapes)' abs (C) abs (shapes)}.
+##
 ## Where two of the roots coincide without a shape of their own each, as in critical damping, responses are refused: move a
-## damper by 1e-7 of it. Within 1e-6 of that, responses lose digits.
+## damper by 1e-7 of it. Within 1e-6 of where they coincide responses lose digits.
 ##
 ## @var{b} is a struct of columns, slowest mode first, @code{omega}, @code{frequency}, @code{period} and @code{damping} (that
 ## of the diagonal, NaN for a rigid-body mode, which has omega 0); @code{shapes}, a column each, of modal mass 1; @code{roots},
@@ -41,18 +42,20 @@ function b = rampwise_structure (M, C, K, varargin)
   options = parse (caller, struct ("damping", [], "rayleigh", []), varargin);
   M = symmetric (caller, "M", M, rows (M));
   K = symmetric (caller, "K", K, rows (M));
-  given = [! isempty(C), ! isempty(options.damping), ! isempty(options.rayleigh)];
-  if (sum (given) != 1)
-    error ("rampwise:option", "%s: give exactly one of C, 'damping' and 'rayleigh'", caller);
+  given = ! [isempty(options.damping), isempty(options.rayleigh)];
+  if (all (given) || (! any (given) && isempty (C)))
+    error ("rampwise:option", "%s: give C, 'damping' or 'rayleigh', or C and one of the two", caller);
   endif
   [shapes, k, slow] = undamped_modes (caller, M, K);
+  D = zeros (rows (M));
   if (given(1))
-    [shapes, D] = modal_dampers (shapes, k, slow, symmetric (caller, "C", C, rows (M)));
-  elseif (given(2))
     D = diag (2 * ratios (caller, options.damping, k) .* sqrt (k));
-  else
+  elseif (given(2))
     ab = rayleigh (caller, options.rayleigh);
     D = diag (ab(1) + ab(2) * k);
+  endif
+  if (! isempty (C))
+    [shapes, D] = add_dampers (shapes, k, slow, symmetric (caller, "C", C, rows (M)), D);
   endif
   coupled = any (D != 0 & ! eye (rows (D)), 2);
   omega = sqrt (k);
@@ -77,11 +80,12 @@ function A = symmetric (caller, name, A, n)
   A = (A + A.') / 2;
 endfunction
 
-## The modal damping matrix, 0 where roundings may have left what it is; and shapes of coinciding frequencies, which are
-## free to turn, turned to what C does not tie. Those of slow modes bring no more roundings than C has where they move.
-function [shapes, D] = modal_dampers (shapes, k, slow, C)
+## The modal damping matrix D with C added, 0 where roundings may have left what it is; and shapes of coinciding
+## frequencies, which are free to turn, turned to what it does not tie. Slow modes bring no more roundings than C
+## has where they move.
+function [shapes, D] = add_dampers (shapes, k, slow, C, D)
   n = numel (k);
-  D = shapes.' * C * shapes;
+  D += shapes.' * C * shapes;
   D = (D + D.') / 2;
   groups = cumsum ([1; diff(k) > min(32 * n * eps * max (k), 1e-9 * k(2:end))]);
   for group = 1:groups(end)
@@ -194,6 +198,17 @@ endfunction
 %! n = 20; S = 100 * (2 * eye (n) - diag (ones (n - 1, 1), 1) - diag (ones (n - 1, 1), -1)); S(end,end) = 100; S(1,1) += 1e16;
 %! b = rampwise_structure (eye (n), [], S, "damping", 0.02);
 %! assert (b.omega(1:n-1) .^ 2, 200 * (1 - cos ((1:2:2*n-3).' * pi / (2 * n - 1))), -1e-12);
+%!test # dampers beside modal damping: those of the sum, by hand; and by "rayleigh"
+%! C = zeros (3); C(1,1) = 5; z = [0.02; 0.05; 0.1];
+%! x = rampwise_structure (M, [], K, "damping", z);
+%! sum_of = rampwise_structure (M, C + M * x.shapes * diag (2 * z .* x.omega) * x.shapes.' * M, K);
+%! b = rampwise_structure (M, C, K, "damping", z);
+%! assert (! b.classical);
+%! assert (cplxpair (b.roots), cplxpair (sum_of.roots), 1e-12);
+%! assert (b.damping, sum_of.damping, 1e-14);
+%! x = rampwise_structure (M, 0.3 * M + 0.002 * K, K); w = x.omega(1:2);
+%! b = rampwise_structure (M, C, K, "rayleigh", [w / (2 * pi), x.damping(1:2)]);
+%! assert (cplxpair (b.roots), cplxpair (rampwise_structure (M, C + 0.3 * M + 0.002 * K, K).roots), 1e-11);
 %!test # dashpots of soft modes stay beside a stiff spring: roots are those of the two masses that it leaves free, to 1/stiff
 %! for stiff = [1e8, 3e9, 1e12, 1e16]
 %!   for c = [0, 0.01]
@@ -217,8 +232,8 @@ endfunction
 %! b = rampwise_structure (eye (2), [], [1e8 + 1, -1e8; -1e8, 1e8], "damping", 0);
 %! assert (b.omega(1) ^ 2, 0.5, 1e-7);
 %!error <Invalid call> rampwise_structure (M, M)
-%!error <exactly one of> rampwise_structure (M, M, K, "damping", 0.1)
-%!error <exactly one of> rampwise_structure (M, [], K)
+%!error <or C and one of the two> rampwise_structure (M, [], K, "damping", 0.1, "rayleigh", [1, 0.1; 2, 0.1])
+%!error <or C and one of the two> rampwise_structure (M, [], K)
 %!error <M must be positive definite> rampwise_structure (-M, [], K, "damping", 0)
 %!error <no negative eigenvalue> rampwise_structure (M, [], -K, "damping", 0)
 %!error <K must be finite and symmetric> rampwise_structure (M, [], K + [0, 1, 0; 0, 0, 0; 0, 0, 0], "damping", 0)

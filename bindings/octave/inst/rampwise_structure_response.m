@@ -243,7 +243,7 @@ endfunction
 %!   assert (s.displacement, r.displacement);
 %! endfor
 %!test # and so are its peaks with those after the record; a held last sample acts for its step
-%! q = [p(1:39); 5]; w = 0.7; x = {"omega", w / dt, "damping", 0.05}; b = rampwise_structure (1, [], (w / dt) ^ 2, "damping", 0.05);
+%! q = [p(1:39); 5]; w = 0.7 / dt; x = {"omega", w, "damping", 0.05}; b = rampwise_structure (1, [], w ^ 2, x{3:4});
 %! for between = {"ramp", "hold"}
 %!   for part = {"residual", "maximax"}
 %!     o = {"between", between{1}, "part", part{1}};
