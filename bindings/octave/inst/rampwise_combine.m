@@ -41,10 +41,11 @@ function x = rampwise_combine (peaks, rule, varargin)
   endif
   if (which == 3)
     omega = numbers (caller, "option 'omega'", options.omega)(:);
-    zeta = numbers (caller, "option 'damping'", options.damping)(:) .* ones (n, 1);
-    if (numel (omega) != n || rows (zeta) != n || any (! ([omega; zeta(:)] >= 0)))
+    zeta = numbers (caller, "option 'damping'", options.damping)(:);
+    if (numel (omega) != n || ! any (numel (zeta) == [1, n]) || any (! ([omega; zeta] >= 0)))
       error ("rampwise:option", "%s: 'omega' and 'damping' must be 0 or more, one for each of %d modes", caller, n);
     endif
+    zeta = zeta .* ones (n, 1);
   elseif (which == 4)
     share = scalar (caller, "option 'share'", options.share);
   endif
@@ -69,3 +70,4 @@ endfunction
 %!error <go with the complete quadratic> rampwise_combine ([1; 2], "absolute sum", "share", 1)
 %!error <must be 0 or more> rampwise_combine ([1; 2], "complete quadratic", "omega", [1; NaN], "damping", 0.1)
 %!error <must be 0 or more> rampwise_combine ([1; 2], "complete quadratic", "omega", 1, "damping", 0.1)
+%!error <must be 0 or more> rampwise_combine ([1; 2], "complete quadratic", "omega", [1; 2], "damping", [0.1, 0.1, 0.1])

@@ -66,6 +66,8 @@ endfunction
 %!error <'point' must have one element> rampwise_live_structure (b, 1, o{:}, "equipment", e)
 %!error <'point' must have one element> rampwise_live_structure (b, 1, o{:}, "equipment", e, "point", [1, 1, 1])
 %!error <'point' must have one element> rampwise_live_structure (b, 1, o{:}, "point", 1)
+%!error <'point' must have one element> rampwise_live_structure (b, 1, o{:}, "point", [1, 2])
+%!error <'point' must be numbers of rows, from 1 to 2> rampwise_live_structure (b, 1, o{:}, "equipment", e, "point", NaN)
 %!error <'point' must be numbers of rows, from 1 to 2> rampwise_live_structure (b, 1, o{:}, "equipment", e, "point", 3)
 %!error <'point' must be numbers of rows, from 1 to 2> rampwise_live_structure (b, 1, o{:}, "equipment", e, "point", [1, 1.5])
 %!error <option 'equipment': mass.2.> rampwise_live_structure (b, 1, o{:}, "equipment", struct ("mass", [1, -1], "damper", 0, "stiffness", 1), "point", 1)

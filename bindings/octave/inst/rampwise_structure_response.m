@@ -24,13 +24,15 @@
 ## true: displacements settle where the whole structure does, although modes are left out (residual mode, missing mass).
 ## Default: false. For classical damping.
 ## @item "equipment", "point"
-## Light equipment, which the structure does not feel: oscillators as from @code{rampwise_system}, and for each (or one for
-## all) the row of "rows" on whose total acceleration it stands. It begins at rest against its point. The answer is exact,
+## Light equipment, which the structure does not feel: oscillators as from @code{rampwise_system}, and for each the row of
+## "rows" on whose total acceleration it stands. Several pieces may have one point, and one piece several points, as a
+## piece each. It begins at rest against its point. The answer is exact,
 ## for tuned equipment too.
 ## @item "peaks"
 ## true (default) or false: find the peaks between the samples too.
 ## @item "part"
-## Of which time the peaks are: "primary" (default), "residual" or "maximax", as in @code{rampwise_live_structure_read}.
+## Of which time the peaks are: "primary" (default), "residual" or "maximax", as in @code{rampwise_live_structure_read}; but
+## where "between" is "hold" the last sample acts for one @var{dt} before the free motion begins.
 ## @end table
 ##
 ## @var{r} is a struct of @code{time}, a column; matrices @code{displacement}, @code{velocity}, @code{acceleration} and
@@ -62,6 +64,10 @@ function r = rampwise_structure_response (b, p, dt, varargin)
   check (caller, status, fault, [n, s.inputs]);
   r = cell2struct ([{(0:n - 1).' * dt}; struct2cell(h)], [{"time"}; fieldnames(h)]);
   if (s.peaks)
+    if (part != 0 && strcmpi (options.between, "hold")) # the last sample acts for DT
+      [~, status] = push_structure (caller, s, zeros (1, s.inputs), false);
+      check (caller, status, n, [n, s.inputs]);
+    endif
     now = read_structure (caller, s, part, free_steps ());
     r.peaks = now.peaks;
     if (s.pieces > 0)
@@ -196,6 +202,12 @@ endfunction
 %!   assert (all ([high - max(f), min(f) - low] > -1e-10 * max (abs ([f, f]))));
 %!   assert ([high; -low], [max(f); -min(f)], -4e-4); # (90 dt / 64)^2 / 8 = 4e-4
 %! endfor
+%!test # one piece on several points is as many pieces
+%! b = rampwise_structure (M, C, K); o = {"input", "base acceleration", "equipment"}; e = {"omega", 7, "damping", 0.05};
+%! r = rampwise_structure_response (b, p, dt, o{:}, rampwise_system (e{:}), "point", [3, 1]);
+%! x = rampwise_structure_response (b, p, dt, o{:}, rampwise_system (e{:}, "mass", [1, 1]), "point", [3, 1]);
+%! assert (columns (r.equipment.displacement), 2);
+%! assert (r.equipment, x.equipment);
 %!test # modes left out: those that stay, in one matrix exponential
 %! b = rampwise_structure (M, C, K); s = b.shapes(:,1:2);
 %! r = rampwise_structure_response (b, p, dt, "input", "base acceleration", "modes", 2);
@@ -230,6 +242,18 @@ endfunction
 %!   r = rampwise_response (p, dt, "system", struct ("mass", 1, "damper", 0.6, "stiffness", 9), o{:});
 %!   assert (s.displacement, r.displacement);
 %! endfor
+%!test # and so are its peaks with those after the record; a held last sample acts for its step
+%! q = [p(1:39); 5]; w = 0.7 / dt; x = {"omega", w, "damping", 0.05}; b = rampwise_structure (1, [], w ^ 2, x{3:4});
+%! for between = {"ramp", "hold"}
+%!   for part = {"residual", "maximax"}
+%!     o = {"between", between{1}, "part", part{1}};
+%!     s = rampwise_spectrum (q, dt, x{:}, o{:});
+%!     r = rampwise_structure_response (b, q, dt, "input", "base acceleration", o{:});
+%!     assert (abs (r.peaks.displacement.largest), s.SD, -1e-13);
+%!     assert (abs (r.peaks.total_acceleration.largest), s.SA, -1e-13);
+%!     assert (rows (r.displacement), 40);
+%!   endfor
+%! endfor
 %!test # parts of the time: those of the live structure; the histories are the same
 %! b = rampwise_structure (M, C, K); e = rampwise_system ("omega", 7, "damping", 0.05);
 %! o = {"input", "base acceleration", "equipment", e, "point", 3};
@@ -251,6 +275,7 @@ endfunction
 %!error <P.3,2.> rampwise_structure_response (b, [1, 1; 2, 2; 3, NaN], 1, "input", "force", "on", eye (2))
 %!error <P.1.> rampwise_structure_response (b, Inf, 1, "input", "base acceleration")
 %!error id=rampwise:interval rampwise_structure_response (b, 1, 0, "input", "base acceleration")
-%!error <must be force or base> rampwise_structure_response (b, 1, 1, "input", "base velocity")
+%!error <'input' must be one of: force, base acceleration$> rampwise_structure_response (b, 1, 1, "input", "base velocity")
+%!error <'input' is needed, one of: force, base acceleration$> rampwise_structure_response (b, 1, 1)
 %!error <P holds no samples> rampwise_structure_response (b, [], 1, "input", "base acceleration")
 %!error <'peaks' must be true or false> rampwise_structure_response (b, 1, 1, "input", "base acceleration", "peaks", "no")

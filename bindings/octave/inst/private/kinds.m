@@ -1,6 +1,6 @@
-## kinds (CALLER, OPTIONS): the library's numbers for the options "input" and "between".
-function [input, between] = kinds (caller, options)
-  inputs = {"force", "base acceleration", "base velocity", "base displacement"};
+## kinds (CALLER, OPTIONS, INPUTS): the library's numbers for the options "input", one of INPUTS, and "between".
+function [input, between] = kinds (caller, options, inputs = {"force", "base acceleration", "base velocity", ...
+                                                              "base displacement"})
   if (isempty (options.input))
     error ("rampwise:option", "%s: option 'input' is needed, one of: %s", caller, strjoin (inputs, ", "));
   endif

@@ -24,14 +24,16 @@ function [pieces, point] = equipment (caller, options, dt, plan)
   if (! isempty (options.equipment))
     pieces = columns_of (caller, "option 'equipment'", options.equipment);
   endif
-  n = columns (pieces);
   point = numbers (caller, "option 'point'", options.point)(:).';
-  if (numel (point) != n && (numel (point) != 1 || n == 0))
+  given = [columns(pieces), numel(point)];
+  n = max (given);
+  if (any (given != n & given != 1) || any (given == 0) && n > 0)
     error ("rampwise:argument", "%s: option 'point' must have one element, or one for each piece of equipment", caller);
   endif
   if (any (! ismember (point, 1:plan.rows)))
     error ("rampwise:argument", "%s: option 'point' must be numbers of rows, from 1 to %d", caller, plan.rows);
   endif
+  pieces = pieces .* ones (1, n);
   point = point .* ones (1, n);
   [status, fault] = __rampwise__ ("coefficients", pieces, dt, constant ("BASE_ACCELERATION"), plan.between);
   check ([caller ": option 'equipment'"], status, fault);

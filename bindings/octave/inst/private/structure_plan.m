@@ -4,11 +4,8 @@
 ## The vectors u and v are their state at sample 0.
 function plan = structure_plan (caller, b, dt, options, quantities)
   b = modes_of (caller, b);
-  [input, between] = kinds (caller, options);
+  [input, between] = kinds (caller, options, {"force", "base acceleration"});
   of_base = input == constant ("BASE_ACCELERATION");
-  if (! of_base && input != constant ("FORCE"))
-    error ("rampwise:input", "%s: option 'input' must be force or base acceleration", caller);
-  endif
   [on, at] = sizes (caller, options, rows (b.mass), of_base);
   forces = on;
   base = zeros (rows (at), columns (on));
