@@ -10,7 +10,7 @@ from numpy.typing import ArrayLike, NDArray
 
 from . import _arrays, _library
 from ._arrays import Doubles
-from ._eigenvalues import damped_roots, matrix, modes_of, turned, zero_beside
+from ._eigenvalues import damped_roots, matrix, modes_of, turned, zero_within
 from .live_structure import Equipment, LiveStructure, Oscillators, StructureResponse
 from .peaks import Part
 from .system import Between, System, coefficients, damping_ratio
@@ -166,8 +166,11 @@ class Structure:
     mass : array_like, shape (n, n) or (n,)
         M, symmetric and positive definite; a list is a diagonal. Units are the caller's, any consistent set.
     stiffness : array_like, shape (n, n) or (n,)
-        K, symmetric; no omega^2 may be negative. Rigid bodies stay: an omega^2 of less than 32 n eps of the largest is
-        0.
+        K, symmetric; no omega^2 may be negative. Rigid bodies stay: as many as pivots of K, scaled to a diagonal of 1,
+        are within n eps of 0. Stiff supports cost the slow modes no digits. Stiff springs between bodies do where K
+        itself, rounded, no longer holds them: 1e6 times the neighbours' stiffness is rigid enough, and where rounding
+        may change the lowest omega^2 by some 1e-6 of it, mostly from 1e9 times on (1e13 in a free body), K is
+        refused.
     damper : array_like, shape (n, n) or (n,)
         C, symmetric, of any distribution: one may start from `rayleigh_damper` or `modal_damper`. Exactly one of
         `damper` and `damping` is needed.
@@ -187,9 +190,9 @@ class Structure:
         Their shapes, a mode a row, of unit modal mass: ``shapes @ M @ shapes.T`` is 1.
     classical : bool
         Whether C M^-1 K = K M^-1 C to rounding: ``shapes @ C @ shapes.T`` has then nothing beside its diagonal but 32 n
-        eps of its largest number, after shapes of one frequency were turned to suit. Every mode is then an oscillator.
-        If not, pairs of complex or real roots are (A. S. Veletsos and C. E. Ventura, Earthquake Engineering and
-        Structural Dynamics 14(2), 217-243, 1986).
+        eps of what it is added up from, after shapes of one frequency were turned to suit. Every mode is then an
+        oscillator. If not, pairs of complex or real roots are (A. S. Veletsos and C. E. Ventura, Earthquake
+        Engineering and Structural Dynamics 14(2), 217-243, 1986).
 
     Notes
     -----
@@ -236,9 +239,10 @@ class Structure:
                 raise ValueError(f"damper: shape {given.shape}, where {self._mass.shape} is needed")
             self.shapes = turned(self._squares, self.shapes, given)
             self._modal_damper = self.shapes @ given @ self.shapes.T
+            self._zero_damper = zero_within(self.shapes, given)
         elif damping is not None:
             self._modal_damper = np.diag(np.broadcast_to(_modal_dampers(self._squares, damping), self.omega.shape))
-        self._zero_damper = zero_beside(self._modal_damper)
+            self._zero_damper = np.zeros_like(self._modal_damper)
         beside = self._modal_damper - np.diag(self._modal_damper.diagonal())
         self.classical = bool((np.abs(beside) <= self._zero_damper).all())
         self._direction = self._vectors(direction, "direction")
@@ -266,10 +270,14 @@ class Structure:
         Exact for classical damping, else roughly those of `roots`. 0 for an undamped rigid body, infinite for a damped
         one.
         """
-        dampers = self._modal_damper.diagonal()
-        dampers = np.where(np.abs(dampers) <= self._zero_damper, 0.0, dampers)
+        dampers = self._dampers()
         with np.errstate(divide="ignore", invalid="ignore"):
             return np.where(dampers == 0, 0.0, np.asarray(dampers / (2 * self.omega)))
+
+    def _dampers(self) -> Doubles:
+        """Of the undamped modes; without roundings of 0, which would be of weight on a rigid body."""
+        dampers = self._modal_damper.diagonal()
+        return np.where(np.abs(dampers) <= self._zero_damper.diagonal(), 0.0, dampers)
 
     @property
     def roots(self) -> NDArray[np.complex128]:
@@ -410,9 +418,8 @@ class Structure:
 
     def _classical_oscillators(self, count: int, rows: _Rows, state: Doubles) -> Oscillators:
         shapes = self.shapes[:count]
-        dampers = self._modal_damper.diagonal()[:count]
         return Oscillators(
-            System(1.0, dampers, self._squares[:count]),
+            System(1.0, self._dampers()[:count], self._squares[:count]),
             np.ascontiguousarray(shapes @ self._force.T),
             np.ascontiguousarray(shapes @ rows.displacement.T),
             np.ascontiguousarray(shapes @ rows.velocity.T),

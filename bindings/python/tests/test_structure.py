@@ -88,6 +88,84 @@ def test_shear_buildings(free):
         np.testing.assert_allclose(frame.shapes @ (1.7 * frame.shapes.T), np.eye(n), atol=1e-13)
 
 
+def beam(elements):
+    """M and K of a free beam of length 10, EI = 2e8, mass 50 per length: deflection and slope at every node, cubic
+    shapes (M. Petyt, Introduction to Finite Element Vibration Analysis; from memory)."""
+    l, size = 10 / elements, 2 * elements + 2
+    inertia = [[156, 22 * l, 54, -13 * l], [22 * l, 4 * l**2, 13 * l, -3 * l**2],
+               [54, 13 * l, 156, -22 * l], [-13 * l, -3 * l**2, -22 * l, 4 * l**2]]  # fmt: skip
+    spring = [[12, 6 * l, -12, 6 * l], [6 * l, 4 * l**2, -6 * l, 2 * l**2],
+              [-12, -6 * l, 12, -6 * l], [6 * l, 2 * l**2, -6 * l, 4 * l**2]]  # fmt: skip
+    mass, stiffness = np.zeros((2, size, size))
+    for first in range(0, size - 2, 2):
+        four = slice(first, first + 4)
+        mass[four, four] += 50 * l / 420 * np.array(inertia)
+        stiffness[four, four] += 2e8 / l**3 * np.array(spring)
+    return mass, stiffness
+
+
+@pytest.mark.parametrize("elements", [4, 20, 100, 200])
+@pytest.mark.parametrize("sign", [1, -1])
+def test_slow_modes_of_beams(elements, sign):
+    """cos(x) cosh(x) = -1 of a cantilever, 1 of a free beam with its two rigid bodies (R. D. Blevins, Formulas for
+    Natural Frequency and Mode Shape, table 8-1; from memory); the roots by mpmath. Elements are off by some
+    (x/elements)^4/1440, and rounding K moves omega^2 by eps over the least eigenvalue of K scaled to a diagonal of 1,
+    some 0.5/elements^4 of a cantilever and 10/elements^4 of a free beam."""
+    mass, stiffness = (matrix[1 + sign :, 1 + sign :] for matrix in beam(elements))
+    rigid = 0 if sign == 1 else 2
+    frame = rampwise.Structure(mass, stiffness, damping=0.02, force=np.eye(len(mass))[0])
+    roots = [mpmath.findroot(lambda x: mpmath.cos(x) + sign * mpmath.sech(x), x)
+             for x in ((1.9, 4.7, 7.9) if sign == 1 else (4.7, 7.9))]  # fmt: skip
+    expected = np.array([float(x) ** 2 / 100 * 2000 for x in roots])
+    found = frame.omega[rigid : rigid + len(roots)]
+    bound = (np.array(roots, float) / elements) ** 4 / 1400 + 2.2e-16 * elements**4 * (1 if sign == 1 else 0.1)
+    assert np.all(np.abs(found / expected - 1) < bound) and np.all(frame.omega[:rigid] == 0)
+    np.testing.assert_allclose(frame.shapes @ mass @ frame.shapes.T, np.eye(len(mass)), atol=1e-13)
+
+
+@pytest.mark.parametrize("support", [1e10, 1e16, 1e18, 1e25])
+@pytest.mark.parametrize("ratio", [True, False])
+def test_stiff_supports(support, ratio):
+    """A chain whose first mass a stiff spring holds is the chain without that mass, fixed there, all but 100/support of
+    its springs: omega as in `test_shear_buildings`, and its responses, by damping ratios and by a damper of M and K.
+    1e-11: some hundred roundings over 200 steps; a hundred for what 100/support in omega does over omega t."""
+    n, found = 20, []
+    record = np.random.default_rng(30).uniform(-1, 1, 200)
+    for extra in (0, 1):
+        size = n + extra
+        stiffness = chain(np.append(np.full(size, 100.0), 0))
+        stiffness[0, 0] += extra * (support - 100)
+        damping = {"damping": 0.02} if ratio else {"damper": 0.1 * np.eye(size) + 0.003 * stiffness}
+        frame = rampwise.Structure(np.ones(size), stiffness, direction=np.ones(size), **damping)
+        top = {"top": frame.displacement(size - 1)}
+        assert frame.classical
+        found.append((frame.omega[:n], frame.respond(record, 0.1, top, modes=n)))
+    omega = 20 * np.sin((2 * np.arange(n) + 1) * np.pi / (2 * (2 * n + 1)))
+    np.testing.assert_allclose(found[1][0], omega, rtol=1e-13 + 100 / support)
+    fixed, held = found[0][1], found[1][1]
+    tolerance = 1e-11 + 1e4 / support
+    np.testing.assert_allclose(held["top"], fixed["top"], rtol=0, atol=tolerance * np.abs(fixed["top"]).max())
+    np.testing.assert_allclose(held.peaks["top"].value, fixed.peaks["top"].value, rtol=tolerance)
+
+
+def test_stiff_links():
+    """A spring between bodies leaves the digits that K holds: against mpmath's eigenvalues of the same K, to eps over
+    its last pivot, the ratio of the springs. Where K holds too few, it is refused, bound to the ground or not."""
+    mass, springs = np.array([1.0, 2.0, 1.5, 1.0]), np.array([100.0, 130.0, 0.0, 90.0, 0.0])
+    for link in (1e4, 1e8):
+        springs[2] = link
+        frame = rampwise.Structure(mass, chain(springs), damping=0.02, force=np.ones(4))
+        with mpmath.workdps(40):
+            root = mpmath.diag([1 / mpmath.sqrt(m) for m in mass])
+            squares = mpmath.eigsy(root * mpmath.matrix(chain(springs).tolist()) * root, eigvals_only=True)
+        np.testing.assert_allclose(frame.omega**2, [float(square) for square in squares], rtol=1e-15 * link / 90)
+    for ground in (0.0, 100.0):
+        for link in (1e14, 1e17, 1e20):
+            springs[0], springs[2] = ground, link
+            with pytest.raises(ValueError, match="^stiffness: beside its stiffest springs"):
+                rampwise.Structure(mass, chain(springs), damping=0.02, force=np.ones(4))
+
+
 def test_two_storeys():
     """Effective masses 8/3 m and 1/3 m of 3 m (A. K. Chopra, Dynamics of Structures, Examples 10.4 and 13.2; from
     memory)."""
@@ -215,10 +293,22 @@ def test_rigid_bodies(dampers):
     force = np.array([[1.0, -0.2, 0.4, 2.0], [0.0, 1.0, 1.0, 0.0]])
     frame = rampwise.Structure(mass, stiffness, damper=damper, force=force)
     assert frame.omega[0] == 0 and frame.omega[1] > 1 and frame.classical == (not any(dampers))
+    assert frame.damping[0] == (np.inf if dampers[0] else 0)
     random = np.random.default_rng(3)
     record = random.uniform(-1, 1, (150, 2))
     agree(frame, mass, damper, stiffness, force, record, 0.03)
     agree(frame, mass, damper, stiffness, force, record, 0.03, **initial_of(random, 4))
+
+
+def test_an_undamped_rigid_body_keeps_its_pace():
+    """Dampers in proportion to springs do not hold it: no rounding of 0 does, so that it goes on for ever."""
+    for seed in range(4):
+        random = np.random.default_rng(seed)
+        mass, stiffness = random.uniform(1, 2, 4), chain(np.concatenate(([0], random.uniform(50, 100, 3), [0])))
+        frame = rampwise.Structure(mass, stiffness, damper=0.01 * stiffness, force=np.eye(4)[0])
+        live = frame.live(0.02, {"place": frame.displacement(0)})
+        live.put(np.append(np.ones(30), 0.0))
+        assert frame.classical and frame.damping[0] == 0 and live.peaks("residual")["place"].later == np.inf
 
 
 def test_two_rigid_bodies():
