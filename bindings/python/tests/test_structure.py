@@ -590,6 +590,20 @@ def test_rules_at_their_limits():
     assert rampwise.modal_correlation(3, 0, 3, 0) == 1 and rampwise.modal_correlation(3, 0, 4, 0) == 0
 
 
+def test_refused_combinations():
+    """A list of another length would be read beyond its end, or spread over modes that it does not belong to."""
+    for name, omega, damping in (("omega: shape \\(1,\\)", [2.0], 0.05), ("omega: shape \\(\\)", 2.0, 0.05),
+                                 ("omega: shape \\(3,\\)", [1.0, 2.0, 3.0], 0.05),
+                                 ("damping: shape \\(1,\\)", [1.0, 2.0], [0.05]),
+                                 ("damping: shape \\(3,\\)", [1.0, 2.0], [0.05] * 3),
+                                 ("damping: 5 is above .* not per cent", [1.0, 2.0], 5.0)):  # fmt: skip
+        with pytest.raises(ValueError, match="^" + name):
+            rampwise.complete_quadratic([3.0, 4.0], omega, damping)
+    with pytest.raises(ValueError, match="^damping: 5 is above .* not per cent"):
+        rampwise.modal_correlation(1.0, 0.05, 2.0, 5.0)
+    assert rampwise.complete_quadratic([3.0], [2.0], [0.05]) == 3
+
+
 def test_peaks_of_modes():
     """Alone, a mode's spectral peak is the true one; the absolute sum is never exceeded."""
     ground = np.random.default_rng(16).uniform(-1, 1, 400)
