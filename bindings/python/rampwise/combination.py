@@ -134,5 +134,6 @@ def modal_correlation(omega_1: float, damping_1: float, omega_2: float, damping_
     0.473
     """
     values = {"omega_1": omega_1, "damping_1": damping_1, "omega_2": omega_2, "damping_2": damping_2}
-    damping_ratio([values["damping_1"], values["damping_2"]], False)
-    return float(_library.call("modal_correlation", *(_arrays.double(value, name) for name, value in values.items())))
+    numbers = {name: _arrays.double(value, name) for name, value in values.items()}
+    damping_ratio([numbers["damping_1"], numbers["damping_2"]], False)
+    return float(_library.call("modal_correlation", *numbers.values()))

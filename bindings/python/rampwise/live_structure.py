@@ -256,7 +256,8 @@ class LiveStructure:
         Parameters
         ----------
         part : {'primary', 'residual', 'maximax'}
-            From sample 0 to the present, in the free motion from here on under zero input, or both.
+            From sample 0 to the present, in the free motion from here on under zero input, or both. Under 'hold' put a
+            zero first where the last sample is to act for its dt.
         samples : int
             How many steps of the free motion are looked at, at most: it ends where nothing later can exceed the peaks.
             ``Peaks.later`` tells what any later value can come to.

@@ -12,7 +12,7 @@ from . import _arrays, _library
 from ._arrays import Doubles
 from ._eigenvalues import damped_roots, matrix, modes_of, turned, zero_within
 from .live_structure import Equipment, LiveStructure, Oscillators, StructureResponse
-from .peaks import Part
+from .peaks import Part, part_number
 from .system import Between, System, coefficients, damping_ratio
 
 
@@ -564,7 +564,7 @@ class Structure:
             As in `live`.
         part : {'primary', 'residual', 'maximax'}
             Whether the peaks are those of the record, of the free motion after it, or both: as in
-            `LiveStructure.peaks`.
+            `LiveStructure.peaks`. Held, the last sample acts for its dt before the free motion begins.
 
         Returns
         -------
@@ -583,7 +583,10 @@ class Structure:
         """
         live = self.live(dt, outputs, between=between, displacement=displacement, velocity=velocity, modes=modes,
                          static_correction=static_correction, peaks=peaks, equipment=equipment)  # fmt: skip
+        part_number(part)
         block = live.put(record, equipment_histories=bool(equipment))
+        if between == "hold" and part != "primary" and peaks:
+            live.put(np.zeros((1, self.inputs)))
         return StructureResponse(
             np.arange(len(block.values)) * float(dt),
             live.outputs,

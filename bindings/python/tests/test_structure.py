@@ -439,6 +439,24 @@ def test_residual_peaks():
         live.peaks("residual", samples=-1)
 
 
+@pytest.mark.parametrize("between", ["ramp", "hold"])
+@pytest.mark.parametrize("part", ["primary", "residual", "maximax"])
+def test_parts_of_one_mass(between, part):
+    """A mass and the oscillator of a response spectrum have one response. 1e-10 leaves room for the slope's roundings in instants."""
+    record = np.random.default_rng(2).standard_normal(40)
+    mass = rampwise.Structure([1.0], [25.0], damping=0.03, direction=[1.0])
+    outputs = {"stretch": mass.displacement(0), "total": mass.total_acceleration(0)}
+    found = mass.respond(record, 0.1, outputs, between=between, part=part)
+    alone = rampwise.response_spectrum(record, 0.1, omega=[5.0], damping=0.03, between=between, part=part)
+    for peaks, expected in ((found.peaks["stretch"], alone.displacement),
+                            (found.peaks["total"], alone.total_acceleration)):  # fmt: skip
+        for field in ("high", "low", "high_time", "low_time"):
+            np.testing.assert_allclose(getattr(peaks, field), getattr(expected, field)[0], rtol=1e-10)
+    assert len(found.values) == 40
+    with pytest.raises(ValueError, match="^part: 'all' is none of"):
+        mass.respond(record, 0.1, outputs, part="all", peaks=False)
+
+
 @pytest.mark.parametrize("moving", [False, True])
 def test_equipment_as_a_light_part_of_the_structure(moving):
     """A thousand-millionth of a mass on a frame with a damper of its own, in the coupled equations, is equipment to
