@@ -548,6 +548,22 @@ def test_static_correction():
     assert based.mass_share(2)[0] < based.mass_share(3)[0] < 1
 
 
+def test_weights_of_zero_change_no_bits():
+    """Outputs of displacements alone take no weights on the motion: alone and beside a velocity, the same bits."""
+    frame, outputs, _ = frame_and_outputs()
+    record = np.random.default_rng(18).uniform(-1, 1, (100, 2))
+    drift = {"drift": outputs["drift"]}
+    beside = frame.respond(record, 0.02, {**drift, **outputs, "velocity": frame.velocity(1)})
+    alone = frame.respond(record, 0.02, drift)
+    same_bits(alone["drift"], beside["drift"])
+    same_bits(alone.peaks["drift"].value, beside.peaks["drift"].value)
+    plan = frame.live(0.02, drift)._oscillators.plan(np.zeros(1))[0]
+    assert plan["on_acceleration"] == 0 and plan["on_velocity"] != 0  # pairs of roots weigh velocities too
+    classical = rampwise.Structure([1.0, 2.0], [[3.0, -1.0], [-1.0, 1.0]], damping=0.05, direction=[1.0, 1.0])
+    plan = classical.live(0.02, {"top": classical.displacement(1)})._oscillators.plan(np.zeros(1))[0]
+    assert plan["on_velocity"] == plan["on_acceleration"] == plan["on_input"] == 0 != plan["on_displacement"]
+
+
 def frame_and_outputs():
     random = np.random.default_rng(14)
     mass, damper, stiffness = random_chain(random, 40, 5.0)
