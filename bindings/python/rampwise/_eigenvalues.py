@@ -25,13 +25,13 @@ def _linalg() -> Any:
 
 
 def matrix(values: ArrayLike, name: str) -> Doubles:
-    """A symmetric matrix; a list is its diagonal."""
-    given = _arrays.doubles(values, name)
+    """A symmetric matrix, SciPy's sparse ones too; a list is its diagonal."""
+    dense = getattr(values, "toarray", lambda: values)()
+    given = _arrays.doubles(dense, name)
     square = np.diag(given) if given.ndim == 1 else given
     if square.ndim != 2 or square.shape[0] != square.shape[1] or square.size == 0:
         raise ValueError(f"{name}: shape {given.shape}, where (n, n), or (n,) for a diagonal, is needed")
-    if not np.isfinite(square).all():
-        raise ValueError(f"{name}: a number is not finite")
+    _arrays.finite(square, name)
     if (np.abs(square - square.T) > zero_beside(square)).any():
         raise ValueError(f"{name}: the matrix is not symmetric")
     return np.asarray((square + square.T) / 2)
@@ -64,7 +64,9 @@ def modes_of(mass: Doubles, stiffness: Doubles) -> Tuple[Doubles, Doubles]:
     try:
         root = linalg.cholesky(mass, lower=True)
     except linalg.LinAlgError:
-        raise ValueError("mass: the matrix is not positive definite") from None
+        raise ValueError(
+            "mass: the matrix is not positive definite; degrees of freedom without mass are condensed first"
+        ) from None
     half, sure = _half(stiffness)
     (n, elastic), omega, vectors = half.shape, np.zeros(len(mass)), np.eye(len(mass))
     if elastic > 0:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import dataclasses
-from typing import Mapping, NamedTuple, Optional, Tuple, Union
+from typing import Dict, Mapping, NamedTuple, Optional, Tuple, Union
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
@@ -83,9 +83,9 @@ def modal_damper(mass: ArrayLike, stiffness: ArrayLike, damping: ArrayLike) -> D
 
 def _modal_dampers(squares: Doubles, damping: ArrayLike) -> Doubles:
     ratio = damping_ratio(damping, False)
-    if ratio.shape not in ((), squares.shape) or not np.isfinite(ratio).all():
-        raise ValueError(f"damping: one ratio, or {squares.size} finite ones, are needed, not shape {ratio.shape}")
-    return np.asarray(2 * ratio * np.sqrt(squares))
+    if ratio.shape not in ((), squares.shape):
+        raise ValueError(f"damping: one ratio, or {squares.size}, are needed, not shape {ratio.shape}")
+    return np.asarray(2 * _arrays.finite(ratio, "damping") * np.sqrt(squares))
 
 
 @dataclasses.dataclass(frozen=True, eq=False)
@@ -113,6 +113,10 @@ class Row:
     acceleration: Doubles
     input: Doubles
 
+    def _feels_motion(self) -> bool:
+        """Whether it weighs displacements or velocities: it is then no acceleration of a point."""
+        return bool(self.displacement.any() or self.velocity.any())
+
     def _parts(self) -> Tuple[Doubles, ...]:
         return self.displacement, self.velocity, self.acceleration, self.input
 
@@ -126,6 +130,21 @@ class Row:
         return Row(*(np.asarray(factor * part) for part in self._parts()))
 
     __rmul__ = __mul__
+
+
+def _pieces(equipment: Mapping[str, Equipment], outputs: Mapping[str, Row]) -> Dict[str, Equipment]:
+    """Equipment on accelerations."""
+    if not isinstance(equipment, Mapping):
+        raise TypeError("equipment: a dictionary of names and Equipment is needed")
+    for name, piece in equipment.items():
+        if not isinstance(piece, Equipment) or not isinstance(piece.system, System):
+            raise TypeError(f"equipment: {name!r} is no Equipment with a System")
+        if piece.on not in outputs:
+            raise ValueError(f"equipment: {name!r} stands on {piece.on!r}, which is none of the outputs")
+        if outputs[piece.on]._feels_motion():
+            raise ValueError(f"equipment: {name!r} stands on {piece.on!r}, which is not the total acceleration of a "
+                             "point: it weighs displacements or velocities")  # fmt: skip
+    return dict(equipment)
 
 
 class _Rows(NamedTuple):
@@ -164,7 +183,8 @@ class Structure:
     Parameters
     ----------
     mass : array_like, shape (n, n) or (n,)
-        M, symmetric and positive definite; a list is a diagonal. Units are the caller's, any consistent set.
+        M, symmetric and positive definite; a list is a diagonal, and matrices of scipy.sparse are taken in full. Units
+        are the caller's, any consistent set.
     stiffness : array_like, shape (n, n) or (n,)
         K, symmetric; no omega^2 may be negative. Rigid bodies stay: as many as pivots of K, scaled to a diagonal of 1,
         are within n eps of 0. Stiff supports cost the slow modes no digits. Stiff springs between bodies do where K
@@ -246,6 +266,8 @@ class Structure:
         beside = self._modal_damper - np.diag(self._modal_damper.diagonal())
         self.classical = bool((np.abs(beside) <= self._zero_damper).all())
         self._direction = self._vectors(direction, "direction")
+        if not self._direction.any(axis=1).all():
+            raise ValueError("direction: all numbers of a direction are 0, so that nothing moves with the base")
         self._force = np.concatenate((-self._direction @ self._mass, self._vectors(force, "force")))
         if len(self._force) == 0:
             raise TypeError("direction or force is needed by name")
@@ -254,9 +276,9 @@ class Structure:
         """[inputs][n]"""
         n = len(self._mass)
         vectors = np.atleast_2d(_arrays.doubles(np.zeros((0, n)) if values is None else values, name))
-        if vectors.ndim != 2 or vectors.shape[1] != n or not np.isfinite(vectors).all():
-            raise ValueError(f"{name}: {n} finite numbers an input are needed, not shape {vectors.shape}")
-        return vectors
+        if vectors.ndim != 2 or vectors.shape[1] != n:
+            raise ValueError(f"{name}: {n} numbers an input are needed, not shape {vectors.shape}")
+        return _arrays.finite(vectors, name)
 
     @property
     def inputs(self) -> int:
@@ -410,8 +432,9 @@ class Structure:
         state = np.zeros((2, n))
         for part, (name, values) in zip(state, given.items()):
             motion = _arrays.doubles(values, name)
-            if motion.shape not in ((), (n,)) or not np.isfinite(motion).all():
-                raise ValueError(f"{name}: one finite number, or {n}, are needed, not shape {motion.shape}")
+            if motion.shape not in ((), (n,)):
+                raise ValueError(f"{name}: one number, or {n}, are needed, not shape {motion.shape}")
+            _arrays.finite(motion, name)
             with np.errstate(over="ignore", invalid="ignore"):  # a LiveStructure refuses what is not finite
                 part[:] = self.shapes @ (self._mass @ np.broadcast_to(motion, n))
         return state
@@ -537,7 +560,7 @@ class Structure:
             oscillators = self._paired_oscillators(rows, state)
         if static_correction:
             oscillators = self._corrected(oscillators, rows, _arrays.double(dt, "dt"), between)
-        return LiveStructure(oscillators, dt, tuple(outputs), between, peaks, equipment or {})
+        return LiveStructure(oscillators, dt, tuple(outputs), between, peaks, _pieces(equipment or {}, outputs))
 
     def respond(
         self,

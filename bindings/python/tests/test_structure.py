@@ -8,6 +8,7 @@ import mpmath
 import numpy as np
 import pytest
 import scipy.linalg
+import scipy.sparse
 from bits import HISTORIES, same_bits
 from hypothesis import given, settings
 from hypothesis import strategies as st
@@ -442,7 +443,8 @@ def test_residual_peaks():
 @pytest.mark.parametrize("between", ["ramp", "hold"])
 @pytest.mark.parametrize("part", ["primary", "residual", "maximax"])
 def test_parts_of_one_mass(between, part):
-    """A mass and the oscillator of a response spectrum have one response. 1e-10 leaves room for the slope's roundings in instants."""
+    """A mass and the oscillator of a response spectrum have one response. 1e-10 leaves room for the
+    roundings of slopes in instants."""
     record = np.random.default_rng(2).standard_normal(40)
     mass = rampwise.Structure([1.0], [25.0], damping=0.03, direction=[1.0])
     outputs = {"stretch": mass.displacement(0), "total": mass.total_acceleration(0)}
@@ -522,6 +524,21 @@ def test_floor_spectra():
     same_bits(rampwise.floor_spectrum(frame, record, dt, points, threads=2, **grid).SA, floors.SA)
     with pytest.raises(ValueError, match="^period: equipment is neither rigid nor free"):
         rampwise.floor_spectrum(frame, record, dt, points, period=0.0)
+
+
+def test_floor_spectrum_of_nothing():
+    """Where nothing moves the usual way is off by nothing."""
+    frame = rampwise.Structure([1.0], [9.0], damping=0.05, direction=[1.0])
+    points = {"point": frame.total_acceleration(0)}
+    assert np.all(rampwise.floor_spectrum(frame, np.zeros(9), 0.1, points, period=[0.5, 1.0]).sampled_error == 0)
+
+
+def test_sparse_matrices():
+    """SciPy's, in any of its forms, are what they are when full."""
+    stiffness = np.array([[3.0, -1.0], [-1.0, 1.0]])
+    for kind in (scipy.sparse.csr_matrix, scipy.sparse.coo_array):
+        frame = rampwise.Structure(kind(np.diag([2.0, 1.0])), kind(stiffness), damping=0.05, force=[1.0, 0.0])
+        same_bits(frame.omega, rampwise.Structure([2.0, 1.0], stiffness, damping=0.05, force=[1.0, 0.0]).omega)
 
 
 def test_static_correction():
@@ -665,7 +682,12 @@ REFUSALS = [
     (ValueError, "damping: one ratio", {"damping": [0.1, 0.1, 0.1]}),
     (TypeError, "exactly one of damper and damping", {"damper": [1.0, 1.0]}),
     (TypeError, "direction or force", {"force": None}),
-    (ValueError, "direction: 2 finite numbers", {"direction": [1.0, 1.0, 1.0]}),
+    (ValueError, "direction: 2 numbers an input", {"direction": [1.0, 1.0, 1.0]}),
+    (ValueError, "direction: a number is not finite", {"direction": [1.0, np.nan]}),
+    (ValueError, "force: a number is not finite", {"force": [1.0, np.inf]}),
+    (ValueError, "damping: a number is not finite", {"damping": np.nan}),
+    (ValueError, "direction: all numbers of a direction are 0", {"direction": [[1.0, 0.0], [0.0, 0.0]]}),
+    (ValueError, "mass: .* without mass are condensed first", {"mass": [1.0, 0.0]}),
 ]
 
 
@@ -677,7 +699,7 @@ def test_refused_structures(kind, text, options):
 
 def test_other_refusals():
     frame = rampwise.Structure(**GOOD)
-    row = {"one": frame.acceleration(0)}
+    row, box = {"one": frame.acceleration(0)}, rampwise.System(1, 0, 1)
     live = frame.live(0.1, row)
     for kind, text, call in (
         (TypeError, "outputs: a dictionary", lambda: frame.live(0.1, [frame.acceleration(0)])),
@@ -685,12 +707,23 @@ def test_other_refusals():
         (ValueError, "dt: ", lambda: frame.live(-1.0, row)),
         (ValueError, "modes: there are 2", lambda: frame.live(0.1, row, modes=3)),
         (ValueError, "at: ", lambda: frame.displacement(2)),
-        (ValueError, "displacement: one finite number, or 2,", lambda: frame.live(0.1, row, displacement=[1, np.nan])),
-        (ValueError, "velocity: one finite number, or 2,", lambda: frame.live(0.1, row, velocity=[1.0])),
+        (ValueError, "displacement: a number is not finite", lambda: frame.live(0.1, row, displacement=[1, np.nan])),
+        (ValueError, "velocity: one number, or 2,", lambda: frame.live(0.1, row, velocity=[1.0])),
         (ValueError, "displacement, velocity: .* not finite",
          lambda: rampwise.Structure(**{**GOOD, "mass": [9.0, 1.0]}).live(0.1, row, velocity=1e308)),
         (ValueError, "equipment: 'a' stands on 'b'",
-         lambda: frame.live(0.1, row, equipment={"a": rampwise.Equipment("b", rampwise.System(1, 0, 1))})),
+         lambda: frame.live(0.1, row, equipment={"a": rampwise.Equipment("b", box)})),
+        (TypeError, "equipment: 'a' is no Equipment", lambda: frame.live(0.1, row, equipment={"a": ("one", box)})),
+        (TypeError, "equipment: 'a' is no Equipment", lambda: frame.live(0.1, row, equipment={"a": box})),
+        (TypeError, "equipment: 'a' is no Equipment",
+         lambda: frame.live(0.1, row, equipment={"a": rampwise.Equipment("one", 3.0)})),
+        (TypeError, "equipment: a dictionary", lambda: frame.live(0.1, row, equipment=[box])),
+        (ValueError, "equipment: 'a' stands on 'one', which is not the total acceleration",
+         lambda: frame.live(0.1, {"one": frame.displacement(0)}, equipment={"a": rampwise.Equipment("one", box)})),
+        (ValueError, "points: 'one' is not the total acceleration",
+         lambda: rampwise.floor_spectrum(frame, [1.0, 2.0], 0.1, {"one": frame.velocity(1)}, period=1.0)),
+        (TypeError, "outputs: a dictionary", lambda: rampwise.floor_spectrum(frame, [1.0, 2.0], 0.1, [3.0], period=1.0)),
+        (TypeError, "samples: a whole number is needed, not 10.5", lambda: live.peaks("residual", samples=10.5)),
         (ValueError, "samples: none was put", live.peaks),
         (ValueError, "samples: none was put", live.save),
         (ValueError, "samples: shape", lambda: live.put(np.ones((3, 2)))),
