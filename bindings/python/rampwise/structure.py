@@ -217,7 +217,11 @@ class Structure:
     Notes
     -----
     T. K. Caughey and M. E. J. O'Kelly, Journal of Applied Mechanics 32(3), 583-588, 1965, for the condition (from
-    memory). A pair of roots that coincide without a shape of their own each is refused: move a damper by 1e-10 of it.
+    memory). A pair of roots that coincide without a shape of their own each is refused: move a damper by 1e-7 of it,
+    which changes a response by some 3e-8 of its peak and leaves it 8 digits. Nearer to coincidence digits are lost:
+    measured 1e-6 to 7e-6 of the peak at 1e-10, 5e-8 at 1e-8, 8e-10 at 1e-6. So they are by strong dampers of other
+    damping than classical, in the eigenvalue solver: up to 6e-10 of the peak for dampers of 30 times the critical, 1e-7
+    for 300 times.
     Modes come from LAPACK by SciPy, so that their last digits, and those of responses, depend on the platform; the
     response to given modes does not. Results support, and never replace, the governing code and a licensed engineer's
     judgement.
