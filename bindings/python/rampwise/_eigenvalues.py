@@ -89,16 +89,16 @@ def modes_of(mass: Doubles, stiffness: Doubles) -> Tuple[Doubles, Doubles]:
 def _half(stiffness: Doubles) -> Tuple[Doubles, bool]:
     """F [n][rank] of K = F F', by Cholesky's way with pivots, and whether its last column has digits.
 
-    It goes over K scaled to a diagonal of 1: there a pivot within n eps of 0 is 0, and eps over the last is what
-    rounding may do to the lowest omega^2.
+    It goes over K scaled to a diagonal of 1: eps over its last pivot is what rounding may do to the lowest omega^2.
     """
     diagonal = stiffness.diagonal()
     scale = np.sqrt(np.where(diagonal > 0, diagonal, 1.0))
     scaled = stiffness / scale[:, np.newaxis] / scale
-    held, order, rank, _ = _linalg().lapack.dpstrf(scaled, tol=len(scaled) * _EPS, lower=1)
+    zero = zero_beside(np.ones(len(scaled)))
+    held, order, rank, _ = _linalg().lapack.dpstrf(scaled, tol=zero, lower=1)
     half = np.zeros((len(scaled), rank))
     half[order - 1] = np.tril(held)[:, :rank]
-    if (np.abs(scaled - half @ half.T) > zero_beside(np.ones(len(scaled)))).any():
+    if (np.abs(scaled - half @ half.T) > zero).any():
         raise ValueError("stiffness: the structure falls away from its place: an omega^2 is negative")
     return scale[:, np.newaxis] * half, rank == 0 or bool(held[rank - 1, rank - 1] ** 2 > _LEAST_PIVOT)
 

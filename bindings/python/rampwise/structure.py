@@ -187,10 +187,11 @@ class Structure:
         are the caller's, any consistent set.
     stiffness : array_like, shape (n, n) or (n,)
         K, symmetric; no omega^2 may be negative. Rigid bodies stay: as many as pivots of K, scaled to a diagonal of 1,
-        are within n eps of 0. Stiff supports cost the slow modes no digits. Stiff springs between bodies do where K
-        itself, rounded, no longer holds them: 1e6 times the neighbours' stiffness is rigid enough, and where rounding
-        may change the lowest omega^2 by some 1e-6 of it, mostly from 1e9 times on (1e13 in a free body), K is
-        refused.
+        are within 32 n eps of 0. Stiff supports cost the slow modes no digits, though the little motion of what they
+        hold drowns in roundings of the others': sum their forces rather than take the support's. Stiff springs between
+        bodies do cost digits where K itself, rounded, no longer holds them: 1e6 times the neighbours' stiffness is
+        rigid enough, and where rounding may change the lowest omega^2 by some 1e-6 of it, mostly from 1e9 times on
+        (1e13 in a free body), K is refused.
     damper : array_like, shape (n, n) or (n,)
         C, symmetric, of any distribution: one may start from `rayleigh_damper` or `modal_damper`. Exactly one of
         `damper` and `damping` is needed.

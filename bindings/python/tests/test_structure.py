@@ -124,6 +124,25 @@ def test_slow_modes_of_beams(elements, sign):
     np.testing.assert_allclose(frame.shapes @ mass @ frame.shapes.T, np.eye(len(mass)), atol=1e-13)
 
 
+@pytest.mark.parametrize("elements", [2, 3, 10, 60])
+def test_rigid_bodies_of_rounded_matrices(elements):
+    """A free beam without its slopes, by static condensation, and in mixed coordinates: the two rigid bodies and no
+    more are left of K that others' roundings went through; omega of the mixed are the same, to what those do to
+    omega^2, eps over the least eigenvalue of the scaled K, some 10/elements^4."""
+    _, stiffness = beam(elements)
+    moved, turned = (slice(first, None, 2) for first in (0, 1))
+    beside = stiffness[moved, turned]
+    condensed = stiffness[moved, moved] - beside @ np.linalg.solve(stiffness[turned, turned], beside.T)
+    condensed = (condensed + condensed.T) / 2
+    n = elements + 1
+    mix = np.linalg.qr(np.random.default_rng(32).normal(size=(n, n)))[0]
+    plain = rampwise.Structure(np.ones(n), condensed, damping=0.02, force=np.ones(n))
+    mixed = rampwise.Structure(np.ones(n), mix @ condensed @ mix.T, damping=0.02, force=np.ones(n))
+    for frame in (plain, mixed):
+        assert np.all(frame.omega[:2] == 0) and np.all(frame.omega[2:] > 0)
+    np.testing.assert_allclose(mixed.omega**2, plain.omega**2, rtol=1e-13 + 10 * 2.2e-16 * elements**4)
+
+
 @pytest.mark.parametrize("support", [1e10, 1e16, 1e18, 1e25])
 @pytest.mark.parametrize("ratio", [True, False])
 def test_stiff_supports(support, ratio):
@@ -742,7 +761,8 @@ def test_other_refusals():
          lambda: frame.live(0.1, {"one": frame.displacement(0)}, equipment={"a": rampwise.Equipment("one", box)})),
         (ValueError, "points: 'one' is not the total acceleration",
          lambda: rampwise.floor_spectrum(frame, [1.0, 2.0], 0.1, {"one": frame.velocity(1)}, period=1.0)),
-        (TypeError, "outputs: a dictionary", lambda: rampwise.floor_spectrum(frame, [1.0, 2.0], 0.1, [3.0], period=1.0)),
+        (TypeError, "outputs: a dictionary",
+         lambda: rampwise.floor_spectrum(frame, [1.0, 2.0], 0.1, [3.0], period=1.0)),
         (TypeError, "samples: a whole number is needed, not 10.5", lambda: live.peaks("residual", samples=10.5)),
         (ValueError, "samples: none was put", live.peaks),
         (ValueError, "samples: none was put", live.save),
