@@ -13,6 +13,7 @@ from ._arrays import Doubles
 _ROUNDINGS = 32  # times n eps of what was added up: what counts as zero after an eigenvalue solver
 _LEAST_PIVOT = 1e-10  # of K scaled to a diagonal of 1: eps over it is 2e-6 of an omega^2
 _MOST_HIDDEN = 1e-4  # of the lowest omega^2, in rigid bodies: roundings add up to much less
+_ONE_FREQUENCY = 1e-9  # of omega^2: nothing further apart is one, whatever rounding may have done
 _EPS = float(np.finfo(float).eps)
 
 
@@ -103,10 +104,11 @@ def _half(stiffness: Doubles) -> Tuple[Doubles, bool]:
     return scale[:, np.newaxis] * half, rank == 0 or bool(held[rank - 1, rank - 1] ** 2 > _LEAST_PIVOT)
 
 
-def turned(squares: Doubles, shapes: Doubles, damper: Doubles) -> Doubles:
+def turned(squares: Doubles, shapes: Doubles, stiffness: Doubles, damper: Doubles) -> Doubles:
     """Shapes of one frequency are free among themselves: here those that the damper keeps apart."""
     found = shapes.copy()
-    first = np.flatnonzero(np.diff(squares) > _ROUNDINGS * len(squares) * _EPS * squares[1:]) + 1
+    one = np.minimum(zero_within(shapes, stiffness).diagonal(), _ONE_FREQUENCY * squares)
+    first = np.flatnonzero(np.diff(squares) > one[1:]) + 1
     for block in np.split(np.arange(len(squares)), first):
         if block.size > 1:
             _, vectors = _linalg().eigh(shapes[block] @ damper @ shapes[block].T)

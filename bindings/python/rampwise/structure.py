@@ -256,13 +256,14 @@ class Structure:
         if (damper is None) == (damping is None):
             raise TypeError("exactly one of damper and damping is needed by name")
         self._mass = matrix(mass, "mass")
-        self._squares, self.shapes = modes_of(self._mass, matrix(stiffness, "stiffness"))
+        springs = matrix(stiffness, "stiffness")
+        self._squares, self.shapes = modes_of(self._mass, springs)
         self.omega: Doubles = np.sqrt(self._squares)
         if damper is not None:
             given = matrix(damper, "damper")
             if given.shape != self._mass.shape:
                 raise ValueError(f"damper: shape {given.shape}, where {self._mass.shape} is needed")
-            self.shapes = turned(self._squares, self.shapes, given)
+            self.shapes = turned(self._squares, self.shapes, springs, given)
             self._modal_damper = self.shapes @ given @ self.shapes.T
             self._zero_damper = zero_within(self.shapes, given)
         elif damping is not None:

@@ -325,6 +325,23 @@ def test_equal_frequencies():
     agree(frame, np.eye(3), damper, 9 * np.eye(3), np.array([[1.0, 2.0, -1.0]]), record, 0.1, 1e-13)
 
 
+@pytest.mark.parametrize("free", [False, True])
+def test_equal_frequencies_in_mixed_coordinates(free):
+    """Twenty frequencies over three decades, two modes each, in coordinates that mix them: roundings of the fastest part
+    the slow ones by more than their own. M^-1 C ties each two alone, with ratios of the eigenvalues of the tie."""
+    n, tie = 20, np.array([[1.0, 0.5], [0.5, 0.7]])
+    mix = np.linalg.qr(np.random.default_rng(33).normal(size=(2 * n, 2 * n)))[0]
+    springs = np.append(np.logspace(0, 5, n), 0)
+    springs[0] *= not free
+    one = chain(springs)
+    stiffness = mix @ np.kron(np.eye(2), one) @ mix.T
+    damper = mix @ np.kron(tie, np.eye(n)) @ mix.T
+    frame = rampwise.Structure(np.ones(2 * n), stiffness, damper=damper, force=np.eye(2 * n)[0])
+    assert frame.classical and (frame.omega == 0).sum() == 2 * free
+    pairs = np.sort((frame.shapes @ damper @ frame.shapes.T).diagonal().reshape(n, 2))
+    np.testing.assert_allclose(pairs, np.tile(np.linalg.eigvalsh(tie), (n, 1)), rtol=1e-12)
+
+
 @pytest.mark.parametrize("dampers", [(0, 0, 0), (0, 3, 0.1), (0.4, 3, 0.1)])
 def test_rigid_bodies(dampers):
     """A free chain of four: undamped, damped inside (its rigid body is not), and slowed against the ground."""
