@@ -78,7 +78,7 @@ def modes_of(mass: Doubles, stiffness: Doubles) -> Tuple[Doubles, Doubles]:
         omega[n - elastic :] = found[::-1] * (work[0] / work[1])
     shapes = np.ascontiguousarray(linalg.solve_triangular(root, vectors[:, ::-1], lower=True, trans=1).T)
     rigid = np.abs(shapes[: n - elastic])
-    hidden = _EPS * np.einsum("mi,ij,mj->m", rigid, np.abs(stiffness), rigid)  # the omega^2 of a rounding of K
+    hidden = _EPS * ((rigid @ np.abs(stiffness)) * rigid).sum(axis=1)  # the omega^2 of a rounding of K
     if not sure or (elastic > 0 and (hidden > _MOST_HIDDEN * omega[n - elastic] ** 2).any()):
         raise ValueError(
             "stiffness: beside its stiffest springs the rounding of the matrix leaves no digits to the slow modes; "
