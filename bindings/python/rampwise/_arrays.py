@@ -32,6 +32,13 @@ def reals(values: ArrayLike, name: str, real: "np.dtype[Any]") -> NDArray[Any]:
         return array.astype(real, copy=False)
 
 
+def finite(array: Doubles, name: str) -> Doubles:
+    """The array, where none of it is infinite or NaN."""
+    if not np.isfinite(array).all():
+        raise ValueError(f"{name}: a number is not finite")
+    return array
+
+
 def double(value: Any, name: str) -> float:
     """One real number."""
     array = doubles(value, name)

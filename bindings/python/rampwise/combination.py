@@ -7,13 +7,12 @@ from numpy.typing import ArrayLike
 
 from . import _arrays, _library
 from ._arrays import Doubles
+from .system import damping_ratio
 
 
-def _along_last(name: str, peaks: ArrayLike, *lists: ArrayLike, share: float = 0.0) -> Doubles:
+def _along_last(name: str, peaks: ArrayLike, *columns: Doubles, share: float = 0.0) -> Doubles:
     """A rule over the last axis."""
     given = _arrays.in_order(_arrays.records(peaks, "peaks"))
-    columns = [_arrays.in_order(_arrays.to_shape(_arrays.doubles(values, "omega and damping"), given.shape[-1:]))
-               for values in lists]  # fmt: skip
     last = (float(share),) if name == "with_share" else tuple(_library.address(column) for column in columns)
     rows = _library.addresses(given[..., 0]).tolist()
     combined = [_library.call("combine_" + name, given.shape[-1], row, *last) for row in rows]
@@ -92,7 +91,14 @@ def complete_quadratic(peaks: ArrayLike, omega: ArrayLike, damping: ArrayLike) -
     >>> float(rampwise.complete_quadratic([3.0, -4.0], omega=[2.0, 2.0], damping=0.05))
     1.0
     """
-    return _along_last("complete_quadratic", peaks, omega, damping)
+    modes = _arrays.records(peaks, "peaks").shape[-1:]
+    frequencies, ratios = _arrays.doubles(omega, "omega"), damping_ratio(damping, False)
+    if frequencies.shape != modes:
+        raise ValueError(f"omega: shape {frequencies.shape}, where {modes} is needed: one of each peak's mode")
+    if ratios.shape not in (modes, ()):
+        raise ValueError(f"damping: shape {ratios.shape}, where {modes}, or one number, is needed")
+    columns = [_arrays.in_order(_arrays.to_shape(column, modes)) for column in (frequencies, ratios)]
+    return _along_last("complete_quadratic", peaks, *columns)
 
 
 def with_share(peaks: ArrayLike, share: float) -> Doubles:
@@ -128,4 +134,6 @@ def modal_correlation(omega_1: float, damping_1: float, omega_2: float, damping_
     0.473
     """
     values = {"omega_1": omega_1, "damping_1": damping_1, "omega_2": omega_2, "damping_2": damping_2}
-    return float(_library.call("modal_correlation", *(_arrays.double(value, name) for name, value in values.items())))
+    numbers = {name: _arrays.double(value, name) for name, value in values.items()}
+    damping_ratio([numbers["damping_1"], numbers["damping_2"]], False)
+    return float(_library.call("modal_correlation", *numbers.values()))

@@ -73,7 +73,9 @@ class FloorSpectrum(GridResult):
     @property
     def sampled_error(self) -> Doubles:
         """By which share the usual way's SA is off: negative where it is too small."""
-        return np.asarray(self.sampled.SA / self.SA - 1)
+        usual, exact = self.sampled.SA, self.SA
+        with np.errstate(divide="ignore", invalid="ignore"):
+            return np.where(usual == exact, 0.0, usual / exact - 1)
 
 
 def floor_spectrum(
@@ -151,6 +153,10 @@ def floor_spectrum(
         raise ValueError(f"part: {part!r} is neither 'primary' nor 'maximax'")
     step = _arrays.double(dt, "dt")
     floors = structure.respond(record, step, points, part=part, modes=modes)
+    for name, row in points.items():
+        if row._feels_motion():
+            raise ValueError(f"points: {name!r} is not the total acceleration of a point: it weighs displacements or "
+                             "velocities")  # fmt: skip
 
     def work(task: Tuple[str, System]) -> Tuple[Peaks, Peaks]:
         point, pieces = task

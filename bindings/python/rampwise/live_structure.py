@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import dataclasses
-from typing import Any, Dict, Mapping, NamedTuple, Optional, Tuple
+from typing import Any, Dict, NamedTuple, Optional, Tuple
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
@@ -53,7 +53,9 @@ class Oscillators(NamedTuple):
         plan["outputs"] = self.on_input.shape[1]
         plan["c"] = _library.address(coeffs)
         for name in self._fields[1:-1]:
-            plan[name] = _library.address(getattr(self, name))
+            array = getattr(self, name)
+            if array.any() or name == "load":  # weights that are all zero would cost a sample as much as others
+                plan[name] = _library.address(array)
         return plan
 
 
@@ -125,16 +127,13 @@ class LiveStructure:
         outputs: Tuple[str, ...],
         between: Between,
         peaks: bool,
-        equipment: Mapping[str, Equipment],
+        equipment: Dict[str, Equipment],
     ) -> None:
-        for name, piece in equipment.items():
-            if piece.on not in outputs:
-                raise ValueError(f"equipment: {name!r} stands on {piece.on!r}, which is none of the outputs")
         if not np.isfinite(oscillators.begin).all():
             _library.check(_library.constant("ERROR_STATE"), state="displacement, velocity")
         made = coefficients(oscillators.system, _arrays.double(dt, "dt"), input="force", between=between)
         options = {"dt": float(dt), "between": between, "peaks": bool(peaks), "outputs": list(outputs)}
-        self._make(oscillators, made, options, dict(equipment))
+        self._make(oscillators, made, options, equipment)
 
     def _make(
         self,
@@ -256,7 +255,8 @@ class LiveStructure:
         Parameters
         ----------
         part : {'primary', 'residual', 'maximax'}
-            From sample 0 to the present, in the free motion from here on under zero input, or both.
+            From sample 0 to the present, in the free motion from here on under zero input, or both. Under 'hold' put a
+            zero first where the last sample is to act for its dt.
         samples : int
             How many steps of the free motion are looked at, at most: it ends where nothing later can exceed the peaks.
             ``Peaks.later`` tells what any later value can come to.
@@ -299,15 +299,14 @@ class LiveStructure:
     def _parts(self, of: str, quantity: Tuple[int, ...], count: int, part: Part, samples: int) -> Peaks:
         """Flat peaks of the outputs ('modes') or of a quantity of the equipment."""
         part_number(part)
-        if not 0 <= samples < 2**64:
-            raise ValueError(f"samples: {samples} is not from 0 to 2^64 - 1")
+        steps = _arrays.whole(samples, "samples", 0)
         found, later, parts = np.zeros(count, _library.PEAK), np.zeros(count), []
         if part != "residual":
             status = self._fed(f"{of}_peaks", *quantity, _library.address(found))
             _library.check(status, quantity="peaks")
             parts.append(Peaks._read(found, self._options["dt"], None))
         if part != "primary":
-            status = self._fed(f"{of}_residual", *quantity, samples, _library.address(found), _library.address(later))
+            status = self._fed(f"{of}_residual", *quantity, steps, _library.address(found), _library.address(later))
             _library.check(status, quantity="peaks")
             parts.append(dataclasses.replace(Peaks._read(found, self._options["dt"], None), later=later))
         return parts[0] if len(parts) == 1 else parts[0]._then(parts[1])

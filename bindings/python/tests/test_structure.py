@@ -8,6 +8,7 @@ import mpmath
 import numpy as np
 import pytest
 import scipy.linalg
+import scipy.sparse
 from bits import HISTORIES, same_bits
 from hypothesis import given, settings
 from hypothesis import strategies as st
@@ -88,6 +89,103 @@ def test_shear_buildings(free):
         np.testing.assert_allclose(frame.shapes @ (1.7 * frame.shapes.T), np.eye(n), atol=1e-13)
 
 
+def beam(elements):
+    """M and K of a free beam of length 10, EI = 2e8, mass 50 per length: deflection and slope at every node, cubic
+    shapes (M. Petyt, Introduction to Finite Element Vibration Analysis; from memory)."""
+    l, size = 10 / elements, 2 * elements + 2
+    inertia = [[156, 22 * l, 54, -13 * l], [22 * l, 4 * l**2, 13 * l, -3 * l**2],
+               [54, 13 * l, 156, -22 * l], [-13 * l, -3 * l**2, -22 * l, 4 * l**2]]  # fmt: skip
+    spring = [[12, 6 * l, -12, 6 * l], [6 * l, 4 * l**2, -6 * l, 2 * l**2],
+              [-12, -6 * l, 12, -6 * l], [6 * l, 2 * l**2, -6 * l, 4 * l**2]]  # fmt: skip
+    mass, stiffness = np.zeros((2, size, size))
+    for first in range(0, size - 2, 2):
+        four = slice(first, first + 4)
+        mass[four, four] += 50 * l / 420 * np.array(inertia)
+        stiffness[four, four] += 2e8 / l**3 * np.array(spring)
+    return mass, stiffness
+
+
+@pytest.mark.parametrize("elements", [4, 20, 100, 200])
+@pytest.mark.parametrize("sign", [1, -1])
+def test_slow_modes_of_beams(elements, sign):
+    """cos(x) cosh(x) = -1 of a cantilever, 1 of a free beam with its two rigid bodies (R. D. Blevins, Formulas for
+    Natural Frequency and Mode Shape, table 8-1; from memory); the roots by mpmath. Elements are off by some
+    (x/elements)^4/1440, and rounding K moves omega^2 by eps over the least eigenvalue of K scaled to a diagonal of 1,
+    some 0.5/elements^4 of a cantilever and 10/elements^4 of a free beam."""
+    mass, stiffness = (matrix[1 + sign :, 1 + sign :] for matrix in beam(elements))
+    rigid = 0 if sign == 1 else 2
+    frame = rampwise.Structure(mass, stiffness, damping=0.02, force=np.eye(len(mass))[0])
+    roots = [mpmath.findroot(lambda x: mpmath.cos(x) + sign * mpmath.sech(x), x)
+             for x in ((1.9, 4.7, 7.9) if sign == 1 else (4.7, 7.9))]  # fmt: skip
+    expected = np.array([float(x) ** 2 / 100 * 2000 for x in roots])
+    found = frame.omega[rigid : rigid + len(roots)]
+    bound = (np.array(roots, float) / elements) ** 4 / 1400 + 2.2e-16 * elements**4 * (1 if sign == 1 else 0.1)
+    assert np.all(np.abs(found / expected - 1) < bound) and np.all(frame.omega[:rigid] == 0)
+    np.testing.assert_allclose(frame.shapes @ mass @ frame.shapes.T, np.eye(len(mass)), atol=1e-13)
+
+
+@pytest.mark.parametrize("elements", [2, 3, 10, 60])
+def test_rigid_bodies_of_rounded_matrices(elements):
+    """A free beam without its slopes, by static condensation, and in mixed coordinates: the two rigid bodies and no
+    more are left of K that others' roundings went through; omega of the mixed are the same, to what those do to
+    omega^2, eps over the least eigenvalue of the scaled K, some 10/elements^4."""
+    _, stiffness = beam(elements)
+    moved, turned = (slice(first, None, 2) for first in (0, 1))
+    beside = stiffness[moved, turned]
+    condensed = stiffness[moved, moved] - beside @ np.linalg.solve(stiffness[turned, turned], beside.T)
+    condensed = (condensed + condensed.T) / 2
+    n = elements + 1
+    mix = np.linalg.qr(np.random.default_rng(32).normal(size=(n, n)))[0]
+    plain = rampwise.Structure(np.ones(n), condensed, damping=0.02, force=np.ones(n))
+    mixed = rampwise.Structure(np.ones(n), mix @ condensed @ mix.T, damping=0.02, force=np.ones(n))
+    for frame in (plain, mixed):
+        assert np.all(frame.omega[:2] == 0) and np.all(frame.omega[2:] > 0)
+    np.testing.assert_allclose(mixed.omega**2, plain.omega**2, rtol=1e-13 + 10 * 2.2e-16 * elements**4)
+
+
+@pytest.mark.parametrize("support", [1e10, 1e16, 1e18, 1e25])
+@pytest.mark.parametrize("ratio", [True, False])
+def test_stiff_supports(support, ratio):
+    """A chain whose first mass a stiff spring holds is the chain without that mass, fixed there, all but 100/support of
+    its springs: omega as in `test_shear_buildings`, and its responses, by damping ratios and by a damper of M and K.
+    1e-11: some hundred roundings over 200 steps; a hundred for what 100/support in omega does over omega t."""
+    n, found = 20, []
+    record = np.random.default_rng(30).uniform(-1, 1, 200)
+    for extra in (0, 1):
+        size = n + extra
+        stiffness = chain(np.append(np.full(size, 100.0), 0))
+        stiffness[0, 0] += extra * (support - 100)
+        damping = {"damping": 0.02} if ratio else {"damper": 0.1 * np.eye(size) + 0.003 * stiffness}
+        frame = rampwise.Structure(np.ones(size), stiffness, direction=np.ones(size), **damping)
+        top = {"top": frame.displacement(size - 1)}
+        assert frame.classical
+        found.append((frame.omega[:n], frame.respond(record, 0.1, top, modes=n)))
+    omega = 20 * np.sin((2 * np.arange(n) + 1) * np.pi / (2 * (2 * n + 1)))
+    np.testing.assert_allclose(found[1][0], omega, rtol=1e-13 + 100 / support)
+    fixed, held = found[0][1], found[1][1]
+    tolerance = 1e-11 + 1e4 / support
+    np.testing.assert_allclose(held["top"], fixed["top"], rtol=0, atol=tolerance * np.abs(fixed["top"]).max())
+    np.testing.assert_allclose(held.peaks["top"].value, fixed.peaks["top"].value, rtol=tolerance)
+
+
+def test_stiff_links():
+    """A spring between bodies leaves the digits that K holds: against mpmath's eigenvalues of the same K, to eps over
+    its last pivot, the ratio of the springs. Where K holds too few, it is refused, bound to the ground or not."""
+    mass, springs = np.array([1.0, 2.0, 1.5, 1.0]), np.array([100.0, 130.0, 0.0, 90.0, 0.0])
+    for link in (1e4, 1e8):
+        springs[2] = link
+        frame = rampwise.Structure(mass, chain(springs), damping=0.02, force=np.ones(4))
+        with mpmath.workdps(40):
+            root = mpmath.diag([1 / mpmath.sqrt(m) for m in mass])
+            squares = mpmath.eigsy(root * mpmath.matrix(chain(springs).tolist()) * root, eigvals_only=True)
+        np.testing.assert_allclose(frame.omega**2, [float(square) for square in squares], rtol=1e-15 * link / 90)
+    for ground in (0.0, 100.0):
+        for link in (1e14, 1e17, 1e20):
+            springs[0], springs[2] = ground, link
+            with pytest.raises(ValueError, match="^stiffness: beside its stiffest springs"):
+                rampwise.Structure(mass, chain(springs), damping=0.02, force=np.ones(4))
+
+
 def test_two_storeys():
     """Effective masses 8/3 m and 1/3 m of 3 m (A. K. Chopra, Dynamics of Structures, Examples 10.4 and 13.2; from
     memory)."""
@@ -149,6 +247,26 @@ def test_initial_states(seed, n, dt, light, inputs):
         agree(frame, mass, damper, stiffness, force, load, dt, **initial_of(random, n, 15.0))
 
 
+@pytest.mark.parametrize("moved", [1e-7, -1e-7, 1e-6, 1e-4])
+def test_beside_a_defective_spectrum(moved):
+    """(s^2 + c s + 3) (s^2 + 0.3 s + 2) - 1 has a double root at c = 3.3213..., mpmath's solution of it and its
+    derivative. A damper moved by a share d has roots sqrt(d) apart, whose residues cancel by as much and whose errors
+    are eps/sqrt(d) each: some 10 eps/d of the peak; measured 6e-9 at 1e-7, 4e-10 at 1e-6. At the root it is refused."""
+    def double(s, c):
+        return ((s**2 + c * s + 3) * (s**2 + 0.3 * s + 2) - 1,
+                (2 * s + c) * (s**2 + 0.3 * s + 2) + (s**2 + c * s + 3) * (2 * s + 0.3))  # fmt: skip
+
+    critical = float(mpmath.findroot(double, (-1.6, 3.3))[1])
+    stiffness, force = np.array([[3.0, -1.0], [-1.0, 2.0]]), np.array([[1.0, 0.5]])
+    with pytest.raises(ValueError, match="^damper: The spectrum is defective"):
+        frame = rampwise.Structure([1.0, 1.0], stiffness, damper=[critical, 0.3], force=force)
+        frame.respond([1.0, 1.0], 0.1, all_outputs(frame))
+    damper = np.diag([critical * (1 + moved), 0.3])
+    frame = rampwise.Structure([1.0, 1.0], stiffness, damper=damper, force=force)
+    record = np.random.default_rng(31).uniform(-1, 1, (200, 1))
+    agree(frame, np.eye(2), damper, stiffness, force, record, 0.1, 10 * 2.2e-16 / abs(moved) + 1e-12)
+
+
 def test_initial_states_of_one_mass():
     """A mass of 1 is an oscillator: the same displacements and velocities, bit for bit. One number does for all
     degrees of freedom."""
@@ -207,6 +325,23 @@ def test_equal_frequencies():
     agree(frame, np.eye(3), damper, 9 * np.eye(3), np.array([[1.0, 2.0, -1.0]]), record, 0.1, 1e-13)
 
 
+@pytest.mark.parametrize("free", [False, True])
+def test_equal_frequencies_in_mixed_coordinates(free):
+    """Twenty frequencies over three decades, two modes each, in coordinates that mix them: roundings of the fastest part
+    the slow ones by more than their own. M^-1 C ties each two alone, with ratios of the eigenvalues of the tie."""
+    n, tie = 20, np.array([[1.0, 0.5], [0.5, 0.7]])
+    mix = np.linalg.qr(np.random.default_rng(33).normal(size=(2 * n, 2 * n)))[0]
+    springs = np.append(np.logspace(0, 5, n), 0)
+    springs[0] *= not free
+    one = chain(springs)
+    stiffness = mix @ np.kron(np.eye(2), one) @ mix.T
+    damper = mix @ np.kron(tie, np.eye(n)) @ mix.T
+    frame = rampwise.Structure(np.ones(2 * n), stiffness, damper=damper, force=np.eye(2 * n)[0])
+    assert frame.classical and (frame.omega == 0).sum() == 2 * free
+    pairs = np.sort((frame.shapes @ damper @ frame.shapes.T).diagonal().reshape(n, 2))
+    np.testing.assert_allclose(pairs, np.tile(np.linalg.eigvalsh(tie), (n, 1)), rtol=1e-12)
+
+
 @pytest.mark.parametrize("dampers", [(0, 0, 0), (0, 3, 0.1), (0.4, 3, 0.1)])
 def test_rigid_bodies(dampers):
     """A free chain of four: undamped, damped inside (its rigid body is not), and slowed against the ground."""
@@ -215,10 +350,22 @@ def test_rigid_bodies(dampers):
     force = np.array([[1.0, -0.2, 0.4, 2.0], [0.0, 1.0, 1.0, 0.0]])
     frame = rampwise.Structure(mass, stiffness, damper=damper, force=force)
     assert frame.omega[0] == 0 and frame.omega[1] > 1 and frame.classical == (not any(dampers))
+    assert frame.damping[0] == (np.inf if dampers[0] else 0)
     random = np.random.default_rng(3)
     record = random.uniform(-1, 1, (150, 2))
     agree(frame, mass, damper, stiffness, force, record, 0.03)
     agree(frame, mass, damper, stiffness, force, record, 0.03, **initial_of(random, 4))
+
+
+def test_an_undamped_rigid_body_keeps_its_pace():
+    """Dampers in proportion to springs do not hold it: no rounding of 0 does, so that it goes on for ever."""
+    for seed in range(4):
+        random = np.random.default_rng(seed)
+        mass, stiffness = random.uniform(1, 2, 4), chain(np.concatenate(([0], random.uniform(50, 100, 3), [0])))
+        frame = rampwise.Structure(mass, stiffness, damper=0.01 * stiffness, force=np.eye(4)[0])
+        live = frame.live(0.02, {"place": frame.displacement(0)})
+        live.put(np.append(np.ones(30), 0.0))
+        assert frame.classical and frame.damping[0] == 0 and live.peaks("residual")["place"].later == np.inf
 
 
 def test_two_rigid_bodies():
@@ -349,6 +496,25 @@ def test_residual_peaks():
         live.peaks("residual", samples=-1)
 
 
+@pytest.mark.parametrize("between", ["ramp", "hold"])
+@pytest.mark.parametrize("part", ["primary", "residual", "maximax"])
+def test_parts_of_one_mass(between, part):
+    """A mass and the oscillator of a response spectrum have one response. 1e-10 leaves room for the
+    roundings of slopes in instants."""
+    record = np.random.default_rng(2).standard_normal(40)
+    mass = rampwise.Structure([1.0], [25.0], damping=0.03, direction=[1.0])
+    outputs = {"stretch": mass.displacement(0), "total": mass.total_acceleration(0)}
+    found = mass.respond(record, 0.1, outputs, between=between, part=part)
+    alone = rampwise.response_spectrum(record, 0.1, omega=[5.0], damping=0.03, between=between, part=part)
+    for peaks, expected in ((found.peaks["stretch"], alone.displacement),
+                            (found.peaks["total"], alone.total_acceleration)):  # fmt: skip
+        for field in ("high", "low", "high_time", "low_time"):
+            np.testing.assert_allclose(getattr(peaks, field), getattr(expected, field)[0], rtol=1e-10)
+    assert len(found.values) == 40
+    with pytest.raises(ValueError, match="^part: 'all' is none of"):
+        mass.respond(record, 0.1, outputs, part="all", peaks=False)
+
+
 @pytest.mark.parametrize("moving", [False, True])
 def test_equipment_as_a_light_part_of_the_structure(moving):
     """A thousand-millionth of a mass on a frame with a damper of its own, in the coupled equations, is equipment to
@@ -416,6 +582,21 @@ def test_floor_spectra():
         rampwise.floor_spectrum(frame, record, dt, points, period=0.0)
 
 
+def test_floor_spectrum_of_nothing():
+    """Where nothing moves the usual way is off by nothing."""
+    frame = rampwise.Structure([1.0], [9.0], damping=0.05, direction=[1.0])
+    points = {"point": frame.total_acceleration(0)}
+    assert np.all(rampwise.floor_spectrum(frame, np.zeros(9), 0.1, points, period=[0.5, 1.0]).sampled_error == 0)
+
+
+def test_sparse_matrices():
+    """SciPy's, in any of its forms, are what they are when full."""
+    stiffness = np.array([[3.0, -1.0], [-1.0, 1.0]])
+    for kind in (scipy.sparse.csr_matrix, scipy.sparse.coo_array):
+        frame = rampwise.Structure(kind(np.diag([2.0, 1.0])), kind(stiffness), damping=0.05, force=[1.0, 0.0])
+        same_bits(frame.omega, rampwise.Structure([2.0, 1.0], stiffness, damping=0.05, force=[1.0, 0.0]).omega)
+
+
 def test_static_correction():
     """Two modes of eight under a load that stays: with the correction every output settles where K says."""
     random = np.random.default_rng(12)
@@ -438,6 +619,22 @@ def test_static_correction():
     values = based.respond(np.ones(400), 0.5, roof, modes=2, static_correction=True)["roof"]
     np.testing.assert_allclose(values[-1], 1, rtol=1e-13)
     assert based.mass_share(2)[0] < based.mass_share(3)[0] < 1
+
+
+def test_weights_of_zero_change_no_bits():
+    """Outputs of displacements alone take no weights on the motion: alone and beside a velocity, the same bits."""
+    frame, outputs, _ = frame_and_outputs()
+    record = np.random.default_rng(18).uniform(-1, 1, (100, 2))
+    drift = {"drift": outputs["drift"]}
+    beside = frame.respond(record, 0.02, {**drift, **outputs, "velocity": frame.velocity(1)})
+    alone = frame.respond(record, 0.02, drift)
+    same_bits(alone["drift"], beside["drift"])
+    same_bits(alone.peaks["drift"].value, beside.peaks["drift"].value)
+    plan = frame.live(0.02, drift)._oscillators.plan(np.zeros(1))[0]
+    assert plan["on_acceleration"] == 0 and plan["on_velocity"] != 0  # pairs of roots weigh velocities too
+    classical = rampwise.Structure([1.0, 2.0], [[3.0, -1.0], [-1.0, 1.0]], damping=0.05, direction=[1.0, 1.0])
+    plan = classical.live(0.02, {"top": classical.displacement(1)})._oscillators.plan(np.zeros(1))[0]
+    assert plan["on_velocity"] == plan["on_acceleration"] == plan["on_input"] == 0 != plan["on_displacement"]
 
 
 def frame_and_outputs():
@@ -500,6 +697,20 @@ def test_rules_at_their_limits():
     assert rampwise.modal_correlation(3, 0, 3, 0) == 1 and rampwise.modal_correlation(3, 0, 4, 0) == 0
 
 
+def test_refused_combinations():
+    """A list of another length would be read beyond its end, or spread over modes that it does not belong to."""
+    for name, omega, damping in (("omega: shape \\(1,\\)", [2.0], 0.05), ("omega: shape \\(\\)", 2.0, 0.05),
+                                 ("omega: shape \\(3,\\)", [1.0, 2.0, 3.0], 0.05),
+                                 ("damping: shape \\(1,\\)", [1.0, 2.0], [0.05]),
+                                 ("damping: shape \\(3,\\)", [1.0, 2.0], [0.05] * 3),
+                                 ("damping: 5 is above .* not per cent", [1.0, 2.0], 5.0)):  # fmt: skip
+        with pytest.raises(ValueError, match="^" + name):
+            rampwise.complete_quadratic([3.0, 4.0], omega, damping)
+    with pytest.raises(ValueError, match="^damping: 5 is above .* not per cent"):
+        rampwise.modal_correlation(1.0, 0.05, 2.0, 5.0)
+    assert rampwise.complete_quadratic([3.0], [2.0], [0.05]) == 3
+
+
 def test_peaks_of_modes():
     """Alone, a mode's spectral peak is the true one; the absolute sum is never exceeded."""
     ground = np.random.default_rng(16).uniform(-1, 1, 400)
@@ -527,7 +738,12 @@ REFUSALS = [
     (ValueError, "damping: one ratio", {"damping": [0.1, 0.1, 0.1]}),
     (TypeError, "exactly one of damper and damping", {"damper": [1.0, 1.0]}),
     (TypeError, "direction or force", {"force": None}),
-    (ValueError, "direction: 2 finite numbers", {"direction": [1.0, 1.0, 1.0]}),
+    (ValueError, "direction: 2 numbers an input", {"direction": [1.0, 1.0, 1.0]}),
+    (ValueError, "direction: a number is not finite", {"direction": [1.0, np.nan]}),
+    (ValueError, "force: a number is not finite", {"force": [1.0, np.inf]}),
+    (ValueError, "damping: a number is not finite", {"damping": np.nan}),
+    (ValueError, "direction: all numbers of a direction are 0", {"direction": [[1.0, 0.0], [0.0, 0.0]]}),
+    (ValueError, "mass: .* without mass are condensed first", {"mass": [1.0, 0.0]}),
 ]
 
 
@@ -539,7 +755,7 @@ def test_refused_structures(kind, text, options):
 
 def test_other_refusals():
     frame = rampwise.Structure(**GOOD)
-    row = {"one": frame.acceleration(0)}
+    row, box = {"one": frame.acceleration(0)}, rampwise.System(1, 0, 1)
     live = frame.live(0.1, row)
     for kind, text, call in (
         (TypeError, "outputs: a dictionary", lambda: frame.live(0.1, [frame.acceleration(0)])),
@@ -547,12 +763,24 @@ def test_other_refusals():
         (ValueError, "dt: ", lambda: frame.live(-1.0, row)),
         (ValueError, "modes: there are 2", lambda: frame.live(0.1, row, modes=3)),
         (ValueError, "at: ", lambda: frame.displacement(2)),
-        (ValueError, "displacement: one finite number, or 2,", lambda: frame.live(0.1, row, displacement=[1, np.nan])),
-        (ValueError, "velocity: one finite number, or 2,", lambda: frame.live(0.1, row, velocity=[1.0])),
+        (ValueError, "displacement: a number is not finite", lambda: frame.live(0.1, row, displacement=[1, np.nan])),
+        (ValueError, "velocity: one number, or 2,", lambda: frame.live(0.1, row, velocity=[1.0])),
         (ValueError, "displacement, velocity: .* not finite",
          lambda: rampwise.Structure(**{**GOOD, "mass": [9.0, 1.0]}).live(0.1, row, velocity=1e308)),
         (ValueError, "equipment: 'a' stands on 'b'",
-         lambda: frame.live(0.1, row, equipment={"a": rampwise.Equipment("b", rampwise.System(1, 0, 1))})),
+         lambda: frame.live(0.1, row, equipment={"a": rampwise.Equipment("b", box)})),
+        (TypeError, "equipment: 'a' is no Equipment", lambda: frame.live(0.1, row, equipment={"a": ("one", box)})),
+        (TypeError, "equipment: 'a' is no Equipment", lambda: frame.live(0.1, row, equipment={"a": box})),
+        (TypeError, "equipment: 'a' is no Equipment",
+         lambda: frame.live(0.1, row, equipment={"a": rampwise.Equipment("one", 3.0)})),
+        (TypeError, "equipment: a dictionary", lambda: frame.live(0.1, row, equipment=[box])),
+        (ValueError, "equipment: 'a' stands on 'one', which is not the total acceleration",
+         lambda: frame.live(0.1, {"one": frame.displacement(0)}, equipment={"a": rampwise.Equipment("one", box)})),
+        (ValueError, "points: 'one' is not the total acceleration",
+         lambda: rampwise.floor_spectrum(frame, [1.0, 2.0], 0.1, {"one": frame.velocity(1)}, period=1.0)),
+        (TypeError, "outputs: a dictionary",
+         lambda: rampwise.floor_spectrum(frame, [1.0, 2.0], 0.1, [3.0], period=1.0)),
+        (TypeError, "samples: a whole number is needed, not 10.5", lambda: live.peaks("residual", samples=10.5)),
         (ValueError, "samples: none was put", live.peaks),
         (ValueError, "samples: none was put", live.save),
         (ValueError, "samples: shape", lambda: live.put(np.ones((3, 2)))),
