@@ -92,7 +92,7 @@ def complete_quadratic(peaks: ArrayLike, omega: ArrayLike, damping: ArrayLike) -
     1.0
     """
     modes = _arrays.records(peaks, "peaks").shape[-1:]
-    frequencies, ratios = _arrays.doubles(omega, "omega"), damping_ratio(damping, False)
+    frequencies, ratios = _arrays.doubles(omega, "omega"), damping_ratio(damping)
     if frequencies.shape != modes:
         raise ValueError(f"omega: shape {frequencies.shape}, where {modes} is needed: one of each peak's mode")
     if ratios.shape not in (modes, ()):
@@ -135,5 +135,5 @@ def modal_correlation(omega_1: float, damping_1: float, omega_2: float, damping_
     """
     values = {"omega_1": omega_1, "damping_1": damping_1, "omega_2": omega_2, "damping_2": damping_2}
     numbers = {name: _arrays.double(value, name) for name, value in values.items()}
-    damping_ratio([numbers["damping_1"], numbers["damping_2"]], False)
+    damping_ratio([numbers["damping_1"], numbers["damping_2"]])
     return float(_library.call("modal_correlation", *numbers.values()))

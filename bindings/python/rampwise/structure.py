@@ -46,7 +46,7 @@ def rayleigh_damper(
     array([0.4, 0.6])
     """
     m, k = matrix(mass, "mass"), matrix(stiffness, "stiffness")
-    ratios = damping_ratio(np.broadcast_to(_arrays.doubles(damping, "damping"), (2,)), False)
+    ratios = damping_ratio(np.broadcast_to(_arrays.doubles(damping, "damping"), (2,)))
     first, second = (_arrays.double(value, "omega") for value in omega)
     if not (0 < first < np.inf and 0 < second < np.inf and first != second):
         raise ValueError("omega: two different frequencies above 0 are needed")
@@ -82,7 +82,7 @@ def modal_damper(mass: ArrayLike, stiffness: ArrayLike, damping: ArrayLike) -> D
 
 
 def _modal_dampers(squares: Doubles, damping: ArrayLike) -> Doubles:
-    ratio = damping_ratio(damping, False)
+    ratio = damping_ratio(damping)
     if ratio.shape not in ((), squares.shape):
         raise ValueError(f"damping: one ratio, or {squares.size}, are needed, not shape {ratio.shape}")
     return np.asarray(2 * _arrays.finite(ratio, "damping") * np.sqrt(squares))

@@ -44,13 +44,14 @@ def one_of(**values: Optional[ArrayLike]) -> Tuple[str, Doubles]:
     return name, _arrays.doubles(value, name)
 
 
-def damping_ratio(damping: ArrayLike, allow_strong_damping: bool) -> Doubles:
-    """Damping as a ratio; refused where it looks like per cent."""
+def damping_ratio(damping: ArrayLike, allow_strong_damping: Optional[bool] = None) -> Doubles:
+    """Damping as a ratio; refused where it looks like per cent. None: the caller has no such option."""
     ratio = _arrays.doubles(damping, "damping")
     if not allow_strong_damping and (ratio > LARGEST_DAMPING).any():
         raise ValueError(
             f"damping: {ratio.max():g} is above {LARGEST_DAMPING:g}; it is the ratio to critical damping, not per "
-            "cent (5 % is 0.05). If it is meant, pass allow_strong_damping=True"
+            "cent (5 % is 0.05)"
+            + (". If it is meant, pass allow_strong_damping=True" if allow_strong_damping is not None else "")
         )
     return ratio
 

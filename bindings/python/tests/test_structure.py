@@ -734,7 +734,7 @@ REFUSALS = [
     (ValueError, "stiffness: the matrix is not symmetric", {"stiffness": [[1.0, 0.5], [0.0, 1.0]]}),
     (ValueError, "stiffness: a number is not finite", {"stiffness": [1.0, np.nan]}),
     (ValueError, "stiffness: the structure falls away", {"stiffness": [1.0, -1.0]}),
-    (ValueError, "damping: .* not per cent", {"damping": 5.0}),
+    (ValueError, "damping: .* not per cent \\(5 % is 0.05\\)$", {"damping": 5.0}),
     (ValueError, "damping: one ratio", {"damping": [0.1, 0.1, 0.1]}),
     (TypeError, "exactly one of damper and damping", {"damper": [1.0, 1.0]}),
     (TypeError, "direction or force", {"force": None}),
