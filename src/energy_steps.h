@@ -14,8 +14,7 @@ typedef struct energy_sums {
 } energy_sums;
 
 /* What acts in one step. The load is first + change x, x from 0 to 1, mean in the middle; the base's velocity
-   is base[0] + base[1] (x - 1/2) + base[2] (x - 1/2)^2/2 where its work is asked for, and base_shift its way.
-   */
+   is base[0] + base[1] (x - 1/2) + base[2] (x - 1/2)^2/2 where its work is asked for, base_shift its way. */
 typedef struct course {
     double y, w; /* relative displacement and velocity at the beginning */
     double first, mean, change;

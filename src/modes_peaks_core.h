@@ -9,8 +9,7 @@ typedef struct bound bound;
 
 struct modes_peaks {
     rampwise_peak *peak; /* [outputs] */
-    /* [outputs]: what must be exceeded: the peak after a segment's samples, then points inside its steps too
-       */
+    /* [outputs]: what must be exceeded: the peak after a segment's samples, then points in its steps too */
     double *floor_high, *floor_low;
     bound *bounds; /* [groups] */
     /* [groups][LANES][width]: of the excess over the ends of a step and of a part */

@@ -48,12 +48,12 @@ typedef struct free_motion {
 /* sqrt(a^2 + b^2), whatever the units */
 static double size_of(double a, double b)
 {
-    const double larger = fmax(fabs(a), fabs(b)), smaller = fmin(fabs(a), fabs(b));
-    return larger > 0 ? larger * sqrt(1 + smaller / larger * (smaller / larger)) : 0;
+    const double most = larger(fabs(a), fabs(b)), ratio = smaller(fabs(a), fabs(b)) / most;
+    return most > 0 ? most * sqrt(1 + ratio * ratio) : 0;
 }
 
-/* A bound of |z| from now on: its energy z'^2 + stiffness z^2 never grows. Without a spring z goes one way.
-   */
+/* A bound of |z| from now on: the energy z'^2 + stiffness z^2 never grows; without a spring z goes one
+   way only. */
 static double largest_of(const free_motion *f)
 {
     if (f->z == 0 && f->slope == 0)
@@ -65,9 +65,12 @@ static double largest_of(const free_motion *f)
     return f->stiffness == 0 && f->damping == 0 && f->slope == 0 ? fabs(f->z) : INFINITY;
 }
 
-/* A bound of the integral of |z| from now on. With real roots -s and -S, s the smaller in size, z = z0 exp(-s
-   t) + (z0' + s z0) (exp(-s t) - exp(-S t))/(S - s), and the last factor's integral is 1/(s S). With complex
-   ones z is below an envelope that falls with r = damping/2, and also |z0| + |z0' + r z0| t below that. */
+/* A bound of the integral of |z| from now on. With real roots -s and -S, s the smaller one,
+
+       z = z0 exp(-s t) + (z0' + s z0) (exp(-s t) - exp(-S t))/(S - s)
+
+   and the last factor's integral is 1/(s S). With complex ones z is below an envelope that falls as
+   exp(-r t), r = damping/2, and also below (|z0| + |z0' + r z0| t) exp(-r t). */
 static double integral_of(const free_motion *f)
 {
     const double r = 0.5 * f->damping, square = r * r - f->stiffness;
@@ -81,20 +84,16 @@ static double integral_of(const free_motion *f)
     return fmin(envelope / r, fabs(f->z) / r + fabs(turned) / (r * r));
 }
 
-/* on_u q + on_v q' of a free mode, and its slope */
-static free_motion seen(const rampwise_modes *m, size_t j, double on_u, double on_v)
+/* What output o has of a free mode */
+static free_motion seen_at(const rampwise_modes *m, size_t j, size_t o)
 {
     const mode_group *const g = &m->group[j / LANES];
     const double u = g->lanes.u[j % LANES], v = g->lanes.v[j % LANES];
     const double stiffness = -g->row[0][j % LANES], damping = -g->row[1][j % LANES];
+    const size_t at = j * m->width + o;
+    const double on_u = m->weight_u[at], on_v = m->weight_v != NULL ? m->weight_v[at] : 0;
     return (free_motion){stiffness, damping, on_u * u + on_v * v,
                          on_u * v - on_v * (damping * v + stiffness * u)};
-}
-
-static free_motion seen_at(const rampwise_modes *m, size_t j, size_t o)
-{
-    const size_t at = j * m->width + o;
-    return seen(m, j, m->weight_u[at], m->weight_v != NULL ? m->weight_v[at] : 0);
 }
 
 /* What no later value of output o exceeds in size. */
@@ -115,10 +114,12 @@ static free_motion force_of(const free_motion *z, double k, double c)
     return (free_motion){z->stiffness, z->damping, k * z->z + c * z->slope, k * z->slope + c * second};
 }
 
-/* The motion alpha y + beta y' that a piece x'' + c x' + k x = -y can follow the free motion y in. With a = c
-   - damping and b = k - stiffness of y: (a D + b) (alpha + beta D) y = -y, so beta = a/D and alpha = (a
-   damping - b)/D with D = b^2 - a b damping + a^2 stiffness. Infinite where the two have a root in common, or
-   nearly, or D is out of range. */
+/* The motion alpha y + beta y' in which a piece x'' + c x' + k x = -y can follow the free motion y. With the
+   differences a = c - damping and b = k - stiffness that is a x' + b x = -y, and so
+
+       beta = a/D, alpha = (a damping - b)/D, D = b^2 - a b damping + a^2 stiffness
+
+   Infinite where the two have a root in common, or nearly, or D is out of range. */
 static free_motion following(const free_motion *y, double k, double c)
 {
     const double a = c - y->damping, difference = k - y->stiffness;
@@ -212,15 +213,15 @@ static double later_of(const rampwise_modes *m, const asked *a, size_t i)
     return later[a->q];
 }
 
-/* Whether nothing later exceeds the peak on either side by more than 1e-11 of the larger: the rounding of
-   both. */
+/* Whether nothing later exceeds the peak on either side by more than what rounding does to both, 1e-11 of the
+   larger. */
 static int is_final(const rampwise_peak *peak, double later)
 {
     const double high = peak->high.value, low = -peak->low.value;
     return later <= fmin(high, low) + 1e-11 * fmax(high, low);
 }
 
-/* Walks on until all are final, so many samples at most. The first that is not is asked again after each
+/* Walks on until all are final, so many samples at most. Only the first that is not is asked again after each
    segment. */
 static void walk(rampwise_modes *m, const asked *a, uint64_t samples)
 {

@@ -5,10 +5,10 @@
 #include "rampwise/coefficients.h"
 #include "rampwise/status.h"
 
-#define TERMS 17 /* powers 3 to 19 of the step */
-#define TERMS_IN_TWOFOLD                                                                                     \
-    9 /* powers 3 to 11; a double holds the rest, 2^-53 of the sum and less                        \
-       */
+/* Powers 3 to 19 of the step; those to 11 in twofold arithmetic: a double holds the rest, 2^-53 of the sum
+   and less. */
+#define TERMS 17
+#define TERMS_IN_TWOFOLD 9
 
 /* 1/n!, n = 2 to 23 */
 static const twofold inverse_factorial[22] = {

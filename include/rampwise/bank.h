@@ -67,8 +67,7 @@ RAMPWISE_API int rampwise_bank_retune(rampwise_bank *bank, size_t i, const rampw
    rampwise_bank_wanted_init. */
 typedef struct rampwise_bank_wanted {
     size_t size; /* of this struct */
-    /* largest[N]: each is raised to the largest |u| of its oscillator at the samples of the chunk.
-     */
+    /* largest[N]: each is raised to the largest |u| of its oscillator at the chunk's samples. */
     double *largest;
     /* Full histories of oscillators chosen[0] to chosen[chosen_count - 1], all different:
        [chosen_count][n]. None may overlap p. A history ends before a sample where one of its values

@@ -151,12 +151,13 @@ def floor_spectrum(
     systems = [grid.systems(block) for block in blocks(grid.omega.size, _A_TASK)]
     if part not in ("primary", "maximax"):
         raise ValueError(f"part: {part!r} is neither 'primary' nor 'maximax'")
-    step = _arrays.double(dt, "dt")
-    floors = structure.respond(record, step, points, part=part, modes=modes)
+    structure._rows(points)  # refuses what are none of its rows
     for name, row in points.items():
         if row._feels_motion():
             raise ValueError(f"points: {name!r} is not the total acceleration of a point: it weighs displacements or "
                              "velocities")  # fmt: skip
+    step = _arrays.double(dt, "dt")
+    floors = structure.respond(record, step, points, part=part, modes=modes)
 
     def work(task: Tuple[str, System]) -> Tuple[Peaks, Peaks]:
         point, pieces = task

@@ -219,13 +219,11 @@ class Structure:
     -----
     T. K. Caughey and M. E. J. O'Kelly, Journal of Applied Mechanics 32(3), 583-588, 1965, for the condition (from
     memory). A pair of roots that coincide without a shape of their own each is refused: move a damper by 1e-7 of it,
-    which changes a response by some 3e-8 of its peak and leaves it 8 digits. Nearer to coincidence digits are lost:
-    measured 1e-6 to 7e-6 of the peak at 1e-10, 5e-8 at 1e-8, 8e-10 at 1e-6. So they are by strong dampers of other
-    damping than classical, in the eigenvalue solver: two masses with a damper of 30 times the critical lose all beyond
-    6e-10 of the peak, of 300 times 1e-7.
+    which changes a response by some 3e-8 of its peak and leaves it 8 digits. Nearer to coincidence more are
+    lost; so they are, in the eigenvalue solver, by dampers of many times the critical where damping is not classical.
     Modes come from LAPACK by SciPy, so that their last digits, and those of responses, depend on the platform; the
-    response to given modes does not. Their work grows as n^3: on one core 0.4 s for 400 degrees of freedom, 4 s for
-    1000, 36 s for 2000. Results support, and never replace, the governing code and a licensed engineer's
+    response to given modes does not. Their work grows as n^3: on one core 0.5 s for 400 degrees of freedom, 4 s for
+    1000. Results support, and never replace, the governing code and a licensed engineer's
     judgement.
 
     Examples
